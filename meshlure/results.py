@@ -1,0 +1,78 @@
+"""What a study of a bait hands on: the result tree of results.json, and the outlines to draw it with."""
+
+from __future__ import annotations
+
+import json
+from collections.abc import Mapping
+from dataclasses import dataclass
+from typing import Any
+
+import numpy as np
+from numpy.typing import NDArray
+
+Floats = NDArray[np.float64]
+
+
+@dataclass(frozen=True, eq=False)
+class DrawnPiece:
+    """One piece's filled outline in one view.
+
+    Attributes
+    ----------
+    name, role : str
+        As in ``pieces`` of results.json; the outer skin of everything is drawn as role "skin".
+    rings : tuple of (n, 2) arrays, mm
+        Closed rings without the repeated first point, outer ones anticlockwise, holes clockwise.
+    """
+
+    name: str
+    role: str
+    rings: tuple[Floats, ...]
+
+
+@dataclass(frozen=True, eq=False)
+class View:
+    """The bait seen from one side, to scale.
+
+    Attributes
+    ----------
+    name : str
+        side (nose to the left, back up), top (nose to the left, seen from above) or front (back up, nose to the eye).
+    right, up : (3,) arrays
+        Mesh directions of the drawing's axes; a mesh point p in mm is drawn at (p.right - shift, p.up).
+    shift : float, mm
+        Such that the nose tip is at 0 where ``right`` runs from nose to tail, else 0.
+    pieces : tuple of DrawnPiece
+        The skin first, then the inside pieces in the bait file's order.
+    """
+
+    name: str
+    right: Floats
+    up: Floats
+    shift: float
+    pieces: tuple[DrawnPiece, ...]
+
+    def place(self, point_mm: Any) -> tuple[float, float]:
+        """Return where a mesh point in mm is drawn, mm."""
+        point = np.asarray(point_mm, dtype=np.float64)
+        return float(point @ self.right - self.shift), float(point @ self.up)
+
+
+@dataclass(frozen=True, eq=False)
+class Study:
+    """Everything one examination of a bait found.
+
+    Attributes
+    ----------
+    results : mapping
+        The tree of results.json: mm, g, degrees at its keys' word; published as a JSON Schema in the package.
+    views : tuple of View
+        side, top and front, for drawing.
+    """
+
+    results: Mapping[str, Any]
+    views: tuple[View, ...] = ()
+
+    def to_json(self) -> str:
+        """Return results.json as text; raises ValueError if a number in it is not finite."""
+        return json.dumps(self.results, indent=1, allow_nan=False, ensure_ascii=False) + "\n"
