@@ -51,8 +51,8 @@ def weld(corners: Floats) -> Welded:
     -----
     Corners are equal when all three coordinates are the same number (-0.0 is 0.0); there is no tolerance. Each corner's
     bits are mixed into one word that also holds the corner's place in the array, so that one sort of integers brings
-    equal corners together and every group's first corner to its head. A group is then compared with its head, coordinate
-    by coordinate; should two different points share a hash, other salts are tried, and at last a sort by coordinates.
+    equal corners together and every group's first corner to its head. A group is then compared with its head, number by
+    number; should two different points share a hash, other salts are tried, and at last a sort by coordinates.
     """
     if corners.ndim != 3 or corners.shape[1:] != (3, 3):
         raise ValueError(f"welding takes (m, 3, 3) corners, not {corners.shape}")
@@ -126,7 +126,8 @@ def _heads_by_coordinates(points: Floats) -> Ints:
 
 def _spread(order: Ints, starts: NDArray[np.bool_]) -> Ints:
     """Give every member of a sorted group the group's first member."""
-    return order[starts][np.cumsum(starts) - 1]
+    heads: Ints = order[starts][np.cumsum(starts) - 1]
+    return heads
 
 
 def _mixed(points: Floats, salt: np.uint64) -> NDArray[np.uint64]:

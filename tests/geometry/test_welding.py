@@ -12,7 +12,7 @@ from meshlure.geometry.welding import weld
 
 
 def loose(mesh: trimesh.Trimesh) -> Floats:
-    return np.array(mesh.triangles)
+    return np.array(mesh.triangles, dtype=np.float64)
 
 
 def test_icosphere_comes_back_with_the_vertices_euler_asks_for() -> None:
@@ -27,7 +27,7 @@ def test_icosphere_comes_back_with_the_vertices_euler_asks_for() -> None:
 @pytest.mark.parametrize("seed", range(5))
 def test_same_partition_as_rowwise_unique(seed: int) -> None:
     rng = np.random.default_rng(seed)
-    corners = rng.integers(-3, 3, (400, 3, 3)) * 0.1
+    corners = np.asarray(rng.integers(-3, 3, (400, 3, 3)) * 0.1, dtype=np.float64)
     keep = [len({tuple(p) for p in face}) == 3 for face in corners]
     welded = weld(corners)
     expected, inverse = np.unique(corners[keep].reshape(-1, 3), axis=0, return_inverse=True)
