@@ -19,7 +19,8 @@ def surface_of(*meshes: trimesh.Trimesh) -> Surface:
 
 
 def cube(at: tuple[float, float, float] = (0, 0, 0)) -> trimesh.Trimesh:
-    return trimesh.creation.box(bounds=np.array([at, np.add(at, 1.0)]))
+    box: trimesh.Trimesh = trimesh.creation.box(bounds=np.array([at, np.add(at, 1.0)]))
+    return box
 
 
 def check_pairs(surface: Surface, pairs: EdgePairs) -> None:
