@@ -1,0 +1,213 @@
+"""Solids and filled outlines joined, cut and met exactly, by a manifold library whose every answer is checked."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import manifold3d
+import numpy as np
+
+from meshlure.geometry.surface import Floats, Ints, Surface
+
+_OUTLINE_SPAN = 100.0
+"""Outlines are scaled to this size: the polygon library keeps eight decimals."""
+
+
+class SolidError(Exception):
+    """The solid library could not take a surface, or lost a result."""
+
+
+@dataclass(frozen=True, eq=False)
+class Solid:
+    """A closed solid that can be joined, cut and met; every operation returns a new one.
+
+    Attributes
+    ----------
+    kernel : manifold3d.Manifold
+        Double precision, checked for its status.
+
+    Notes
+    -----
+    An invalid mesh gives the library an empty solid of no volume, and a legal empty result looks
+    the same, so the status is read after every step.
+    """
+
+    kernel: manifold3d.Manifold
+
+    def __post_init__(self) -> None:
+        status = self.kernel.status()
+        if status != manifold3d.Error.NoError:
+            raise SolidError(f"the solid library answers {status.name}")
+
+    @classmethod
+    def of(cls, surface: Surface, tag: int | None = None) -> Solid:
+        """Return the solid inside a closed surface.
+
+        Parameters
+        ----------
+        surface : Surface
+            Closed, consistently wound, outward.
+        tag : int, optional
+            From `new_tag`; faces of later results that stem from this surface are found by it.
+
+        Raises
+        ------
+        SolidError
+            Where the library rejects the mesh.
+        """
+        tag = new_tag() if tag is None else tag
+        mesh = manifold3d.Mesh64(
+            vert_properties=np.array(surface.vertices),
+            tri_verts=surface.faces.astype(np.uint64),
+            run_index=np.array([0, 3 * len(surface.faces)], dtype=np.uint64),
+            run_original_id=np.array([tag], dtype=np.uint32),
+        )
+        solid = cls(manifold3d.Manifold(mesh))
+        if solid.kernel.is_empty() and len(surface.faces):
+            raise SolidError("the solid library keeps nothing of the mesh")
+        return solid
+
+    @property
+    def volume(self) -> float:
+        """Volume, m3."""
+        return float(self.kernel.volume())
+
+    @property
+    def empty(self) -> bool:
+        """Whether nothing is left."""
+        return bool(self.kernel.is_empty())
+
+    def joined(self, *others: Solid) -> Solid:
+        """Return what lies in any of the solids."""
+        kernels = [self.kernel, *(other.kernel for other in others)]
+        return Solid(manifold3d.Manifold.batch_boolean(kernels, manifold3d.OpType.Add))
+
+    def less(self, *others: Solid) -> Solid:
+        """Return what lies in this solid and in none of the others."""
+        kernels = [self.kernel, *(other.kernel for other in others)]
+        return Solid(manifold3d.Manifold.batch_boolean(kernels, manifold3d.OpType.Subtract))
+
+    def met(self, other: Solid) -> Solid:
+        """Return what lies in both solids."""
+        return Solid(self.kernel ^ other.kernel)
+
+    def parts(self) -> tuple[Solid, ...]:
+        """Return the surfaces that do not touch each other; a cavity's has a negative volume."""
+        return tuple(Solid(part) for part in self.kernel.decompose())
+
+    def filled(self) -> Solid:
+        """Return the solid with every space that it closes off filled."""
+        parts = self.parts()
+        outer = [part for part in parts if part.volume > 0]
+        if len(outer) == len(parts):
+            return self
+        # A solid lying loose in a closed-off space is swallowed by the union.
+        return outer[0].joined(*outer[1:])
+
+    def gap(self, other: Solid, search: float) -> float:
+        """Return the least distance to another solid, m, at most ``search``."""
+        return float(self.kernel.min_gap(other.kernel, search))
+
+    def simplified(self, tolerance: float) -> Solid:
+        """Return the solid with vertices merged that move its skin by less than ``tolerance``, m."""
+        return Solid(self.kernel.simplify(tolerance))
+
+    def grown(self, distance: float, rounding: int = 24) -> Solid:
+        """Return the solid grown outward by a distance, m.
+
+        Parameters
+        ----------
+        distance : float, m
+            0 or more.
+        rounding : int
+            Sides of the ball that rolls over the solid; it stands outside the true ball, so that the gap is
+            nowhere less than ``distance``.
+
+        Notes
+        -----
+        Minkowski sum with a ball.
+        """
+        if distance == 0:
+            return self
+        ball = manifold3d.Manifold.sphere(distance, rounding)
+        reach = float(np.linalg.norm(_inner_distance(Solid(ball))))
+        return Solid(self.kernel.minkowski_sum(manifold3d.Manifold.sphere(distance**2 / reach, rounding)))
+
+    def surface(self) -> Surface:
+        """Return the solid's skin."""
+        mesh = self.kernel.to_mesh64()
+        return Surface(mesh.vert_properties[:, :3], mesh.tri_verts.astype(np.intp))
+
+    def sources(self) -> Ints:
+        """Return the tag of the surface that each face of `surface` stems from, (m,) array."""
+        mesh = self.kernel.to_mesh64()
+        runs = np.diff(np.asarray(mesh.run_index, dtype=np.intp)) // 3
+        return np.repeat(np.asarray(mesh.run_original_id, dtype=np.intp), runs)
+
+
+def _inner_distance(ball: Solid) -> float:
+    skin = ball.surface()
+    normals = skin.double_areas
+    return float(np.abs(np.einsum("ij,ij->i", skin.corners[:, 0], normals) / np.linalg.norm(normals, axis=1)).min())
+
+
+def new_tag() -> int:
+    """Return a number by which a surface's faces can be told from others'."""
+    return int(manifold3d.Manifold.reserve_ids(1))
+
+
+@dataclass(frozen=True, eq=False)
+class Filled:
+    """A flat region filled from closed loops.
+
+    Attributes
+    ----------
+    rings : tuple of (n, 2) arrays
+        Outer boundaries anticlockwise, holes clockwise, free of crossings.
+    """
+
+    rings: tuple[Floats, ...]
+
+    @property
+    def area(self) -> float:
+        """Area in the square of the rings' unit."""
+        return sum(_ring_sums(ring)[0] for ring in self.rings)
+
+    @property
+    def centre(self) -> Floats:
+        """Centroid, (2,) array; the origin where there is no area."""
+        sums = [_ring_sums(ring) for ring in self.rings]
+        area = sum(s[0] for s in sums)
+        return np.asarray(sum((s[1] for s in sums), np.zeros(2)) / area) if area else np.zeros(2)
+
+    @property
+    def perimeter(self) -> float:
+        """Length of all boundaries."""
+        return sum(float(np.linalg.norm(np.roll(ring, -1, axis=0) - ring, axis=1).sum()) for ring in self.rings)
+
+
+def _ring_sums(ring: Floats) -> tuple[float, Floats]:
+    base = ring[0]
+    p, q = ring - base, np.roll(ring, -1, axis=0) - base
+    weight = (p[:, 0] * q[:, 1] - p[:, 1] * q[:, 0]) / 2
+    area = float(weight.sum())
+    return area, weight @ (p + q) / 3 + area * base
+
+
+def filled(loops: Sequence[Floats]) -> Filled:
+    """Return the region that closed loops wind round at least once in either direction (non-zero rule).
+
+    Parameters
+    ----------
+    loops : sequence of (n, 2) arrays
+        Closed, the first point not repeated; they may cross themselves and each other.
+    """
+    kept = [loop for loop in loops if len(loop) >= 3]
+    if not kept:
+        return Filled(())
+    low = np.min([loop.min(axis=0) for loop in kept], axis=0)
+    high = np.max([loop.max(axis=0) for loop in kept], axis=0)
+    middle, scale = (low + high) / 2, _OUTLINE_SPAN / max(float((high - low).max()), np.finfo(np.float64).tiny)
+    flat = manifold3d.CrossSection([(loop - middle) * scale for loop in kept], manifold3d.FillRule.NonZero)
+    return Filled(tuple(np.asarray(ring) / scale + middle for ring in flat.to_polygons()))
