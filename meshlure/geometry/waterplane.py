@@ -83,7 +83,8 @@ class Cut:
             return Section(0.0, self.normal * self.height, np.zeros((3, 3)), 0.0)
         middle = (self.start.mean(axis=0) + self.end.mean(axis=0)) / 2
         p, q = self.start - middle, self.end - middle
-        weight = np.cross(p, q) @ self.normal / 2
+        (px, py, pz), (qx, qy, qz), n = p.T, q.T, self.normal
+        weight = ((py * qz - pz * qy) * n[0] + (pz * qx - px * qz) * n[1] + (px * qy - py * qx) * n[2]) / 2
         length = np.linalg.norm(q - p, axis=1)
         s = p + q
         area = float(weight.sum())
