@@ -1,0 +1,201 @@
+"""Polygons of a mesh file, cut into triangles between their own corners."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import Final
+
+import numpy as np
+
+from meshlure.geometry.surface import Floats, Ints
+
+FLAT: Final = 1e-3
+"""Share of a polygon's size by which a corner may lie off its plane before it is told; rounding to text stays below."""
+
+_STRAIGHT: Final = 1e-6
+"""Sine of a corner's turn, and share of the polygon's size for a triangle's height, below which they count as none."""
+
+_POINTLESS: Final = 1e-12
+"""Share of its squared size below which a polygon has no area: its corners lie on a line."""
+
+_SAME_AREA: Final = 1e-6
+
+
+@dataclass(frozen=True, eq=False)
+class Polygons:
+    """Polygons over a table of vertices.
+
+    Attributes
+    ----------
+    corners : (c,) array
+        Vertex indices of all polygons, one after another.
+    counts : (k,) array
+        How many of them each polygon has, three or more.
+    """
+
+    corners: Ints
+    counts: Ints
+
+
+@dataclass(frozen=True, eq=False)
+class Cut:
+    """Triangles cut from polygons.
+
+    Attributes
+    ----------
+    faces : (m, 3) array of vertex indices
+        In the polygons' order, turning the same way as they.
+    bent : (b,) array of polygon numbers
+        Polygons that are not flat: another program may cut them along another diagonal.
+    bend : float, unit of the vertices
+        Farthest that a corner of these lies from its polygon's plane.
+    crossing : (x,) array of polygon numbers
+        Polygons whose outline crosses itself, so that no cutting is the right one.
+    """
+
+    faces: Ints
+    bent: Ints
+    bend: float
+    crossing: Ints
+
+
+def cut(vertices: Floats, polygons: Polygons) -> Cut:
+    """Triangles of polygons, without a new corner.
+
+    Parameters
+    ----------
+    vertices : (n, 3) array
+        Finite.
+    polygons : Polygons
+
+    Returns
+    -------
+    Cut
+
+    Notes
+    -----
+    A polygon's plane goes through the mean of its corners, along the normal of Newell's sums (sum over the edges of
+    p x q, which is twice the area whatever the shape). A polygon that turns left at every corner, once round, is fanned
+    from its first corner. Any other is cut by ears in its plane, and the triangles held against it: n - 2 of them, none
+    turned over, together of the polygon's area. Corners on a straight edge are kept, for a neighbour may end there.
+    """
+    starts = np.cumsum(polygons.counts) - polygons.counts
+    faces: list[Ints] = []
+    owners: list[Ints] = []
+    bent: list[Ints] = []
+    crossing: list[int] = []
+    bend = 0.0
+    for count in np.unique(polygons.counts).tolist():
+        numbers = np.flatnonzero(polygons.counts == count)
+        corners = polygons.corners[starts[numbers, None] + np.arange(count)]
+        fans = np.stack([np.zeros(count - 2, dtype=np.intp), np.arange(1, count - 1), np.arange(2, count)], axis=1)
+        if count == 3:
+            faces.append(corners)
+            owners.append(numbers)
+            continue
+        shape = _Shape(vertices[corners])
+        off = shape.bend > FLAT * shape.size
+        bent.append(numbers[off])
+        bend = max(bend, float(shape.bend[off].max(initial=0.0)))
+        fanned = shape.convex | ~shape.spread
+        faces.append(corners[fanned][:, fans].reshape(-1, 3))
+        owners.append(np.repeat(numbers[fanned], count - 2))
+        for row in np.flatnonzero(~fanned):
+            ears, whole = _ears(vertices[corners[row]], shape.normal[row])
+            faces.append(corners[row][ears])
+            owners.append(np.full(len(ears), numbers[row]))
+            if not whole:
+                crossing.append(int(numbers[row]))
+    order = np.argsort(np.concatenate(owners), kind="stable")
+    return Cut(
+        np.concatenate(faces)[order],
+        np.sort(np.concatenate([np.empty(0, dtype=np.intp), *bent])),
+        bend,
+        np.array(sorted(crossing), dtype=np.intp),
+    )
+
+
+class _Shape:
+    """Normals, sizes and turns of polygons with the same count of corners.
+
+    Parameters
+    ----------
+    corners : (k, n, 3) array
+    """
+
+    def __init__(self, corners: Floats) -> None:
+        local = corners - corners.mean(axis=1, keepdims=True)
+        self.size: Floats = np.linalg.norm(np.ptp(corners, axis=1), axis=1)
+        squared = self.size**2
+        newell = np.cross(local, np.roll(local, -1, axis=1)).sum(axis=1)
+        length = np.linalg.norm(newell, axis=1)
+        edges = np.roll(corners, -1, axis=1) - corners
+        before = np.roll(edges, 1, axis=1)
+        turns = np.cross(before, edges)
+        # A bow tie's two halves cancel in Newell's sums, though its corners spread over a plane as a line's do not.
+        steepest = np.linalg.norm(turns, axis=2).argmax(axis=1)
+        steep = np.take_along_axis(turns, steepest[:, None, None], axis=1)[:, 0]
+        empty = length <= _POINTLESS * squared
+        self.normal: Floats = np.where(empty[:, None], steep, newell)
+        norms = np.linalg.norm(self.normal, axis=1)
+        self.spread = norms > _POINTLESS * squared
+        self.normal = np.divide(self.normal, norms[:, None], out=np.zeros_like(newell), where=self.spread[:, None])
+        self.bend: Floats = np.abs(np.einsum("knj,kj->kn", local, self.normal)).max(axis=1)
+        left = np.einsum("knj,kj->kn", turns, self.normal)
+        angles = np.arctan2(left, np.einsum("knj,knj->kn", before, edges)).sum(axis=1)
+        # Left at every corner but twice round is a five-pointed star.
+        strict = left > _STRAIGHT * np.linalg.norm(before, axis=2) * np.linalg.norm(edges, axis=2)
+        self.convex = ~empty & strict.all(axis=1) & (np.abs(angles - 2 * np.pi) < 1.0)
+
+
+def _ears(corners: Floats, normal: Floats) -> tuple[Ints, bool]:
+    """Triangles (m, 3) of one polygon by ear cutting, and whether they cover it as it is drawn."""
+    # Imported here: only a file with concave polygons needs them.
+    from mapbox_earcut import triangulate_float64
+    from trimesh.geometry import plane_transform
+    from trimesh.transformations import transform_points
+
+    # A corner written twice in a row is one corner; the ear cutter drops it, so it is dropped before the count.
+    apart = np.flatnonzero((corners != np.roll(corners, 1, axis=0)).any(axis=1))
+    to_plane = plane_transform(corners.mean(axis=0), normal)  # type: ignore[no-untyped-call]
+    flat: Floats = transform_points(corners[apart], to_plane)[:, :2]
+    order = triangulate_float64(np.ascontiguousarray(flat), np.array([len(flat)], dtype=np.uint32))
+    ears: Ints = order.astype(np.intp).reshape(-1, 3)
+    areas = _signed_areas(flat[ears])
+    ears[areas < 0] = ears[areas < 0][:, ::-1]
+    around = np.roll(flat, -1, axis=0)
+    area = float((flat[:, 0] * around[:, 1] - around[:, 0] * flat[:, 1]).sum()) / 2
+    whole = len(ears) == len(flat) - 2 and bool(abs(np.abs(areas).sum() - area) <= _SAME_AREA * abs(area))
+    return apart[_without_needles(ears, flat)], whole
+
+
+def _without_needles(ears: Ints, flat: Floats) -> Ints:
+    """Turn the long edge between a triangle without height and its neighbour the other way.
+
+    Corners that were drawn on a straight edge stand beside it by a rounding, so the cutter may take three of them for
+    an ear.
+    """
+    ears = ears.copy()
+    least = _STRAIGHT * float(np.linalg.norm(np.ptp(flat, axis=0)))
+    for _ in range(len(ears)):
+        sides = np.linalg.norm(flat[np.roll(ears, -1, axis=1)] - flat[ears], axis=2)
+        needles = 2 * _signed_areas(flat[ears]) <= least * sides.max(axis=1)
+        holders = {
+            (int(a), int(b)): row for row, ear in enumerate(ears) for a, b in zip(ear, np.roll(ear, -1), strict=True)
+        }
+        for needle in np.flatnonzero(needles):
+            a, c, b = np.roll(ears[needle], -int(sides[needle].argmax()))
+            row = holders.get((int(c), int(a)))
+            if row is not None and not needles[row]:
+                (d,) = set(ears[row].tolist()) - {int(a), int(c)}
+                ears[needle], ears[row] = (a, d, b), (d, c, b)
+                break
+        else:
+            break
+    return ears
+
+
+def _signed_areas(triangles: Floats) -> Floats:
+    a, b, c = triangles[:, 0], triangles[:, 1], triangles[:, 2]
+    areas: Floats = ((b - a)[:, 0] * (c - a)[:, 1] - (b - a)[:, 1] * (c - a)[:, 0]) / 2
+    return areas
