@@ -6,6 +6,7 @@ from dataclasses import dataclass
 from typing import Final
 
 import numpy as np
+from numpy.typing import NDArray
 
 from meshlure.geometry.surface import Floats, Ints
 
@@ -162,7 +163,6 @@ def _ears(corners: Floats, normal: Floats) -> tuple[Ints, bool]:
     order = triangulate_float64(np.ascontiguousarray(flat), np.array([len(flat)], dtype=np.uint32))
     ears: Ints = order.astype(np.intp).reshape(-1, 3)
     areas = _signed_areas(flat[ears])
-    ears[areas < 0] = ears[areas < 0][:, ::-1]
     around = np.roll(flat, -1, axis=0)
     area = float((flat[:, 0] * around[:, 1] - around[:, 0] * flat[:, 1]).sum()) / 2
     whole = len(ears) == len(flat) - 2 and bool(abs(np.abs(areas).sum() - area) <= _SAME_AREA * abs(area))
@@ -170,29 +170,41 @@ def _ears(corners: Floats, normal: Floats) -> tuple[Ints, bool]:
 
 
 def _without_needles(ears: Ints, flat: Floats) -> Ints:
-    """Turn the long edge between a triangle without height and its neighbour the other way.
+    """Turn the long edge of a triangle without height the other way between it and its neighbour.
 
-    Corners that were drawn on a straight edge stand beside it by a rounding, so the cutter may take three of them for
-    an ear.
+    Corners that were drawn on one line stand beside it by a rounding, so the cutter may take three of them for an ear.
     """
     ears = ears.copy()
     least = _STRAIGHT * float(np.linalg.norm(np.ptp(flat, axis=0)))
-    for _ in range(len(ears)):
+    # Every turn settles a needle or moves two of them apart; an outline that crosses itself may keep some.
+    for _ in range(4 * len(ears)):
         sides = np.linalg.norm(flat[np.roll(ears, -1, axis=1)] - flat[ears], axis=2)
+        longest = sides.argmax(axis=1)
         needles = 2 * _signed_areas(flat[ears]) <= least * sides.max(axis=1)
-        holders = {
-            (int(a), int(b)): row for row, ear in enumerate(ears) for a, b in zip(ear, np.roll(ear, -1), strict=True)
-        }
-        for needle in np.flatnonzero(needles):
-            a, c, b = np.roll(ears[needle], -int(sides[needle].argmax()))
-            row = holders.get((int(c), int(a)))
-            if row is not None and not needles[row]:
-                (d,) = set(ears[row].tolist()) - {int(a), int(c)}
-                ears[needle], ears[row] = (a, d, b), (d, c, b)
-                break
-        else:
+        pair = _pair(ears, longest, needles)
+        if pair is None:
             break
+        needle, other = pair
+        a, c, b = np.roll(ears[needle], -longest[needle])
+        (d,) = set(ears[other].tolist()) - {int(a), int(c)}
+        ears[needle], ears[other] = (a, d, b), (d, c, b)
     return ears
+
+
+def _pair(ears: Ints, longest: Ints, needles: NDArray[np.bool_]) -> tuple[int, int] | None:
+    """Needle, and the triangle across its long edge: one with height, else a needle whose long edge it is as well."""
+    holders = {(int(ear[k]), int(ear[k - 2])): (row, k) for row, ear in enumerate(ears) for k in range(3)}
+    mutual: tuple[int, int] | None = None
+    for needle in np.flatnonzero(needles).tolist():
+        k = int(longest[needle])
+        other = holders.get((int(ears[needle][k - 2]), int(ears[needle][k])))
+        if other is None:
+            continue
+        if not needles[other[0]]:
+            return needle, other[0]
+        if longest[other[0]] == other[1]:
+            mutual = needle, other[0]
+    return mutual
 
 
 def _signed_areas(triangles: Floats) -> Floats:

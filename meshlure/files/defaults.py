@@ -1,0 +1,30 @@
+"""What is taken where the bait file says nothing, in SI, each with its reason; whatever was taken is marked assumed."""
+
+from __future__ import annotations
+
+import math
+from typing import Final
+
+WATER_TEMPERATURE: Final = 18.0
+"""degC. Middle of the 8 to 28 degC in which most fishing is done: common practice, no source."""
+
+WATER_SALINITY: Final = 0.0
+"""g/kg. Fresh water."""
+
+CAST_SPEED: Final = 25.0
+"""m/s. A one-handed overhead cast of 5 to 30 g leaves the rod at 20 to 35 m/s: from memory, no source."""
+
+CAST_ANGLE: Final = math.radians(40.0)
+"""rad above the horizontal. About the angle of the longest flight in air: common practice, no source."""
+
+CAST_HEIGHT: Final = 2.0
+"""m above the water. A rod tip at the end of a cast from the bank: common practice, no source."""
+
+LINE_PULL: Final = 0.03
+"""N, backwards. Line drawn off a reel and through guides takes a tenth to a quarter of the range: common practice."""
+
+WIND: Final = 0.0
+"""m/s, positive from behind. Still air."""
+
+RETRIEVE_SPEEDS: Final = (0.5, 1.0)
+"""m/s. A slow and a brisk hand on a reel of 60 to 90 cm a turn: common practice, no source."""

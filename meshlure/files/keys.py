@@ -1,0 +1,312 @@
+"""One table of the bait file, and what is wrong with its keys."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Iterator, Mapping
+from typing import TypedDict, Unpack
+
+from meshlure.errors import Fault, InputError
+from meshlure.files.nearness import did_you_mean
+from meshlure.findings import Point
+from meshlure.units import quantity
+
+_LONGEST_TEXT = 200
+_MOST_ROWS = 1000
+AXES = ("+x", "-x", "+y", "-y", "+z", "-z")
+
+
+class Limits(TypedDict, total=False):
+    """Limits of a quantity, as `meshlure.units.quantity` takes them."""
+
+    positive: bool
+    signed: bool
+    least: float | None
+    most: float | None
+
+
+class Keys:
+    """Values of one table by key; faults are gathered, so that one reading finds them all.
+
+    Parameters
+    ----------
+    table : mapping
+        As the TOML reader gives it.
+    path : str
+        The table's name in messages: "cast", "insert[2] 'belly weight'".
+    faults : list of Fault
+        Where faults are put. While it is not empty at the end, nothing that was returned may be used: a faulty value
+        is given as a stand-in of its type.
+
+    Notes
+    -----
+    A key that was asked for is known; `close` finds the others.
+    """
+
+    def __init__(self, table: Mapping[str, object], path: str, faults: list[Fault]) -> None:
+        self.path = path
+        self.assumed: list[str] = []
+        self._table = table
+        self._faults = faults
+        self._known: list[str] = []
+
+    def where(self, key: str) -> str:
+        """Path of a key in messages."""
+        return f"{self.path}.{key}" if self.path else key
+
+    def fault(self, key: str, what: str, found: str = "", allowed: str = "", next_step: str = "") -> None:
+        """Put down one fault of a key, or of the table itself where the key is empty."""
+        self._faults.append(Fault(what, self.where(key) if key else self.path, found, allowed, next_step))
+
+    def take(self, error: InputError) -> None:
+        """Put down the faults that another reader found in a value of this table."""
+        self._faults.extend(error.faults)
+
+    def stated(self, key: str) -> bool:
+        """Tell whether the table has a key; the key is known from then on."""
+        self._known.append(key)
+        return key in self._table
+
+    def peek(self, key: str) -> str:
+        """Text of a key as it stands, empty where it is none; nothing is checked and the key is not made known."""
+        value = self._table.get(key)
+        return value.strip() if isinstance(value, str) else ""
+
+    def one_of(self, *keys: str, required: bool = True) -> str | None:
+        """Key that is stated out of several that exclude each other; the first, where more are."""
+        stated = [key for key in keys if self.stated(key)]
+        if len(stated) > 1:
+            what = "only one of these keys can be meant"
+            self.fault(
+                "", what, ", ".join(stated), f"one of {', '.join(keys)}", f"keep one and remove the {_rest(stated)}"
+            )
+        elif not stated and required:
+            self.fault("", "a key is missing", allowed=f"one of {', '.join(keys)}", next_step=f"add '{keys[0]} = ...'")
+        return stated[0] if stated else None
+
+    def text(self, key: str) -> str | None:
+        """Read a text, None where it is not stated."""
+        if not self.stated(key):
+            return None
+        value = self._table[key]
+        if not isinstance(value, str):
+            self._wrong(key, "text in quotes")
+        elif not value.strip():
+            self.fault(key, "the text is empty", repr(value), next_step="write it or remove the key")
+        elif len(value) > _LONGEST_TEXT or not value.isprintable():
+            what = "the text is too long or holds characters that cannot be printed"
+            allowed = f"up to {_LONGEST_TEXT} printable characters"
+            self.fault(key, what, repr(value[:40]), allowed, "write a shorter, plain text")
+        else:
+            return value.strip()
+        return ""
+
+    def asked_text(self, key: str, such_as: str) -> str:
+        """Read a text that must be stated."""
+        value = self.text(key)
+        if value is None:
+            self._missing(key, repr(such_as))
+        return value or ""
+
+    def choice(self, key: str, allowed: tuple[str, ...]) -> str | None:
+        """Read one word out of several, None where it is not stated."""
+        value = self.text(key)
+        if value and value not in allowed:
+            words = " or ".join(repr(word) for word in allowed)
+            self.fault(key, "no such choice", repr(value), words, did_you_mean(value, allowed, f"write {words}"))
+        return value
+
+    def flag(self, key: str, default: bool = False) -> bool:
+        """Answer true or false; ``default`` where it is not stated."""
+        if not self.stated(key):
+            return default
+        value = self._table[key]
+        if not isinstance(value, bool):
+            self._wrong(key, "true or false, without quotes")
+        return value is True
+
+    def whole(self, key: str, least: int, most: int) -> int:
+        """Read a whole number within limits, which must be stated."""
+        value = self._table.get(key)
+        if not self.stated(key):
+            self._missing(key, str(least))
+        elif isinstance(value, bool) or not isinstance(value, int):
+            self._wrong(key, f"a whole number, {least} to {most}")
+        elif not least <= value <= most:
+            self.fault(key, "the number is outside its range", str(value), f"{least} to {most}", "correct it")
+        else:
+            return value
+        return least
+
+    def share(self, key: str) -> float:
+        """Read a number from 0 to 1, which must be stated."""
+        value = self._table.get(key)
+        if not self.stated(key):
+            self._missing(key, "0.15")
+        elif not _is_number(value):
+            self._wrong(key, "a number from 0 to 1, without quotes")
+        elif not 0.0 <= float(value) <= 1.0:  # type: ignore[arg-type]
+            self.fault(key, "the share is outside its range", str(value), "0 to 1", "write 15% as 0.15")
+        else:
+            return float(value)  # type: ignore[arg-type]
+        return 0.0
+
+    def quantity(self, key: str, kind: str, **limits: Unpack[Limits]) -> float | None:
+        """Read a quantity in SI, None where it is not stated; kinds and limits are those of `meshlure.units`."""
+        return self._quantity(self._table[key], self.where(key), kind, limits) if self.stated(key) else None
+
+    def asked_quantity(self, key: str, kind: str, such_as: str, **limits: Unpack[Limits]) -> float:
+        """Read a quantity in SI that must be stated."""
+        value = self.quantity(key, kind, **limits)
+        if value is None:
+            self._missing(key, repr(such_as))
+            return math.nan
+        return value
+
+    def assumed_quantity(self, key: str, kind: str, default: float, **limits: Unpack[Limits]) -> float:
+        """Read a quantity in SI; the default where it is not stated, and then the key joins `assumed`."""
+        value = self.quantity(key, kind, **limits)
+        if value is None:
+            self.assumed.append(key)
+            return default
+        return value
+
+    def quantities(self, key: str, kind: str, such_as: str, **limits: Unpack[Limits]) -> tuple[float, ...] | None:
+        """Read the quantities of a list in SI, None where it is not stated."""
+        if not self.stated(key):
+            return None
+        rows = self._rows(key, f"a list such as {such_as}")
+        return tuple(self._quantity(row, where, kind, limits) for where, row in rows)
+
+    def pair(self, key: str, kind: str, such_as: str, **limits: Unpack[Limits]) -> tuple[float, float] | None:
+        """Read the least and greatest value allowed, in SI, None where it is not stated."""
+        values = self.quantities(key, kind, such_as, **limits)
+        if values is None:
+            return None
+        if len(values) != 2:
+            self.fault(
+                key, "a range takes two quantities", str(len(values)), f"least and greatest: {such_as}", "correct it"
+            )
+            return math.nan, math.nan
+        if values[0] > values[1]:
+            self.fault(
+                key, "the range is the wrong way round", str(self._table[key]), f"{such_as}", "put the lesser first"
+            )
+        return values[0], values[1]
+
+    def names(self, key: str) -> tuple[str, ...]:
+        """Read the texts of a list; none where it is not stated."""
+        if not self.stated(key):
+            return ()
+        names = []
+        for where, row in self._rows(key, "a list of names in quotes"):
+            if isinstance(row, str) and row.strip():
+                names.append(row.strip())
+            else:
+                self._faults.append(Fault("no name", where, repr(row), "a name in quotes", "correct it"))
+        return tuple(names)
+
+    def point(self, key: str, metres: float) -> Point:
+        """Read a point in m, which must be stated, in mesh coordinates of ``metres`` a unit."""
+        if not self.stated(key):
+            self._missing(key, "[31.0, 0.0, -9.5]")
+            return (math.nan,) * 3
+        numbers = self._three(
+            self._table[key], self.where(key), "three numbers, in the mesh's coordinates: [31.0, 0.0, -9.5]"
+        )
+        x, y, z = (number * metres for number in numbers)
+        return x, y, z
+
+    def direction(self, key: str) -> Point:
+        """Read a unit vector, which must be stated."""
+        if not self.stated(key):
+            self._missing(key, "'-x'")
+            return (math.nan,) * 3
+        return self._direction(self._table[key], self.where(key))
+
+    def directions(self, key: str) -> tuple[Point, ...]:
+        """Read the unit vectors of a list; none where it is not stated."""
+        if not self.stated(key):
+            return ()
+        rows = self._rows(key, "a list of directions: [[1, 2, 3], '+z']")
+        return tuple(self._direction(row, where) for where, row in rows)
+
+    def inner(self, key: str, such_as: str) -> Keys | None:
+        """Read a table within the table, None where it is not stated."""
+        if not self.stated(key):
+            return None
+        value = self._table[key]
+        if not isinstance(value, Mapping):
+            self._wrong(key, such_as)
+            return None
+        return Keys(value, self.where(key), self._faults)
+
+    def close(self) -> None:
+        """Put down every key that nothing asked for."""
+        for key in self._table:
+            if key not in self._known:
+                known = sorted(set(self._known))
+                self.fault(
+                    _safe(key), "no such key", allowed=", ".join(known), next_step=did_you_mean(key, known, "remove it")
+                )
+
+    def _quantity(self, value: object, where: str, kind: str, limits: Limits) -> float:
+        try:
+            return quantity(value, kind, where, **limits)
+        except InputError as error:
+            self.take(error)
+            return math.nan
+
+    def _rows(self, key: str, allowed: str) -> Iterator[tuple[str, object]]:
+        """Entries of a list with their paths; none after a fault."""
+        value = self._table[key]
+        if not isinstance(value, list):
+            self._wrong(key, allowed)
+        elif not value:
+            self.fault(key, "the list is empty", "[]", allowed, "fill it or remove the key")
+        elif len(value) > _MOST_ROWS:
+            self.fault(key, "the list is too long", str(len(value)), f"up to {_MOST_ROWS}", "shorten it")
+        else:
+            yield from ((f"{self.where(key)}[{number}]", row) for number, row in enumerate(value, 1))
+
+    def _three(self, value: object, where: str, allowed: str) -> Point:
+        if isinstance(value, list) and len(value) == 3 and all(map(_is_number, value)):
+            x, y, z = map(float, value)
+            return x, y, z
+        self._faults.append(Fault("three finite numbers were expected", where, repr(value)[:60], allowed, "correct it"))
+        return (math.nan,) * 3
+
+    def _direction(self, value: object, where: str) -> Point:
+        allowed = f"one of {', '.join(AXES)}, or three numbers such as [1, 0, 0.2]"
+        if isinstance(value, str):
+            sign, axis = (value[0], value[1:]) if value[:1] in {"+", "-"} else ("+", value)
+            if sign + axis not in AXES:
+                self._faults.append(Fault("no such direction", where, repr(value), allowed, "correct it"))
+                return (math.nan,) * 3
+            size = -1.0 if sign == "-" else 1.0
+            return tuple(size if name == axis else 0.0 for name in "xyz")  # type: ignore[return-value]
+        vector = self._three(value, where, allowed)
+        length = math.hypot(*vector)
+        if length == 0.0 or math.isinf(length):
+            self._faults.append(Fault("no direction has this length", where, repr(value), allowed, "correct it"))
+            return (math.nan,) * 3
+        x, y, z = (number / length for number in vector)
+        return x, y, z
+
+    def _wrong(self, key: str, allowed: str) -> None:
+        self.fault(key, "the value is of the wrong kind", repr(self._table[key])[:60], allowed, "correct it")
+
+    def _missing(self, key: str, such_as: str) -> None:
+        self.fault(key, "the key is missing", next_step=f"add it: {key} = {such_as}")
+
+
+def _rest(stated: list[str]) -> str:
+    return "other" if len(stated) == 2 else "others"
+
+
+def _safe(key: str) -> str:
+    return key if key.isprintable() else repr(key)
+
+
+def _is_number(value: object) -> bool:
+    return isinstance(value, int | float) and not isinstance(value, bool) and abs(value) < 1e300

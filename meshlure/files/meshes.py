@@ -1,0 +1,30 @@
+"""All meshes that a bait file names, or every fault in them."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from types import MappingProxyType
+
+from meshlure.errors import Fault, InputError
+from meshlure.files.baitfile import BaitFile
+from meshlure.files.reading import MeshFile, read_mesh
+
+
+def read_meshes(bait: BaitFile) -> Mapping[str, MeshFile]:
+    """Meshes of a bait by piece, the body's first, then the inserts' in the bait file's order.
+
+    Raises
+    ------
+    InputError
+        With the faults of every mesh that cannot be read, not only the first one's.
+    """
+    read: dict[str, MeshFile] = {}
+    faults: list[Fault] = []
+    for mesh in bait.meshes():
+        try:
+            read[mesh.piece] = read_mesh(mesh.path, bait.bait.length_unit, mesh.piece, mesh.where)
+        except InputError as error:
+            faults.extend(error.faults)
+    if faults:
+        raise InputError(faults)
+    return MappingProxyType(read)
