@@ -115,7 +115,7 @@ _THOUSANDS = re.compile(r"[+-]?[1-9]\d{0,2},\d{3}(?!\d)")
 _NOT_FINITE = re.compile(r"[+-]?(?:nan|inf(?:inity)?)\b", re.IGNORECASE)
 _POWER = re.compile(r"(?<=[A-Za-zµμ])\^?(-?[1-4])(?![\d.])")
 # The parser passes over what it does not know, such as a semicolon or what follows a hash.
-_SPELLING = re.compile(r"[A-Za-z°µμ%‰²³⁻¹*/^()·\s\d.+-]+", re.ASCII)
+_SPELLING = re.compile(r"[A-Za-z_°µμ%‰²³⁻¹*/^()·\s\d.+-]+", re.ASCII)
 _GRAIN_OR_GRAM = re.compile(r"(?<![A-Za-z])gr(?![A-Za-z])")
 _LONGEST: Final = 60
 _HUGE: Final = 1e60
@@ -218,7 +218,7 @@ def quantity(
 def _shorten(text: object) -> str:
     if isinstance(text, int) and abs(text) > 10**_LONGEST:
         return "a whole number of very many digits"
-    words = str(text).strip()
+    words = str(text).strip() or "an empty text"
     return words if len(words) <= _LONGEST else f"{words[:_LONGEST]}..."
 
 
@@ -251,10 +251,10 @@ def _convert(number: Decimal, spelling: str, entry: _Entry) -> float:
         raise entry.refuse("'gr' may stand for grams or for grains", step)
     near = _MEANT.get(entry.kind, {}).get(spelling) or _nearest(spelling, sort.usual)
     step = f"write '{number:g} {near}' if that is meant" if near else entry.example
+    if not _SPELLING.fullmatch(spelling):
+        raise entry.refuse(f"the unit '{spelling}' is not known", step)
     registry = _registry()
     try:
-        if not _SPELLING.fullmatch(spelling):
-            raise ValueError(spelling)
         unit = registry.parse_units(_POWER.sub(r"**\1", spelling.replace("·", "*")))
     except Exception as problem:  # the parser raises a dozen types, all of them for what the user wrote
         raise entry.refuse(f"the unit '{spelling}' is not known", step) from problem
