@@ -1,0 +1,262 @@
+"""The charts: reserve, waters, righting, stations, rose and drag, with their units, told apart without colour."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+from typing import TYPE_CHECKING, Any
+
+import numpy as np
+
+from meshlure.report import figures as ink
+from meshlure.report.figures import Picture, blank, drawable, picture
+from meshlure.report.wording import band, banded_grams, fixed, square_millimetres
+
+if TYPE_CHECKING:
+    from matplotlib.axes import Axes
+    from matplotlib.figure import Figure
+
+WIDE = 86.0
+"""mm: half an A4 page between its margins, and legible across a telephone."""
+LINES: tuple[dict[str, Any], ...] = (
+    {"linestyle": "solid", "color": ink.INK},
+    {"linestyle": (0, (5, 2)), "color": ink.CLAY},
+    {"linestyle": (0, (1, 1.4)), "color": ink.WATER},
+    {"linestyle": (0, (6, 1.5, 1, 1.5)), "color": ink.MOSS},
+)
+PARTS = {
+    "friction": ("skin friction", "#ffffff", ""),
+    "forebody": ("forebody", "#dfe7ea", "/////"),
+    "base": ("wake of the base", "#a9b9c0", ""),
+    "tail": ("closing tail", "#eef2f3", "-----"),
+    "lip": ("lip", "#e9d8c6", "\\\\\\\\\\"),
+    "hooks": ("hooks and rings", "#c98f63", ""),
+    "eyes": ("eyes and hangers", "#f4ece2", "xxxxx"),
+}
+"""Parts of the drag: name in the legend, ink, hatch."""
+
+
+def _axes(figure: Figure, left: float, bottom: float, right: float, top: float) -> Axes:
+    """Axes with margins in mm."""
+    width, height = figure.get_size_inches() * ink.MM_PER_INCH
+    return figure.add_axes((left / width, bottom / height, 1 - (left + right) / width, 1 - (bottom + top) / height))
+
+
+def reserve(buoyancy: Mapping[str, Any]) -> Picture:
+    """Return the reserve with its band on a line from sinking to floating, g."""
+    value, low, high = buoyancy["reserve_g"], buoyancy["reserve_low_g"], buoyancy["reserve_high_g"]
+    reach = 1.25 * max(abs(low), abs(high), abs(value), 1e-3)
+    figure = blank(WIDE, 20.5)
+    axes = _axes(figure, 4, 9.5, 4, 6)
+    axes.set(xlim=(-reach, reach), ylim=(-1, 1), yticks=[])
+    axes.spines["left"].set_visible(False)
+    axes.grid(visible=False)
+    axes.axvspan(0, reach, color=ink.SHALLOW, linewidth=0)
+    axes.axvline(0, color=ink.INK, linewidth=0.9)
+    axes.barh(0, high - low, left=low, height=0.8, facecolor="white", edgecolor=ink.INK, hatch="/////", linewidth=0.9)
+    axes.plot(value, 0, marker="D", color=ink.INK, markersize=5.5, markeredgecolor="white", markeredgewidth=0.9)
+    axes.set_xlabel("reserve, g   (bar: how sure)", labelpad=1.5)
+    axes.text(-reach, 1.15, "sinks", ha="left", va="bottom")
+    axes.text(0, 1.15, "hangs", ha="center", va="bottom")
+    axes.text(reach, 1.15, "floats", ha="right", va="bottom")
+    sure = band(low, high, "g", signed=True)
+    words = f"Reserve {banded_grams(value, low, high)} on a line from sinking to floating; band {sure}."
+    return picture(figure, words)
+
+
+def waters(rows: Sequence[Mapping[str, Any]]) -> Picture | None:
+    """Return the reserve over the water's temperature, one line a salinity, g."""
+    kinds = sorted({row["salinity_g_kg"] for row in rows if row["temperature_c"] is not None})
+    if not kinds:
+        return None
+    figure = blank(WIDE, 52)
+    axes = _axes(figure, 14, 10, 3, 6)
+    for kind, look in zip(kinds, _cycle(len(kinds)), strict=True):
+        of_kind = sorted(
+            (row["temperature_c"], row["reserve_g"])
+            for row in rows
+            if row["salinity_g_kg"] == kind and row["temperature_c"] is not None
+        )
+        label = "fresh" if kind < 0.5 else f"{kind:g} g/kg of salt"
+        axes.plot(*zip(*of_kind, strict=True), label=label, marker="o", markersize=2.6, **look)
+    low, high = axes.get_ylim()
+    if low < 0 < high:
+        axes.axhline(0, color=ink.PENCIL, linewidth=0.8)
+    axes.set(xlabel="water temperature, °C", ylabel="reserve, g")
+    _legend(axes, len(kinds))
+    return picture(
+        figure,
+        "Lines of the reserve in grams over the water's temperature; its numbers are in the table of other waters.",
+    )
+
+
+def righting(curves: Sequence[Mapping[str, Any]], plane: str, postures: Sequence[str]) -> Picture | None:
+    """Return the righting arm over the heel in one plane, one line a posture, mm over degrees."""
+    chosen = [curve for curve in curves if curve["plane"] == plane and curve["heel_deg"]]
+    if not chosen:
+        return None
+    figure = blank(WIDE, 52)
+    axes = _axes(figure, 14, 10, 3, 6)
+    for curve, look in zip(chosen, _cycle(len(chosen)), strict=True):
+        index = curve.get("posture")
+        name = f"from posture {index + 1}" if index is not None and len(postures) > index else "righting arm"
+        arms = [np.nan if arm is None else arm for arm in curve["arm_mm"]]
+        axes.plot(curve["heel_deg"], arms, label=name, **look)
+    axes.axhline(0, color=ink.PENCIL, linewidth=0.8)
+    axes.set(xlabel="heel to its right, °" if plane == "sideways" else "turned nose up, °", ylabel="righting arm, mm")
+    axes.xaxis.set_major_locator(_steps())
+    _legend(axes, len(chosen))
+    what = "heeled sideways" if plane == "sideways" else "turned nose up and down"
+    return picture(
+        figure,
+        f"Line of the righting arm in millimetres over the angle, {what}; its numbers are in the table below it.",
+    )
+
+
+def stations(curves: Mapping[str, Any]) -> Picture:
+    """Return section area over the distance from the nose, with width and depth below it, mm2 and mm over mm."""
+    x = curves["from_nose_mm"]
+    width, depth = curves.get("width_mm") or [], curves.get("depth_mm") or []
+    below = bool(width and depth)
+    figure = blank(WIDE, 78 if below else 52)
+    top = _axes(figure, 14, 42 if below else 10, 3, 3)
+    top.fill_between(x, curves["area_mm2"], color=ink.SHALLOW, linewidth=0)
+    top.plot(x, curves["area_mm2"], **LINES[0])
+    top.set(ylabel="section area, mm²", ylim=(0, None))
+    if below:
+        under = _axes(figure, 14, 10, 3, 44)
+        under.plot(x, depth, label="depth", **LINES[0])
+        under.plot(x, width, label="width", **LINES[1])
+        under.set(ylabel="mm", ylim=(0, None), xlabel="mm from the nose")
+        _legend(under, 2)
+        top.tick_params(labelbottom=False)
+        top.set_xlim(under.get_xlim())
+    else:
+        top.set_xlabel("mm from the nose")
+    most = int(np.argmax(curves["area_mm2"]))
+    greatest = f"{square_millimetres(curves['area_mm2'][most])} at {fixed(x[most], 0)} mm from the nose"
+    words = f"Section area from nose to tail, greatest {greatest}, with width and depth; all in the table of stations."
+    return picture(figure, words)
+
+
+def rose(table: Mapping[str, Any], frame: Mapping[str, Any], plane: str) -> Picture | None:
+    """Return the silhouette's area over the direction of view within one plane, mm2."""
+    names = (("nose", "tail"), ("back", "belly"), ("side", ""))
+    planes = table.get("plane") or [""] * len(table["axis"])
+    chosen = [index for index, name in enumerate(planes) if name == plane]
+    if len(chosen) < 3:
+        return None
+    views = (
+        np.array([table["axis"][index] for index in chosen])
+        @ np.array([frame[key] for key in ("nose", "back", "side")]).T
+    )
+    area = np.array([table["area_mm2"][index] for index in chosen])
+    across = int(np.argmin(np.abs(views).max(axis=0)))
+    first, second = [axis for axis in range(3) if axis != across]
+    angle = np.arctan2(views[:, second], views[:, first])
+    # Seen from behind a silhouette is its own mirror image: the half not measured is the half that was.
+    angle, area = np.concatenate([angle, angle + np.pi]), np.concatenate([area, area])
+    angle, kept = np.unique(np.round(np.mod(angle, 2 * np.pi), 6), return_index=True)
+    angle, area = np.append(angle, angle[0] + 2 * np.pi), np.append(area[kept], area[kept[0]])
+    figure = blank(62, 62)
+    axes: Any = figure.add_axes((0.17, 0.13, 0.66, 0.70), projection="polar")
+    axes.plot(angle, area, **LINES[0])
+    axes.fill(angle, area, color=ink.SHALLOW)
+    words = {0: names[first][0], 180: names[first][1] or "right", 90: names[second][0], 270: names[second][1]}
+    if second == 2:
+        words.update({90: "left", 270: "right"})
+    axes.set_thetagrids(list(range(0, 360, 45)), [words.get(turn, "") for turn in range(0, 360, 45)])
+    axes.set_theta_zero_location("W" if first == 0 else "N")
+    axes.set_theta_direction(1)
+    axes.set_ylim(0, None)
+    axes.yaxis.set_major_locator(_few())
+    axes.set_yticklabels([])
+    axes.spines["polar"].set_linewidth(0.6)
+    for level in axes.get_yticks()[1:]:
+        if level <= axes.get_ylim()[1]:
+            axes.text(np.radians(67.5), level, fixed(level, 0), fontsize=6, ha="center", va="center", color=ink.PENCIL)
+    figure.text(0.5, 0.965, f"silhouette area, mm², {rose_words(across)}", ha="center", va="center", fontsize=7)
+    most, least = int(np.argmax(area)), int(np.argmin(area))
+    ends = f"from {square_millimetres(area[least])} to {square_millimetres(area[most])}"
+    return picture(figure, f"Silhouette area by direction of view, {rose_words(across)}: {ends}; numbers in the table.")
+
+
+def rose_words(across: int) -> str:
+    """Return what a plane of directions of view means to someone who holds the bait, by the axis that stands on it."""
+    return ("turning it about its length", "walking around it", "going over it from nose to tail")[across]
+
+
+def drag(rows: Sequence[Mapping[str, Any]], fluid: str) -> Picture | None:
+    """Return the drag areas of one fluid at its greatest speed by parts, each way and layer, with their bands, mm2."""
+    of_fluid = [row for row in rows if row["fluid"] == fluid]
+    if not of_fluid:
+        return None
+    fastest = max(row["speed_m_s"] for row in of_fluid)
+    chosen = [row for row in of_fluid if row["speed_m_s"] == fastest][::-1]
+    figure = blank(WIDE, 27.5 + 7.5 * len(chosen))
+    axes = _axes(figure, 25, 18, 4, 5)
+    axes.grid(visible=False, axis="y")
+    start = np.zeros(len(chosen))
+    for key in [*PARTS, *sorted({key for row in chosen for key in row["parts"]} - set(PARTS))]:
+        name, colour, hatch = PARTS.get(key, (key, "#ffffff", "..."))
+        lengths = np.array([row["parts"].get(key) or 0.0 for row in chosen])
+        if not lengths.any():
+            continue
+        axes.barh(
+            range(len(chosen)),
+            lengths,
+            left=start,
+            height=0.62,
+            label=name,
+            facecolor=colour,
+            hatch=hatch,
+            edgecolor=ink.INK,
+            linewidth=0.6,
+        )
+        start += lengths
+    for level, row in enumerate(chosen):
+        ends = [row["drag_area_mm2"] + (row[end] - row["cd"]) * row["frontal_mm2"] for end in ("cd_low", "cd_high")]
+        axes.plot(ends, [level, level], color=ink.INK, linewidth=1.0, marker="|", markersize=7, zorder=5)
+    labels = [f"{leads_words(row['leads'])}\n{row['layer']}" for row in chosen]
+    axes.set_yticks(range(len(chosen)), [label if drawable(label.replace("\n", "")) else "?" for label in labels])
+    axes.tick_params(axis="y", length=0)
+    axes.set_title(f"in {fluid}, {fastest:g} m/s", fontsize=7.5, loc="left", pad=3)
+    axes.set(xlabel="drag area, mm²   (line: how sure)", xlim=(0, None))
+    handles, names = axes.get_legend_handles_labels()
+    figure.legend(
+        handles,
+        names,
+        loc="lower center",
+        ncols=3,
+        fontsize=6.5,
+        columnspacing=1.2,
+        handlelength=2.2,
+        borderaxespad=0.2,
+    )
+    words = f"Bars of the drag area in {fluid} at {fastest:g} m/s by parts, nose first and tail first, with bands"
+    return picture(figure, f"{words}; numbers in the table of drag.")
+
+
+def leads_words(leads: Any) -> str:
+    """Return which end goes first."""
+    return {"nose": "nose first", "tail": "tail first", None: "broadside"}.get(leads, str(leads))
+
+
+def _cycle(count: int) -> list[dict[str, Any]]:
+    return [dict(LINES[index % len(LINES)]) for index in range(count)]
+
+
+def _legend(axes: Axes, count: int) -> None:
+    if count > 1:
+        axes.legend(loc="lower center", bbox_to_anchor=(0.5, 0.99), ncols=min(count, 3), fontsize=7, borderaxespad=0.1)
+
+
+def _steps() -> Any:
+    from matplotlib.ticker import MaxNLocator
+
+    return MaxNLocator(nbins=7, steps=[1, 1.5, 3, 4.5, 6, 9, 10])
+
+
+def _few() -> Any:
+    from matplotlib.ticker import MaxNLocator
+
+    return MaxNLocator(nbins=3, prune=None)

@@ -1,0 +1,83 @@
+"""Tables of where the numbers come from: assumptions, files read, time taken; and the findings in order."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from typing import Any
+
+from meshlure.report.table import Table, table
+from meshlure.report.wording import fixed, point
+
+Results = Mapping[str, Any]
+LEVELS = ("fault", "warning", "note")
+PLACES = 3
+"""Places of one finding that are written out."""
+
+
+@dataclass(frozen=True)
+class Found:
+    """One finding in words: its level, the piece, what was found, where, and what to do."""
+
+    level: str
+    code: str
+    piece: str
+    message: str
+    where: str
+    advice: str
+
+
+def findings(results: Results) -> list[Found]:
+    """Return all findings, faults first, in the order they were found."""
+    rows = []
+    for row in results["findings"]:
+        places = row["where_mm"] or []
+        where = "; ".join(f"({point(place)})" for place in places[:PLACES])
+        if len(places) > PLACES:
+            where += f" and {len(places) - PLACES} more"
+        rows.append(
+            Found(
+                row["level"],
+                row["code"],
+                row["piece"] or "",
+                row["message"],
+                where and f"at {where} mm",
+                row["advice"] or "",
+            )
+        )
+    return sorted(rows, key=lambda found: LEVELS.index(found.level) if found.level in LEVELS else len(LEVELS))
+
+
+def counted(found: list[Found]) -> str:
+    """Return how many faults and warnings there are, in words."""
+    faults, warnings = (sum(f.level == level for f in found) for level in LEVELS[:2])
+    return f"{_count(faults, 'fault')}, {_count(warnings, 'warning')}"
+
+
+def _count(number: int, word: str) -> str:
+    return f"{number or 'no'} {word}{'' if number == 1 else 's'}"
+
+
+def assumptions(results: Results) -> Table | None:
+    """Return what was taken as given: the value, where it comes from, and whether anyone stated it."""
+    rows = [
+        (row["what"], str(row["value"]), row["source"] or "", "assumed" if row["assumed"] else "given")
+        for row in sorted(results.get("assumptions") or [], key=lambda row: not row["assumed"])
+    ]
+    return table("What was assumed, and what was given", ("what", "value", "from", ""), rows, (0, 1, 2, 3))
+
+
+def inputs(results: Results) -> Table | None:
+    """Return the files read, with their fingerprints."""
+    rows = [
+        (row["piece"], row["file"], fixed(row["triangles"], 0), row["length_unit"], row["sha256"])
+        for row in results["inputs"]
+    ]
+    return table("Files read", ("piece", "file", "triangles", "unit", "SHA-256"), rows, (0, 1, 3, 4))
+
+
+def timings(results: Results) -> str:
+    """Return how long each phase took, in one line."""
+    return ", ".join(
+        f"{phase} {fixed(seconds, 2)}" for phase, seconds in results["timings_s"].items() if seconds is not None
+    )

@@ -1,0 +1,99 @@
+"""Tables of what the water bears: buoyancy, other waters, ball positions."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from typing import Any
+
+from meshlure.report.substance import from_nose
+from meshlure.report.table import Table, table
+from meshlure.report.wording import (
+    band,
+    banded_grams,
+    cubic_centimetres,
+    degrees,
+    earned,
+    fixed,
+    grams,
+    millimetres,
+    point,
+)
+
+Results = Mapping[str, Any]
+
+
+def buoyancy(results: Results) -> Table | None:
+    """Return displaced volume, centre of buoyancy, reserve with band and the water it was reckoned for."""
+    found = results["buoyancy"]
+    water = found["water"]
+    low, high = found["reserve_low_g"], found["reserve_high_g"]
+    rows = [
+        ("displaced, wholly under", cubic_centimetres(found["displaced_mm3"])),
+        (
+            "centre of buoyancy B, wholly under",
+            f"{millimetres(from_nose(results, found['centre_mm']))} from the nose, at {point(found['centre_mm'])} mm",
+        ),
+        ("reserve", f"{banded_grams(found['reserve_g'], low, high)}, band {band(low, high, 'g', signed=True)}"),
+        ("density of the whole bait", f"{fixed(found['bulk_density_g_cm3'], 3)} g/cm³"),
+        ("water", water_words(water)),
+        ("water's density", f"{fixed(water['density_kg_m3'], 1)} kg/m³"),
+        ("water's kinematic viscosity", f"{fixed(water['viscosity_m2_s'] * 1e6, 3)} mm²/s"),
+    ]
+    return table("In the stated water", (), rows, (0, 1))
+
+
+def water_words(water: Mapping[str, Any]) -> str:
+    """Return temperature and salt of a water in words; a stated density where they are not known."""
+    parts = []
+    if water["salinity_g_kg"] is not None:
+        parts.append(
+            "fresh water" if water["salinity_g_kg"] < 0.5 else f"water with {water['salinity_g_kg']:g} g/kg of salt"
+        )
+    if water["temperature_c"] is not None:
+        parts.append(f"{water['temperature_c']:g} °C")
+    return ", ".join(parts) if parts else f"water of {fixed(water['density_kg_m3'], 1)} kg/m³"
+
+
+def waters(results: Results) -> Table | None:
+    """Return reserve and state in other waters."""
+    found = results["buoyancy"]
+    places = max(earned(found["reserve_low_g"], found["reserve_high_g"]), 2)
+    rows = [
+        (
+            row["name"],
+            fixed(row["temperature_c"], 0),
+            fixed(row["salinity_g_kg"], 0),
+            fixed(row["density_kg_m3"], 1),
+            fixed(row["reserve_g"], places, signed=True),
+            row["state"],
+        )
+        for row in results["waters"]
+    ]
+    return table(
+        "Other waters; differences between rows are surer than the values",
+        ("water", "°C", "salt, g/kg", "kg/m³", "reserve, g", "it"),
+        rows,
+        (0, 5),
+    )
+
+
+def balls(results: Results) -> Table | None:
+    """Return what the balls do at either end of their chamber."""
+    rows = [
+        (
+            row["chamber"],
+            f"at the {row['end']} end",
+            grams(row["mass_g"]),
+            point(row["centre_mm"]),
+            grams(row["reserve_g"], signed=True),
+            degrees(row["nose_up_deg"]),
+            degrees(row["lean_deg"]),
+        )
+        for row in results.get("balls") or []
+    ]
+    return table(
+        "Balls at either end of their chamber",
+        ("chamber", "balls", "mass", "centre x, y, z, mm", "reserve", "nose up", "lean"),
+        rows,
+        (0, 1),
+    )
