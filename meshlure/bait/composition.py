@@ -1,0 +1,251 @@
+"""The bait as one thing: every region weighed once, and the skin that displaces water."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from functools import cached_property
+
+import numpy as np
+
+from meshlure import tolerances
+from meshlure.bait.chambers import BallRow, ball_row
+from meshlure.bait.outside import outside_findings, untouched
+from meshlure.bait.overlaps import Filling, Space, fill
+from meshlure.bait.pieces import Bait, MeshPiece, Role, Substance
+from meshlure.bait.relations import Relation, relation
+from meshlure.findings import Finding
+from meshlure.geometry.moments import NOTHING, Moments, point_moments, skin_moments, solid_moments
+from meshlure.geometry.solids import Solid, SolidError, new_tag
+from meshlure.geometry.surface import Bools, Floats, Surface
+from meshlure.geometry.topology import EdgePairs, paired
+
+_BOOKS = 1e-9
+"""Share by which the volumes of a body's cut parts may miss the whole: beyond it a cut went wrong."""
+
+
+@dataclass(frozen=True, eq=False)
+class Part:
+    """One piece as it counts: what is left to it, weighed.
+
+    Attributes
+    ----------
+    name, role : str, Role
+    substance : Substance or None
+    volume : float, m3
+        Left to the piece after replacement.
+    mass : Moments, kg
+    centre : (3,) array, m
+    """
+
+    name: str
+    role: Role
+    substance: Substance | None
+    volume: float
+    mass: Moments
+    centre: Floats
+
+
+@dataclass(frozen=True, eq=False)
+class Skin:
+    """What displaces water.
+
+    Attributes
+    ----------
+    surface : Surface
+        Outer skin, with the walls of flooded hollows turned inward.
+    thickness : (m,) array, m
+        Of the coat on each face.
+    outer : Surface
+        Outer skin alone, every closed-off space filled.
+    outer_pairs : EdgePairs
+        Its edges.
+    bare : Surface
+        Outer skin without the lips.
+    lips : dict of Surface
+        By lip piece: its part outside the body.
+    painted : float, m2
+        Area of the body's own skin.
+    """
+
+    surface: Surface
+    thickness: Floats
+    outer: Surface
+    outer_pairs: EdgePairs
+    bare: Surface
+    lips: dict[str, Surface]
+    painted: float
+
+
+@dataclass(frozen=True, eq=False)
+class Composition:
+    """A bait put together.
+
+    Attributes
+    ----------
+    parts : tuple of Part
+        All but the balls, which may lie at either end.
+    rows : tuple of BallRow
+    skin : Skin
+    findings : tuple of Finding
+    """
+
+    parts: tuple[Part, ...]
+    rows: tuple[BallRow, ...]
+    skin: Skin
+    findings: tuple[Finding, ...]
+
+    @cached_property
+    def still_mass(self) -> Moments:
+        """Mass of all that does not move, kg."""
+        return sum((part.mass for part in self.parts), NOTHING)
+
+    def mass(self, ends: Mapping[str, str]) -> Moments:
+        """Return the whole bait's mass, kg, with the balls of each chamber at the given end."""
+        return sum((row.mass(ends[row.balls.chamber]) for row in self.rows), self.still_mass)
+
+
+def compose(bait: Bait) -> Composition:
+    """Return the bait put together, with what was found on the way.
+
+    Parameters
+    ----------
+    bait : Bait
+
+    Notes
+    -----
+    A piece that lies wholly inside the body changes mass and first moment by plain sums and the outer skin not at
+    all; only where a piece crosses the body's skin are the two cut against each other. Displaced is the outer
+    surface of body and outside pieces joined, every space closed off by them filled, less what floods.
+
+    Raises
+    ------
+    InputError
+        Where balls do not fit their chamber.
+    SolidError
+        Where a cut's parts do not add up to the whole.
+    """
+    body, pieces = bait.body, bait.pieces
+    filling = fill(body, pieces)
+    findings = list(filling.findings)
+    relations = {piece.name: relation(piece.surface, body.surface) for piece in pieces}
+    findings += untouched(body, pieces, relations)
+    if any(finding.stops for finding in findings):
+        return Composition((), (), _plain_skin(body), tuple(findings))
+    inner = all(r is Relation.INSIDE for r in relations.values())
+    if inner:
+        outer = _Outer(body.surface, body.pairs, np.ones(len(body.surface.faces), dtype=np.bool_), body.surface, {})
+        material = _body_alone(body, filling)
+    else:
+        outer, material, met = _crossed(body, pieces, filling)
+        findings += met
+    skin = _skin(bait, outer, filling, inner)
+    parts = [Part(body.name, Role.BODY, body.substance, material.amount, _weighed(material, body.substance), material.centre)]
+    parts += _filling_parts(pieces, filling)
+    parts += [
+        Part(h.name, Role.HARDWARE, h.substance, h.volume, point_moments(h.mass, h.at), h.at) for h in bait.hardware
+    ]
+    if bait.coat is not None:
+        coat = skin_moments(skin.surface, skin.thickness)
+        parts.append(Part("coat", Role.COAT, bait.coat.substance, coat.amount, _weighed(coat, bait.coat.substance), coat.centre))
+    chambers = {piece.name: piece for piece in pieces}
+    rows = tuple(ball_row(balls, chambers[balls.chamber], bait.frame) for balls in bait.balls)
+    return Composition(tuple(parts), rows, skin, tuple(findings))
+
+
+@dataclass(frozen=True, eq=False)
+class _Outer:
+    surface: Surface
+    pairs: EdgePairs
+    own: Bools
+    bare: Surface
+    lips: dict[str, Surface]
+
+
+def _weighed(volume: Moments, substance: Substance | None) -> Moments:
+    return volume * (substance.density if substance is not None else 0.0)
+
+
+def _moments(solid: Solid) -> Moments:
+    return NOTHING if solid.empty else solid_moments(solid.surface())
+
+
+def _body_alone(body: MeshPiece, filling: Filling) -> Moments:
+    whole, taken = solid_moments(body.surface), filling.everything()
+    return whole if taken is None else whole - _moments(taken)
+
+
+def _crossed(body: MeshPiece, pieces: tuple[MeshPiece, ...], filling: Filling) -> tuple[_Outer, Moments, list[Finding]]:
+    """The outer skin and the body's own material where some piece crosses the body's skin."""
+    tag = new_tag()
+    whole = Solid.of(body.surface, tag)
+    taken = filling.everything()
+    assert taken is not None
+    material = whole.less(taken)
+    common = whole.met(taken)
+    if abs(material.volume + common.volume - whole.volume) > _BOOKS * whole.volume:
+        raise SolidError(f"cutting '{body.name}' lost {abs(material.volume + common.volume - whole.volume) * 1e9:.3g} mm3")
+    joined = material.joined(*filling.solids.values())
+    outer = joined.filled()
+    lips = {piece.name for piece in pieces if piece.lip}
+    bare = outer
+    if lips:
+        spaces = [space.solid for space in filling.spaces]
+        others = [solid for name, solid in filling.solids.items() if name not in lips]
+        bare = (whole.less(*spaces) if spaces else whole).joined(*others).filled()
+    findings = outside_findings(body, pieces, filling, whole, outer, joined)
+    surface = outer.surface()
+    beyond = {name: filling.solids[name].less(whole) for name in lips}
+    skin = _Outer(
+        surface,
+        paired(surface),
+        outer.sources() == tag,
+        bare.surface() if lips else surface,
+        {name: solid.surface() for name, solid in beyond.items() if not solid.empty},
+    )
+    return skin, _moments(material), findings
+
+
+def _skin(bait: Bait, outer: _Outer, filling: Filling, inner: bool) -> Skin:
+    coat = 0.0 if bait.coat is None else bait.coat.thickness
+    thickness = np.where(outer.own, coat, 0.0)
+    surface = outer.surface
+    wet = filling.flooded()
+    if wet is not None:
+        if not inner:
+            wet = wet.met(Solid.of(outer.surface))
+        walls = wet.surface().turned()
+        surface = _together(surface, walls)
+        thickness = np.concatenate([thickness, np.zeros(len(walls.faces))])
+    area = np.linalg.norm(outer.surface.double_areas, axis=1) / 2
+    return Skin(surface, thickness, outer.surface, outer.pairs, outer.bare, outer.lips, float(area[outer.own].sum()))
+
+
+def _plain_skin(body: MeshPiece) -> Skin:
+    return Skin(body.surface, np.zeros(len(body.surface.faces)), body.surface, body.pairs, body.surface, {}, body.surface.area)
+
+
+def _together(first: Surface, second: Surface) -> Surface:
+    return Surface(
+        np.concatenate([first.vertices, second.vertices]), np.concatenate([first.faces, second.faces + len(first.vertices)])
+    )
+
+
+def _filling_parts(pieces: tuple[MeshPiece, ...], filling: Filling) -> list[Part]:
+    by_name: dict[str, Space] = {space.name: space for space in filling.spaces}
+    parts = []
+    for piece in pieces:
+        if piece.role is Role.INSERT:
+            moments = _moments(filling.solids[piece.name])
+            parts.append(Part(piece.name, piece.role, piece.substance, moments.amount, _weighed(moments, piece.substance),
+                              moments.centre))
+        else:
+            moments = _moments(by_name[piece.name].solid)
+            parts.append(Part(piece.name, piece.role, None, moments.amount, NOTHING, moments.centre))
+    for space in filling.spaces:
+        if space.owner is not None:
+            moments = _moments(space.solid)
+            parts.append(Part(space.name, Role.VOID, None, moments.amount, NOTHING, moments.centre))
+    return parts
+
+

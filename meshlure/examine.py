@@ -1,0 +1,160 @@
+"""One call that examines a whole bait: weight, buoyancy, postures, areas, form and drag."""
+
+from __future__ import annotations
+
+import time
+import uuid
+from collections.abc import Iterator
+from contextlib import contextmanager
+from typing import Any
+
+from meshlure.bait.composition import Composition, Part, compose
+from meshlure.bait.pieces import Bait, Role
+from meshlure.bait.refusals import refuse
+from meshlure.geometry.blocks import BlockIndex
+from meshlure.geometry.moments import Moments, solid_moments
+from meshlure.geometry.stations import stations
+from meshlure.physics.areas import rose, silhouettes
+from meshlure.physics.buoyancy import Reserve, doubts, reserve
+from meshlure.physics.drag import Drag
+from meshlure.physics.passage import LAYERS, LEADS, Passage, passage
+from meshlure.physics.repose import Ends, Vessel
+from meshlure.posing import pose
+from meshlure.results import account, passage as passage_tree, pieces, shape, water
+from meshlure.results.study import Study
+from meshlure.stock.waters import standard_air
+from meshlure.version import VERSION
+
+Tree = dict[str, Any]
+
+PHASES = ("reading", "soundness", "weight", "posture", "areas", "drag", "page")
+
+
+class Clock:
+    """Seconds spent by phase."""
+
+    def __init__(self, spent: dict[str, float]) -> None:
+        self.spent = dict.fromkeys(PHASES, 0.0) | spent
+
+    @contextmanager
+    def phase(self, name: str) -> Iterator[None]:
+        """Add the time of a block to a phase."""
+        start = time.perf_counter()
+        try:
+            yield
+        finally:
+            self.spent[name] += time.perf_counter() - start
+
+
+def study(bait: Bait) -> Study:
+    """Return everything that one examination of a bait finds.
+
+    Parameters
+    ----------
+    bait : Bait
+        From `read_bait`.
+
+    Returns
+    -------
+    Study
+        The tree of results.json and the outlines to draw.
+
+    Raises
+    ------
+    InputError
+        Where a mass or a volume is left undefined: every fault that leaves it so.
+    """
+    clock = Clock(bait.timings)
+    frame = bait.frame
+    with clock.phase("weight"):
+        composition = compose(bait)
+        skin = composition.skin
+        refuse(composition.findings, {})
+        index = BlockIndex.build(skin.surface, skin.thickness)
+    with clock.phase("posture"):
+        vessel = Vessel(composition, index, bait.hardware, frame, bait.water.density)
+        posed = pose(vessel, bait.plan.bait.suspends_within)
+    with clock.phase("weight"):
+        mass = composition.mass(posed.ends)
+        hull = vessel.hull(posed.ends)
+        held = _reserve(bait, composition, mass, hull.volume, posed.ends)
+    with clock.phase("areas"):
+        outer = index if skin.outer is skin.surface else BlockIndex.build(skin.outer)
+        seen = silhouettes(skin.outer, skin.outer_pairs, frame, bait.axes)
+        turned = rose(skin.outer, skin.outer_pairs, frame)
+        cuts = stations(outer, frame.nose, (frame.side, frame.back))
+        tip = pieces.nose_tip(bait.body.surface, frame)
+        views = shape.views(seen, shape.drawn_pieces(bait.pieces), frame, tip)
+    with clock.phase("drag"):
+        way = passage(skin, bait.hardware, frame, cuts, outer)
+        drags = _drags(bait, way, mass.amount)
+    tree: Tree = {
+        "format": 1,
+        "run": uuid.uuid4().hex,
+        "tool": {"name": "meshlure", "version": VERSION},
+        "name": bait.name,
+        "inputs": pieces.inputs(bait),
+        "files": [],
+        "frame": pieces.frame(frame),
+        "findings": pieces.findings([*bait.findings, *composition.findings, *posed.findings]),
+        "size": pieces.size(bait.body.surface, frame),
+        "facets": pieces.facets((bait.body, *bait.pieces), _mesh_volumes(bait)),
+        "pieces": pieces.pieces(composition, posed.ends),
+        "weight": pieces.weight(mass, frame, tip),
+        "hardware": pieces.hardware(bait),
+        "buoyancy": water.buoyancy(held, bait.water, hull.volume, hull.centre, mass.amount),
+        "waters": water.waters(mass.amount, hull.volume, bait.plan.bait.suspends_within),
+        "postures": posed.trees,
+        "righting": posed.righting,
+        "balls": [row | {"reserve_g": held.reserve * 1e3} for row in posed.balls],
+        "areas": shape.areas(seen),
+        "rose": shape.rose(turned),
+        "stations": shape.stations(cuts, tip),
+        "skin_mm2": skin.painted * 1e6,
+        "form": passage_tree.form(way, skin.outer, outer.volume, _trailing(drags)),
+        "drag": passage_tree.drag(drags),
+        **account.stated(bait, mass, held, posed.trees),
+        "assumptions": account.assumptions(bait),
+        "cautions": account.cautions(bait),
+        "timings_s": clock.spent,
+    }
+    return Study(tree, views)
+
+
+def _reserve(bait: Bait, composition: Composition, mass: Moments, displaced: float, ends: Ends) -> Reserve:
+    parts = list(composition.parts)
+    for row in composition.rows:
+        balls = row.mass(ends[row.balls.chamber])
+        volume = row.volume(ends[row.balls.chamber]).amount
+        parts.append(Part(f"balls in {row.balls.chamber}", Role.BALL, row.balls.substance, volume, balls, balls.centre))
+    density = bait.water.density
+    doubted = doubts(parts, (bait.body, *bait.pieces), bait.hardware, composition.skin.painted, density)
+    return reserve(mass.amount, displaced, density, bait.plan.bait.suspends_within, doubted)
+
+
+def _mesh_volumes(bait: Bait) -> dict[str, float]:
+    """Volume that each piece's mesh encloses, its cavities left out."""
+    return {
+        piece.name: solid_moments(piece.surface).amount - sum(solid_moments(c).amount for c in piece.cavities)
+        for piece in (bait.body, *bait.pieces)
+    }
+
+
+def _drags(bait: Bait, way: Passage, mass: float) -> list[tuple[str, str, bool, Drag]]:
+    air, speed = standard_air(), account.thrown(bait, mass)[0]
+    flows = [("air", speed, air.density, air.viscosity)]
+    flows += [("water", s, bait.water.density, bait.water.viscosity) for s in bait.plan.retrieve.speeds]
+    return [
+        (fluid, leads, layer is None, way.drag(leads, v, density, viscosity, layer))
+        for fluid, v, density, viscosity in flows
+        for leads in LEADS
+        for layer in LAYERS
+    ]
+
+
+def _trailing(drags: list[tuple[str, str, bool, Drag]]) -> dict[str, float]:
+    """Trailing bluffness of the headline at the first retrieve, by the end that leads."""
+    return {
+        leads: next(d.trailing_bluffness for fluid, end, head, d in drags if fluid == "water" and end == leads and head)
+        for leads in LEADS
+    }

@@ -1,0 +1,167 @@
+"""Reserve buoyancy: how many grams a bait floats or sinks by, with its band, and the word for it."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+from enum import StrEnum
+from math import hypot
+
+from meshlure import tolerances
+from meshlure.bait.composition import Part
+from meshlure.bait.pieces import Hardware, MeshPiece, Role
+
+
+class Behaviour(StrEnum):
+    """What a bait does at rest, left under water."""
+
+    FLOATS = "floats"
+    SUSPENDS = "suspends"
+    SINKS = "sinks"
+
+
+COAT_SPREAD = 0.05e-3
+"""m. How far a brushed or dipped coat's thickness strays; common practice, no source."""
+
+
+@dataclass(frozen=True)
+class Doubt:
+    """One source of doubt in the reserve.
+
+    Attributes
+    ----------
+    what : str
+    low, high : float, kg
+        How far the reserve may lie below and above; both positive.
+    """
+
+    what: str
+    low: float
+    high: float
+
+
+@dataclass(frozen=True)
+class Reserve:
+    """Reserve buoyancy with its band.
+
+    Attributes
+    ----------
+    reserve : float, kg
+        Displaced water less mass, wholly under water; positive floats.
+    low, high : float, kg
+        Root of the squares of the doubts below and above.
+    threshold : float, kg
+        Within this of zero it suspends.
+    doubts : tuple of Doubt
+    """
+
+    reserve: float
+    low: float
+    high: float
+    threshold: float
+    doubts: tuple[Doubt, ...]
+
+    @property
+    def state(self) -> Behaviour:
+        """Floats, suspends or sinks, by the reserve itself."""
+        return behaviour(self.reserve, self.threshold)
+
+    @property
+    def possible(self) -> tuple[Behaviour, ...]:
+        """Every state that the band holds, the likely one first."""
+        span = [state for state in Behaviour if self._holds(state)]
+        return (self.state, *(state for state in span if state is not self.state))
+
+    def _holds(self, state: Behaviour) -> bool:
+        if state is Behaviour.FLOATS:
+            return self.high > self.threshold
+        if state is Behaviour.SINKS:
+            return self.low < -self.threshold
+        return self.low <= self.threshold and self.high >= -self.threshold
+
+
+def behaviour(reserve: float, threshold: float) -> Behaviour:
+    """Return the state that a reserve means."""
+    if abs(reserve) <= threshold:
+        return Behaviour.SUSPENDS
+    return Behaviour.FLOATS if reserve > 0 else Behaviour.SINKS
+
+
+def reserve(
+    mass: float, displaced: float, water: float, threshold: float | None, doubts: Sequence[Doubt]
+) -> Reserve:
+    """Return the reserve buoyancy of a bait.
+
+    Parameters
+    ----------
+    mass : float, kg
+    displaced : float, m3
+        When wholly under water.
+    water : float, kg/m3
+    threshold : float or None, kg
+        Within which it suspends; None takes 0.2% of the displaced mass.
+    doubts : sequence of Doubt
+    """
+    value = displaced * water - mass
+    limit = tolerances.SUSPENDS_SHARE * displaced * water if threshold is None else threshold
+    return Reserve(
+        value, value - hypot(*(d.low for d in doubts)), value + hypot(*(d.high for d in doubts)), limit, tuple(doubts)
+    )
+
+
+def doubts(
+    parts: Sequence[Part], pieces: Sequence[MeshPiece], hardware: Sequence[Hardware], painted: float, water: float
+) -> tuple[Doubt, ...]:
+    """Return every source of doubt in a bait's reserve.
+
+    Parameters
+    ----------
+    parts : sequence of Part
+        What weighs, balls included.
+    pieces : sequence of MeshPiece
+        The body first: for the facet deficits.
+    hardware : sequence of Hardware
+    painted : float, m2
+        Skin under the coat; 0 without one.
+    water : float, kg/m3
+
+    Notes
+    -----
+    Densities: the stock's range, or 0.5% of a stated one. Facets: what the smooth parts would weigh and displace more.
+    Hardware: the stock's range; equal items come from one packet and err together. Coat: 0.05 mm either way.
+    """
+    found = []
+    for part in parts:
+        substance = part.substance
+        if substance is None or part.role in (Role.HARDWARE, Role.COAT) or part.volume <= 0:
+            continue
+        found.append(Doubt(
+            f"density of {part.name}",
+            part.volume * (substance.high - substance.density),
+            part.volume * (substance.density - substance.low),
+        ))
+    facets = _facets(pieces, water)
+    if facets:
+        found.append(Doubt("facets", facets, facets))
+    packets: dict[str, Doubt] = {}
+    for item in hardware:
+        key = item.item or item.name
+        old = packets.get(key, Doubt(f"mass of {key}", 0.0, 0.0))
+        packets[key] = Doubt(old.what, old.low + item.high - item.mass, old.high + item.mass - item.low)
+    found += packets.values()
+    coats = [part for part in parts if part.role is Role.COAT and part.substance is not None]
+    for coat in coats:
+        assert coat.substance is not None
+        swing = abs(painted * COAT_SPREAD * (water - coat.substance.density))
+        found.append(Doubt("thickness of the coat", swing, swing))
+    return tuple(found)
+
+
+def _facets(pieces: Sequence[MeshPiece], water: float) -> float:
+    body = pieces[0]
+    within = body.substance.density if body.substance is not None else 0.0
+    change = body.deficit * (water - within)
+    for piece in pieces[1:]:
+        own = piece.substance.density if piece.substance is not None else 0.0
+        change -= piece.deficit * (own - within)
+    return abs(change)
