@@ -146,7 +146,7 @@ class Potential:
             length = float(np.linalg.norm(step))
             if length <= self.precision and heights[0] >= -1e-7 * scale:
                 break
-            trial = self.at(_turned(state.up, directions @ step), state)
+            trial = self.at(turned(state.up, directions @ step), state)
             expected = -(slope @ step + step @ (heights * step) / 2)
             gained = state.energy - trial.energy
             if gained < 0.1 * expected and expected > _ROUNDING:
@@ -174,7 +174,7 @@ def _newton(slope: Floats, heights: Floats, radius: float, floor: float) -> Floa
     return step if length <= radius else step * (radius / length)
 
 
-def _turned(up: Floats, step: Floats) -> Floats:
+def turned(up: Floats, step: Floats) -> Floats:
     """Direction reached from ``up`` by a turn along a tangent vector, rad."""
     angle = float(np.linalg.norm(step))
     if angle == 0:

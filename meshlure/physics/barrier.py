@@ -1,0 +1,151 @@
+"""Barriers: the least rise of the potential that takes a bait out of one resting posture into any other."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+
+from meshlure.geometry.directions import DirectionGrid, direction_grid
+from meshlure.geometry.surface import Floats
+from meshlure.physics.landscape import Landscape
+from meshlure.physics.oneness import among
+from meshlure.physics.posture import Rest
+from meshlure.physics.potential import Potential, State, tangents, turned
+
+_STEPS = 30
+_RADIUS = 0.15
+"""rad. Longest step towards a pass."""
+
+_ASTRAY = np.cos(0.6)
+"""A search that ends farther from its start has found another place than the grid showed."""
+
+_CLOSE = 1e-9
+"""m. A search ends where the next step would change the height of the pass by less."""
+
+_ASIDE = 0.05
+"""rad. From a pass, descents to both sides start this far away."""
+
+_SAME = np.cos(np.radians(2.0))
+_BOWL = np.cos(np.radians(4.0))
+
+_CANDIDATES = 24
+"""Passes that are looked at, the lowest of the grid first."""
+
+
+@dataclass(frozen=True, eq=False)
+class Barrier:
+    """What keeps a bait in a resting posture.
+
+    Attributes
+    ----------
+    rise : float, m
+        Of the potential, from the posture to the lowest pass on any way to another one.
+    over : (3,) array
+        Up-direction at the pass.
+    settled : bool
+        Whether the pass is a critical point of the full hull's potential; else it is the lowest way that a grid
+        of directions offers, and the rise is too high by what a few degrees make.
+    """
+
+    rise: float
+    over: Floats
+    settled: bool
+
+
+def barriers(rough: Potential, full: Potential, rests: Sequence[Rest], nose: Floats) -> tuple[Barrier | None, ...]:
+    """Return for each resting posture the least rise of the potential on a way to any other, m.
+
+    Parameters
+    ----------
+    rough : Potential
+        On a coarse copy of the hull, at the same submerged share.
+    full : Potential
+        Of the hull itself.
+    rests : sequence of Rest
+        Every stable posture, from `posture.resting`.
+    nose : (3,) array
+        Direction out of the nose; the grid's lines follow it, as the valleys of a slender bait do.
+
+    Returns
+    -------
+    tuple of Barrier or None
+        None throughout where there is only one posture.
+
+    Notes
+    -----
+    The lowest way between two minima leads over a critical point of index one. Saddles of the potential on a grid of
+    directions are sharpened by Newton's method on the coarse copy; descents to both sides tell which postures each
+    of them joins; the first in ascending order that joins a posture to another one is the way out of it, and is
+    settled on the full hull. Energies are those of slow tilting: a bait's swing and waves need less.
+
+    References
+    ----------
+    J. Milnor (1963), Morse Theory, Annals of Mathematics Studies 51.
+    """
+    if len(rests) < 2:
+        return (None,) * len(rests)
+    grid = direction_grid(np.vstack([nose, tangents(nose).T]))
+    energies = Landscape.of(rough).energies(grid.directions)
+    minima = [rough.descended(rest.state.up, 0.1) for rest in rests]
+    found: list[Barrier | None] = [None] * len(rests)
+    for saddle in _saddles(rough, grid, energies):
+        ends = {_end(rough, saddle, side, minima) for side in (-1.0, 1.0)} - {None}
+        open_ends = [end for end in ends if end is not None and found[end] is None]
+        if len(ends) < 2 or not open_ends:
+            continue
+        top = _pass(full, saddle.up)
+        for end in open_ends:
+            found[end] = _barrier(rests[end], saddle if top is None else top, top is not None)
+        if None not in found:
+            break
+    return tuple(found)
+
+
+def _barrier(rest: Rest, top: State, settled: bool) -> Barrier:
+    # A way starts at the posture itself, so that its highest point is nowhere below it.
+    return Barrier(max(top.energy, rest.state.energy) - rest.state.energy, top.up, settled)
+
+
+def _saddles(rough: Potential, grid: DirectionGrid, energies: Floats) -> list[State]:
+    """Saddles of the coarse copy's potential, the lowest first, each once."""
+    found: list[State] = []
+    for place in grid.saddles(energies)[:_CANDIDATES]:
+        saddle = _pass(rough, grid.directions[place])
+        if saddle is not None and all(saddle.up @ other.up < _SAME for other in found):
+            found.append(saddle)
+    return sorted(found, key=lambda state: state.energy)
+
+
+def _end(rough: Potential, saddle: State, side: float, minima: Sequence[State]) -> int | None:
+    """Number of the posture that the descent from a pass to one side comes to rest in."""
+    soft = saddle.modes()[1][:, 0]
+    start = turned(saddle.up, side * _ASIDE * soft)
+
+    def arrived(state: State) -> bool:
+        return any(state.up @ other.up >= _BOWL for other in minima) and bool(state.modes()[0][0] > 0)
+
+    return among(rough, rough.descended(start, _ASIDE, arrived), minima, _BOWL)
+
+
+def _pass(potential: Potential, up: Floats) -> State | None:
+    """The saddle near a direction by Newton's method, up along the softer mode, down along the stiffer; None if it strays."""
+    state = potential.at(up)
+    for _ in range(_STEPS):
+        heights, directions = state.modes()
+        slope = directions.T @ state.lever
+        floor = 1e-7 * max(float(np.abs(heights).max()), 1e-9)
+        step = np.array([
+            -slope[0] / heights[0] if heights[0] < -floor else np.sign(slope[0]) * _RADIUS,
+            -slope[1] / heights[1] if heights[1] > floor else -np.sign(slope[1]) * _RADIUS,
+        ])
+        length = float(np.linalg.norm(step))
+        if length > _RADIUS:
+            step *= _RADIUS / length
+        if np.abs(slope * step).sum() / 2 <= _CLOSE:
+            return state if heights[0] < 0 else None
+        state = potential.at(turned(state.up, directions @ step), state)
+        if state.up @ up < _ASTRAY:
+            return None
+    return None
