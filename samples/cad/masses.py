@@ -2,12 +2,14 @@
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
 from OCP.BRepGProp import BRepGProp
 from OCP.GProp import GProp_GProps
+from OCP.ShapeUpgrade import ShapeUpgrade_ShapeDivideAngle
 from OCP.TopoDS import TopoDS_Shape
 
 EPSILON = 1e-10
@@ -50,15 +52,27 @@ def _amount(properties: GProp_GProps) -> Amount:
     return Amount(properties.Mass(), np.array([centre.X(), centre.Y(), centre.Z()]), rows)
 
 
+def _quartered(shape: TopoDS_Shape) -> TopoDS_Shape:
+    """Return the shape with its round faces divided every quarter turn.
+
+    The kernel watches the volume alone while it refines a face. On a face that closes on itself the first moments
+    cancel long before they are known: a turned solid's inertia came out wrong by 5e-5, by 1e-14 once divided.
+    """
+    divider = ShapeUpgrade_ShapeDivideAngle(math.pi / 2)
+    divider.Init(shape)
+    divider.Perform()
+    return divider.Result()
+
+
 def volume(shape: TopoDS_Shape) -> Amount:
     """Volume of a solid, mm3, with its centre and inertia (mm5)."""
     properties = GProp_GProps()
-    BRepGProp.VolumeProperties_s(shape, properties, EPSILON, True, False)
+    BRepGProp.VolumeProperties_s(_quartered(shape), properties, EPSILON, True, False)
     return _amount(properties)
 
 
 def area(shape: TopoDS_Shape) -> Amount:
     """Area of a skin, mm2, with its centre and inertia (mm4)."""
     properties = GProp_GProps()
-    BRepGProp.SurfaceProperties_s(shape, properties, EPSILON, False)
+    BRepGProp.SurfaceProperties_s(_quartered(shape), properties, EPSILON, False)
     return _amount(properties)

@@ -1,18 +1,21 @@
 """Solids whose mass properties have a closed form: they show how the kernel integrates, and with which signs.
 
 Each entry gives the B-rep and its exact volume, centre and inertia tensor about the centre (products negated), which
-are the textbook moments of a block, a ball and a ring, turned by R as R I R^T.
+are the textbook moments of a block, a ball and a ring, turned by R as R I R^T, and the integral over a turned blank.
 """
 
 from __future__ import annotations
 
 import math
+from collections.abc import Callable
 
 import numpy as np
+from cad import stick
 from cad.masses import Amount
 from cad.shapes import box, moved, sphere, torus
 from numpy.typing import NDArray
 from OCP.TopoDS import TopoDS_Shape
+from scipy.integrate import quad
 
 
 def rotation(axis: tuple[float, float, float], angle: float) -> NDArray[np.float64]:
@@ -49,4 +52,29 @@ def turned_ring() -> tuple[TopoDS_Shape, Amount]:
     return moved(torus(ring, tube), shift, axis, angle), Amount(mass, np.array(shift), turn @ own @ turn.T)
 
 
-CLOSED_FORMS = {"turned_block": turned_block, "ball": ball, "turned_ring": turned_ring}
+def stick_body() -> tuple[TopoDS_Shape, Amount]:
+    """Blank of the topwater stick, by quadrature of its discs: V = pi int r2, I_axis = pi/2 int r4.
+
+    Across the axis I = pi int r2 (z2 + r2/4) about the centre. The radius is that of a ball, a long arc and a ball.
+    """
+    nose, tail, (middle, below) = stick.profile()
+
+    def radius(z: float) -> float:
+        if z > nose[0]:
+            return math.sqrt(stick.NOSE_RADIUS**2 - (z - stick.LENGTH + stick.NOSE_RADIUS) ** 2)
+        if z < tail[0]:
+            return math.sqrt(stick.TAIL_RADIUS**2 - (z - stick.TAIL_RADIUS) ** 2)
+        return below + math.sqrt(stick.FLANK_RADIUS**2 - (z - middle) ** 2)
+
+    def along(of: Callable[[float], float]) -> float:
+        parts = ((0.0, tail[0]), (tail[0], nose[0]), (nose[0], stick.LENGTH))
+        return math.fsum(quad(of, a, b, epsabs=0.0, epsrel=1e-13)[0] for a, b in parts) * math.pi
+
+    mass = along(lambda z: radius(z) ** 2)
+    centre = along(lambda z: z * radius(z) ** 2) / mass
+    across = along(lambda z: radius(z) ** 2 * ((z - centre) ** 2 + radius(z) ** 2 / 4))
+    inertia = np.diag([across, across, along(lambda z: radius(z) ** 4 / 2)])
+    return stick.body(), Amount(mass, np.array([0.0, 0.0, centre]), inertia)
+
+
+CLOSED_FORMS = {"turned_block": turned_block, "ball": ball, "turned_ring": turned_ring, "stick_body": stick_body}
