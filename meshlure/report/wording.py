@@ -74,7 +74,9 @@ def significant(value: float | None, digits: int = 3, *, signed: bool = False, r
         return missing(reason)
     if value == 0:
         return "0"
-    return fixed(value, digits - 1 - math.floor(math.log10(abs(value))), signed=signed)
+    # The exponent after rounding: 9.996 to three digits is 10.0.
+    exponent = int(f"{value:.{digits - 1}e}".partition("e")[2])
+    return fixed(value, digits - 1 - exponent, signed=signed)
 
 
 def earned(low: float, high: float) -> int:

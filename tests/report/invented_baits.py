@@ -399,7 +399,7 @@ def minnow_results() -> dict[str, Any]:
         "cautions": [
             {
                 "trigger": "lead",
-                "text": "Lead is poisonous. Many places restrict lead in fishing tackle; check the rules where you fish.",
+                "text": "Lead is poisonous. Many places restrict it in tackle; check the rules where you fish.",
             },
             {"trigger": "hooks fitted", "text": "Fit hooks last and cover the points."},
         ],
