@@ -228,7 +228,11 @@ class Keys:
         """Read the unit vectors of a list; none where it is not stated."""
         if not self.stated(key):
             return ()
-        rows = self._rows(key, "a list of directions: [[1, 2, 3], '+z']")
+        value, allowed = self._table[key], "a list of directions: [[1, 2, 3], '+z']"
+        if isinstance(value, list) and value and all(map(_is_number, value)):
+            self._wrong(key, allowed)
+            return ()
+        rows = self._rows(key, allowed)
         return tuple(self._direction(row, where) for where, row in rows)
 
     def inner(self, key: str, such_as: str) -> Keys | None:

@@ -36,7 +36,8 @@ class Tables:
         value = self._table[name]
         if isinstance(value, Mapping):
             return Keys(value, name, self._faults)
-        found = f"[[{name}]]" if isinstance(value, list) else f"{name} = {value!r}"[:60]
+        several = isinstance(value, list) and all(isinstance(entry, Mapping) for entry in value)
+        found = f"[[{name}]]" if several else f"{name} = {value!r}"[:60]
         self._fault("this is a section of its own", name, found, f"[{name}]", f"write [{name}] above its keys")
         return None
 
