@@ -153,6 +153,11 @@ def compose(bait: Bait) -> Composition:
     return Composition(tuple(parts), rows, skin, tuple(findings))
 
 
+def inserts_left(bait: Bait) -> dict[str, Solid]:
+    """Return by insert name the solid that is left to it once later pieces have taken their space."""
+    return fill(bait.body, bait.pieces).solids
+
+
 @dataclass(frozen=True, eq=False)
 class _Outer:
     surface: Surface

@@ -1,0 +1,46 @@
+"""Writing a study into its output folder, whole or not at all."""
+
+from __future__ import annotations
+
+from dataclasses import replace
+from pathlib import Path
+from time import perf_counter
+
+from meshlure.bait.pieces import Bait
+from meshlure.files.folder import RESULTS, staged
+from meshlure.results.study import Study
+
+PAGE = "report.html"
+
+
+def write(found: Study, out: Path, *, page: bool, variant: Bait | None) -> Study:
+    """Write results.json, the page and the meshes of a variant; return the study with their names in it.
+
+    Parameters
+    ----------
+    found : Study
+    out : Path
+        The output folder.
+    page : bool
+        Whether to draw the page.
+    variant : Bait or None
+        Of which the cut body and inserts are written.
+    """
+    with staged(out) as folder:
+        names: list[str] = []
+        if variant is not None:
+            from meshlure.making.variant import write_cuttings
+
+            names += write_cuttings(variant, folder)
+        results = dict(found.results)
+        if page:
+            from meshlure.report.page import page as draw
+
+            start = perf_counter()
+            (folder / PAGE).write_text(draw(found), encoding="utf-8")
+            names.append(PAGE)
+            results["timings_s"] = results["timings_s"] | {"page": perf_counter() - start}
+        results["files"] = sorted(names)
+        found = replace(found, results=results)
+        (folder / RESULTS).write_text(found.to_json(), encoding="utf-8")
+    return found
