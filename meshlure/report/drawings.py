@@ -68,7 +68,7 @@ def title(paper: Layout) -> str:
         return words
     front = paper.view.name == "front"
     ahead = float(paper.subject.left @ (paper.view.right if front else paper.view.up))
-    return f"{words}, its own {'left' if ahead > 0 else 'right'} {'to the right' if front else 'uppermost'}"
+    return f"{words} (its {'left' if ahead > 0 else 'right'} is {'on the right' if front else 'uppermost'})"
 
 
 def alt(paper: Layout) -> str:

@@ -31,7 +31,8 @@ def resting(views: Sequence[View], subject: Subject) -> Picture | None:
     edge = water_in(view, rest, subject.gravity)
     corners = np.concatenate([ring @ turn.T for piece in view.pieces for ring in piece.rings])
     low, high = corners.min(axis=0), corners.max(axis=0)
-    scale = min((WIDE - 12) / (high[0] - low[0]), (TALL - 12) / (high[1] - low[1]))
+    tall = TALL if view.name == "side" else 0.6 * TALL
+    scale = min((WIDE - 12) / (high[0] - low[0]), (tall - 12) / (high[1] - low[1]))
     height = float(scale * (high[1] - low[1])) + 12
     shift = np.array([WIDE / 2 - scale * (low[0] + high[0]) / 2, 6 - scale * low[1]])
     figure = blank(WIDE, height)

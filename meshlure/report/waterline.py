@@ -9,7 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from meshlure.report.figures import SHALLOW, WATER
-from meshlure.report.layout import Layout
+from meshlure.report.layout import RIGHT, Layout
 from meshlure.report.names import LINE, POINTS
 from meshlure.report.outlines import below, within
 from meshlure.report.pen import fill, path, strokes, white_ground
@@ -19,6 +19,9 @@ if TYPE_CHECKING:
     from matplotlib.axes import Axes
 
 Floats = NDArray[np.float64]
+
+STEEP = 0.7
+"""Cosine of the slope from which a level sign would no longer stand on the line."""
 
 
 def draw_water(axes: Axes, paper: Layout) -> None:
@@ -47,8 +50,10 @@ def draw_water(axes: Axes, paper: Layout) -> None:
     strokes(axes, [(tuple(left), tuple(right))], "white", 2.4, 4.55)
     strokes(axes, [(tuple(left), tuple(right))], WATER, 1.0, 4.6, dash="dashdot")
     foot = right - 5.0 * (right - left) / max(float(np.hypot(*(right - left))), 1e-9)
-    level_sign(axes, float(foot[0]), float(foot[1]) + 1.15)
-    _words(axes, paper, foot, rest.words)
+    steep = abs(float(normal[1])) < STEEP or foot[0] < paper.width - RIGHT
+    if not steep:
+        level_sign(axes, float(foot[0]), float(foot[1]) + 1.15)
+    _words(axes, paper, None if steep else float(foot[1]), rest.words)
 
 
 def level_sign(axes: Axes, x: float, y: float) -> None:
@@ -57,13 +62,19 @@ def level_sign(axes: Axes, x: float, y: float) -> None:
     axes.plot([x], [y], marker="v", markersize=5.5, zorder=8, **look)
 
 
-def _words(axes: Axes, paper: Layout, foot: Floats, words: str) -> None:
+def _words(axes: Axes, paper: Layout, surface: float | None, words: str) -> None:
+    """Write in the margin at the right, under the surface where it comes out there, else half way up."""
     lines = ("water", *(textwrap.wrap(words, 14) if paper.view.name == "side" else ()))
-    down = foot[1] - paper.floor > LINE * len(lines)
+    depth = LINE * len(lines)
+    if surface is None:
+        top = (paper.floor + paper.roof + depth) / 2
+    elif surface - paper.floor > depth:
+        top = surface - 1.6
+    else:
+        top = surface + 3.4 + depth
     for row, line in enumerate(lines):
-        y = foot[1] - 1.6 - LINE * (row + 0.3) if down else foot[1] + 3.4 + LINE * (len(lines) - row - 0.7)
         look: dict[str, Any] = {"fontsize": POINTS - 0.3, "color": WATER, "ha": "right", "va": "center_baseline"}
-        axes.text(min(foot[0] + 4.0, paper.width - 1.0), y, line, zorder=8, bbox=white_ground(), **look)
+        axes.text(paper.width - 1.0, top - LINE * (row + 0.5), line, zorder=8, bbox=white_ground(), **look)
 
 
 def _plumb(axes: Axes, paper: Layout, up: Floats) -> None:

@@ -163,7 +163,7 @@ def lean_words(value: float | None, *, rounded: bool = False, free: bool = False
         return "free to roll" if free else "no lean to speak of, it stands on end"
     about = "about " if rounded else ""
     if abs(round(value)) < 1:
-        return f"{about}no lean"
+        return "no lean"
     return f"leans {about}{fixed(abs(value), 0)}° to its {'right' if value > 0 else 'left'}"
 
 
