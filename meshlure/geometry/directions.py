@@ -1,4 +1,4 @@
-"""A grid of directions over the whole sphere, with neighbours, and the low and the saddle-shaped places of values on it."""
+"""A grid of directions over the whole sphere, with neighbours; low and saddle-shaped places of values on it."""
 
 from __future__ import annotations
 
@@ -56,7 +56,8 @@ class DirectionGrid:
 
         References
         ----------
-        T. F. Banchoff (1970), Critical points and curvature for embedded polyhedral surfaces, Amer. Math. Monthly 77(5).
+        T. F. Banchoff (1970), Critical points and curvature for embedded polyhedral surfaces, American
+        Mathematical Monthly 77(5).
         """
         above = self._above(values)
         turns = (above != np.roll(above, 1, axis=1)).sum(axis=1)
@@ -78,14 +79,15 @@ def direction_grid(frame: Floats, cells: int = CELLS) -> DirectionGrid:
     Parameters
     ----------
     frame : (3, 3) array
-        Unit vectors at right angles, one a row; the great circles through any two of them are lines of the grid, so that
-        a valley along one of these is followed without steps.
+        Unit vectors at right angles, one a row; the great circles through any two of them are lines of the grid,
+        so that a valley along one of these is followed without steps.
     cells : int
         Along each edge of the octahedron, 2 or more.
 
     Notes
     -----
-    Corners are the whole-number points with ``abs(i) + abs(j) + abs(k) = cells``; neighbours differ by one in two of them.
+    Corners are the whole-number points with ``abs(i) + abs(j) + abs(k) = cells``; neighbours differ by one in two
+    of the three.
     """
     span = np.arange(-cells, cells + 1)
     i, j = (grid.reshape(-1) for grid in np.meshgrid(span, span, indexing="ij"))

@@ -8,6 +8,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from meshlure.geometry.directions import DirectionGrid, direction_grid
+from meshlure.geometry.flooding import first_meetings
 from meshlure.geometry.surface import Floats
 from meshlure.physics.landscape import Landscape
 from meshlure.physics.oneness import among
@@ -32,6 +33,9 @@ _BOWL = np.cos(np.radians(4.0))
 
 _CANDIDATES = 24
 """Passes that are looked at, the lowest of the grid first."""
+
+_LINKS = 6
+"""Directions of the grid that a posture is taken as a neighbour of."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -87,20 +91,26 @@ def barriers(rough: Potential, full: Potential, rests: Sequence[Rest], nose: Flo
     if len(rests) < 2:
         return (None,) * len(rests)
     grid = direction_grid(np.vstack([nose, tangents(nose).T]))
-    energies = Landscape.of(rough).energies(grid.directions)
+    landscape = Landscape.of(rough)
+    energies = landscape.energies(grid.directions)
     minima = [rough.descended(rest.state.up, 0.1) for rest in rests]
-    found: list[Barrier | None] = [None] * len(rests)
+    found: dict[int, Barrier] = {}
     for saddle in _saddles(rough, grid, energies):
-        ends = {_end(rough, saddle, side, minima) for side in (-1.0, 1.0)} - {None}
-        open_ends = [end for end in ends if end is not None and found[end] is None]
-        if len(ends) < 2 or not open_ends:
+        ends = {_end(rough, saddle, side, minima) for side in (-1.0, 1.0)}
+        open_ends = [end for end in ends if end is not None and end not in found]
+        if len(ends) < 2 or None in ends or not open_ends:
             continue
         top = _pass(full, saddle.up)
         for end in open_ends:
-            found[end] = _barrier(rests[end], saddle if top is None else top, top is not None)
-        if None not in found:
+            found[end] = _barrier(rests[end], top or full.at(saddle.up, saddle), top is not None)
+        if len(found) == len(rests):
             break
-    return tuple(found)
+    if len(found) < len(rests):
+        ups = np.array([rest.state.up for rest in rests])
+        for number, over in enumerate(_grid_ways(grid, energies, ups, landscape.energies(ups))):
+            if number not in found:
+                found[number] = _barrier(rests[number], full.at(over), False)
+    return tuple(found[number] for number in range(len(rests)))
 
 
 def _barrier(rest: Rest, top: State, settled: bool) -> Barrier:
@@ -109,7 +119,7 @@ def _barrier(rest: Rest, top: State, settled: bool) -> Barrier:
 
 
 def _saddles(rough: Potential, grid: DirectionGrid, energies: Floats) -> list[State]:
-    """Saddles of the coarse copy's potential, the lowest first, each once."""
+    """Return the saddles of the coarse copy's potential, the lowest first, each once."""
     found: list[State] = []
     for place in grid.saddles(energies)[:_CANDIDATES]:
         saddle = _pass(rough, grid.directions[place])
@@ -118,8 +128,19 @@ def _saddles(rough: Potential, grid: DirectionGrid, energies: Floats) -> list[St
     return sorted(found, key=lambda state: state.energy)
 
 
+def _grid_ways(grid: DirectionGrid, energies: Floats, ups: Floats, heights: Floats) -> Floats:
+    """Return the highest direction on the lowest way over the grid from each posture to any other, (n, 3) array."""
+    first = len(energies)
+    nearest = np.argsort(grid.directions @ ups.T, axis=0)[-_LINKS:].T
+    links = np.column_stack([nearest.reshape(-1), np.repeat(np.arange(first, first + len(ups)), _LINKS)])
+    met = first_meetings(
+        np.concatenate([energies, heights]), np.vstack([grid.edges, links]), np.arange(first, first + len(ups))
+    )
+    return np.asarray(np.vstack([grid.directions, ups])[met])
+
+
 def _end(rough: Potential, saddle: State, side: float, minima: Sequence[State]) -> int | None:
-    """Number of the posture that the descent from a pass to one side comes to rest in."""
+    """Descend from a pass to one side; return the number of the posture that this comes to rest in."""
     soft = saddle.modes()[1][:, 0]
     start = turned(saddle.up, side * _ASIDE * soft)
 
@@ -130,7 +151,7 @@ def _end(rough: Potential, saddle: State, side: float, minima: Sequence[State]) 
 
 
 def _pass(potential: Potential, up: Floats) -> State | None:
-    """The saddle near a direction by Newton's method, up along the softer mode, down along the stiffer; None if it strays."""
+    """Return the saddle near a direction, None where the search strays: Newton's method, up the softer mode, down the other."""
     state = potential.at(up)
     for _ in range(_STEPS):
         heights, directions = state.modes()

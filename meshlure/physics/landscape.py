@@ -6,7 +6,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from meshlure.geometry.clusters import coarse
+from meshlure.geometry.clusters import coarse, matched
 from meshlure.geometry.surface import Floats, Surface
 from meshlure.physics.potential import Potential
 
@@ -15,7 +15,7 @@ TRIANGLES = 500
 
 _ROUNDS = 12
 _CLOSE = 4e-3
-"""Share of the volume that a draught may leave missing: the energy is corrected for it, which leaves a micrometre or less."""
+"""Share of the volume that a draught may leave missing; the energy is corrected for it, to a micrometre or less."""
 
 _CHUNK = 16_000
 """Triangles times directions worked on at a time, so that the arrays stay in the processor's cache."""
@@ -62,7 +62,8 @@ class Landscape:
         corners = index.triangles[:, :9].transpose(0, 2, 1).reshape(-1, 3, 3)
         # The index's last blocks are filled up with triangles of no size.
         corners = corners[(corners[:, 0] != corners[:, 1]).any(axis=1)].reshape(-1, 3)
-        small = coarse(Surface(corners, np.arange(len(corners)).reshape(-1, 3)), triangles)
+        soup = Surface(corners, np.arange(len(corners)).reshape(-1, 3))
+        small = matched(coarse(soup, triangles), index.volume, index.moment / index.volume - index.origin)
         share = (potential.volume - hull.point_volume) / (hull.volume - hull.point_volume)
         return cls(
             small, potential.centre - index.origin, share, hull.point_volume,

@@ -8,9 +8,10 @@ import numpy as np
 
 from meshlure import tolerances
 from meshlure.geometry.blocks import BlockIndex
-from meshlure.geometry.clusters import coarse
+from meshlure.geometry.clusters import coarse, matched
 from meshlure.geometry.surface import Floats, Surface
 from meshlure.physics.immersion import Hull
+from meshlure.physics.oneness import among, free_direction
 from meshlure.physics.potential import Potential, State, tangents
 
 STARTS = 36
@@ -20,7 +21,6 @@ _ROUGH = 1e-4
 """rad. Precision of the search on the coarse copy; the full mesh settles the rest."""
 
 _BOWL = np.cos(np.radians(4.0))
-_SAME_COARSE = _BOWL
 _SAME = np.cos(np.radians(0.05))
 
 
@@ -35,14 +35,16 @@ class Rest:
         Share of the starts that came to rest here; it is no probability.
     upright : bool
         Reached from back up, as after a good landing.
-    neutral : (3,) array or None
-        Tangent direction of ``up`` in which the posture is free, where its metacentric height is next to none.
     """
 
     state: State
     share: float
     upright: bool
-    neutral: Floats | None
+
+    @property
+    def neutral(self) -> Floats | None:
+        """Tangent direction of ``up`` in which the posture is free: its metacentric height is next to none."""
+        return free_direction(self.state)
 
 
 def spread_directions(count: int) -> Floats:
@@ -81,12 +83,12 @@ def resting(hull: Hull, surface: Surface, centre: Floats, volume: float, back: F
     A basin narrower than about 20 degrees can be missed.
     """
     full = Potential(hull, centre, volume)
-    rough = _coarse_potential(hull, surface, centre, volume)
+    rough = coarse_potential(hull, surface, centre, volume)
     found: list[State] = []
     hits: list[int] = []
     for up in spread_directions(STARTS):
         state = rough.descended(up, known=lambda state: _settling(state, found))
-        known = _known(state, found, _SAME_COARSE)
+        known = among(rough, state, found, _BOWL)
         if known is None:
             found.append(state)
             hits.append(1)
@@ -96,24 +98,26 @@ def resting(hull: Hull, surface: Surface, centre: Floats, volume: float, back: F
     shares: list[float] = []
     for state, hit in zip(found, hits, strict=True):
         rest = full.descended(state.up, 0.1)
-        known = _known(rest, settled, _SAME)
+        known = among(full, rest, settled, _SAME)
         if known is None:
             settled.append(rest)
             shares.append(hit / STARTS)
         else:
             shares[known] += hit / STARTS
     first = full.descended(rough.descended(back, 0.2).up, 0.1)
-    upright = _known(first, settled, _SAME)
+    upright = among(full, first, settled, _SAME)
     if upright is None:
         settled.append(first)
         shares.append(0.0)
         upright = len(settled) - 1
-    rests = [Rest(s, share, k == upright, _neutral(s)) for k, (s, share) in enumerate(zip(settled, shares, strict=True))]
+    rests = [Rest(s, share, k == upright) for k, (s, share) in enumerate(zip(settled, shares, strict=True))]
     return tuple(sorted(rests, key=lambda rest: rest.state.energy))
 
 
-def _coarse_potential(hull: Hull, surface: Surface, centre: Floats, volume: float) -> Potential:
-    small = BlockIndex.build(coarse(surface))
+def coarse_potential(hull: Hull, surface: Surface, centre: Floats, volume: float) -> Potential:
+    """Return the potential of a coarse copy of the same volume and centroid, sunk to the same share."""
+    index = hull.index
+    small = BlockIndex.build(matched(coarse(surface), index.volume, index.moment / index.volume))
     rough = Hull(small, hull.point_volume, hull.point_moment)
     share = (volume - hull.point_volume) / (hull.volume - hull.point_volume)
     return Potential(rough, centre, share * small.volume + hull.point_volume, _ROUGH)
@@ -122,33 +126,6 @@ def _coarse_potential(hull: Hull, surface: Surface, centre: Floats, volume: floa
 def _settling(state: State, found: list[State]) -> bool:
     """Whether a descent has walked into a minimum found before: near it, and in the bowl round it."""
     return any(state.up @ other.up >= _BOWL for other in found) and bool(state.modes()[0][0] > 0)
-
-
-def _known(state: State, others: list[State], cosine: float) -> int | None:
-    """Number of the posture that this one is, also where it lies elsewhere on the same neutral ring."""
-    for number, other in enumerate(others):
-        if state.up @ other.up >= cosine:
-            return number
-        if _same_ring(state, other):
-            return number
-    return None
-
-
-def _same_ring(state: State, other: State) -> bool:
-    free, fixed = _neutral(state), _neutral(other)
-    if free is None or fixed is None:
-        return False
-    # Two points of one ring of equal energy: halfway between them the energy is the same.
-    if abs(state.energy - other.energy) > 0.1 * tolerances.NEUTRAL_HEIGHT:
-        return False
-    softest, stiffest = state.modes()[0]
-    weak, strong = other.modes()[0]
-    return bool(abs(stiffest - strong) <= 0.02 * max(abs(stiffest), abs(strong), softest, weak) + tolerances.NEUTRAL_HEIGHT)
-
-
-def _neutral(state: State) -> Floats | None:
-    heights, directions = state.modes()
-    return np.asarray(directions[:, 0]) if heights[0] < tolerances.NEUTRAL_HEIGHT else None
 
 
 @dataclass(frozen=True, eq=False)
