@@ -5,9 +5,12 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import NDArray
 
 from meshlure.geometry.surface import Bools, Floats, Ints, Surface
 from meshlure.geometry.waterplane import Cut
+
+Bytes = NDArray[np.int8]
 
 BLOCK = 16
 """Triangles in a block: fewer make the list of blocks long, more make every crossed block dear."""
@@ -15,14 +18,20 @@ BLOCK = 16
 GROUP = 32
 """Blocks in a group: groups are tested first, and only the blocks of a crossed group one by one."""
 
+_ROWS = 13
+"""Numbers kept of a triangle; see `BlockIndex.triangles`."""
+
 _SUMS = 20
 """Numbers summed over a block: D, N (3), D s (3), N s^T (9), and the coat's volume and first moment (1 + 3)."""
 
 _CURVE_BITS = 10
 
+_AT_ONCE = 1024
+"""Blocks worked on at a time while an index is built, so that their numbers stay in the processor's cache."""
+
 
 def curve_order(points: Floats) -> Ints:
-    """Return the order of points along a Morton (Z-order) curve, so that neighbours in space become neighbours in memory.
+    """Return the order of points along a Morton (Z-order) curve: neighbours in space become neighbours in memory.
 
     Parameters
     ----------
@@ -32,18 +41,26 @@ def curve_order(points: Floats) -> Ints:
     ----------
     G. M. Morton (1966), A computer oriented geodetic data base, IBM Ottawa.
     """
-    low = points.min(axis=0)
-    span = np.maximum(points.max(axis=0) - low, np.finfo(np.float64).tiny)
     code = np.zeros(len(points), dtype=np.uint32)
+    if not len(points):
+        return np.empty(0, dtype=np.intp)
     for axis in range(3):
-        cell = ((points[:, axis] - low[axis]) * ((2**_CURVE_BITS - 1) / span[axis])).astype(np.uint32)
+        along = np.ascontiguousarray(points[:, axis])
+        low = along.min()
+        span = max(along.max() - low, np.finfo(np.float64).tiny)
+        cell = ((along - low) * ((2**_CURVE_BITS - 1) / span)).astype(np.uint32)
         # Spread ten bits so that two free bits follow each.
         cell = (cell | (cell << 16)) & np.uint32(0x030000FF)
         cell = (cell | (cell << 8)) & np.uint32(0x0300F00F)
         cell = (cell | (cell << 4)) & np.uint32(0x030C30C3)
         cell = (cell | (cell << 2)) & np.uint32(0x09249249)
         code |= cell << np.uint32(axis)
-    return np.argsort(code, kind="stable")
+    # A plain sort of code and number in one word is several times faster than an indirect one.
+    bits = np.uint64(max(len(points) - 1, 1).bit_length())
+    words = code.astype(np.uint64) << bits
+    words |= np.arange(len(points), dtype=np.uint64)
+    words.sort()
+    return (words & np.uint64((1 << int(bits)) - 1)).astype(np.intp)
 
 
 @dataclass(frozen=True, eq=False)
@@ -60,8 +77,8 @@ class _Boxes:
 
     def sides(self, normal: Floats, height: float, rows: Ints | None = None) -> tuple[Bools, Bools]:
         """Return which boxes lie wholly below a plane, and which the plane may cross."""
-        middle = (self.middle if rows is None else self.middle[rows]) @ normal - height
-        half = (self.half if rows is None else self.half[rows]) @ np.abs(normal)
+        middle = (self.middle if rows is None else self.middle.take(rows, axis=0)) @ normal - height
+        half = (self.half if rows is None else self.half.take(rows, axis=0)) @ np.abs(normal)
         return middle < -half, np.abs(middle) <= half
 
 
@@ -105,29 +122,27 @@ class BlockIndex:
         """
         origin = np.asarray(surface.bounds.mean(axis=0))
         vertices = surface.vertices - origin
-        a, b, c = (vertices[surface.faces[:, corner]] for corner in range(3))
-        order = curve_order(a + b + c)
+        order = curve_order(_middles(vertices, surface.faces))
+        coat = None if thickness is None or not np.any(thickness) else np.asarray(thickness, dtype=np.float64)
         groups = -(-len(order) // (BLOCK * GROUP))
-        padded = groups * GROUP * BLOCK
-        rows = np.empty((13, padded))
-        for corner, points in enumerate((a, b, c)):
-            for axis in range(3):
-                rows[3 * corner + axis, : len(order)] = points[order, axis]
-        rows[:9, len(order):] = np.tile(rows[:3, len(order) - 1], 3)[:, None]
-        ab, ac = rows[3:6] - rows[:3], rows[6:9] - rows[:3]
-        for axis in range(3):
-            j, k = (axis + 1) % 3, (axis + 2) % 3
-            rows[9 + axis] = ab[j] * ac[k] - ab[k] * ac[j]
-        rows[12] = 0.0
-        coated = thickness is not None and bool(np.any(thickness))
-        if coated:
-            rows[12, : len(order)] = np.asarray(thickness, dtype=np.float64)[order]
-        sums = _sums(rows, coated)
-        boxed = rows[:9].reshape(3, 3, -1, BLOCK)
-        low, high = boxed.min(axis=(0, 3)).T, boxed.max(axis=(0, 3)).T
+        count = groups * GROUP
+        triangles = np.empty((count, _ROWS, BLOCK))
+        low, high, sums = np.empty((count, 3)), np.empty((count, 3)), np.empty((count, _SUMS))
+        for at in range(0, count, _AT_ONCE):
+            piece = slice(at, min(at + _AT_ONCE, count))
+            named = order[piece.start * BLOCK : piece.stop * BLOCK]
+            rows = np.zeros((_ROWS, (piece.stop - piece.start) * BLOCK))
+            rows[:9, : len(named)] = vertices.take(surface.faces.take(named, axis=0), axis=0).reshape(-1, 9).T
+            rows[:9, len(named):] = np.tile(vertices[surface.faces[order[-1], 0]], 3)[:, None]
+            if coat is not None:
+                rows[12, : len(named)] = coat[named]
+            _put_normals(rows)
+            low[piece], high[piece] = _bounds(rows)
+            sums[piece] = _sums(rows, coat is not None)
+            triangles[piece] = rows.reshape(_ROWS, -1, BLOCK).transpose(1, 0, 2)
         return cls(
             origin=origin,
-            triangles=np.ascontiguousarray(rows.reshape(13, -1, BLOCK).transpose(1, 0, 2)),
+            triangles=triangles,
             blocks=_Boxes.of(low, high, sums),
             groups=_Boxes.of(
                 low.reshape(groups, GROUP, 3).min(axis=1),
@@ -135,7 +150,7 @@ class BlockIndex:
                 sums.reshape(groups, GROUP, _SUMS).sum(axis=1),
             ),
             total=sums.sum(axis=0),
-            coated=coated,
+            coated=coat is not None,
         )
 
     @property
@@ -202,27 +217,24 @@ class BlockIndex:
         moment = (sums[4:7] - apex @ sums[7:16].reshape(3, 3) - 3 * apex * w) / 24
         coat, coat_moment = float(sums[16]), sums[17:20].copy()
 
-        h = np.stack([_dot(n, rows[3 * corner : 3 * corner + 3]) - local for corner in range(3)])
-        wet = h < 0
-        count = wet[0].view(np.int8) + wet[1].view(np.int8) + wet[2].view(np.int8)
-        whole = rows[:, count >= 2]
-        mixed = (count == 1) | (count == 2)
-        tips = _Tips.of(rows[:, mixed], h[:, mixed], wet[:, mixed], count[mixed] == 1)
+        rows[:9] -= np.tile(apex, 3)[:, None]
+        # Term by term, not by a matrix product, whose rounding may differ from column to column: a vertex must stand
+        # at one height in all its triangles.
+        h = np.stack([_dot(n, rows[3 * corner : 3 * corner + 3]) for corner in range(3)])
+        wet = (h < 0).view(np.int8)
+        which = wet[0] + 2 * wet[1] + 4 * wet[2]
+        tips = _Tips.of(rows, h, which)
+        # A triangle mostly below counts whole; its tip, or that of one mostly above, by its signed share.
         for corners, normals, share, skin in (
-            ((whole[0:3], whole[3:6], whole[6:9]), whole[9:12], None, whole[12]),
+            ((rows[0:3], rows[3:6], rows[6:9]), rows[9:12], _MOSTLY_WET[which], rows[12]),
             ((tips.apex, tips.first, tips.second), tips.normals, tips.share, tips.thickness),
         ):
-            first = corners[0] - apex[:, None]
-            s = first + (corners[1] - apex[:, None]) + (corners[2] - apex[:, None])
-            det = first[0] * normals[0] + first[1] * normals[1] + first[2] * normals[2]
-            if share is not None:
-                det = det * share
+            s = corners[0] + corners[1] + corners[2]
+            det = _dot(corners[0], normals) * share
             volume += det.sum() / 6
             moment = moment + s @ det / 24
             if self.coated:
-                strip = skin * np.sqrt(_dot_rows(normals)) / 2
-                if share is not None:
-                    strip = strip * share
+                strip = skin * np.sqrt(_dot(normals, normals)) * share / 2
                 coat += strip.sum()
                 coat_moment = coat_moment + s @ strip / 3 + apex * strip.sum()
         moment = moment + apex * volume
@@ -234,30 +246,54 @@ class BlockIndex:
             moment=moment + self.origin * volume,
             coat_volume=float(coat),
             coat_moment=coat_moment + self.origin * coat,
-            start=start.T + self.origin,
-            end=end.T + self.origin,
+            start=start.T + (apex + self.origin),
+            end=end.T + (apex + self.origin),
             ribbon=_ribbon(tips.thickness, tips.normals, n) if self.coated else None,
         )
 
     def _gathered(self, n: Floats, local: float) -> tuple[Floats, Floats]:
-        """Sums of all blocks wholly below the plane, and the triangles of those it may cross, (13, k)."""
+        """Return the sums of all blocks wholly below the plane, and the triangles of those it may cross, (13, k)."""
         below, crossed = self.groups.sides(n, local)
         sums = below.astype(np.float64) @ self.groups.sums
         inside = (np.flatnonzero(crossed)[:, None] * GROUP + np.arange(GROUP)).reshape(-1)
         below, crossed = self.blocks.sides(n, local, inside)
-        return sums + self.blocks.sums[inside[below]].sum(axis=0), _rows(self.triangles[inside[crossed]])
+        wet = inside[below]
+        sums += np.ones(len(wet)) @ self.blocks.sums.take(wet, axis=0)
+        return sums, _rows(self.triangles.take(inside[crossed], axis=0))
 
 
 def _rows(triangles: Floats) -> Floats:
-    return triangles.transpose(1, 0, 2).reshape(13, -1)
+    """Triangles of some blocks as rows, (13, k); a copy."""
+    return triangles.transpose(1, 0, 2).reshape(_ROWS, -1)
 
 
 def _dot(n: Floats, rows: Floats) -> Floats:
     return np.asarray(n[0] * rows[0] + n[1] * rows[1] + n[2] * rows[2])
 
 
-def _dot_rows(rows: Floats) -> Floats:
-    return np.asarray(rows[0] ** 2 + rows[1] ** 2 + rows[2] ** 2)
+def _middles(vertices: Floats, faces: Ints) -> Floats:
+    """Three times the middle of every face, (m, 3)."""
+    middles = np.empty((len(faces), 3))
+    step = _AT_ONCE * BLOCK
+    for at in range(0, len(faces), step):
+        corners = vertices.take(faces[at : at + step], axis=0)
+        np.add(corners[:, 0], corners[:, 1], out=middles[at : at + step])
+        middles[at : at + step] += corners[:, 2]
+    return middles
+
+
+def _put_normals(rows: Floats) -> None:
+    ab, ac = rows[3:6] - rows[:3], rows[6:9] - rows[:3]
+    for axis in range(3):
+        j, k = (axis + 1) % 3, (axis + 2) % 3
+        rows[9 + axis] = ab[j] * ac[k] - ab[k] * ac[j]
+
+
+def _bounds(rows: Floats) -> tuple[Floats, Floats]:
+    """Least and greatest corner of every block, (b, 3) arrays."""
+    a, b, c = rows[:9].reshape(3, 3, -1, BLOCK)
+    low, high = np.minimum(np.minimum(a, b), c), np.maximum(np.maximum(a, b), c)
+    return low.min(axis=2).T, high.max(axis=2).T
 
 
 def _sums(rows: Floats, coated: bool) -> Floats:
@@ -269,7 +305,7 @@ def _sums(rows: Floats, coated: bool) -> Floats:
 
     normals = rows[9:12]
     s = rows[0:3] + rows[3:6] + rows[6:9]
-    det = rows[0] * normals[0] + rows[1] * normals[1] + rows[2] * normals[2]
+    det = _dot(rows[0:3], normals)
     put(0, det)
     for i in range(3):
         put(1 + i, normals[i])
@@ -277,11 +313,17 @@ def _sums(rows: Floats, coated: bool) -> Floats:
         for j in range(3):
             put(7 + 3 * i + j, normals[i] * s[j])
     if coated:
-        volume = rows[12] * np.sqrt(_dot_rows(normals)) / 2
+        volume = rows[12] * np.sqrt(_dot(normals, normals)) / 2
         put(16, volume)
         for i in range(3):
             put(17 + i, volume * s[i] / 3)
     return sums
+
+
+# By which corners are wet, corner i counting 2^i: the corner alone on its side, and whether it is the one that is wet.
+_LONE = np.array([0, 0, 1, 2, 2, 1, 0, 0], dtype=np.intp)
+_ONE_WET = np.array([0, 1, 1, 0, 1, 0, 0, 0], dtype=np.bool_)
+_MOSTLY_WET = np.array([0, 0, 0, 1, 0, 1, 1, 1], dtype=np.float64)
 
 
 @dataclass(frozen=True, eq=False)
@@ -300,28 +342,34 @@ class _Tips:
     thickness: Floats
 
     @classmethod
-    def of(cls, rows: Floats, h: Floats, wet: Bools, one_wet: Bools) -> _Tips:
-        lone = np.argmax(wet == one_wet, axis=0)
-        columns = np.arange(rows.shape[1])
-        ahead, behind = (lone + 1) % 3, (lone + 2) % 3
-        tip = h[lone, columns]
-        first = tip / (tip - h[ahead, columns])
-        second = tip / (tip - h[behind, columns])
-        corners = rows[:9].reshape(3, 3, -1)
-        apex = corners[lone, :, columns].T
+    def of(cls, rows: Floats, h: Floats, which: Bytes) -> _Tips:
+        cut = np.flatnonzero((which > 0) & (which < 7))
+        which = which[cut]
+        lone = _LONE[which]
+        width = rows.shape[1]
+        axes = width * np.arange(3)[:, None]
+
+        def corner(number: Ints) -> tuple[Floats, Floats]:
+            return h.take(width * number + cut), rows.take(3 * width * number + cut + axes)
+
+        height, apex = corner(lone)
+        height_ahead, ahead = corner((lone + 1) % 3)
+        height_behind, behind = corner((lone + 2) % 3)
+        first = height / (height - height_ahead)
+        second = height / (height - height_behind)
         return cls(
             apex=apex,
-            first=apex + first * (corners[ahead, :, columns].T - apex),
-            second=apex + second * (corners[behind, :, columns].T - apex),
-            share=first * second * np.where(one_wet, 1.0, -1.0),
-            normals=rows[9:12],
-            thickness=rows[12],
+            first=apex + first * (ahead - apex),
+            second=apex + second * (behind - apex),
+            share=first * second * np.where(_ONE_WET[which], 1.0, -1.0),
+            normals=rows[9:12].take(cut, axis=1),
+            thickness=rows[12].take(cut),
         )
 
 
 def _ribbon(thickness: Floats, normals: Floats, plane: Floats) -> Floats:
     """Width of the coat's own section with a plane across each face, m: thickness over the sine between them."""
-    length = np.sqrt(_dot_rows(normals))
+    length = np.sqrt(_dot(normals, normals))
     cosine = _dot(plane, normals) / np.where(length == 0, 1.0, length)
     # A face that lies in the plane would have a ribbon without end; 1e-6 of a radian stands for it.
     return np.asarray(thickness / np.sqrt(np.maximum(1 - cosine**2, 1e-12)))
