@@ -8,7 +8,7 @@ from typing import Any
 from meshlure.report.charts import PARTS, leads_words
 from meshlure.report.substance import from_nose
 from meshlure.report.table import Table, table
-from meshlure.report.wording import DASH, fixed, newtons, point, reynolds, significant
+from meshlure.report.wording import DASH, SPACE, fixed, newtons, point, reynolds, significant
 
 Results = Mapping[str, Any]
 
@@ -81,7 +81,7 @@ def drag(results: Results) -> Table | None:
             *_case(row),
             reynolds(row["reynolds_length"]),
             significant(row["cd"], 2),
-            f"{significant(row['cd_low'], 2)} to {significant(row['cd_high'], 2)}",
+            f"{significant(row['cd_low'], 2)}{SPACE}to{SPACE}{significant(row['cd_high'], 2)}",
             significant(row["drag_area_mm2"], 2),
             newtons(row["drag_n"]),
         )

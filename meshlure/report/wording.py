@@ -189,7 +189,7 @@ def reynolds(value: float) -> str:
 
 def newtons(force: float) -> str:
     """Return a force in N with the gram-force a spring scale shows; two significant digits, a drag earns no more."""
-    return f"{significant(force, 2)}{SPACE}N ({significant(force / GRAM_FORCE, 2)}{SPACE}gf)"
+    return f"{significant(force, 2)}{SPACE}N{SPACE}({significant(force / GRAM_FORCE, 2)}{SPACE}gf)"
 
 
 def clipped(text: str, most: int) -> str:

@@ -58,7 +58,7 @@ def test_ounces() -> None:
 
 def test_gram_force() -> None:
     # 1 gf = 9.80665e-3 N: standard gravity, 3rd CGPM (1901).
-    assert w.newtons(0.0980665) == "0.098\u00a0N (10\u00a0gf)"
+    assert w.newtons(0.0980665) == "0.098\u00a0N\u00a0(10\u00a0gf)"
 
 
 def test_angles_carry_no_decimals_and_a_sense() -> None:
