@@ -44,7 +44,7 @@ def floating(repose: Repose, frame: Frame, mass: float, water: float, barrier: f
     along = horizontal(frame.nose, up)
     fore_aft = None if vertical else state.metacentric(along)
     sideways = None if vertical else state.metacentric(np.cross(up, along))
-    free = _free(repose.rest.neutral, frame, up)
+    free = "both" if heights[1] < tolerances.NEUTRAL_HEIGHT else _free(repose.rest.neutral, frame, up)
     angles = _angles(up, frame, free, fore_aft if fore_aft is not None else heights[0], sideways, mass)
     whole = repose.potential.hull.volume
     tree = {
@@ -155,9 +155,12 @@ def _named(tree: Tree, frame: Frame, up: Floats | None) -> Tree:
     if up is None:
         name, words = f"{verb}, no preferred attitude", "Hangs as it is put: its centres meet, so it has no preferred attitude."
         return tree | {"name": name, "words": words}
+    if tree["free"] == "both":
+        name = f"{verb}, any way up"
+        return tree | {"name": name, "words": f"{name[0].upper()}{name[1:]}, {tree['submerged_share']:.0%} under water."}
     side = _side(frame, up)
-    if tree["free"] in ("lean", "both"):
-        side = "either side up"
+    if tree["free"] == "lean":
+        side = "any side up"
     name = f"{verb} {side}" if side.startswith("nose") else f"{verb}, {side}"
     says = [name[0].upper() + name[1:]]
     if tree["nose_up_deg"] is not None and not side.startswith("nose"):
@@ -168,7 +171,7 @@ def _named(tree: Tree, frame: Frame, up: Floats | None) -> Tree:
         if side == "belly up":
             right = left = "leaning {}"
         says.append(_tilt(lean, right, left, "without lean"))
-    if tree["free"] in ("lean", "both"):
+    if tree["free"] == "lean":
         says.append("turning freely about its long axis")
     elif tree["free"] == "nose_up":
         says.append("at any nose angle")
