@@ -11,6 +11,8 @@ import pytest
 from meshlure.errors import InputError
 from meshlure.files import defaults
 from meshlure.files.baitfile import BaitFile, read_baitfile
+from meshlure.files.sections import water as section
+from meshlure.stock import waters
 
 WHOLE = """\
 format = 1
@@ -217,6 +219,11 @@ def test_a_stated_density_of_the_water_needs_no_temperature(tmp_path: Path) -> N
     assert (water.density, water.temperature, water.salinity, water.assumed) == it(pytest.approx(998.6), None, None, ())
 
 
+def test_every_water_that_the_file_may_state_is_one_that_the_stock_can_make() -> None:
+    assert (section.TEMPERATURES, section.SALINITIES) == (waters.TEMPERATURES, waters.SALINITIES)
+    assert section.DENSITIES == waters.DENSITIES
+
+
 def test_the_meshes_by_piece(tmp_path: Path) -> None:
     named = read(tmp_path, WHOLE).meshes()
     assert [mesh.piece for mesh in named] == ["body", "belly weight", "rattle chamber", "lip"]
@@ -285,8 +292,12 @@ ONE_FAULT = [
     ('"90 deg"', '"90.1 deg"', "cast.angle: .*90.1 deg.*-90 deg up to 90 deg"),
     ('"-3 m/s"', '"-101 m/s"', "cast.wind: .*-101 m/s"),
     ('"1 m"', '"-1 m"', "cast.height: .*-1 m"),
-    ('"64.4 degF"', '"140 degF"', "water.temperature: .*140 degF.*40 degC"),
-    ('"0 g/kg"', '"50 g/kg"', "water.salinity: .*50 g/kg.*45 g/kg"),
+    ('"64.4 degF"', '"140 degF"', "water.temperature: .*140 degF.*from 0 degC up to 40 degC"),
+    ('"64.4 degF"', '"31 degF"', "water.temperature: .*31 degF.*from 0 degC up to 40 degC"),
+    ('"0 g/kg"', '"42.1 g/kg"', "water.salinity: .*42.1 g/kg.*42 g/kg"),
+    ('salinity = "0 g/kg"', 'density = "979 kg/m3"', "water.density: .*979 kg/m3.*from 0.98 g/cm3 up to 1.1 g/cm3"),
+    ('salinity = "0 g/kg"', 'density = "1.11 g/cm3"', "water.density: .*1.11 g/cm3.*from 0.98 g/cm3 up to 1.1 g/cm3"),
+    ('water = "21 degC"', 'water = "-1 degC"', "measured.water: .*-1 degC.*from 0 degC up to 40 degC"),
     # what excludes or needs what
     (
         'material = "lead"',

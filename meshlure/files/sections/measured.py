@@ -5,6 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 from meshlure.files.keys import Keys
+from meshlure.files.sections.water import TEMPERATURES
 
 
 @dataclass(frozen=True)
@@ -34,7 +35,7 @@ def read_measured(keys: Keys) -> MeasuredSection:
     section = MeasuredSection(
         keys.quantity("dry", "mass", positive=True),
         keys.quantity("in_water", "mass", signed=True),
-        keys.quantity("water", "temperature", least=-2.0, most=40.0),
+        keys.quantity("water", "temperature", least=TEMPERATURES[0], most=TEMPERATURES[1]),
         keys.quantity("uncoated", "mass", positive=True),
     )
     if section.dry is not None and section.in_water is not None and section.in_water >= section.dry:

@@ -3,9 +3,17 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import Final
 
 from meshlure.files.defaults import WATER_SALINITY, WATER_TEMPERATURE
 from meshlure.files.keys import Keys
+
+TEMPERATURES: Final = (0.0, 40.0)
+"""degC. As far as the equation of seawater holds; a bait is not fished under ice water or in a bath."""
+SALINITIES: Final = (0.0, 42.0)
+"""g/kg. The same."""
+DENSITIES: Final = (980.0, 1100.0)
+"""kg/m3. Below hot fresh water and above brine there is none that a bait is fished in."""
 
 
 @dataclass(frozen=True)
@@ -32,16 +40,18 @@ class WaterSection:
 
 def read_water(keys: Keys) -> WaterSection:
     """Read [water]; an empty one is fresh water at 18 degC."""
-    density = keys.quantity("density", "density", least=950.0, most=1250.0)
+    density = keys.quantity("density", "density", least=DENSITIES[0], most=DENSITIES[1])
     if density is not None:
         keys.one_of("density", "salinity", required=False)
         keys.quantity("salinity", "salinity")
-        temperature = keys.quantity("temperature", "temperature", least=-2.0, most=40.0)
+        temperature = keys.quantity("temperature", "temperature", least=TEMPERATURES[0], most=TEMPERATURES[1])
         keys.close()
         return WaterSection(temperature, None, density, ())
     section = WaterSection(
-        keys.assumed_quantity("temperature", "temperature", WATER_TEMPERATURE, least=-2.0, most=40.0),
-        keys.assumed_quantity("salinity", "salinity", WATER_SALINITY, least=0.0, most=45.0),
+        keys.assumed_quantity(
+            "temperature", "temperature", WATER_TEMPERATURE, least=TEMPERATURES[0], most=TEMPERATURES[1]
+        ),
+        keys.assumed_quantity("salinity", "salinity", WATER_SALINITY, least=SALINITIES[0], most=SALINITIES[1]),
         None,
         tuple(keys.assumed),
     )
