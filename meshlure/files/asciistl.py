@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import io
+import re
 
 import numpy as np
 
@@ -10,6 +11,7 @@ from meshlure.errors import Fault, InputError
 from meshlure.files.triangles import Triangles, in_metres
 from meshlure.findings import Finding, Level
 
+_FACET_LINE = re.compile(rb"^[ \t]*(?:end)?facet\b", re.MULTILINE | re.IGNORECASE)
 _FACET = ("outer loop", "vertex", "vertex", "vertex", "endloop", "endfacet")
 
 
@@ -49,8 +51,9 @@ def read_ascii(data: bytes, metres: float, where: str) -> Triangles:
         raise InputError(_fault(data, where) or _unread(where, str(error))) from error
     count = sum(map(len, solids))
     # An endsolid inside a facet ends numpy-stl's reading without a word, and drops that facet.
-    if count != text.lower().count(b"endfacet"):
-        raise InputError(_fault(data, where) or _unread(where, f"{count} faces of {text.lower().count(b'endfacet')}"))
+    lines = len(_FACET_LINE.findall(text))
+    if 2 * count != lines:
+        raise InputError(_fault(data, where) or _unread(where, f"{count} faces in {lines} lines of facets"))
     if count == 0:
         raise InputError(
             Fault(

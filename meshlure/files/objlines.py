@@ -131,7 +131,7 @@ class ObjLines:
             places = np.array([match.start() for match in self._vertices])
             written = np.searchsorted(places, [match.start() for match in self._faces])
             corners[back] = written[owners[back]] + indices[back]
-        lost = np.flatnonzero((corners < 0) | (corners >= len(vertices)) | (indices == 0))
+        lost = np.flatnonzero((corners < 0) | (corners >= len(vertices)))
         if len(lost):
             raise InputError(self._lost(lost, indices, owners, len(vertices)))
         broken = ~np.isfinite(vertices[corners]).all(axis=1)

@@ -35,7 +35,7 @@ REFUSED = {
     "ascii_no_end.stl": "line 85: .*ends before its 'endsolid'",
     "ascii_decimal_comma.stl": "line 11: .*'vertex 0,5 10 0'.*decimal point",
     "ascii_four_corners.stl": "line 7: .*'vertex 40 0 0'.*'endloop'",
-    "ascii_end_inside_a_facet.stl": "line 81: .*'endsolid box'.*'vertex x y z'",
+    "ascii_end_inside_a_facet.stl": "line 82: .*'endsolid box'.*'vertex x y z'",
     "all_collapsed.stl": "no triangle of the mesh has three corners apart.*4 triangles",
     "no_faces.obj": "holds no faces.*8 vertices and no polygon",
     "text_renamed.obj": "holds no faces.*begins with 'Belly weight",

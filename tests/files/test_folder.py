@@ -250,6 +250,19 @@ def test_not_allowed_to_look_into_it(unprivileged: Path) -> None:
     assert names(out) == ["inner", "inner/mine.txt"]
 
 
+def test_not_allowed_to_look_into_a_part_of_it(unprivileged: Path) -> None:
+    out = unprivileged / "out"
+    write_folder(out, result("first", "inner/body.stl"))
+    (out / "inner" / "mine.txt").write_text("mine")
+    (out / "inner").chmod(0)
+    for refuse in (check_folder, lambda path: write_folder(path, result("second"))):
+        with pytest.raises(InputError, match="may not be written"):
+            refuse(out)
+    (out / "inner").chmod(0o755)
+    assert (out / "inner" / "mine.txt").read_text() == "mine"
+    assert (out / "results.json").exists()
+
+
 @pytest.mark.skipif(
     not Path("/dev/full").exists(), reason="/dev/full is where the kernel itself says that a disk is full"
 )

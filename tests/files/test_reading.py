@@ -47,6 +47,7 @@ def test_suffix_in_capitals(body: Path) -> None:
         ("body", "format is not read.*'body'.*with its suffix"),
         ("boddy.stl", "is not there.*did you mean 'body.stl'"),
         ("Body.obj", "is not there.*did you mean 'body.stl'"),
+        ("x.obj", "is not there.*did you mean 'x.stl'"),
         ("else.stl", "is not there.*check the name"),
         ("gone/body.stl", "is not there.*gone is no folder"),
         ("body.stl/body.stl", "is not there.*body.stl is no folder"),
@@ -56,6 +57,7 @@ def test_suffix_in_capitals(body: Path) -> None:
 )
 def test_not_there(body: Path, name: str, said: str) -> None:
     (body.parent / "folder.stl").mkdir()
+    (body.parent / "x.stl").touch()
     with pytest.raises(InputError, match=f"(?s)^bait.toml: body.mesh: .*{said}"):
         read_mesh(body.parent / name, "mm", where="bait.toml: body.mesh")
 
