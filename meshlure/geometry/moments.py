@@ -2,11 +2,15 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterator
 from dataclasses import dataclass
 
 import numpy as np
 
 from meshlure.geometry.surface import Floats, Surface
+
+_AT_ONCE = 8192
+"""Faces worked on at a time."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -85,16 +89,12 @@ def solid_moments(surface: Surface) -> Moments:
     represented by a triangle mesh: the covariance of the canonical tetrahedron.
     """
     origin = surface.bounds.mean(axis=0)
-    corners = surface.corners - origin
-    det = np.einsum("ij,ij->i", corners[:, 0], surface.double_areas)
-    s = corners.sum(axis=1)
-    volume = det.sum() / 6
-    first = det @ s / 24
-    second = (s * det[:, None]).T @ s
-    for corner in range(3):
-        c = corners[:, corner]
-        second = second + (c * det[:, None]).T @ c
-    second = second / 120
+    volume, first, second = 0.0, np.zeros(3), np.zeros((3, 3))
+    for corners, normals, _ in _pieces(surface, origin):
+        det = (corners[0] * normals).sum(axis=0)
+        volume += det.sum() / 6
+        first += corners.sum(axis=0) @ det / 24
+        second += _second(corners, det) / 120
     if volume:
         second = second - np.outer(first, first) / volume
     return Moments(float(volume), first + origin * volume, (second + second.T) / 2)
@@ -110,19 +110,32 @@ def skin_moments(surface: Surface, thickness: Floats) -> Moments:
         Per face; taken as spread in the face itself.
     """
     origin = surface.bounds.mean(axis=0)
-    corners = surface.corners - origin
-    weight = thickness * np.linalg.norm(surface.double_areas, axis=1) / 2
-    s = corners.sum(axis=1)
-    amount = weight.sum()
-    first = weight @ s / 3
-    second = (s * weight[:, None]).T @ s
-    for corner in range(3):
-        c = corners[:, corner]
-        second = second + (c * weight[:, None]).T @ c
-    second = second / 12
+    amount, first, second = 0.0, np.zeros(3), np.zeros((3, 3))
+    for corners, normals, piece in _pieces(surface, origin):
+        weight = thickness[piece] * np.sqrt((normals**2).sum(axis=0)) / 2
+        amount += weight.sum()
+        first += corners.sum(axis=0) @ weight / 3
+        second += _second(corners, weight) / 12
     if amount:
         second = second - np.outer(first, first) / amount
     return Moments(float(amount), first + origin * amount, (second + second.T) / 2)
+
+
+def _pieces(surface: Surface, origin: Floats) -> Iterator[tuple[Floats, Floats, slice]]:
+    """Faces in pieces that stay in the processor's cache: corners (corner, axis, face), normals (axis, face), place."""
+    vertices = surface.vertices - origin
+    for at in range(0, len(surface.faces), _AT_ONCE):
+        piece = slice(at, at + _AT_ONCE)
+        corners = vertices.take(surface.faces[piece], axis=0).transpose(1, 2, 0)
+        yield np.ascontiguousarray(corners), surface.double_areas[piece].T, piece
+
+
+def _second(corners: Floats, weight: Floats) -> Floats:
+    """Sum of weight (s s^T + a a^T + b b^T + c c^T), s = a + b + c, over faces, (3, 3)."""
+    total = np.zeros((3, 3))
+    for points in (corners.sum(axis=0), *corners):
+        total += (points * weight) @ points.T
+    return total
 
 
 def point_moments(amount: float, place: Floats) -> Moments:

@@ -93,7 +93,7 @@ def outline(surface: Surface, pairs: EdgePairs, axis: Floats, up: Floats | None 
     n = np.asarray(axis, dtype=np.float64)
     right, upright = drawing_axes(n, up)
     front = surface.double_areas @ n > 0
-    ahead, behind = front[pairs.forward_face], front[pairs.backward_face]
+    ahead, behind = front.take(pairs.forward_face), front.take(pairs.backward_face)
     rim = np.flatnonzero(ahead != behind)
     forward = ahead[rim]
     start = np.where(forward, pairs.start[rim], pairs.end[rim]).astype(np.intp)
