@@ -65,12 +65,13 @@ def _missing(path: Path, kind: str, place: str) -> Fault:
     if not folder.is_dir():
         return Fault(f"the {kind} is not there", place, next_step=_first_gap(path))
     try:
-        names = [entry.name for entry in folder.iterdir() if entry.is_file()]
+        names = sorted(entry.name for entry in folder.iterdir() if entry.is_file())
     except OSError:
         names = []  # a folder that may be entered but not listed: there is nothing to offer
-    near = nearest(path.name, names)
-    # The same stem under another suffix is the commonest slip: body.stl asked for, body.obj there.
-    near += tuple(name for name in names if Path(name).stem == path.stem and name not in near)
+    # Stems are compared, for the suffix alone would make strangers alike. The same stem under another suffix is the
+    # commonest slip: body.stl asked for, body.obj there.
+    stems = nearest(path.stem, [Path(name).stem for name in names])
+    near = [name for stem in stems for name in names if Path(name).stem == stem][:3]
     if near:
         return Fault(f"the {kind} is not there", place, next_step=f"did you mean {' or '.join(map(repr, near))}?")
     return Fault(f"the {kind} is not there", place, next_step=f"check the name; nothing in {folder} reads like it")
