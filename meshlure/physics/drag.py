@@ -17,8 +17,8 @@ Layer = Literal["laminar", "tripped"]
 
 SHARP_BAND: Final = 0.3
 SMOOTH_BAND: Final = 0.6
-"""Share of the coefficient to either side, for bodies whose separation is fixed by edges and for smooth ones. The
-published table's sharp-edged rows lie within 0.15 of the estimate, its rounded ones within 0.5."""
+"""Share of the coefficient to either side, for bodies whose separation is fixed by edges and for smooth ones. Its
+own calibration table lies within 0.15 (sharp-edged) and 0.5 (rounded) of the estimate; new shapes may lie farther."""
 
 TRIPS_FROM: Final = 2e5
 TRIPS_WHOLLY: Final = 3e5

@@ -23,7 +23,9 @@ _CELLS: Final = 32
 
 SHOULDER_RELIEF: Final = 3.0
 """Thrust of the shoulder behind a face, per share of the greatest section still to grow, in units of a face's pressure.
-Our choice: a flat face with edges rounded to a tenth of the diameter then keeps a third of its drag or less."""
+Set
+(2 was tried first) to the 0.2 that remains of a flat face whose edges are rounded to a tenth of the diameter (Hoerner,
+S. F. 1965: Fluid-Dynamic Drag, ch. 3, from memory)."""
 
 SHOULDER_RADIUS: Final = 0.9
 """Share of the greatest radius from which a body begins to count as having reached its full section."""

@@ -13,7 +13,8 @@ from meshlure.physics.profile import Profile
 
 LAMINAR_ANGLE: Final = math.radians(10)
 """rad. Closing angle at which a laminar layer leaves a smooth wall; spheres show 0 to 10 degrees (Achenbach, E. 1972:
-J. Fluid Mech. 54, from memory: separation 80 to 85 degrees from the nose)."""
+J. Fluid Mech. 54, from memory: separation 80 to 85 degrees from the nose). Both angles were kept among several
+tried with the published table in sight."""
 
 TRIPPED_ANGLE: Final = math.radians(22)
 """rad. Closing angle at which a turbulent layer leaves; boat-tails stay attached to about 22 degrees (Mair, W. A. 1969:

@@ -68,7 +68,8 @@ def test_bluffness_of_a_spheroid_is_the_line_through_its_slopes(ratio: float) ->
 
 @pytest.mark.parametrize(("rounding", "low", "high"), [(0.1, 0.15, 0.25), (0.2, 0.0, 0.1), (0.25, 0.0, 0.1)])
 def test_a_rounded_edge_relieves_a_flat_face(rounding: float, low: float, high: float) -> None:
-    # Hoerner 1965, ch. 3 (from memory): face drag 0.8 sharp, about 0.2 at r/d = 0.1, none at 0.2 to 0.25.
+    # Hoerner 1965, ch. 3 (from memory): face drag 0.8 sharp, about 0.2 at r/d = 0.1, none at 0.2 to 0.25. The first of
+    # these set SHOULDER_RELIEF and only guards it; the other two were not used.
     assert low <= 0.75 * leading_bluffness(rounded_face(rounding)) <= high
 
 
