@@ -2,7 +2,8 @@
 
 The estimate reads station curves only: friction ahead of the separation line, pressure on the leading end, suction on
 what stays open to the wake, or the pressure of a tail that closes. Every switch between cases is a ramp, so that no
-result jumps under a small change of shape or speed.
+result jumps under a small change of shape or speed. The constants were set with the published table in sight: agreement
+with that table calibrates, it does not prove.
 """
 
 from __future__ import annotations
@@ -34,8 +35,8 @@ axial rows 0.277 and 0.096: the rows hold the sum better than the two apart. Wit
 fit, its own rows come out within 0.34 in |ln ratio|, median 0.055; no other constant was refitted."""
 
 REATTACHMENT: Final = 1.6
-"""Diameters behind a sharp leading edge at which the flow is back on the wall; chosen with the table's cylinders end on in sight
-(length over diameter 0.5 to 4)."""
+"""Diameters behind a sharp leading edge at which the flow is back on the wall; chosen with the table's
+cylinders end on (length over diameter 0.5 to 4) in sight."""
 
 BASE_FACTOR: Final = 0.029
 """Hoerner's base suction 0.029/sqrt(C_fB), C_fB the drag of the body ahead of its base on the base's area (Hoerner
@@ -43,7 +44,8 @@ BASE_FACTOR: Final = 0.029
 
 CLOSED_BEFORE: Final = 0.12
 """Share of the greatest section that a turbulent layer must have closed before it leaves a smooth wall for the whole of
-the pressure recovery to count; less counts in proportion. Ours, chosen with the table's tripped sphere, which closes 0.14, in sight."""
+the pressure recovery to count; less counts in proportion. Ours, chosen with the
+table's tripped sphere, which closes 0.14, in sight."""
 
 TAIL_CLOSES: Final = 0.05
 """Trailing bluffness from which on no pressure drag of a closed tail is counted; below it in proportion."""
