@@ -92,8 +92,9 @@ def pose(vessel: Vessel, suspends_within: float | None = None) -> Posed:
 
 
 def _headline_ends(afloat: Sequence[Repose], hanging: Sequence[Dangle]) -> Ends:
-    upright = [r for r in afloat if r.rest.upright]
-    return (upright or list(afloat) or list(hanging))[0].ends
+    if not afloat:
+        return hanging[0].ends
+    return next((r for r in afloat if r.rest.upright), afloat[0]).ends
 
 
 def _suspends(vessel: Vessel, ends: Ends, within: float | None) -> bool:

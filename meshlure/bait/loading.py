@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import time
 from collections.abc import Callable, Mapping
+from functools import partial
 from os import PathLike
 from pathlib import Path
 from typing import TypeVar
@@ -19,6 +20,7 @@ from meshlure.errors import Fault, InputError
 from meshlure.files.baitfile import BaitFile, read_baitfile
 from meshlure.files.meshes import read_meshes
 from meshlure.files.reading import MeshFile
+from meshlure.files.sections.balls import BallsSection
 from meshlure.files.sections.inserts import InsertSection
 from meshlure.files.tables import entry_path
 from meshlure.findings import Finding, Level
@@ -93,13 +95,10 @@ class _Lookup:
         stated = plan.body.substance
         self.body = None if stated is None else self._ask(lambda: substance(stated, f"{self._file}body.material"))
         self.inserts = [self._insert(number, insert) for number, insert in enumerate(plan.inserts, 1)]
-        balls = [
-            self._ask(lambda b=b, n=n: Balls(b.chamber, b.diameter, b.count, substance(b.substance, self._at("balls", n, "material")), b.at))
-            for n, b in enumerate(plan.balls, 1)
-        ]
+        balls = [self._ask(partial(self._balls, n, row)) for n, row in enumerate(plan.balls, 1)]
         metal = [
-            self._ask(lambda h=h, n=n: hardware(h, self._file + entry_path("hardware", n, h.name)))
-            for n, h in enumerate(plan.hardware, 1)
+            self._ask(partial(hardware, row, self._file + entry_path("hardware", n, row.name)))
+            for n, row in enumerate(plan.hardware, 1)
         ]
         coat = plan.coat
         self.coat = None if coat is None else self._ask(
@@ -112,8 +111,9 @@ class _Lookup:
         self.balls = tuple(row for row in balls if row is not None)
         self.hardware = tuple(row for row in metal if row is not None)
 
-    def _at(self, section: str, number: int, key: str) -> str:
-        return f"{self._file}{section}[{number}].{key}"
+    def _balls(self, number: int, stated: BallsSection) -> Balls:
+        where = f"{self._file}{entry_path('balls', number, stated.chamber)}.material"
+        return Balls(stated.chamber, stated.diameter, stated.count, substance(stated.substance, where), stated.at)
 
     def _insert(self, number: int, insert: InsertSection) -> Substance | None:
         stated = insert.substance

@@ -58,7 +58,7 @@ def nearest(surface: Surface, points: Floats) -> Nearest:
 
     def settled(point: Floats, boxes: list[int]) -> tuple[float, Floats]:
         triangles = np.concatenate([corners[groups[box] : groups[box + 1]] for box in boxes])
-        found = closest_point(triangles, np.broadcast_to(point, (len(triangles), 3)))
+        found: Floats = closest_point(triangles, np.broadcast_to(point, (len(triangles), 3)))  # type: ignore[no-untyped-call]
         apart = np.linalg.norm(found - point, axis=1)
         best = int(apart.argmin())
         return float(apart[best]), found[best]

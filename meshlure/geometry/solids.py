@@ -142,8 +142,8 @@ class Solid:
     def sources(self) -> Ints:
         """Return the tag of the surface that each face of `surface` stems from, (m,) array."""
         mesh = self.kernel.to_mesh64()
-        runs = np.diff(np.asarray(mesh.run_index, dtype=np.intp)) // 3
-        return np.repeat(np.asarray(mesh.run_original_id, dtype=np.intp), runs)
+        starts: Ints = np.asarray(mesh.run_index, dtype=np.intp)
+        return np.repeat(np.asarray(mesh.run_original_id, dtype=np.intp), (starts[1:] - starts[:-1]) // 3)
 
 
 def _inner_distance(ball: Solid) -> float:
