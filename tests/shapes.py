@@ -32,7 +32,7 @@ def box(size: Sequence[float], centre: Sequence[float] = (0.0, 0.0, 0.0), level:
 
 
 def revolved(radius: Sequence[float] | Floats, height: Sequence[float] | Floats, around: int) -> Surface:
-    """Solid of revolution about z between rings of ascending height; ends that have a radius are closed by flat discs."""
+    """Solid of revolution about z between rings of ascending height; ends with a radius are closed by discs."""
     r, z = np.asarray(radius, dtype=np.float64), np.asarray(height, dtype=np.float64)
     turn = 2 * np.pi * np.arange(around) / around
     circle = np.column_stack([np.cos(turn), np.sin(turn), np.ones(around)])

@@ -26,6 +26,9 @@ _SUMS = 20
 
 _CURVE_BITS = 10
 
+_SLACK = 16 * np.finfo(np.float64).eps
+"""Share of the greatest coordinate by which boxes reach beyond their triangles: what rounding does to heights."""
+
 _AT_ONCE = 1024
 """Blocks worked on at a time while an index is built, so that their numbers stay in the processor's cache."""
 
@@ -47,7 +50,7 @@ def curve_order(points: Floats) -> Ints:
     for axis in range(3):
         along = np.ascontiguousarray(points[:, axis])
         low = along.min()
-        span = max(along.max() - low, np.finfo(np.float64).tiny)
+        span = (along.max() - low) or 1.0
         cell = ((along - low) * ((2**_CURVE_BITS - 1) / span)).astype(np.uint32)
         # Spread ten bits so that two free bits follow each.
         cell = (cell | (cell << 16)) & np.uint32(0x030000FF)
@@ -73,7 +76,9 @@ class _Boxes:
 
     @classmethod
     def of(cls, low: Floats, high: Floats, sums: Floats) -> _Boxes:
-        return cls((low + high) / 2, (high - low) / 2, sums)
+        # A corner on the plane falls to one side by rounding; its box must not fall to the other.
+        slack = _SLACK * max(float(np.abs(low).max()), float(np.abs(high).max()))
+        return cls((low + high) / 2, (high - low) / 2 + slack, sums)
 
     def sides(self, normal: Floats, height: float, rows: Ints | None = None) -> tuple[Bools, Bools]:
         """Return which boxes lie wholly below a plane, and which the plane may cross."""

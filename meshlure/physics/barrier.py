@@ -151,7 +151,7 @@ def _end(rough: Potential, saddle: State, side: float, minima: Sequence[State]) 
 
 
 def _pass(potential: Potential, up: Floats) -> State | None:
-    """Return the saddle near a direction, None where the search strays: Newton's method, up the softer mode, down the other."""
+    """Return the saddle near a direction, by Newton's method up its softer mode and down the other; or None."""
     state = potential.at(up)
     for _ in range(_STEPS):
         heights, directions = state.modes()

@@ -20,7 +20,7 @@ _PARALLEL = 0.1
 
 
 def free_direction(state: State) -> Floats | None:
-    """Return the tangent direction in which a state is free, its metacentric height next to none; None if there is none."""
+    """Return the tangent direction in which a state is free, its metacentric height next to none, or None."""
     heights, directions = state.modes()
     return np.asarray(directions[:, 0]) if heights[0] < tolerances.NEUTRAL_HEIGHT else None
 
