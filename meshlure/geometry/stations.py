@@ -9,6 +9,7 @@ import numpy as np
 
 from meshlure.geometry.blocks import BlockIndex
 from meshlure.geometry.surface import Floats
+from meshlure.geometry.waterplane import Section
 
 STATIONS = 121
 """Enough that area and girth of a bait are followed to a thousandth between neighbours."""
@@ -32,6 +33,11 @@ class Stations:
         Length of all boundaries of the section.
     width, depth : (n,) arrays, m
         Extent along the two lateral directions given.
+    spread : (n, 2) array, m
+        Axes, along the two lateral directions, of the ellipse with the section's second moments: an eye or a wire that
+        stands out widens the extent, but hardly this.
+    centre : (n, 3) array, m
+        Centroids of the sections, mesh coordinates.
     low, high : float, m
         The solid's ends along the axis.
     """
@@ -42,6 +48,8 @@ class Stations:
     perimeter: Floats
     width: Floats
     depth: Floats
+    spread: Floats
+    centre: Floats
     low: float
     high: float
 
@@ -83,6 +91,15 @@ def stations(index: BlockIndex, axis: Floats, lateral: Sequence[Floats], count: 
         perimeter=np.array([section.perimeter for section in sections]),
         width=extents[:, 0],
         depth=extents[:, 1],
+        spread=np.array([[_spread(section, direction) for direction in lateral] for section in sections]),
+        centre=np.array([section.centre for section in sections]),
         low=low,
         high=high,
     )
+
+
+def _spread(section: Section, direction: Floats) -> float:
+    """Axis along a direction of the ellipse with the section's second moment: four radii of gyration, m."""
+    if section.area <= 0:
+        return 0.0
+    return 4 * float(np.sqrt(max(direction @ section.second @ direction, 0.0) / section.area))
