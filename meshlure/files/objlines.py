@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+from itertools import islice
 from typing import Final
 
 import numpy as np
@@ -23,6 +24,36 @@ _OTHER: Final = re.compile(rb"^[ \t]*(?!(?:" + _PASSED + rb")(?:[ \t\v\n]|\Z))([
 
 _MARK: Final = b"\xef\xbb\xbf"
 _SHOWN: Final = 60
+
+
+class _Statements:
+    """All statements of one keyword, in the file's order.
+
+    Parameters
+    ----------
+    pattern : re.Pattern
+        Its one group is what follows the keyword.
+    text : bytes
+        The whole file.
+    """
+
+    def __init__(self, pattern: re.Pattern[bytes], text: bytes) -> None:
+        self._pattern = pattern
+        self._text = text
+        # The words alone: a million match objects would cost more than all the rest of the reading.
+        self.rows: list[bytes] = pattern.findall(text)
+
+    def counts(self) -> Ints:
+        """(k,) array: how many words each has."""
+        return np.fromiter((len(row.split()) for row in self.rows), dtype=np.intp, count=len(self.rows))
+
+    def starts(self) -> Ints:
+        """(k,) array: where each begins in the text."""
+        return np.fromiter((match.start() for match in self._pattern.finditer(self._text)), dtype=np.intp)
+
+    def match(self, number: int) -> re.Match[bytes]:
+        """Return one of them with its place, counted from 0."""
+        return next(islice(self._pattern.finditer(self._text), number, None))
 
 
 class ObjLines:
@@ -55,8 +86,8 @@ class ObjLines:
             )
         plain = data.removeprefix(_MARK).replace(b"\r\n", b"\n").replace(b"\r", b"\n").replace(b"\\\n", _JOINT)
         self._text = plain
-        self._vertices = list(_VERTEX.finditer(plain))
-        self._faces = list(_FACE.finditer(plain))
+        self._vertices = _Statements(_VERTEX, plain)
+        self._faces = _Statements(_FACE, plain)
         self._others = list(_OTHER.finditer(plain))
         for other in self._others:
             if re.fullmatch(_FREE_FORM, other[1]):
@@ -69,9 +100,10 @@ class ObjLines:
                         "export the part as a polygon mesh",
                     )
                 )
-        if not self._faces:
-            begins = _shown(plain.lstrip().split(b"\n", 1)[0])
-            found = f"{len(self._vertices)} vertices and no polygon" if self._vertices else f"it begins with '{begins}'"
+        if not self._faces.rows:
+            begins = _shown(plain.lstrip()[: _SHOWN + 1].split(b"\n", 1)[0])
+            count = len(self._vertices.rows)
+            found = f"{count} vertices and no polygon" if count else f"it begins with '{begins}'"
             raise InputError(
                 Fault("the OBJ holds no faces", where, found, "'f' lines", "export the part as a mesh with its faces")
             )
@@ -84,16 +116,18 @@ class ObjLines:
         InputError
             A line holds less than three numbers, or something else than numbers.
         """
-        rows = [match[1].split()[:3] for match in self._vertices]
-        for match, row in zip(self._vertices, rows, strict=True):
-            if len(row) < 3:
-                raise InputError(self._unreadable("a vertex", match, "three numbers"))
-        try:
+        rows, counts = self._vertices.rows, self._vertices.counts()
+        for number in np.flatnonzero(counts < 3)[:1].tolist():
+            raise InputError(self._unreadable("a vertex", self._vertices.match(number), "three numbers"))
+        if (counts > 3).any():
             # Colours and weights after the three numbers have no part in the shape.
-            numbers = [float(word) for row in rows for word in row]
+            rows = [b" ".join(row.split()[:3]) for row in rows]
+        try:
+            numbers = list(map(float, b" ".join(rows).split()))
         except ValueError:
-            wrong = next(match for match, row in zip(self._vertices, rows, strict=True) if not all(map(_number, row)))
-            raise InputError(self._unreadable("a vertex", wrong, "three numbers with a decimal point")) from None
+            wrong = next(number for number, row in enumerate(rows) if not all(map(_number, row.split())))
+            allowed = "three numbers with a decimal point"
+            raise InputError(self._unreadable("a vertex", self._vertices.match(wrong), allowed)) from None
         return np.array(numbers, dtype=np.float64).reshape(-1, 3)
 
     def polygons(self, vertices: Floats) -> Polygons:
@@ -115,21 +149,21 @@ class ObjLines:
         Indices count from 1. A negative one counts back from the vertex written last before the face, not from the
         last of the file. What stands behind a slash (texture, normal) is left.
         """
-        rows = [match[1].split() for match in self._faces]
-        counts = np.array([len(row) for row in rows], dtype=np.intp)
-        for number in np.flatnonzero(counts < 3)[:1]:
-            raise InputError(self._unreadable("a face", self._faces[number], "three corners or more"))
+        rows, counts = self._faces.rows, self._faces.counts()
+        for number in np.flatnonzero(counts < 3)[:1].tolist():
+            raise InputError(self._unreadable("a face", self._faces.match(number), "three corners or more"))
+        words = b" ".join(rows).split()
         try:
-            indices = np.array([int(word.partition(b"/")[0]) for row in rows for word in row], dtype=np.intp)
+            indices = np.array([int(word.partition(b"/")[0]) for word in words], dtype=np.intp)
         except (ValueError, OverflowError):
-            wrong = next(match for match, row in zip(self._faces, rows, strict=True) if not all(map(_index, row)))
-            raise InputError(self._unreadable("a face", wrong, "vertex numbers such as 3, 3/1, 3//2 or -1")) from None
+            wrong = next(number for number, row in enumerate(rows) if not all(map(_index, row.split())))
+            allowed = "vertex numbers such as 3, 3/1, 3//2 or -1"
+            raise InputError(self._unreadable("a face", self._faces.match(wrong), allowed)) from None
         owners = np.repeat(np.arange(len(rows)), counts)
         corners = indices - 1
         back = np.flatnonzero(indices < 0)
         if len(back):
-            places = np.array([match.start() for match in self._vertices])
-            written = np.searchsorted(places, [match.start() for match in self._faces])
+            written = np.searchsorted(self._vertices.starts(), self._faces.starts())
             corners[back] = written[owners[back]] + indices[back]
         lost = np.flatnonzero((corners < 0) | (corners >= len(vertices)))
         if len(lost):
@@ -141,7 +175,7 @@ class ObjLines:
 
     def line(self, face: int) -> int:
         """Line of a face, both counted as people count: the line from 1, the face from 0 as arrays do."""
-        return self._line(self._faces[face])
+        return self._line(self._faces.match(face))
 
     def unread(self) -> tuple[Finding, ...]:
         """Note on the lines that mean nothing here."""
@@ -155,7 +189,7 @@ class ObjLines:
         return (Finding("unread-lines", Level.NOTE, text, count=len(self._others)),)
 
     def _lost(self, lost: Ints, indices: Ints, owners: Ints, count: int) -> Fault:
-        face = self._faces[owners[lost[0]]]
+        face = self._faces.match(int(owners[lost[0]]))
         others = len(np.unique(owners[lost])) - 1
         more = f" (and {others} more such faces)" if others else ""
         return Fault(
@@ -172,8 +206,8 @@ class ObjLines:
         )
         bad = vertices[corners[0]]
         return Fault(
-            f"{len(faces)} of {len(self._faces)} faces: a coordinate is no finite number",
-            f"{self._where}, face {named}; line {self._line(self._vertices[corners[0]])}",
+            f"{len(faces)} of {len(self._faces.rows)} faces: a coordinate is no finite number",
+            f"{self._where}, face {named}; line {self._line(self._vertices.match(int(corners[0])))}",
             f"{bad[~np.isfinite(bad)][0]}",
             "finite numbers",
             "repair the part at these faces in the program that drew it and export again",
