@@ -24,7 +24,7 @@ class Outline:
     region : Filled
         In m, in (right, up) coordinates of the mesh.
     depth : float, m
-        Mean height of the outline's corners along the axis, so that its centre can be placed in space.
+        Height of the middle between the solid's two ends along the axis, so that its centre can be placed in space.
     """
 
     axis: Floats
@@ -100,8 +100,8 @@ def outline(surface: Surface, pairs: EdgePairs, axis: Floats, up: Floats | None 
     end = np.where(forward, pairs.end[rim], pairs.start[rim]).astype(np.intp)
     frame = np.column_stack([right, upright])
     loops = [surface.vertices[ring] @ frame for ring in _rings(start, end)]
-    depth = float((surface.vertices[start] @ n).mean()) if len(start) else 0.0
-    return Outline(n, right, upright, filled(loops), depth)
+    heights = surface.vertices @ n
+    return Outline(n, right, upright, filled(loops), float(heights.min() + heights.max()) / 2)
 
 
 def _rings(start: Ints, end: Ints) -> list[Ints]:
