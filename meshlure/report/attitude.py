@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from typing import Any
 
+from meshlure.report.subject import touchy
 from meshlure.report.table import Table, table
 from meshlure.report.wording import (
     DASH,
@@ -31,14 +32,14 @@ def postures(results: Results) -> Table | None:
     if not found:
         return None
     columns = [column(posture) for posture in found]
-    titles = [title for title in columns[0] if title != "balls lie" or any(posture.get("balls") for posture in found)]
+    empty = {title for title in ("balls lie", "above the water") if all(each[title] == DASH for each in columns)}
+    titles = [title for title in columns[0] if title not in empty]
     head = ("", *(f"{number + 1}. {p.get('name') or p['kind']}" for number, p in enumerate(found)))
     return table("Posture by posture", head, [(title, *(each[title] for each in columns)) for title in titles])
 
 
 def column(posture: Posture) -> dict[str, str]:
     """Return one posture's measures in words, each with the reason where it has none."""
-    about = bool(posture.get("rounded"))
     still = posture["up"] is None
     hangs = posture["kind"] == "hanging"
     dry = "hangs under water" if hangs else "has no meaning here"
@@ -48,10 +49,15 @@ def column(posture: Posture) -> dict[str, str]:
     barrier = posture["barrier_g_mm"]
     return {
         "it": ("hangs" if hangs else "floats") + (", reached from back up" if posture["upright"] else ""),
-        "nose up": degrees(posture["nose_up_deg"], rounded=about, reason=NO_ATTITUDE if still else "free"),
-        "lean, to its right +": degrees(posture["lean_deg"], rounded=about, reason=no_lean(posture)),
+        "nose up": degrees(
+            posture["nose_up_deg"], rounded=touchy(posture, "nose_up_deg"), reason=NO_ATTITUDE if still else "free"
+        ),
+        "lean, to its right +": degrees(
+            posture["lean_deg"], rounded=touchy(posture, "lean_deg"), reason=no_lean(posture)
+        ),
         "free to turn": free_words(posture["free"]),
         "balls lie": balls or DASH,
+        "above the water": ", ".join(posture.get("dry") or []) or DASH,
         "share under water": percent(posture["submerged_share"], reason="all of it" if hangs else "not found"),
         "cut by the surface": square_millimetres(posture["waterplane_mm2"], reason=dry),
         "metacentre above G, fore-aft": millimetres(heights.get("fore_aft"), 2, reason=no_height),
@@ -92,7 +98,9 @@ def free_words(free: Any) -> str:
     """Return which angle nothing holds."""
     if free is None:
         return "no"
-    return {"lean": "about its length", "nose_up": "nose up and down"}.get(str(free), str(free).replace("_", " "))
+    return {"lean": "about its length", "nose_up": "nose up and down", "both": "any way"}.get(
+        str(free), str(free).replace("_", " ")
+    )
 
 
 def righting(results: Results, plane: str) -> Table | None:

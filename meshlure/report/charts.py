@@ -216,7 +216,7 @@ def drag(rows: Sequence[Mapping[str, Any]], fluid: str) -> Picture | None:
     for level, row in enumerate(chosen):
         ends = [row["drag_area_mm2"] + (row[end] - row["cd"]) * row["frontal_mm2"] for end in ("cd_low", "cd_high")]
         axes.plot(ends, [level, level], color=ink.INK, linewidth=1.0, marker="|", markersize=7, zorder=5)
-    labels = [f"{leads_words(row['leads'])}\n{row['layer']}" for row in chosen]
+    labels = [f"{leads_words(row['leads'])}\n{layer_words(row)}" for row in chosen]
     axes.set_yticks(range(len(chosen)), [label if drawable(label.replace("\n", "")) else "?" for label in labels])
     axes.tick_params(axis="y", length=0)
     axes.set_title(f"in {fluid}, {fastest:g} m/s", fontsize=7.5, loc="left", pad=3)
@@ -239,6 +239,11 @@ def drag(rows: Sequence[Mapping[str, Any]], fluid: str) -> Picture | None:
 def leads_words(leads: Any) -> str:
     """Return which end goes first."""
     return {"nose": "nose first", "tail": "tail first", None: "broadside"}.get(leads, str(leads))
+
+
+def layer_words(row: Mapping[str, Any]) -> str:
+    """Return the layer of a drag estimate, starred where that estimate is the one to go by."""
+    return str(row["layer"]) + (" *" if row.get("headline") else "")
 
 
 def _cycle(count: int) -> list[dict[str, Any]]:

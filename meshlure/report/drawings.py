@@ -15,7 +15,7 @@ from meshlure.report.centres import draw_centres
 from meshlure.report.figures import Picture, blank, picture
 from meshlure.report.layout import SLANT, Layout, layout, scale_words
 from meshlure.report.names import LINE, POINTS, UNNAMED
-from meshlure.report.outlines import inner_point, thinned
+from meshlure.report.outlines import thinned
 from meshlure.report.pen import fill, fills, path, strokes, white_ground
 from meshlure.report.subject import Subject
 from meshlure.report.waterline import draw_water
@@ -31,6 +31,17 @@ Place = tuple[float, float]
 TITLES = {"side": "From the side", "top": "From above", "front": "From the front"}
 PEN = 0.05
 """mm of paper that a pen can set apart."""
+
+
+DOTTED = (0, (1, 1))
+BALL: dict[str, Any] = {
+    "marker": "h",
+    "markersize": 5.5,
+    "markerfacecolor": ink.PENCIL,
+    "markeredgecolor": ink.INK,
+    "markeredgewidth": 0.7,
+}
+"""The sign for balls whose outline was not handed on; hollow at the other end of their run."""
 
 
 @dataclass(frozen=True)
@@ -119,15 +130,15 @@ def draw_outlines(axes: Axes, paper: Layout) -> None:
             fill(axes, shape, 4.5, facecolor="none", edgecolor=ink.INK, linewidth=1.1)
             continue
         fill(axes, shape, 3.0 + number / 1000, **fills(piece.role, paper.subject.densities.get(piece.name)))
-    balls = [piece for piece in paper.view.pieces if piece.role == "ball" and piece.rings]
-    if len(balls) != 1:
-        return
-    for centre in paper.subject.other_balls:
-        shift = paper.scale * np.subtract(paper.view.place(centre), inner_point(balls[0]))
-        shape = path([_on_paper(paper, ring) + shift for ring in balls[0].rings])
-        if shape is not None and np.hypot(*shift) > 1.0:
-            look: dict[str, Any] = {"linewidth": 0.6, "linestyle": (0, (1, 1))}
-            fill(axes, shape, 3.9, facecolor="none", edgecolor=ink.INK, **look)
+    for row in paper.subject.balls:
+        for piece in paper.view.pieces:
+            if piece.name != row.name or piece.role != "ball":
+                continue
+            for place in row.elsewhere:
+                shift = np.subtract(paper.spot(place), paper.spot(row.at))
+                shape = path([_on_paper(paper, ring) + shift for ring in piece.rings])
+                if shape is not None:
+                    fill(axes, shape, 3.9, facecolor="none", edgecolor=ink.INK, linewidth=0.6, linestyle=DOTTED)
 
 
 def _on_paper(paper: Layout, ring: Floats) -> Floats:
@@ -158,7 +169,14 @@ def draw_leaders(axes: Axes, paper: Layout) -> None:
 
 
 def draw_marks(axes: Axes, paper: Layout) -> None:
-    """Draw a cross where hardware acts, and a lozenge for the line tie."""
+    """Draw a cross where hardware acts, a lozenge for the line tie, and a sign for balls without an outline."""
+    drawn = {piece.name for piece in paper.view.pieces}
+    for row in paper.subject.balls:
+        if row.name in drawn:
+            continue
+        axes.plot(*paper.spot(row.at), zorder=4.8, **BALL)
+        for place in row.elsewhere:
+            axes.plot(*paper.spot(place), zorder=4.8, **(BALL | {"markerfacecolor": "none"}))
     for spot in paper.subject.hardware:
         axes.plot(*paper.spot(spot.at), marker="+", markersize=6, color=ink.INK, markeredgewidth=1.0, zorder=8)
     if paper.subject.tie is not None:

@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from typing import Any
 
-from meshlure.report.charts import PARTS, leads_words
+from meshlure.report.charts import PARTS, layer_words, leads_words
 from meshlure.report.substance import from_nose
 from meshlure.report.table import Table, table
 from meshlure.report.wording import DASH, SPACE, fixed, newtons, point, reynolds, significant
@@ -70,6 +70,8 @@ def form(results: Results) -> Table | None:
         bluff, wake = fixed(ends["leading_bluffness"], 3), fixed(ends["trailing_bluffness"], 2)
         rows.append((f"{way} first, leading bluffness", f"{bluff} (flat face 1, half ball 0.04)"))
         rows.append((f"{way} first, open to the wake", f"{wake} of the greatest section"))
+        if ends.get("cup"):
+            rows.append((f"{way} first, hollow of the face", f"{fixed(ends['cup'], 2)} (flat 0, half ball 1)"))
     return table("Form", (), rows, (0, 1))
 
 
@@ -88,7 +90,10 @@ def drag(results: Results) -> Table | None:
         for row in results["drag"]
     ]
     return table(
-        "Drag; Cd is the body's own on its greatest section, the drag area counts everything", head, lines, (0, 1, 2)
+        "Cd is the body's own on its greatest section; the drag area counts everything; * the row to go by",
+        head,
+        lines,
+        (0, 1, 2),
     )
 
 
@@ -113,7 +118,7 @@ def parts(results: Results) -> Table | None:
 
 
 def _case(row: Mapping[str, Any]) -> tuple[str, str, str, str]:
-    return row["fluid"], leads_words(row["leads"]), row["layer"], fixed(row["speed_m_s"], 1)
+    return row["fluid"], leads_words(row["leads"]), layer_words(row), fixed(row["speed_m_s"], 1)
 
 
 def journey(results: Results) -> list[str]:
@@ -130,4 +135,5 @@ def journey(results: Results) -> list[str]:
 
 
 def _from(source: Mapping[str, Any]) -> str:
-    return " (assumed: the bait file does not say)" if source.get("assumed") else ""
+    named = [key for key in source.get("assumed") or [] if key in ("speed", "angle", "height", "speeds")]
+    return f" ({' and '.join(named)} assumed: the bait file does not say)" if named else ""

@@ -43,6 +43,11 @@ def things(view: View, subject: Subject) -> list[Thing]:
         centre = subject.centres_of_pieces.get(piece.name)
         from_nose = spot[0] if centre is None else view.place(centre)[0]
         found.append(Thing(subject.numbers.get(piece.name), piece.name, spot, from_nose))
+    drawn = {piece.name for piece in view.pieces}
+    for row in subject.balls:
+        if row.name not in drawn:
+            spot = view.place(row.at)
+            found.append(Thing(subject.numbers.get(row.name), row.name, spot, view.place(row.at)[0]))
     for hook in subject.hardware:
         spot = view.place(hook.at)
         found.append(Thing(hook.number, hook.name, spot, spot[0]))

@@ -7,7 +7,7 @@ from dataclasses import dataclass
 from typing import Any
 
 from meshlure.report.table import Table, table
-from meshlure.report.wording import fixed, point
+from meshlure.report.wording import MINUS, fixed, point
 
 Results = Mapping[str, Any]
 LEVELS = ("fault", "warning", "note")
@@ -32,6 +32,7 @@ def findings(results: Results) -> list[Found]:
     rows = []
     for row in results["findings"]:
         places = row["where_mm"] or []
+        places = [place for place in places if unsigned(point(place)) not in unsigned(row["message"])]
         where = "; ".join(f"({point(place)})" for place in places[:PLACES])
         if len(places) > PLACES:
             where += f" and {len(places) - PLACES} more"
@@ -42,10 +43,20 @@ def findings(results: Results) -> list[Found]:
                 row["piece"] or "",
                 row["message"],
                 where and f"at {where} mm",
-                row["advice"] or "",
+                sentence(row["advice"] or ""),
             )
         )
     return sorted(rows, key=lambda found: LEVELS.index(found.level) if found.level in LEVELS else len(LEVELS))
+
+
+def unsigned(text: str) -> str:
+    """Return a text with plain minus signs and no minus before zero, to find places that a message already tells."""
+    return text.replace(MINUS, "-").replace("-0.0,", "0.0,")
+
+
+def sentence(text: str) -> str:
+    """Return advice as a sentence."""
+    return text[:1].upper() + text[1:] + ("." if text and text[-1] not in ".!?" else "")
 
 
 def counted(found: list[Found]) -> str:

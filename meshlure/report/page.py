@@ -12,7 +12,7 @@ from meshlure.report.figures import Picture, drawing_style
 from meshlure.report.layout import scale_for, scale_words
 from meshlure.report.pen import swatches
 from meshlure.report.resting import resting
-from meshlure.report.subject import Subject, main_posture, readable, subject
+from meshlure.report.subject import Subject, main_posture, readable, subject, touchy
 from meshlure.results import Study
 
 MOST_PARTS = 400
@@ -89,25 +89,25 @@ def _verdict(results: Mapping[str, Any]) -> Verdict:
     posture = main_posture(results)
     findings = origin.findings(results)
     low, high = found["reserve_low_g"], found["reserve_high_g"]
-    nose, lean, words, touchy = "", "", "no resting posture was found", []
+    nose, lean, words = "", "", "no resting posture was found"
+    turns: list[str] = []
     if posture is not None:
-        rounded = bool(posture.get("rounded"))
         words = posture.get("words") or posture.get("name") or posture["kind"]
         if posture["up"] is None:
             nose, lean = "no attitude of its own", ""
         else:
-            nose = wording.nose_words(posture["nose_up_deg"], rounded=rounded)
-            lean = wording.lean_words(posture["lean_deg"], rounded=rounded, free=posture["free"] is not None)
+            nose = wording.nose_words(posture["nose_up_deg"], rounded=touchy(posture, "nose_up_deg"))
+            lean = wording.lean_words(
+                posture["lean_deg"], rounded=touchy(posture, "lean_deg"), free=posture["free"] is not None
+            )
         for key, what in (
             ("deg_per_0_1g_10mm", "0.1 g moved 10 mm fore-aft turns it {}°"),
             ("g_per_mm", "{}\u00a0g more sinks it 1 mm"),
         ):
             value = (posture["sensitivity"] or {}).get(key)
             if value is not None:
-                touchy.append(what.format(wording.significant(value, 2)))
-    missed = [
-        f"{row['what'].replace('_', ' ')} misses its limits" for row in results.get("limits") or [] if not row["met"]
-    ]
+                turns.append(what.format(wording.significant(value, 2)))
+    missed = [substance.missed(row) for row in results.get("limits") or [] if row["met"] is False]
     return Verdict(
         state=found["state"],
         sentence=found["verdict"],
@@ -118,7 +118,7 @@ def _verdict(results: Mapping[str, Any]) -> Verdict:
         posture=words,
         nose=nose,
         lean=lean,
-        touchy=tuple(touchy),
+        touchy=tuple(turns),
         counted=origin.counted(findings),
         faults=tuple(f for f in findings if f.level == "fault"),
         warnings=tuple(f for f in findings if f.level == "warning"),
@@ -133,6 +133,7 @@ def _tables(results: Mapping[str, Any]) -> dict[str, Any]:
         "weight": substance.weight(results),
         "facets": substance.facets(results),
         "limits": substance.limits(results),
+        "measured": substance.measured(results),
         "buoyancy": water.buoyancy(results),
         "waters": water.waters(results),
         "balls": water.balls(results),

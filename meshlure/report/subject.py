@@ -13,6 +13,7 @@ from meshlure.report.wording import cleaned, nose_words
 from meshlure.results import View
 
 Floats = NDArray[np.float64]
+Results = Mapping[str, Any]
 
 
 @dataclass(frozen=True, eq=False)
@@ -22,6 +23,15 @@ class Spot:
     number: int | None
     name: str
     at: Floats
+
+
+@dataclass(frozen=True, eq=False)
+class Balls:
+    """A row of balls: its name, where its middle lies as drawn, and where it lies at the other ends of its run."""
+
+    name: str
+    at: Floats
+    elsewhere: tuple[Floats, ...]
 
 
 @dataclass(frozen=True, eq=False)
@@ -47,7 +57,7 @@ class Subject:
     buoyancy_of: str
     area_centres: Mapping[str, Floats]
     rest: Rest | None
-    other_balls: tuple[Floats, ...]
+    balls: tuple[Balls, ...]
     length: float
     left: Floats
 
@@ -57,11 +67,16 @@ class Subject:
 
 
 def main_posture(results: Mapping[str, Any]) -> Mapping[str, Any] | None:
-    """Return the posture a maker sees: of the kind the state asks for, the one reached from back up, else the first."""
+    """Return the posture a maker sees: afloat, the one reached from back up; else the first."""
     postures = results["postures"]
-    kind = "floating" if results["buoyancy"]["state"] == "floats" else "hanging"
-    ranked = sorted(postures, key=lambda p: (p["kind"] != kind, not p["upright"]))
-    return ranked[0] if ranked else None
+    afloat = [posture for posture in postures if posture["kind"] == "floating" and posture["upright"]]
+    return next(iter([*afloat, *postures]), None)
+
+
+def touchy(posture: Mapping[str, Any], key: str) -> bool:
+    """Return whether an angle of a posture was rounded to a step of five, because it turns so easily."""
+    angle = posture[key]
+    return bool(posture.get("rounded")) and angle is not None and angle % 5 == 0
 
 
 def piece_numbers(results: Mapping[str, Any]) -> dict[str, int]:
@@ -86,7 +101,7 @@ def subject(results: Mapping[str, Any]) -> Subject:
                 "as it floats" if posture["kind"] == "floating" else "of all it displaces",
             )
         if posture["up"] is not None:
-            words = nose_words(posture["nose_up_deg"], rounded=bool(posture.get("rounded")))
+            words = nose_words(posture["nose_up_deg"], rounded=touchy(posture, "nose_up_deg"))
             rest = Rest(np.asarray(posture["up"], dtype=float), posture["waterline_mm"], words)
     hardware = [
         Spot(numbers[row["name"]], row["name"], np.asarray(row["at_mm"], dtype=float))
@@ -108,10 +123,31 @@ def subject(results: Mapping[str, Any]) -> Subject:
             if row["name"] in ("side", "top", "front")
         },
         rest=rest,
-        other_balls=tuple(np.asarray(row["centre_mm"], dtype=float) for row in results.get("balls") or []),
+        balls=balls(results),
         length=float(results["size"]["length_mm"]),
         left=np.asarray(results["frame"]["side"], dtype=float),
     )
+
+
+def balls(results: Results) -> tuple[Balls, ...]:
+    """Return where balls lie, as weighed and at the other end of their chamber.
+
+    Notes
+    -----
+    The table of ball positions gives the whole bait's centre of gravity with the balls at each end. What moves it are
+    the balls alone: their own centre is moved as much farther as the bait is heavier than they are.
+    """
+    weight, found = results["weight"], []
+    for row in results["pieces"]:
+        if row["role"] != "ball" or not row["mass_g"]:
+            continue
+        at = np.asarray(row["centre_mm"], dtype=float)
+        ends = [end for end in results.get("balls") or [] if row["name"].endswith(end["chamber"])]
+        moves = [np.subtract(end["centre_mm"], weight["centre_mm"]) * weight["mass_g"] / row["mass_g"] for end in ends]
+        found.append(
+            Balls(row["name"], at, tuple(at + move for move in moves if np.hypot(*move[:2]) + abs(move[2]) > 0.2))
+        )
+    return tuple(found)
 
 
 def readable(view: View) -> View:

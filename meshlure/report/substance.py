@@ -10,7 +10,7 @@ import numpy as np
 
 from meshlure.report.subject import piece_numbers
 from meshlure.report.table import Table, table
-from meshlure.report.wording import DASH, band, cubic_centimetres, fixed, grams, millimetres, point, significant
+from meshlure.report.wording import DASH, band, fixed, grams, millimetres, point, significant
 
 Results = Mapping[str, Any]
 ROLES = {"body": "body", "insert": "insert", "void": "hollow", "hardware": "hardware", "coat": "coat", "ball": "ball"}
@@ -33,7 +33,7 @@ def pieces(results: Results) -> Table | None:
             ROLES.get(row["role"], row["role"]),
             row["material"] or ("air" if row["role"] == "void" else DASH),
             significant(row["density_g_cm3"], 3) if row["density_g_cm3"] is not None else DASH,
-            fixed(row["volume_mm3"] / 1000, 2),
+            fixed(row["volume_mm3"] / 1000, 2) if row["volume_mm3"] else DASH,
             fixed(row["mass_g"], 2),
             fixed(from_nose(results, row["centre_mm"]), 1),
             point(row["centre_mm"]),
@@ -68,9 +68,7 @@ def hardware(results: Results) -> Table | None:
             f"{numbers[row['name']]} {row['name']}",
             row["item"] or DASH,
             fixed(row["mass_g"], 2),
-            cubic_centimetres(row["displaced_mm3"], reason="no material given")
-            if row["displaced_mm3"] is None
-            else fixed(row["displaced_mm3"] / 1000, 3),
+            fixed((row["displaced_mm3"] or None) and row["displaced_mm3"] / 1000, 3, reason="no material given"),
             "hangs from its eye" if row["hangs"] else "fixed",
             point(row["at_mm"]),
         )
@@ -140,17 +138,26 @@ def limits(results: Results) -> Table | None:
     """Return the limits that the bait file sets, and whether they are met."""
     rows = []
     for row in results.get("limits") or []:
-        angle = row["what"] in ("nose_up", "lean")
-        unit, places = ("°", 0) if angle else ("g", 2)
-        value = (
-            DASH if row["value"] is None else fixed(row["value"], places, signed=True) + ("°" if angle else "\u00a0g")
-        )
-        rows.append(
-            (
-                row["what"].replace("_", " "),
-                band(row["low"], row["high"], unit, places, signed=True),
-                value,
-                "met" if row["met"] else "NOT met",
-            )
-        )
+        places = 0 if "degrees" in row["what"] else 2
+        met = "not known" if row["met"] is None else "met" if row["met"] else "NOT met"
+        wanted = band(row["low"], row["high"], "", places, signed=True)
+        rows.append((row["what"], wanted, fixed(row["value"], places, signed=True, reason="free"), met))
     return table("Limits set in the bait file", ("limit", "wanted", "found", ""), rows, (0, 3))
+
+
+def missed(limit: Mapping[str, Any]) -> str:
+    """Return a limit that is not met, with what was wanted and what was found."""
+    places = 0 if "degrees" in limit["what"] else 2
+    wanted = band(limit["low"], limit["high"], "", places, signed=True)
+    return f"{limit['what']}: {fixed(limit['value'], places, signed=True, reason='free')}, wanted {wanted}"
+
+
+def measured(results: Results) -> Table | None:
+    """Return weighings beside what was predicted."""
+    found = results.get("measured") or {"rows": [], "water_c": None}
+    rows = [
+        (row["what"], fixed(row["weighed"], 2), fixed(row["predicted"], 2), fixed(row["difference"], 2, signed=True))
+        for row in found["rows"]
+    ]
+    at = "" if found["water_c"] is None else f", water at {fixed(found['water_c'], 0)} °C"
+    return table(f"Weighed, beside what was predicted{at}", ("what", "weighed", "predicted", "difference"), rows)

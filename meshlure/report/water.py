@@ -14,7 +14,6 @@ from meshlure.report.wording import (
     degrees,
     earned,
     fixed,
-    grams,
     millimetres,
     point,
 )
@@ -59,41 +58,21 @@ def waters(results: Results) -> Table | None:
     found = results["buoyancy"]
     places = max(earned(found["reserve_low_g"], found["reserve_high_g"]), 2)
     rows = [
-        (
-            row["name"],
-            fixed(row["temperature_c"], 0),
-            fixed(row["salinity_g_kg"], 0),
-            fixed(row["density_kg_m3"], 1),
-            fixed(row["reserve_g"], places, signed=True),
-            row["state"],
-        )
+        (row["name"], fixed(row["density_kg_m3"], 1), fixed(row["reserve_g"], places, signed=True), row["state"])
         for row in results["waters"]
     ]
     return table(
-        "Other waters; differences between rows are surer than the values",
-        ("water", "°C", "salt, g/kg", "kg/m³", "reserve, g", "it"),
-        rows,
-        (0, 5),
+        "Other waters; differences are surer than values", ("water", "kg/m³", "reserve, g", "it"), rows, (0, 3)
     )
 
 
 def balls(results: Results) -> Table | None:
-    """Return what the balls do at either end of their chamber."""
-    rows = [
-        (
-            row["chamber"],
-            f"at the {row['end']} end",
-            grams(row["mass_g"]),
-            point(row["centre_mm"]),
-            grams(row["reserve_g"], signed=True),
-            degrees(row["nose_up_deg"]),
-            degrees(row["lean_deg"]),
-        )
-        for row in results.get("balls") or []
-    ]
-    return table(
-        "Balls at either end of their chamber",
-        ("chamber", "balls", "mass", "centre x, y, z, mm", "reserve", "nose up", "lean"),
-        rows,
-        (0, 1),
-    )
+    """Return how the whole bait lies with the balls at either end of their chamber."""
+    rows = []
+    for row in results.get("balls") or []:
+        stays = {True: ", and stay", False: ", and roll away"}.get(row.get("stays"), "")
+        nose_up, lean = degrees(row["nose_up_deg"], reason="free"), degrees(row["lean_deg"], reason="free")
+        where = (fixed(from_nose(results, row["centre_mm"]), 1), point(row["centre_mm"]))
+        rows.append((row["chamber"], f"{row['end']} end{stays}", *where, nose_up, lean))
+    head = ("chamber", "balls at the", "G, mm from nose", "G at x, y, z, mm", "nose up", "lean")
+    return table("The whole bait, balls at either end of their chamber", head, rows, (0, 1))

@@ -47,7 +47,7 @@ def minnow_views() -> tuple[View, ...]:
         DrawnPiece("through-wire", "insert", (wire,)),
         DrawnPiece("belly weight", "insert", (_ellipse(34.0, -6.0, 8.0, 2.6),)),
         DrawnPiece("rattle chamber", "void", (_ellipse(60.0, 0.8, 9.0, 3.2),)),
-        DrawnPiece("rattle chamber balls", "ball", (_ellipse(66.0, 0.6, 2.5, 2.5),)),
+        DrawnPiece("balls in rattle chamber", "ball", (_ellipse(66.0, 0.6, 2.5, 2.5),)),
         DrawnPiece("lip", "insert", (_lip(),)),
         DrawnPiece("left eye", "insert", (_ellipse(9.0, 2.6, 2.4, 2.4),)),
         DrawnPiece("right eye", "insert", (_ellipse(9.0, 2.6, 2.4, 2.4),)),
@@ -59,7 +59,7 @@ def minnow_views() -> tuple[View, ...]:
         DrawnPiece("through-wire", "insert", (wire,)),
         DrawnPiece("belly weight", "insert", (_ellipse(34.0, 0.0, 8.0, 3.0),)),
         DrawnPiece("rattle chamber", "void", (_ellipse(60.0, 0.0, 9.0, 3.2),)),
-        DrawnPiece("rattle chamber balls", "ball", (_ellipse(66.0, 0.0, 2.5, 2.5),)),
+        DrawnPiece("balls in rattle chamber", "ball", (_ellipse(66.0, 0.0, 2.5, 2.5),)),
         DrawnPiece("left eye", "insert", (_ellipse(9.0, -4.6, 2.4, 1.0),)),
         DrawnPiece("right eye", "insert", (_ellipse(9.0, 4.6, 2.4, 1.0),)),
     )
@@ -127,7 +127,7 @@ def _drag(fluid: str, leads: str, layer: str, speed: float, cd: float, density: 
         "drag_area_mm2": area,
         "drag_n": 0.5 * density * speed**2 * area * 1e-6,
         "parts": parts,
-        "closing": "slow",
+        "headline": layer == "between",
         "words": f"{leads} first, {layer} layer",
     }
 
@@ -137,7 +137,7 @@ def _drags() -> list[dict[str, Any]]:
     for fluid, speeds, density, nu in (("air", [25.0], 1.225, 1.46e-5), ("water", [0.5, 1.0], 998.6, 1.05e-6)):
         for leads, cd in (("nose", 0.24), ("tail", 0.31)):
             for speed in speeds:
-                for layer, factor in (("laminar", 1.0), ("tripped", 0.6), ("both", 0.77)):
+                for layer, factor in (("laminar", 1.0), ("tripped", 0.6), ("between", 0.77)):
                     rows.append(_drag(fluid, leads, layer, speed, cd * factor, density, nu))
     return rows
 
@@ -170,7 +170,7 @@ def minnow_results() -> dict[str, Any]:
         _piece("front treble", "hardware", "carbon steel", 7.85, 95.5, 0.75, [31.0, 0.0, -9.8]),
         _piece("rear treble", "hardware", "carbon steel", 7.85, 95.5, 0.75, [94.0, 0.0, 0.0]),
         _piece("coat", "coat", "epoxy clear coat", 1.15, 560.0, 0.644, [42.0, 0.0, -0.5]),
-        _piece("rattle chamber balls", "ball", "bearing steel", 7.81, 65.4, 0.511, [66.0, 0.0, 0.6]),
+        _piece("balls in rattle chamber", "ball", "bearing steel", 7.81, 65.4, 0.511, [66.0, 0.0, 0.6]),
     ]
     return {
         "format": 1,
@@ -251,7 +251,7 @@ def minnow_results() -> dict[str, Any]:
         },
         "waters": [
             {
-                "name": kind,
+                "name": f"{kind}, {t} °C",
                 "temperature_c": float(t),
                 "salinity_g_kg": salt,
                 "density_kg_m3": base - 0.006 * (t - 4) ** 2,
@@ -265,17 +265,18 @@ def minnow_results() -> dict[str, Any]:
             {
                 "chamber": "rattle chamber",
                 "end": "nose",
-                "mass_g": 0.511,
-                "centre_mm": [54.0, 0.0, 0.6],
+                "mass_g": 13.2264,
+                "centre_mm": [42.85 - 12 * 0.511 / 13.2264, 0.01, -1.62],
                 "reserve_g": 1.2233,
                 "nose_up_deg": -6.2,
                 "lean_deg": 0.1,
+                "stays": False,
             },
             {
                 "chamber": "rattle chamber",
                 "end": "tail",
-                "mass_g": 0.511,
-                "centre_mm": [66.0, 0.0, 0.6],
+                "mass_g": 13.2264,
+                "centre_mm": [42.85, 0.01, -1.62],
                 "reserve_g": 1.2233,
                 "nose_up_deg": -3.9,
                 "lean_deg": 0.1,
@@ -379,8 +380,8 @@ def minnow_results() -> dict[str, Any]:
             "tail_first": {"leading_bluffness": 0.004, "trailing_bluffness": 0.66},
         },
         "drag": _drags(),
-        "cast": {"speed_m_s": 25.0, "angle_deg": 40.0, "height_m": 2.0, "assumed": True},
-        "retrieve": {"speeds_m_s": [0.5, 1.0], "assumed": True},
+        "cast": {"speed_m_s": 25.0, "angle_deg": 40.0, "height_m": 2.0, "assumed": ["speed", "wind"]},
+        "retrieve": {"speeds_m_s": [0.5, 1.0], "assumed": ["speeds"]},
         "assumptions": [
             {
                 "what": "mass of treble 6",
@@ -404,8 +405,8 @@ def minnow_results() -> dict[str, Any]:
             {"trigger": "hooks fitted", "text": "Fit hooks last and cover the points."},
         ],
         "limits": [
-            {"what": "reserve", "low": 0.8, "high": 1.6, "value": 1.2233, "met": True},
-            {"what": "nose_up", "low": -3.0, "high": 0.0, "value": -3.9, "met": False},
+            {"what": "reserve, g", "low": 0.8, "high": 1.6, "value": 1.2233, "met": True},
+            {"what": "nose up, degrees", "low": -3.0, "high": 0.0, "value": -3.9, "met": False},
         ],
         "timings_s": {
             "reading": 0.02,
@@ -446,7 +447,7 @@ def sinker() -> Study:
             "up": None,
             "nose_up_deg": None,
             "lean_deg": None,
-            "free": "all",
+            "free": "both",
             "waterline_mm": None,
             "submerged_share": None,
             "waterplane_mm2": None,

@@ -151,5 +151,12 @@ def test_thinning_keeps_the_area() -> None:
     assert Polygon(thin).area == pytest.approx(math.pi * 900, rel=1e-5)
 
 
+def test_balls_are_drawn_at_both_ends_of_their_run() -> None:
+    # The bait's centre of gravity moves by m/M of the balls' way: the first moment, invented_baits moves them 12 mm.
+    (row,) = subject(baits.minnow_results()).balls
+    assert row.at == pytest.approx([66.0, 0.0, 0.6])
+    assert np.array(row.elsewhere) == pytest.approx(np.array([[54.0, 0.0, 0.6]]))
+
+
 def test_runs_of_numbers() -> None:
     assert numbers_text([3, 1, 2, 7, None]) == "tie, 1–3, 7"

@@ -176,7 +176,7 @@ def test_the_verdict_stands_before_everything_else(minnow_html: str) -> None:
         "rights itself from any lean below 118°",
         "no faults, 1 warning",
         "151 mm3 of lip is outside the body",
-        "nose up misses its limits",
+        "nose up, degrees: −4, wanted −3 to 0",
     ):
         assert words in top, words
 
