@@ -27,6 +27,8 @@ class LipPlate:
         Span across the flow over chord.
     angle : float, rad
         Between its face and the flow, 0 to pi/2.
+    axes, sizes : (2, 3) array and (2,) array, m
+        Two directions in its face at right angles, and the sides along them of the rectangle that it stands for.
     """
 
     normal: Floats
@@ -34,6 +36,12 @@ class LipPlate:
     area: float
     aspect: float
     angle: float
+    axes: Floats
+    sizes: Floats
+
+    def extent(self, direction: Floats) -> Floats:
+        """Return the plate's extent along directions in its face, (n,) array, m: that of the ellipse on its sides."""
+        return np.asarray(np.sqrt(((direction @ self.axes.T) ** 2 * self.sizes**2).sum(axis=1)))
 
 
 def lip_plate(surface: Surface, flow: Floats) -> LipPlate:
@@ -61,4 +69,6 @@ def lip_plate(surface: Surface, flow: Floats) -> LipPlate:
     across = across / length if length > 1e-6 else axes[:, 0]
     along = np.cross(across, normal)
     span, chord = float(np.ptp(surface.vertices @ across)), float(np.ptp(surface.vertices @ along))
-    return LipPlate(normal, moments.centre, seen.area, span / chord, float(np.arcsin(min(1.0, abs(float(normal @ flow))))))
+    angle = float(np.arcsin(min(1.0, abs(float(normal @ flow)))))
+    axes = np.array([across, along])
+    return LipPlate(normal, moments.centre, seen.area, span / chord, angle, axes, np.array([span, chord]))

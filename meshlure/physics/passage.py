@@ -20,7 +20,7 @@ from meshlure.physics.form import Profile
 from meshlure.physics.lip import lip_plate
 from meshlure.physics.plate import lip_drag_area
 from meshlure.physics.resistance import Fittings
-from meshlure.physics.wire import wire_drag_area
+from meshlure.physics.tackle import hook_drag_area
 
 LEADS = ("nose", "tail")
 LAYERS: tuple[Layer | None, ...] = (None, "laminar", "tripped")
@@ -117,10 +117,5 @@ def _fittings(skin: Skin, hardware: Sequence[Hardware], frame: Frame) -> Fitting
     for surface in skin.lips.values():
         plate = lip_plate(surface, frame.nose)
         lips += lip_drag_area(plate.area, plate.aspect, plate.angle)
-    hooks = 0.0
-    for item in hardware:
-        if item.drag_area is not None:
-            hooks += item.drag_area
-        elif item.wire is not None and item.wire_length is not None:
-            hooks += wire_drag_area(item.wire_length, item.wire)
+    hooks = sum(hook_drag_area(item) for item in hardware)
     return Fittings(lip=lips, hooks=hooks)
