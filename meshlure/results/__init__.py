@@ -1,5 +1,6 @@
-"""What a study of a bait hands on: the result tree of results.json, and the outlines to draw it with."""
+"""What a study of a bait hands on: the result tree of results.json, its schema, and the outlines to draw it with."""
 
+from meshlure.results.contract import schema
 from meshlure.results.study import DrawnPiece, Study, View
 
-__all__ = ["DrawnPiece", "Study", "View"]
+__all__ = ["DrawnPiece", "Study", "View", "schema"]

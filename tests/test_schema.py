@@ -1,0 +1,191 @@
+"""The published schema of results.json: valid, complete, and met by what the samples give.
+
+The validator is the independent library jsonschema; the schema itself is held against its metaschema (draft 2020-12).
+"""
+
+from __future__ import annotations
+
+import copy
+import json
+from collections.abc import Callable, Iterator
+from typing import Any
+
+import pytest
+from jsonschema import Draft202012Validator
+from studied import SAMPLES, sample
+
+from meshlure.results import schema
+
+Tree = dict[str, Any]
+
+UNITS = {
+    "kg_m3": "kg/m3",
+    "g_cm3": "g/cm3",
+    "g_kg": "g/kg",
+    "g_mm2": "g mm2",
+    "g_mm": "g mm",
+    "m2_s": "m2/s",
+    "m_s": "m/s",
+    "mm3": "mm3",
+    "mm2": "mm2",
+    "g_per_mm": "g",
+    "deg_per_mm": "degrees",
+    "deg_per_0_1g_10mm": "degrees",
+    "mm": "mm",
+    "deg": "degrees",
+    "g": "g",
+    "c": "degrees celsius",
+    "n": "n",
+    "m": "m",
+    "s": "s",
+}
+"""By the end of a key, the unit that its description must name; the longest end that fits counts."""
+
+
+def nodes(node: Any, path: str = "$") -> Iterator[tuple[str, Tree]]:
+    """Every schema within the schema with its path."""
+    yield path, node
+    for name, inner in node.get("properties", {}).items():
+        yield from nodes(inner, f"{path}.{name}")
+    if isinstance(node.get("items"), dict):
+        yield from nodes(node["items"], f"{path}[]")
+    for name, inner in node.get("$defs", {}).items():
+        yield from nodes(inner, f"#{name}")
+
+
+def keys() -> Iterator[tuple[str, str, Tree]]:
+    """Every key of the tree: its path, its name, its schema."""
+    for path, node in nodes(schema()):
+        for name, inner in node.get("properties", {}).items():
+            yield f"{path}.{name}", name, inner
+
+
+def faults(tree: Any) -> list[str]:
+    return [f"{error.json_path}: {error.message[:200]}" for error in Draft202012Validator(schema()).iter_errors(tree)]
+
+
+def as_written(name: str) -> Tree:
+    tree: Tree = json.loads(sample(name).to_json())
+    return tree
+
+
+def test_it_is_a_schema() -> None:
+    Draft202012Validator.check_schema(schema())
+    assert schema()["$schema"] == "https://json-schema.org/draft/2020-12/schema"
+
+
+def test_every_copy_is_a_fresh_one() -> None:
+    schema()["properties"].clear()
+    assert schema()["properties"]
+
+
+@pytest.mark.parametrize("name", SAMPLES)
+def test_the_samples_meet_it(name: str) -> None:
+    assert faults(as_written(name)) == []
+
+
+def test_every_key_is_described() -> None:
+    for path, _, node in keys():
+        assert len(node.get("description", "")) >= 5, path
+
+
+def test_every_key_with_a_unit_names_it_in_its_description() -> None:
+    found = 0
+    for path, name, node in keys():
+        ends = [end for end in UNITS if name == end or name.endswith(f"_{end}")]
+        if ends:
+            found += 1
+            said = f" {node['description'].casefold()} ".replace(".", " ").replace(",", " ").replace(";", " ")
+            assert f" {UNITS[max(ends, key=len)]} " in said, path
+    assert found >= 80
+
+
+def test_every_shape_of_ours_is_closed_and_its_keys_are_always_there() -> None:
+    for path, node in nodes(schema()):
+        if "properties" in node:
+            assert node["additionalProperties"] is False, path
+            assert sorted(node["required"]) == sorted(node["properties"]), path
+
+
+def test_every_list_says_what_is_in_it() -> None:
+    for path, node in nodes(schema()):
+        if node.get("type") == "array":
+            assert node["items"], path
+
+
+NULLS = {
+    "$.findings[].piece", "$.findings[].count",
+    "$.facets[].deficit_g",
+    "$.pieces[].material", "$.pieces[].density_g_cm3",
+    "$.hardware[].item",
+    "$.buoyancy.water.temperature_c", "$.buoyancy.water.salinity_g_kg",
+    "#posture.upright", "#posture.up", "#posture.nose_up_deg", "#posture.lean_deg", "#posture.free",
+    "#posture.waterline_mm", "#posture.waterplane_mm2", "#posture.barrier_g_mm", "#posture.balls",
+    "#metacentric.fore_aft", "#metacentric.sideways",
+    "#sensitivity.deg_per_0_1g_10mm", "#sensitivity.deg_per_mm", "#sensitivity.g_per_mm",
+    "#sensitivity.lean_deg_per_0_1g_10mm", "#sensitivity.lean_deg_per_mm",
+    "$.balls[].nose_up_deg", "$.balls[].lean_deg",
+    "$.line", "$.limits[].value", "$.limits[].met", "$.measured", "$.measured.water_c",
+}  # fmt: skip
+
+
+def test_null_is_allowed_only_where_a_value_may_have_no_meaning() -> None:
+    allowed = set()
+    for path, _, node in keys():
+        kinds = node.get("type", [])
+        branches = [branch.get("type") for branch in node.get("anyOf", [])]
+        if "null" in kinds or "null" in branches or None in node.get("enum", []):
+            allowed.add(path)
+            assert "null" in node["description"], path
+    assert allowed == NULLS
+
+
+def _slip(tree: Tree) -> None:
+    tree["weight"]["mas_g"] = tree["weight"]["mass_g"]
+
+
+def _gone(tree: Tree) -> None:
+    del tree["buoyancy"]["reserve_low_g"]
+
+
+def _null(tree: Tree) -> None:
+    tree["weight"]["mass_g"] = None
+
+
+def _dry_waterline(tree: Tree) -> None:
+    tree["postures"][0]["waterline_mm"] = None
+
+
+def _flat(tree: Tree) -> None:
+    tree["weight"]["centre_mm"] = [1.0, 2.0]
+
+
+def _word(tree: Tree) -> None:
+    tree["buoyancy"]["state"] = "hovers"
+
+
+def _deep(tree: Tree) -> None:
+    tree["postures"][0]["sensitivity"]["deg_per_cm"] = 1.0
+
+
+@pytest.mark.parametrize("spoil", [_slip, _gone, _null, _dry_waterline, _flat, _word, _deep])
+def test_a_slip_is_caught(spoil: Callable[[Tree], None]) -> None:
+    tree = as_written("minnow/minnow.toml")
+    spoiled = copy.deepcopy(tree)
+    spoil(spoiled)
+    assert len(faults(spoiled)) == 1
+
+
+@pytest.mark.parametrize("name", SAMPLES)
+def test_what_a_schema_cannot_say(name: str) -> None:
+    tree = as_written(name)
+    for table in ("rose", "stations"):
+        assert len({len(column) for column in tree[table].values()}) == 1, table
+    for curve in tree["righting"]:
+        assert len(curve["heel_deg"]) == len(curve["arm_mm"])
+        assert curve["heel_deg"] == sorted(curve["heel_deg"])
+        assert tree["postures"][curve["posture"]]["kind"] == "floating"
+    for row in tree["drag"]:
+        assert sum(row["parts"].values()) == pytest.approx(row["drag_area_mm2"], rel=1e-9)
+    levels = [finding["level"] for finding in tree["findings"]]
+    assert levels == sorted(levels, key=["fault", "warning", "note"].index)
