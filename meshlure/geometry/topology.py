@@ -131,6 +131,11 @@ def paired(surface: Surface) -> EdgePairs:
     return _edge_pairs(ends[first], half[first], half[second], irregular)
 
 
+def next_corner(half: Ints32) -> Ints32:
+    """Corner, 3 * face + corner, at which a half-edge ends; the next half-edge of its face begins there."""
+    return np.asarray(np.where(half % np.int32(3) == 2, half - np.int32(2), half + np.int32(1)))
+
+
 def _sorted_half_edges(surface: Surface) -> tuple[_Words, Ints32, NDArray[np.bool_]]:
     """Half-edges sorted by edge: the edge's two vertices as one word, the half-edge's number, whether it runs back."""
     faces = surface.faces.astype(np.uint64)
