@@ -1,0 +1,201 @@
+"""Flight: which end of a thrown bait leads, whether it flies steadily, and how far."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from typing import Final
+
+import numpy as np
+
+from meshlure.geometry.moments import Moments
+from meshlure.geometry.surface import Floats
+from meshlure.physics.loads import Glider
+from meshlure.physics.posture import spread_directions
+from meshlure.physics.trajectory import Throw, Trajectory, trajectory
+from meshlure.physics.trim import STEP, Bearing, MomentCurve, bearing, leading
+
+PLANES: Final = ("pitch", "yaw")
+OFF_END: Final = np.radians(15.0)
+"""rad off the leading end at which the centre of pressure is taken: at a trim its margin is zero by definition."""
+
+DIRECTIONS: Final = 400
+"""Directions over which a tumbling bait's drag is averaged."""
+
+ANGLES: Final = np.radians(np.arange(5, 80, 5))
+"""Launch angles of the curve of distance."""
+
+
+@dataclass(frozen=True, eq=False)
+class Air:
+    """The air and the throw that a flight is in.
+
+    Attributes
+    ----------
+    density : float, kg/m3
+    throw : Throw
+    tie : (3,) array or None, m
+        Where the line pulls; None leaves its moment out.
+    """
+
+    density: float
+    throw: Throw
+    tie: Floats | None
+
+
+@dataclass(frozen=True, eq=False)
+class Flight:
+    """How a bait flies.
+
+    Attributes
+    ----------
+    bearing : Bearing
+        Of the end that leads.
+    other : Bearing
+        Of the other end.
+    curves : tuple of MomentCurve
+        pitch and yaw.
+    towards : (3,) array
+        Direction of motion, in mesh coordinates, at the leading end's trim; along the end itself where it tumbles.
+    swing_hz : float or None
+        Of the slower plane about the leading end's trim; None where it has none.
+    pressure_margin : float or None, m
+        By how much the centre of gravity lies ahead of the centre of pressure, 15 degrees off the leading end, in the
+        worse plane.
+    drag_area : float, m2
+        At the trim, or the mean over all directions where it tumbles.
+    path, farthest, nearest : Trajectory
+        With that drag area, and with those at the ends of its band.
+    """
+
+    bearing: Bearing
+    other: Bearing
+    curves: tuple[MomentCurve, ...]
+    towards: Floats
+    swing_hz: float | None
+    pressure_margin: float | None
+    drag_area: float
+    path: Trajectory
+    farthest: Trajectory
+    nearest: Trajectory
+
+
+def plane_axes(glider: Glider) -> dict[str, Floats]:
+    """Return the lateral direction of each plane: pitch sees the plan area, yaw the side area."""
+    return {"pitch": glider.frame.back, "yaw": glider.frame.side}
+
+
+def moment_curves(glider: Glider, mass: Moments, air: Air) -> tuple[MomentCurve, ...]:
+    """Return the turning moments about the centre of gravity in both planes at the speed of the throw.
+
+    Parameters
+    ----------
+    glider : Glider
+        For air at that speed.
+    mass : Moments, kg
+    air : Air
+    """
+    angle = np.arange(-np.pi, np.pi + STEP / 2, STEP)
+    pressure = air.density * air.throw.speed**2 / 2
+    nose = glider.frame.nose
+    curves = []
+    for plane, lateral in plane_axes(glider).items():
+        towards = np.cos(angle)[:, None] * nose + np.sin(angle)[:, None] * lateral
+        hinge = np.cross(nose, lateral)
+        moment = pressure * glider.loads(towards).about(mass.centre) @ hinge
+        if air.tie is not None and air.throw.pull:
+            moment = moment + np.cross(air.tie - mass.centre, -air.throw.pull * towards) @ hinge
+        curves.append(MomentCurve(plane, angle, moment, float(hinge @ mass.inertia @ hinge)))
+    return tuple(curves)
+
+
+def fly(
+    glider: Glider, mass: Moments, air: Air, band: Mapping[str, tuple[float, float]], end: str | None = None
+) -> Flight:
+    """Return how a bait flies with the end that leads, or with a given one.
+
+    Parameters
+    ----------
+    glider : Glider
+        For air at the speed of the throw.
+    mass : Moments, kg
+    air : Air
+    band : mapping
+        By end: ends of the body's drag as shares of it.
+    end : str, optional
+        nose or tail, to be taken for the leading one.
+    """
+    curves = moment_curves(glider, mass, air)
+    lead = leading(curves) if end is None else bearing(curves, end)
+    other = bearing(curves, "tail" if lead.end == "nose" else "nose")
+    towards = _towards(glider, curves, lead)
+    everywhere = spread_directions(DIRECTIONS) if lead.verdict == "tumbles" else towards[None, :]
+    whole = float(-np.einsum("ij,ij->i", glider.loads(everywhere).force, everywhere).mean())
+    body = float(glider.body_area(everywhere).mean())
+    low, high = band[lead.end]
+    paths = [
+        trajectory(mass.amount, max(whole + body * (share - 1), 1e-9), air.throw, air.density) for share in (1.0, low, high)
+    ]
+    return Flight(
+        bearing=lead,
+        other=other,
+        curves=curves,
+        towards=towards,
+        swing_hz=_swing(curves, lead),
+        pressure_margin=_pressure_margin(glider, mass, lead.end),
+        drag_area=whole,
+        path=paths[0],
+        farthest=paths[1],
+        nearest=paths[2],
+    )
+
+
+def _towards(glider: Glider, curves: tuple[MomentCurve, ...], lead: Bearing) -> Floats:
+    """Direction of motion with the leading end at its trim in both planes."""
+    sign = 1.0 if lead.end == "nose" else -1.0
+    direction = sign * glider.frame.nose
+    if lead.verdict == "tumbles":
+        return np.asarray(direction)
+    for curve, lateral in zip(curves, plane_axes(glider).values(), strict=True):
+        trim = curve.nearest_trim(lead.end)
+        if trim is not None:
+            # From the tail, the angle grows the other way round: a positive one still leans towards the lateral side.
+            away = min(abs(trim.from_end(lead.end)), np.radians(80.0))
+            side = np.sign(np.sin(trim.angle))
+            direction = direction + side * np.tan(away) * lateral
+    return np.asarray(direction / np.linalg.norm(direction))
+
+
+def _swing(curves: tuple[MomentCurve, ...], lead: Bearing) -> float | None:
+    found = []
+    for curve in curves:
+        trim = curve.nearest_trim(lead.end)
+        if trim is None:
+            return None
+        found.append(float(np.sqrt(trim.slope / curve.inertia)) / (2 * np.pi))
+    return min(found)
+
+
+def _pressure_margin(glider: Glider, mass: Moments, end: str) -> float | None:
+    """Lever of the lateral force behind the centre of gravity, the lesser of both planes and sides."""
+    sign = 1.0 if end == "nose" else -1.0
+    levers = []
+    for lateral in plane_axes(glider).values():
+        for side in (-1.0, 1.0):
+            towards = sign * np.cos(OFF_END) * glider.frame.nose + side * np.sin(OFF_END) * lateral
+            loads = glider.loads(towards)
+            force = float(loads.force[0] @ lateral) * -side
+            if force <= 0:
+                return None
+            turning = float(loads.about(mass.centre)[0] @ np.cross(sign * glider.frame.nose, lateral)) * side
+            levers.append(turning / force)
+    return min(levers)
+
+
+def distances(mass: float, drag_area: float, air: Air) -> Floats:
+    """Return the distance over the launch angles, (n,) array, m."""
+    throw = air.throw
+    return np.array([
+        trajectory(mass, drag_area, Throw(throw.speed, float(angle), throw.height, throw.pull, throw.wind), air.density, 2).distance
+        for angle in ANGLES
+    ])
