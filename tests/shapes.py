@@ -161,4 +161,4 @@ def direction(seed: int) -> Floats:
 def order(errors: Sequence[float] | Floats, ratio: float = 2.0) -> Floats:
     """Order of convergence between meshes that are each ``ratio`` times finer than the one before."""
     e = np.abs(np.asarray(errors, dtype=np.float64))
-    return np.log(e[:-1] / e[1:]) / np.log(ratio)
+    return np.asarray(np.log(e[:-1] / e[1:]) / np.log(ratio))

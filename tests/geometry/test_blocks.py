@@ -90,7 +90,8 @@ def test_a_cut_turns_and_moves_with_the_body(body: int, motion: int, share: floa
     here = index.cut(normal, height)
     there = moved.cut(turn @ normal, height + float(turn @ normal @ shift))
     assert there.volume == pytest.approx(here.volume, rel=1e-11)
-    np.testing.assert_allclose(there.moment / there.volume, turn @ here.moment / here.volume + shift, rtol=0, atol=1e-12)
+    centre = turn @ here.moment / here.volume + shift
+    np.testing.assert_allclose(there.moment / there.volume, centre, rtol=0, atol=1e-12)
     np.testing.assert_allclose(there.section.centre, turn @ here.section.centre + shift, rtol=0, atol=1e-11)
     np.testing.assert_allclose(
         there.section.second, turn @ here.section.second @ turn.T, rtol=0, atol=1e-9 * np.trace(here.section.second)
@@ -111,8 +112,8 @@ def test_the_order_of_faces_and_vertices_changes_nothing(body: int, seed: int, s
 
 
 def test_a_plane_through_rings_of_vertices_loses_no_piece_of_the_section() -> None:
-    # Prism on a regular 48-gon: area n/2 r^2 sin(2 pi/n), volume area * height. Vertices lie exactly in the plane, where
-    # rounding decides on which side they fall.
+    # Prism on a regular 48-gon: area n/2 r^2 sin(2 pi/n), volume area * height. Vertices lie exactly in the plane,
+    # where rounding decides on which side they fall.
     random, around, radius = np.random.default_rng(1), 48, 0.01
     area = around / 2 * np.sin(2 * np.pi / around) * radius**2
     for _ in range(60):
@@ -187,14 +188,16 @@ def test_a_body_a_kilometre_off() -> None:
     here, there = near.cut(normal, height), far.cut(normal, height + float(shift @ normal))
     assert there.volume == pytest.approx(here.volume, rel=1e-10)
     np.testing.assert_allclose(there.moment / there.volume - shift, here.moment / here.volume, rtol=0, atol=2e-12)
-    np.testing.assert_allclose(there.section.second, here.section.second, rtol=0, atol=1e-9 * np.trace(here.section.second))
+    second = here.section.second
+    np.testing.assert_allclose(there.section.second, second, rtol=0, atol=1e-9 * np.trace(second))
 
 
 @given(SEEDS, SEEDS)
 def test_reach_is_that_of_the_vertices(body: int, way: int) -> None:
     surface, normal = shapes.lumpy(body, level=3), shapes.direction(way)
     heights = surface.vertices @ normal
-    assert BlockIndex.build(surface).reach(normal) == pytest.approx((heights.min(), heights.max()), rel=1e-14, abs=1e-17)
+    reach = BlockIndex.build(surface).reach(normal)
+    assert reach == pytest.approx((heights.min(), heights.max()), rel=1e-14, abs=1e-17)
 
 
 def test_totals_are_the_solids_moments() -> None:

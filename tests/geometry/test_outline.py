@@ -14,7 +14,7 @@ from meshlure.geometry.outline import Outline, drawing_axes, outline
 from meshlure.geometry.surface import Floats, Surface
 from meshlure.geometry.topology import paired
 
-DIRECTIONS = [np.array([1.0, 0, 0]), np.array([0, 1.0, 0]), np.array([0, 0, 1.0]), *(shapes.direction(k) for k in range(5))]
+DIRECTIONS = [*np.eye(3), *(shapes.direction(k) for k in range(5))]
 SEEDS = st.integers(0, 10_000)
 
 
@@ -169,6 +169,7 @@ def test_the_left_side_is_seen_with_the_nose_to_the_left() -> None:
 
 def test_the_centre_lies_midway_between_the_solids_ends_along_the_view() -> None:
     # It is known across the view only; along it the middle is taken, whatever rounding makes of faces seen edge on.
-    for surface in (shapes.box((1, 2, 3), (5, 6, 7), 1), shapes.cylinder(1.0, 3.0, 32, 4).moved(shift=np.array([5.0, 6, 7]))):
+    cylinder = shapes.cylinder(1.0, 3.0, 32, 4).moved(shift=np.array([5.0, 6, 7]))
+    for surface in (shapes.box((1, 2, 3), (5, 6, 7), 1), cylinder):
         for axis in np.eye(3):
             assert seen(surface, axis).centre == pytest.approx([5, 6, 7], rel=1e-12)
