@@ -2,16 +2,22 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
 from dataclasses import dataclass
 
 import numpy as np
+from scipy.spatial import cKDTree
 
 from meshlure.geometry.blocks import curve_order
 from meshlure.geometry.surface import Floats, Ints, Surface
 
-_BOX = 128
-"""Triangles in a box of the tree."""
+_BOX = 32
+"""Triangles in a box."""
+
+_IN_TREE = 100_000
+"""Triangles whose middles are kept to bound a distance; more would bound it no better."""
+
+_PAIRS = 1 << 21
+"""Pairs of a point and a box looked at in one go, and pairs of a point and a triangle: some tens of megabytes."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -39,44 +45,114 @@ def nearest(surface: Surface, points: Floats) -> Nearest:
 
     Notes
     -----
-    An R-tree of boxes of neighbouring triangles gives the box nearest to a point; the exact distance to that box's
-    triangles bounds the search, and every box within it is looked at. Point to triangle by the regions of
-    C. Ericson (2005), Real-Time Collision Detection, section 5.1.5.
+    Neighbouring triangles share a box. The distance to the nearest middle of a triangle bounds the search, and every
+    box within that bound is looked at.
     """
-    from rtree import index as rtree
-    from trimesh.triangles import closest_point
-
-    corners, groups, low, high = _boxes(surface)
-
-    def rows() -> Iterator[tuple[int, tuple[float, ...], None]]:
-        for number, box in enumerate(np.hstack([low, high]).tolist()):
-            yield number, tuple(box), None
-
-    tree = rtree.Index(rows(), properties=rtree.Property(dimension=3))
-    distance = np.empty(len(points))
-    place = np.empty((len(points), 3))
-
-    def settled(point: Floats, boxes: list[int]) -> tuple[float, Floats]:
-        triangles = np.concatenate([corners[groups[box] : groups[box + 1]] for box in boxes])
-        found: Floats = closest_point(triangles, np.broadcast_to(point, (len(triangles), 3)))  # type: ignore[no-untyped-call]
-        apart = np.linalg.norm(found - point, axis=1)
-        best = int(apart.argmin())
-        return float(apart[best]), found[best]
-
-    for row, point in enumerate(np.asarray(points, dtype=np.float64)):
-        first = next(iter(tree.nearest(tuple(np.tile(point, 2)), 1)))
-        bound, _ = settled(point, [first])
-        # A hair wider, so that rounding of the boxes loses nothing.
-        reach = bound * (1 + 1e-12) + 1e-15
-        near = list(tree.intersection(tuple(np.concatenate([point - reach, point + reach]))))
-        distance[row], place[row] = settled(point, near or [first])
+    points = np.asarray(points, dtype=np.float64).reshape(-1, 3)
+    boxes = _Boxes.of(surface)
+    distance, place = np.empty(len(points)), np.empty((len(points), 3))
+    step = max(1, _PAIRS // len(boxes.low))
+    for at in range(0, len(points), step):
+        piece = slice(at, at + step)
+        distance[piece], place[piece] = boxes.nearest(points[piece])
     return Nearest(distance, place)
 
 
-def _boxes(surface: Surface) -> tuple[Floats, Ints, Floats, Floats]:
-    """Triangles sorted into boxes: corners, first triangle of each box with the end, and the boxes' bounds."""
-    corners = surface.corners[curve_order(surface.corners.sum(axis=1))]
-    first = np.append(np.arange(0, len(corners), _BOX), len(corners))
-    low = np.minimum.reduceat(corners.min(axis=1), first[:-1])
-    high = np.maximum.reduceat(corners.max(axis=1), first[:-1])
-    return corners, first, low, high
+@dataclass(frozen=True, eq=False)
+class _Boxes:
+    """Triangles by boxes of neighbours, the last box filled up with its last triangle.
+
+    corners : (b, k, 3, 3) array, box, triangle, corner, coordinate; low, high : (b, 3) arrays.
+    middle : (b, k, 3) array, and radius : (b, k) array, of a ball round each triangle.
+    tree : of the middles of some, which bound the distance from above.
+    """
+
+    corners: Floats
+    low: Floats
+    high: Floats
+    middle: Floats
+    radius: Floats
+    tree: cKDTree[None]
+
+    @classmethod
+    def of(cls, surface: Surface) -> _Boxes:
+        order = curve_order(surface.corners.sum(axis=1))
+        order = np.append(order, np.repeat(order[-1:], -len(order) % _BOX))
+        corners = surface.corners[order].reshape(-1, _BOX, 3, 3)
+        middle = corners.mean(axis=2)
+        radius = np.sqrt(((corners - middle[:, :, None]) ** 2).sum(axis=-1).max(axis=-1))
+        some = middle.reshape(-1, 3)[:: max(1, len(order) // _IN_TREE)]
+        return cls(corners, corners.min(axis=(1, 2)), corners.max(axis=(1, 2)), middle, radius, cKDTree(some))
+
+    def nearest(self, points: Floats) -> tuple[Floats, Floats]:
+        apart = np.zeros((len(points), len(self.low)))
+        for axis in range(3):
+            p = points[:, axis, None]
+            apart += np.maximum(np.maximum(self.low[:, axis] - p, p - self.high[:, axis]), 0.0) ** 2
+        # A hair wider, so that rounding of the boxes loses nothing.
+        bound = np.asarray(self.tree.query(points)[0]) * (1 + 1e-12) + 1e-15
+        rows, boxes = np.nonzero(np.sqrt(apart) <= bound[:, None])
+        return self._within(points, rows, boxes, bound)
+
+    def _within(self, points: Floats, rows: Ints, boxes: Ints, bound: Floats) -> tuple[Floats, Floats]:
+        """Distance and nearest place of every point among the triangles of its boxes; rows name every point."""
+        found, of, place = [], [], []
+        step = _PAIRS // (4 * _BOX)
+        for at in range(0, len(rows), step):
+            row, box = rows[at : at + step], boxes[at : at + step]
+            toward = self.middle[box] - points[row, None]
+            pair, triangle = np.nonzero(np.sqrt(_dot(toward, toward)) - self.radius[box] <= bound[row, None])
+            p = points[row[pair]]
+            on = closest_places(p, self.corners[box[pair], triangle])
+            found.append(np.sqrt(_dot(on - p, on - p)))
+            of.append(row[pair])
+            place.append(on)
+        distance, owner, places = np.concatenate(found), np.concatenate(of), np.concatenate(place)
+        order = np.lexsort((distance, owner))
+        leads = order[np.flatnonzero(np.diff(owner[order], prepend=-1))]
+        return distance[leads], places[leads]
+
+
+def closest_places(points: Floats, corners: Floats) -> Floats:
+    """Return the place of each triangle that is closest to a point, (..., 3) array, m.
+
+    Parameters
+    ----------
+    points : (..., 3) array, m
+    corners : (..., 3, 3) array, m
+        Triangle, corner, coordinate; one without area counts as its longest side.
+
+    Notes
+    -----
+    The foot of the perpendicular where it falls into the triangle (barycentric coordinates by the Gram matrix of two
+    sides), else the closest place of the three sides. Nothing here depends on the unit: the general mesh library's own
+    answer is a corner where a small triangle is given in metres.
+    """
+    a, b, c = corners[..., 0, :], corners[..., 1, :], corners[..., 2, :]
+    ab, ac, ap = b - a, c - a, points - a
+    aa, bb, mixed = _dot(ab, ab), _dot(ac, ac), _dot(ab, ac)
+    pa, pb = _dot(ap, ab), _dot(ap, ac)
+    det = aa * bb - mixed * mixed
+    u, v = bb * pa - mixed * pb, aa * pb - mixed * pa
+    inside = (u >= 0) & (v >= 0) & (u + v <= det) & (det > 0)
+    over = np.where(inside, det, 1.0)
+    foot = a + (u / over)[..., None] * ab + (v / over)[..., None] * ac
+    place, least = _on_side(points, a, b)
+    for one, other in ((b, c), (c, a)):
+        there, apart = _on_side(points, one, other)
+        nearer = apart < least
+        place, least = np.where(nearer[..., None], there, place), np.where(nearer, apart, least)
+    return np.asarray(np.where(inside[..., None], foot, place))
+
+
+def _on_side(points: Floats, start: Floats, end: Floats) -> tuple[Floats, Floats]:
+    """Closest place of a straight line between two corners, and its squared distance."""
+    along = end - start
+    length = _dot(along, along)
+    share = np.clip(_dot(points - start, along) / np.where(length > 0, length, 1.0), 0.0, 1.0)
+    place = start + share[..., None] * along
+    return place, _dot(points - place, points - place)
+
+
+def _dot(u: Floats, v: Floats) -> Floats:
+    return np.asarray(np.einsum("...i,...i->...", u, v))

@@ -8,10 +8,17 @@ from dataclasses import dataclass
 import manifold3d
 import numpy as np
 
+from meshlure.geometry.fans import parted
+from meshlure.geometry.shells import enclosed_volume
 from meshlure.geometry.surface import Floats, Ints, Surface
+from meshlure.geometry.topology import paired
 
 _OUTLINE_SPAN = 100.0
 """Outlines are scaled to this size: the polygon library keeps eight decimals."""
+
+
+_KEPT = 1e-11
+"""Share of area times greatest coordinate by which the library's volume may differ: it merges closer vertices."""
 
 
 class SolidError(Exception):
@@ -54,18 +61,19 @@ class Solid:
         Raises
         ------
         SolidError
-            Where the library rejects the mesh.
+            Where the library rejects the mesh, or its volume differs from the mesh's.
+
+        Notes
+        -----
+        Where more than two faces share an edge the library pairs them at random and loses volume without a word. The
+        volume is therefore compared, and where it differs every fan of faces is given vertices of its own.
         """
         tag = new_tag() if tag is None else tag
-        mesh = manifold3d.Mesh64(
-            vert_properties=np.array(surface.vertices),
-            tri_verts=surface.faces.astype(np.uint64),
-            run_index=np.array([0, 3 * len(surface.faces)], dtype=np.uint64),
-            run_original_id=np.array([tag], dtype=np.uint32),
-        )
-        solid = cls(manifold3d.Manifold(mesh))
-        if solid.kernel.is_empty() and len(surface.faces):
-            raise SolidError("the solid library keeps nothing of the mesh")
+        solid = _taken(surface, tag)
+        if solid is None:
+            solid = _taken(parted(surface, paired(surface)), tag)
+        if solid is None:
+            raise SolidError("the solid library does not take the mesh, or gives it another volume than it encloses")
         return solid
 
     @property
@@ -144,6 +152,23 @@ class Solid:
         mesh = self.kernel.to_mesh64()
         starts: Ints = np.asarray(mesh.run_index, dtype=np.intp)
         return np.repeat(np.asarray(mesh.run_original_id, dtype=np.intp), (starts[1:] - starts[:-1]) // 3)
+
+
+def _taken(surface: Surface, tag: int) -> Solid | None:
+    """Solid of a surface as the library takes it; None where it does not, or where that has another volume."""
+    mesh = manifold3d.Mesh64(
+        vert_properties=np.array(surface.vertices),
+        tri_verts=surface.faces.astype(np.uint64),
+        run_index=np.array([0, 3 * len(surface.faces)], dtype=np.uint64),
+        run_original_id=np.array([tag], dtype=np.uint32),
+    )
+    try:
+        solid = Solid(manifold3d.Manifold(mesh))
+    except SolidError:
+        return None
+    reach = float(np.abs(surface.vertices).max(initial=0.0))
+    off = abs(solid.volume - enclosed_volume(surface))
+    return solid if off <= _KEPT * surface.area * reach else None
 
 
 def _inner_distance(ball: Solid) -> float:
