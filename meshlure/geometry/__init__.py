@@ -1,0 +1,1 @@
+"""Surfaces and solids, knowing of no bait."""

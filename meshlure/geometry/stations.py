@@ -102,4 +102,5 @@ def _spread(section: Section, direction: Floats) -> float:
     """Axis along a direction of the ellipse with the section's second moment: four radii of gyration, m."""
     if section.area <= 0:
         return 0.0
-    return 4 * float(np.sqrt(max(direction @ section.second @ direction, 0.0) / section.area))
+    second = float(direction @ section.second @ direction)
+    return 4 * float(np.sqrt(max(second, 0.0) / section.area))

@@ -1,0 +1,1 @@
+"""Meshes to make the bait from."""

@@ -1,0 +1,1 @@
+"""Weight, water and air: what acts on a bait."""

@@ -113,7 +113,7 @@ def trajectory(
     found = solve_ivp(
         change, (0.0, LONGEST), start, method="DOP853", events=lands, dense_output=True, rtol=_PRECISION, atol=_PRECISION
     )
-    if not len(found.t_events[0]):
+    if found.t_events is None or found.y_events is None or found.sol is None or not len(found.t_events[0]):
         raise ValueError(f"still in the air after {LONGEST:g} s")
     seconds = float(found.t_events[0][0])
     x, _, vx, vy = (float(value) for value in found.y_events[0][0])
