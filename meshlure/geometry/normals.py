@@ -100,7 +100,7 @@ def facets(surface: Surface) -> Facets:
 
 
 def skin_normals(surface: Surface, pairs: EdgePairs, plain: Facets) -> SkinNormals:
-    """Unit normals of the skin at the corners, averaged over the faces that join smoothly round a vertex.
+    """Skin normals at the corners, unit vectors averaged over the faces that join smoothly round a vertex.
 
     Parameters
     ----------

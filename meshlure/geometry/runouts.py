@@ -24,7 +24,7 @@ TANGENT: Final = 0.15
 
 
 def run_out(surface: Surface, pairs: EdgePairs, plain: Facets, skin: SkinNormals) -> SkinNormals:
-    """Unit normals of the skin, corrected where something curved runs out into something straighter.
+    """Skin normals corrected where something curved runs out into something straighter.
 
     Parameters
     ----------
