@@ -63,8 +63,8 @@ def column(posture: Posture) -> dict[str, str]:
         "metacentre above G, fore-aft": millimetres(heights.get("fore_aft"), 2, reason=no_height),
         "metacentre above G, sideways": millimetres(heights.get("sideways"), 2, reason=no_height),
         "metacentre above G, least": millimetres(heights.get("least"), 2, reason=no_height),
-        "found from": percent(posture["share"]) + " of starts",
-        "work to tip out of it": missing("nothing else to tip into")
+        "found from": missing(dry) if hangs else percent(posture["share"]) + " of starts",
+        "work to tip out of it": missing(dry if hangs else "nothing else to tip into")
         if barrier is None
         else f"{significant(barrier, 2)}{SPACE}g·mm",
         "0.1 g moved 10 mm fore-aft turns it": sensitive(posture, "deg_per_0_1g_10mm", "°"),

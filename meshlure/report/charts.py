@@ -166,7 +166,8 @@ def rose(table: Mapping[str, Any], frame: Mapping[str, Any], plane: str) -> Pict
         words.update({90: "left", 270: "right"})
     axes.set_thetagrids(list(range(0, 360, 45)), [words.get(turn, "") for turn in range(0, 360, 45)])
     axes.set_theta_zero_location("W" if first == 0 else "N")
-    axes.set_theta_direction(1)
+    # As in the drawings: nose to the left and back up, seen from the front its left on the right.
+    axes.set_theta_direction(1 if across == 1 else -1)
     axes.set_ylim(0, None)
     axes.yaxis.set_major_locator(_few())
     axes.set_yticklabels([])
@@ -182,7 +183,7 @@ def rose(table: Mapping[str, Any], frame: Mapping[str, Any], plane: str) -> Pict
 
 def rose_words(across: int) -> str:
     """Return what a plane of directions of view means to someone who holds the bait, by the axis that stands on it."""
-    return ("turning it about its length", "walking around it", "going over it from nose to tail")[across]
+    return ("turning it about its length", "walking around it", "over it from nose to tail")[across]
 
 
 def drag(rows: Sequence[Mapping[str, Any]], fluid: str) -> Picture | None:

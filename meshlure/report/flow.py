@@ -70,7 +70,7 @@ def form(results: Results) -> Table | None:
         bluff, wake = fixed(ends["leading_bluffness"], 3), fixed(ends["trailing_bluffness"], 2)
         rows.append((f"{way} first, leading bluffness", f"{bluff} (flat face 1, half ball 0.04)"))
         rows.append((f"{way} first, open to the wake", f"{wake} of the greatest section"))
-        if ends.get("cup"):
+        if (ends.get("cup") or 0) >= 0.005:
             rows.append((f"{way} first, hollow of the face", f"{fixed(ends['cup'], 2)} (flat 0, half ball 1)"))
     return table("Form", (), rows, (0, 1))
 

@@ -19,12 +19,14 @@ SCALES = (10.0, 5.0, 2.0, 1.0, 0.5, 0.2, 0.1, 0.05)
 PAPER, TALL = 180.0, 90.0
 """mm between the margins of an A4 page, and what of its height a side view may take."""
 LEFT, RIGHT = 11.0, 18.0
-"""mm beside the outline: for its depth, and for the water's name."""
+"""mm beside the outline: for its depth, and for the water's name and how the nose lies to it."""
+NARROW = 11.0
+"""mm at the right of the view from the front, which has the water's name alone."""
 RAIL, SLANT = 2.5, 4.5
 """mm from the outline to the inner rail of the leaders, and on to the outer one."""
 FOOT = {"top": 3.0}
 """mm under the lower names, where the length and the scale stand; the view from above shares those of the side."""
-LEAST = {"front": 46.0}
+LEAST = {"front": 40.0}
 """mm that a drawing is wide at least."""
 
 
@@ -84,8 +86,9 @@ def layout(view: View, subject: Subject, scale: float) -> Layout:
     corners = np.concatenate([*(ring for piece in view.pieces for ring in piece.rings), *spots])
     low, high = corners.min(axis=0), corners.max(axis=0)
     wide = scale * float(high[0] - low[0])
-    width = max(wide + LEFT + RIGHT, LEAST.get(view.name, 118.0))
-    across = LEFT + (width - LEFT - RIGHT - wide) / 2 - scale * float(low[0])
+    right = NARROW if view.name == "front" else RIGHT
+    width = max(wide + LEFT + right, LEAST.get(view.name, 118.0))
+    across = LEFT + (width - LEFT - right - wide) / 2 - scale * float(low[0])
     placed = placed_names(view, subject, scale, across, scale * float(low[1] + high[1]) / 2, (2.0, width - 2.0))
     rows = {above: max((len(p.named.lines) for p in placed if p.above == above), default=0) for above in (True, False)}
     foot = FOOT.get(view.name, 12.5)

@@ -34,11 +34,16 @@ def buoyancy(results: Results) -> Table | None:
         ),
         ("reserve", f"{banded_grams(found['reserve_g'], low, high)}, band {band(low, high, 'g', signed=True)}"),
         ("density of the whole bait", f"{fixed(found['bulk_density_g_cm3'], 3)} g/cm³"),
-        ("water", water_words(water)),
+        *([("water", water_words(water))] if known(water) else []),
         ("water's density", f"{fixed(water['density_kg_m3'], 1)} kg/m³"),
         ("water's kinematic viscosity", f"{fixed(water['viscosity_m2_s'] * 1e6, 3)} mm²/s"),
     ]
     return table("In the stated water", (), rows, (0, 1))
+
+
+def known(water: Mapping[str, Any]) -> bool:
+    """Return whether a water is known by more than its density."""
+    return water["salinity_g_kg"] is not None or water["temperature_c"] is not None
 
 
 def water_words(water: Mapping[str, Any]) -> str:
@@ -50,7 +55,7 @@ def water_words(water: Mapping[str, Any]) -> str:
         )
     if water["temperature_c"] is not None:
         parts.append(f"{water['temperature_c']:g} °C")
-    return ", ".join(parts) if parts else f"water of {fixed(water['density_kg_m3'], 1)} kg/m³"
+    return ", ".join(parts) if known(water) else f"water of {fixed(water['density_kg_m3'], 1)} kg/m³"
 
 
 def waters(results: Results) -> Table | None:

@@ -9,7 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from meshlure.report.figures import SHALLOW, WATER
-from meshlure.report.layout import RIGHT, Layout
+from meshlure.report.layout import NARROW, RIGHT, Layout
 from meshlure.report.names import LINE, POINTS
 from meshlure.report.outlines import below, within
 from meshlure.report.pen import fill, path, strokes, white_ground
@@ -50,7 +50,7 @@ def draw_water(axes: Axes, paper: Layout) -> None:
     strokes(axes, [(tuple(left), tuple(right))], "white", 2.4, 4.55)
     strokes(axes, [(tuple(left), tuple(right))], WATER, 1.0, 4.6, dash="dashdot")
     foot = right - 5.0 * (right - left) / max(float(np.hypot(*(right - left))), 1e-9)
-    steep = abs(float(normal[1])) < STEEP or foot[0] < paper.width - RIGHT
+    steep = abs(float(normal[1])) < STEEP or foot[0] < paper.width - (NARROW if paper.view.name == "front" else RIGHT)
     if not steep:
         level_sign(axes, float(foot[0]), float(foot[1]) + 1.15)
     _words(axes, paper, None if steep else float(foot[1]), rest.words)
