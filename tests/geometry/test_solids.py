@@ -140,7 +140,7 @@ def test_faces_remember_their_source() -> None:
 
 def test_an_open_surface_is_refused() -> None:
     box = shapes.box((1, 1, 1))
-    with pytest.raises(SolidError, match="NotManifold"):
+    with pytest.raises(SolidError):
         Solid.of(Surface(box.vertices, box.faces[1:]))
 
 
