@@ -156,7 +156,7 @@ class _Blocks:
     def of(cls, corners: Floats, margin: float) -> _Blocks:
         low, high = corners.min(axis=0).T, corners.max(axis=0).T
         grown = max(margin, 0.0) / 2 + _ROUNDING * float(np.abs(corners).max())
-        order = _neighbour_order(low + high)
+        order = curve_order(low + high)
         padded = -(-len(order) // _BLOCK) * _BLOCK
         members = np.zeros(padded, dtype=np.intp)
         members[: len(order)] = order
@@ -166,14 +166,6 @@ class _Blocks:
         shape = (-1, _BLOCK, 3)
         lows, highs = lows.reshape(shape), highs.reshape(shape)
         return cls(members.reshape(-1, _BLOCK), lows, highs, lows.min(axis=1), highs.max(axis=1))
-
-
-def _neighbour_order(points: Floats) -> Ints:
-    """Order of points along a space-filling curve; a direction without extent does not count."""
-    spans = np.ptp(points, axis=0)
-    if not spans.any():
-        return np.arange(len(points))
-    return curve_order(np.where(spans > 0, points, points[:, [spans.argmax()]]))
 
 
 def _candidates(a: _Blocks, b: _Blocks) -> Iterator[Ints]:

@@ -49,6 +49,7 @@ def facet_deficit(surface: Surface, pairs: EdgePairs) -> float:
     third = np.where(skin.flat, 0.0, plain.areas / 3)
     trusted = _trusted(skin, pairs)
     vertices = np.ascontiguousarray(surface.vertices.T)
+    split = skin.normals.shape[1] > len(surface.vertices)
     total = 0.0
     for at in range(0, len(pairs.start), _CHUNK):
         piece = slice(at, at + _CHUNK)
@@ -56,17 +57,22 @@ def facet_deficit(surface: Surface, pairs: EdgePairs) -> float:
         ahead, back = pairs.forward[piece], pairs.backward[piece]
         shares = third[pairs.forward_face[piece]], third[pairs.backward_face[piece]]
         # Both sides of a smooth edge share their normals, so that only sharp edges are looked at from either side.
-        both = _heights(skin, vertices, ends, (skin.groups[ahead], skin.groups[next_corner(ahead)]), trusted)
-        total += float(both @ np.where(sharp, shares[0], shares[0] + shares[1]))
+        numbers = (skin.groups[ahead], skin.groups[next_corner(ahead)]) if split else ends
+        both = _heights(skin, vertices, ends, numbers, trusted)
+        total += float((both * np.where(sharp, shares[0], shares[0] + shares[1])).sum())
         if sharp.any():
             ends, back = (ends[0][sharp], ends[1][sharp]), back[sharp]
             other = _heights(skin, vertices, ends, (skin.groups[next_corner(back)], skin.groups[back]), trusted)
-            total += float(other @ shares[1][sharp])
+            total += float((other * shares[1][sharp]).sum())
     return total
 
 
 def _heights(
-    skin: SkinNormals, vertices: Floats, ends: tuple[Ints32, Ints32], numbers: tuple[Ints, Ints], trusted: Bools
+    skin: SkinNormals,
+    vertices: Floats,
+    ends: tuple[Ints32, Ints32],
+    numbers: tuple[Ints | Ints32, Ints | Ints32],
+    trusted: Bools,
 ) -> Floats:
     """Height, m, of the skin over the middle of each edge, whose ends have the normals of these numbers."""
     start, end = numbers
