@@ -7,7 +7,7 @@ from collections.abc import Iterator, Mapping
 from typing import TypedDict, Unpack
 
 from meshlure.errors import Fault, InputError
-from meshlure.files.nearness import did_you_mean
+from meshlure.files.nearness import did_you_mean, nearest
 from meshlure.findings import Point
 from meshlure.units import quantity
 
@@ -49,6 +49,7 @@ class Keys:
         self._table = table
         self._faults = faults
         self._known: list[str] = []
+        self._absent: dict[str, Fault] = {}
 
     def where(self, key: str) -> str:
         """Path of a key in messages."""
@@ -57,6 +58,11 @@ class Keys:
     def fault(self, key: str, what: str, found: str = "", allowed: str = "", next_step: str = "") -> None:
         """Put down one fault of a key, or of the table itself where the key is empty."""
         self._faults.append(Fault(what, self.where(key) if key else self.path, found, allowed, next_step))
+
+    def absent(self, fault: Fault, *keys: str) -> None:
+        """Put down that a key, or any one of several, is missing; `close` takes it back where one was mistyped."""
+        self._faults.append(fault)
+        self._absent |= dict.fromkeys(keys, fault)
 
     def take(self, error: InputError) -> None:
         """Put down the faults that another reader found in a value of this table."""
@@ -81,7 +87,8 @@ class Keys:
                 "", what, ", ".join(stated), f"one of {', '.join(keys)}", f"keep one and remove the {_rest(stated)}"
             )
         elif not stated and required:
-            self.fault("", "a key is missing", allowed=f"one of {', '.join(keys)}", next_step=f"add '{keys[0]} = ...'")
+            allowed, step = f"one of {', '.join(keys)}", f"add '{keys[0]} = ...'"
+            self.absent(Fault("a key is missing", self.path, allowed=allowed, next_step=step), *keys)
         return stated[0] if stated else None
 
     def text(self, key: str) -> str | None:
@@ -253,6 +260,10 @@ class Keys:
                 self.fault(
                     _safe(key), "no such key", allowed=", ".join(known), next_step=did_you_mean(key, known, "remove it")
                 )
+                # One slip is one fault: what was meant by it is not missing.
+                for meant in nearest(key, known, most=1):
+                    if self._absent.get(meant) in self._faults:
+                        self._faults.remove(self._absent[meant])
 
     def _quantity(self, value: object, where: str, kind: str, limits: Limits) -> float:
         try:
@@ -301,7 +312,7 @@ class Keys:
         self.fault(key, "the value is of the wrong kind", repr(self._table[key])[:60], allowed, "correct it")
 
     def _missing(self, key: str, such_as: str) -> None:
-        self.fault(key, "the key is missing", next_step=f"add it: {key} = {such_as}")
+        self.absent(Fault("the key is missing", self.where(key), next_step=f"add it: {key} = {such_as}"), key)
 
 
 def _rest(stated: list[str]) -> str:

@@ -24,6 +24,9 @@ _OPTIONS = {
     "water.salinity": "--salinity",
 }
 
+_NAMED = "named outside of the table"
+"""Stands where the table would name a mesh: a path on the command line may be longer and odder than a file's text."""
+
 
 def quick_bait(
     mesh: Path,
@@ -71,7 +74,8 @@ def quick_bait(
         # The stand-in lets the other options be checked; it goes nowhere, since a fault is already put down.
         density, material = None, "unstated"
     bait: dict[str, Any] = {"length_unit": unit, "nose": _direction(nose), "back": _direction(back)}
-    body = {"mesh": str(mesh)} | _stated(density=density, material=material)
+    body = {"mesh": _NAMED} | _stated(density=density, material=material)
+    files: list[Path] = []
     table: dict[str, Any] = {
         "format": FORMAT,
         "bait": bait | _stated(name=name),
@@ -88,7 +92,8 @@ def quick_bait(
                 Fault("an insert is a file and what it is", f"--insert {text}", text, allowed, "write belly.stl=lead")
             )
             continue
-        entry = {"name": Path(file).stem, "mesh": file, _key(what): what.casefold() if _key(what) == "void" else what}
+        files.append(Path(file))
+        entry = {"name": Path(file).stem, "mesh": _NAMED, _key(what): what.casefold() if _key(what) == "void" else what}
         table["insert"].append(entry)
         path = entry_path("insert", len(table["insert"]), entry["name"])
         options |= {f"{path}.{key}": f"--insert {text}" for key in entry}
@@ -99,7 +104,11 @@ def quick_bait(
         raise InputError(faults) from None
     if faults:
         raise InputError(faults)
-    return made
+    return replace(
+        made,
+        body=replace(made.body, mesh=mesh),
+        inserts=tuple(replace(insert, mesh=file) for insert, file in zip(made.inserts, files, strict=True)),
+    )
 
 
 def _stated(**values: str | None) -> dict[str, str]:

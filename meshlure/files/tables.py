@@ -48,7 +48,8 @@ class Tables:
         if keys is not None:
             return keys
         if len(self._faults) == before:
-            self._fault("the section is missing", name, "", f"[{name}]", f"add [{name}] with its keys")
+            step = f"add [{name}] with its keys"
+            self._keys.absent(Fault("the section is missing", name, allowed=f"[{name}]", next_step=step), name)
         # One fault is enough: the keys that are missing with their section are not told one by one.
         return Keys({}, name, [])
 

@@ -378,6 +378,32 @@ def test_a_section_that_is_missing_is_told_once(tmp_path: Path) -> None:
     ]
 
 
+SLIPS = [
+    ('density = "0.72 g/cm3"', 'densty = "0.72 g/cm3"', "body.densty: no such key.*did you mean 'density'"),
+    ('length_unit = "mm"', 'length-unit = "mm"', "bait.length-unit: no such key.*did you mean 'length_unit'"),
+    ("[body]", "[boddy]", "boddy: no such key.*did you mean 'body'"),
+    ("hangs = true", "hang = true", r"hardware\[1\] 'treble'.hang: no such key.*did you mean 'hangs'"),
+    ('mass = "1 g"', 'mas = "1 g"', r"hardware\[1\] 'treble'.mas: no such key.*did you mean 'mass'"),
+]
+
+
+@pytest.mark.parametrize(("old", "new", "told"), SLIPS)
+def test_a_mistyped_key_is_not_told_as_a_missing_one_too(tmp_path: Path, old: str, new: str, told: str) -> None:
+    text = LEAST + '[[hardware]]\nname = "treble"\nmass = "1 g"\nat = [1, 2, 3]\nhangs = true\n'
+    assert old in text
+    (fault,) = faults(tmp_path, text.replace(old, new))
+    assert re.match(told, fault), fault
+
+
+def test_a_mistyped_key_beside_the_right_one_takes_no_other_fault_away(tmp_path: Path) -> None:
+    text = LEAST.replace('density = "0.72 g/cm3"', 'colour = "red"\nmesk = "body.stl"')
+    assert [fault.split(" | ")[0] for fault in faults(tmp_path, text)] == [
+        "body: a key is missing",
+        "body.colour: no such key",
+        "body.mesk: no such key",
+    ]
+
+
 def test_a_section_written_as_a_key(tmp_path: Path) -> None:
     (fault,) = faults(tmp_path, "areas = [[1, 2, 2]]\n" + LEAST)
     assert re.match(r"areas: .*section of its own.*found: areas = \[\[1, 2, 2\]\].*write \[areas\]", fault)

@@ -81,3 +81,11 @@ def test_all_meshes_that_cannot_be_read_are_told(tmp_path: Path) -> None:
     assert [fault.what for fault in caught.value.faults] == ["the mesh is not there", "the mesh is empty"]
     read = read_meshes(quick_bait(tmp_path / "solid_but_binary.stl", **STATED, inserts=inserts[:1]))
     assert {name: mesh.triangles for name, mesh in read.items()} == {"body": 12, "concave": 20}
+
+
+def test_meshes_may_have_long_and_odd_paths() -> None:
+    deep = Path("/".join(["far"] * 80)) / "body\udcff.stl"
+    made = quick_bait(deep, **STATED, inserts=[f"{'a/' * 150}belly.stl=lead"])
+    assert made.body.mesh == deep
+    assert made.inserts[0].mesh == Path("a/" * 150) / "belly.stl"
+    assert [mesh.path for mesh in made.meshes()] == [deep, made.inserts[0].mesh]

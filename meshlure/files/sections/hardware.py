@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+from meshlure.errors import Fault
 from meshlure.files.keys import Keys
 from meshlure.files.sections.substance import Substance, read_substance
 from meshlure.findings import Point
@@ -46,7 +47,7 @@ def read_hardware(keys: Keys, metres: float) -> HardwareSection:
     """Read one [[hardware]], its place in units of ``metres``."""
     if not keys.stated("hangs"):
         step = "write hangs = true where it swings (at is its eye), hangs = false where it is fixed (at is its centre)"
-        keys.fault("hangs", "the key is missing", next_step=step)
+        keys.absent(Fault("the key is missing", keys.where("hangs"), next_step=step), "hangs")
     section = HardwareSection(
         keys.asked_text("name", "front treble"),
         keys.text("item"),
@@ -59,9 +60,8 @@ def read_hardware(keys: Keys, metres: float) -> HardwareSection:
         keys.quantity("drag_area", "area", positive=True, most=0.1),
     )
     if section.item is None and section.mass is None:
-        keys.fault(
-            "", "nothing says what this weighs", allowed="item, mass or both", next_step="add mass = '0.75 g', weighed"
-        )
+        what, step = "nothing says what this weighs", "add mass = '0.75 g', weighed"
+        keys.absent(Fault(what, keys.path, allowed="item, mass or both", next_step=step), "item", "mass")
     if section.wire is not None or section.wire_length is not None:
         keys.one_of("wire" if section.wire is not None else "wire_length", "drag_area", required=False)
     keys.close()
