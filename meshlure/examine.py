@@ -69,7 +69,8 @@ def study(bait: Bait) -> Study:
     with clock.phase("weight"):
         composition = compose(bait)
         skin = composition.skin
-        refuse(composition.findings, {})
+        pieces_read = zip((bait.body, *bait.pieces), bait.files, strict=True)
+        refuse(composition.findings, {piece.name: str(file.path) for piece, file in pieces_read})
         index = BlockIndex.build(skin.surface, skin.thickness)
     with clock.phase("posture"):
         vessel = Vessel(composition, index, bait.hardware, frame, bait.water.density)

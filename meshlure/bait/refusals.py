@@ -3,9 +3,25 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
+from typing import Final
 
+from meshlure import tolerances
 from meshlure.errors import Fault, InputError
 from meshlure.findings import Finding
+
+_CLOSED: Final = "a closed surface: two faces at every edge, both wound so that they look outwards"
+
+_ALLOWED: Final = {
+    "open-edges": _CLOSED,
+    "mixed-winding": _CLOSED,
+    "crowded-edges": _CLOSED,
+    "duplicate-faces": _CLOSED,
+    "flat-shells": _CLOSED,
+    "cavity-crossing": "cavities wholly inside the solid, and solids that look outwards",
+    "inserts-overlap": "inserts that share no space, or a later one that says replaces",
+    "touches-nothing": f"at most {tolerances.TOUCH_GAP * 1e3:g} mm from the body or from a piece that touches it",
+}
+"""By the finding's code: what would not have stopped the run."""
 
 
 def refuse(findings: Sequence[Finding], places: Mapping[str, str]) -> None:
@@ -28,5 +44,15 @@ def refuse(findings: Sequence[Finding], places: Mapping[str, str]) -> None:
 
 
 def _fault(finding: Finding, places: Mapping[str, str]) -> Fault:
-    where = places.get(finding.piece or "", finding.piece or "")
-    return Fault(what=finding.message, where=where, next_step=finding.advice)
+    piece = finding.piece or ""
+    return Fault(
+        what=finding.message,
+        where=places.get(piece, piece),
+        allowed=_ALLOWED.get(finding.code, ""),
+        next_step=_step(finding.advice),
+    )
+
+
+def _step(advice: str) -> str:
+    """Return advice as it stands behind "next:", like those of all other faults."""
+    return advice[:1].lower() + advice[1:].removesuffix(".")

@@ -75,4 +75,6 @@ class Study:
 
     def to_json(self) -> str:
         """Return results.json as text; raises ValueError if a number in it is not finite."""
-        return json.dumps(self.results, indent=1, allow_nan=False, ensure_ascii=False) + "\n"
+        text = json.dumps(self.results, indent=1, allow_nan=False, ensure_ascii=False) + "\n"
+        # A file's name may hold bytes that are no UTF-8; Python's stand-ins for them cannot be written as such.
+        return text.encode("utf-8", "backslashreplace").decode("utf-8")
