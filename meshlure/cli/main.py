@@ -3,36 +3,51 @@
 from __future__ import annotations
 
 import sys
-from typing import NoReturn
+import traceback
+from pathlib import Path
+from typing import Final, NoReturn
 
 import typer
 
 from meshlure.cli import report
-from meshlure.errors import InputError
+from meshlure.cli.terminal import answer, tell
+from meshlure.errors import Fault, InputError
 from meshlure.version import VERSION
 
-DONE, ANSWER_IS_NO, BAD_INPUT, OUR_FAULT, INTERRUPTED = 0, 1, 2, 3, 130
+DONE: Final = 0
+ANSWER_IS_NO: Final = 1
+BAD_INPUT: Final = 2
+OUR_FAULT: Final = 3
+INTERRUPTED: Final = 130
+"""As shells count a program that Ctrl-C ended."""
+
+HELP: Final = """Weighs, floats, measures and cuts hard fishing baits from their meshes.
+
+Start with: meshlure report --help
+"""
 
 app = typer.Typer(
     name="meshlure",
-    help="Weighs, floats, measures and cuts hard fishing baits from their meshes, before any resin is poured.",
+    help=HELP,
     add_completion=False,
     no_args_is_help=True,
     rich_markup_mode=None,
     pretty_exceptions_enable=False,
 )
-app.command("report", help=report.HELP)(report.report)
+app.command("report", help=report.HELP, short_help=report.SHORT)(report.report)
 
 
 def _version(asked: bool) -> None:
     if asked:
-        typer.echo(f"meshlure {VERSION}")
+        answer(f"meshlure {VERSION}")
         raise typer.Exit
 
 
 @app.callback()
 def _options(
-    version: bool = typer.Option(False, "--version", callback=_version, is_eager=True, help="Print the version and end."),
+    version: bool = typer.Option(
+        False, "--version", callback=_version, is_eager=True, help="Print the version and end."
+    ),
 ) -> None:
     pass
 
@@ -42,39 +57,52 @@ def main() -> NoReturn:
 
     Notes
     -----
-    Exit codes: 0 done, 1 done but the answer is no, 2 bad input or usage, 3 our own fault.
+    Exit codes: 0 done, 1 done but the answer is no, 2 bad input or usage, 3 our own fault, 130 stopped by Ctrl-C.
     """
     try:
+        _check_command(sys.argv[1:])
         app()
+    except SystemExit as ended:
+        if ended.code == INTERRUPTED:
+            tell("stopped; nothing half-written was left behind")
+        raise
     except InputError as error:
-        _say(error)
+        _refuse(error)
         sys.exit(BAD_INPUT)
-    except KeyboardInterrupt:
-        typer.echo("stopped; nothing was written", err=True)
-        sys.exit(INTERRUPTED)
-    except BrokenPipeError:
-        # Whoever read the output has gone; there is nobody left to tell.
-        sys.stderr.close()
-        sys.exit(DONE)
+    except MemoryError:
+        tell("meshlure cannot go on: this needs more memory than the computer gives. Export coarser meshes.")
+        sys.exit(BAD_INPUT)
     except Exception as error:
-        if "--debug" in sys.argv:
-            raise
-        typer.echo(
-            f"meshlure failed by a fault of its own ({type(error).__name__}: {_harmless(str(error))}). We are sorry.\n"
-            "Nothing was written. Run the same command with --debug added and send us what it prints, with the bait file.",
-            err=True,
-        )
+        _apologize(error)
         sys.exit(OUR_FAULT)
     sys.exit(DONE)
 
 
-def _say(error: InputError) -> None:
+def _check_command(words: list[str]) -> None:
+    """Refuse a file in the command's place with the words that would have worked."""
+    if words and Path(words[0]).suffix.casefold() in report.SUFFIXES:
+        raise InputError(
+            Fault(
+                what="a command comes first",
+                where="meshlure",
+                found=words[0],
+                allowed="report",
+                next_step=f"write meshlure report {words[0]} ...",
+            )
+        )
+
+
+def _refuse(error: InputError) -> None:
     count = len(error.faults)
-    typer.echo("meshlure cannot go on:" if count == 1 else f"meshlure cannot go on, for {count} reasons:", err=True)
+    tell("meshlure cannot go on:" if count == 1 else f"meshlure cannot go on, for {count} reasons:")
     for fault in error.faults:
-        typer.echo(f"- {_harmless(str(fault))}", err=True)
+        tell(f"- {fault}")
 
 
-def _harmless(text: str) -> str:
-    """Return text with control characters made visible, so that no name in a file can steer a terminal."""
-    return "".join(c if c == "\n" or c.isprintable() else c.encode("unicode_escape").decode() for c in text)
+def _apologize(error: Exception) -> None:
+    if "--debug" in sys.argv:
+        traceback.print_exception(error)
+    said = f"{type(error).__name__}: {error}" if str(error) else type(error).__name__
+    tell(f"meshlure failed by a fault of its own ({said}). We are sorry. Nothing half-written was left behind.")
+    if "--debug" not in sys.argv:
+        tell("Run the same command with --debug added and send us what it prints, with the bait file.")

@@ -37,7 +37,7 @@ def write(found: Study, out: Path, *, page: bool, variant: Bait | None) -> Study
             from meshlure.report.page import page as draw
 
             start = perf_counter()
-            (folder / PAGE).write_text(draw(found), encoding="utf-8")
+            (folder / PAGE).write_text(draw(found), encoding="utf-8", errors="backslashreplace")
             names.append(PAGE)
             results["timings_s"] = results["timings_s"] | {"page": perf_counter() - start}
         results["files"] = sorted(names)

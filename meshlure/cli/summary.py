@@ -1,0 +1,38 @@
+"""The summary that a run prints: what a maker asks first."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from pathlib import Path
+from typing import Any, Final
+
+OUNCE: Final = 28.349523125
+"""g. The avoirdupois ounce, exact since 1959."""
+
+
+def summary(results: Mapping[str, Any], out: Path | None) -> str:
+    """Return mass, verdict, postures, findings and files in a few lines.
+
+    Parameters
+    ----------
+    results : mapping
+        The tree of results.json.
+    out : Path or None
+        The folder that was written.
+    """
+    weight = results["weight"]
+    mass = weight["mass_g"]
+    place = f"centre of gravity {weight['from_nose_mm']:.1f} mm from the nose"
+    lines = [
+        str(results["name"]),
+        f"  mass     {mass:.2f} g ({mass / OUNCE:.3f} oz), {place}",
+        f"  verdict  {results['buoyancy']['verdict']}",
+    ]
+    lines += [f"  posture  {posture['words']}" for posture in results["postures"]]
+    counts = {level: sum(f["level"] == level for f in results["findings"]) for level in ("fault", "warning", "note")}
+    lines.append("  found    " + ", ".join(f"{n} {level}{'' if n == 1 else 's'}" for level, n in counts.items()))
+    lines += [f"           {f['level']}: {f['message']}" for f in results["findings"] if f["level"] != "note"]
+    if out is not None:
+        lines.append(f"  written  {', '.join(['results.json', *results['files']])} in {out}")
+    # A line a thing: a name that holds a line break would pass for another.
+    return "\n".join(" ".join(line.splitlines()) for line in lines)
