@@ -110,6 +110,9 @@ class Hull:
             low, high = (height, high) if missing > 0 else (low, height)
             area = best.cut.section.area
             step = missing / area if area > 0 else np.inf
+            if abs(step) <= 2 * np.spacing(abs(height)):
+                # Far from the origin of the coordinates a height has too few digits to come closer.
+                break
             wished = height + step
             height = wished if low < wished < high else (low + high) / 2
             if not low < height < high:

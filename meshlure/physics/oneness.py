@@ -8,7 +8,7 @@ import numpy as np
 
 from meshlure import tolerances
 from meshlure.geometry.surface import Floats
-from meshlure.physics.potential import Potential, State
+from meshlure.physics.potential import Potential, State, tangents
 
 _LIKE = 0.1 * tolerances.NEUTRAL_HEIGHT
 """m. Energies closer than this are alike along a neutral ring."""
@@ -38,39 +38,56 @@ def among(potential: Potential, state: State, others: Sequence[State], cosine: f
         Of the angle within which two directions are the same.
     """
     for number, other in enumerate(others):
-        if state.up @ other.up >= cosine or _one_ring(potential, state, other):
+        if state.up @ other.up >= cosine or _linked(potential, state, other):
             return number
     return None
 
 
-def _one_ring(potential: Potential, one: State, other: State) -> bool:
-    """Whether two neutral states lie on one ring of equal energy round some axis of the body.
+def _linked(potential: Potential, one: State, other: State) -> bool:
+    """Whether two neutral states are joined by a way on which the energy does not change."""
+    if abs(one.energy - other.energy) > _LIKE or free_direction(one) is None or free_direction(other) is None:
+        return False
+    if _free_all_round(one) and _free_all_round(other):
+        # As an even ball is; any way will do.
+        halfway = _unit(one.up + other.up, tangents(one.up)[:, 0])
+        return bool(abs(potential.at(halfway, one).energy - one.energy) <= _LIKE)
+    halfway_round = _halfway_round(one, other)
+    if halfway_round is None:
+        return False
+    between = potential.at(halfway_round, one)
+    heights, directions = between.modes()
+    if heights[1] <= 0:
+        return False
+    # The valley's floor, where the halfway point lies on its side.
+    slope = float(directions[:, 1] @ between.lever)
+    return bool(abs(between.energy - slope**2 / (2 * heights[1]) - one.energy) <= _LIKE)
 
-    Two rings may be mirror images, one nose up and one nose down, with equal energies and stiffnesses; so the ring
-    through both is looked at halfway between them.
+
+def _free_all_round(state: State) -> bool:
+    return bool(np.abs(state.modes()[0]).max() < tolerances.NEUTRAL_HEIGHT)
+
+
+def _halfway_round(one: State, other: State) -> Floats | None:
+    """Return the direction halfway between two on a ring round some axis of the body; None where no ring holds both.
+
+    Two rings may be mirror images, one nose up and one nose down, with equal energies and stiffnesses.
     """
     first, second = free_direction(one), free_direction(other)
-    if first is None or second is None or abs(one.energy - other.energy) > _LIKE:
-        return False
+    if first is None or second is None:
+        return None
     axis = np.cross(first, second)
     if np.linalg.norm(axis) < _PARALLEL:
         # On opposite sides of a ring the free directions are parallel; the axis is square to the way across too.
         axis = np.cross(first, one.up - other.up)
     axis = axis / np.linalg.norm(axis)
     if abs(axis @ (one.up - other.up)) > _LEVEL:
-        return False
-    flat = [up - (up @ axis) * axis for up in (one.up, other.up)]
-    half = flat[0] + flat[1]
-    if np.linalg.norm(half) < _PARALLEL * np.linalg.norm(flat[0]):
-        half = np.cross(axis, flat[0])
-    half = half * (np.linalg.norm(flat[0]) / np.linalg.norm(half))
-    middle = (one.up @ axis) * axis + half
-    between = potential.at(middle / np.linalg.norm(middle), one)
-    heights, directions = between.modes()
-    slope = directions.T @ between.lever
-    if heights[1] <= 0:
-        # Both states may be free all round, as a ball is.
-        return abs(between.energy - one.energy) <= _LIKE and bool(abs(heights).max() < tolerances.NEUTRAL_HEIGHT)
-    # The valley's floor, where the halfway point lies on its side.
-    floor = between.energy - slope[1] ** 2 / (2 * heights[1])
-    return bool(abs(floor - one.energy) <= _LIKE)
+        return None
+    flat, facing = (up - (up @ axis) * axis for up in (one.up, other.up))
+    half = _unit(flat + facing, np.cross(axis, flat)) * np.linalg.norm(flat)
+    return _unit((one.up @ axis) * axis + half, one.up)
+
+
+def _unit(vector: Floats, otherwise: Floats) -> Floats:
+    """Unit vector along a vector, or along another where the first has next to no length."""
+    length = float(np.linalg.norm(vector))
+    return vector / length if length > _PARALLEL else np.asarray(otherwise / np.linalg.norm(otherwise))
