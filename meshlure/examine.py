@@ -104,6 +104,7 @@ def study(bait: Bait) -> Study:
         "weight": pieces.weight(mass, frame, tip),
         "hardware": pieces.hardware(bait),
         "buoyancy": water.buoyancy(held, bait.water, hull.volume, hull.centre, mass.amount),
+        "smooth": water.smooth(composition.deficit, mass.amount, hull.volume, bait.water),
         "waters": water.waters(mass.amount, hull.volume, bait.plan.bait.suspends_within),
         "postures": posed.trees,
         "righting": posed.righting,
@@ -129,7 +130,8 @@ def _reserve(bait: Bait, composition: Composition, mass: Moments, displaced: flo
         volume = row.volume(ends[row.balls.chamber]).amount
         parts.append(Part(f"balls in {row.balls.chamber}", Role.BALL, row.balls.substance, volume, balls, balls.centre))
     density = bait.water.density
-    doubted = doubts(parts, (bait.body, *bait.pieces), bait.hardware, composition.skin.painted, density)
+    facets = composition.deficit.reserve(density)
+    doubted = doubts(parts, facets, bait.hardware, bait.coat, composition.skin.painted, density)
     return reserve(mass.amount, displaced, density, bait.plan.bait.suspends_within, doubted)
 
 

@@ -22,6 +22,10 @@ CENTRES_MEET: Final = 0.1e-3
 NOSE_VERTICAL: Final = 5.0
 """degrees. Closer to the vertical than this, a nose has no lean, and fore-aft no direction."""
 
+COARSE_SHARE: Final = 0.005
+"""Share of a body's volume that its facets may leave out before a finer export is asked for: half a percent of a
+floating bait's displacement is as much as a careful maker's weighing is off."""
+
 COARSE_ANGLE: Final = 20.0
 """degrees per mm of the centre of gravity. Beyond it an angle is printed in steps of 5 degrees."""
 

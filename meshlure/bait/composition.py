@@ -10,11 +10,15 @@ import numpy as np
 
 from meshlure import tolerances
 from meshlure.bait.chambers import BallRow, ball_row
-from meshlure.bait.outside import outside_findings, untouched
-from meshlure.bait.overlaps import Filling, Space, fill
+from meshlure.bait.contact import untouched
+from meshlure.bait.meshpiece import solid_of
+from meshlure.bait.outside import outside_findings
+from meshlure.bait.overlaps import Filling, fill
 from meshlure.bait.pieces import Bait, MeshPiece, Role, Substance
 from meshlure.bait.relations import Relation, relation
-from meshlure.findings import Finding
+from meshlure.bait.smooth import Deficit, coarse, deficit
+from meshlure.errors import Fault, InputError
+from meshlure.findings import Finding, Level
 from meshlure.geometry.moments import NOTHING, Moments, point_moments, skin_moments, solid_moments
 from meshlure.geometry.solids import Solid, SolidError, new_tag
 from meshlure.geometry.surface import Bools, Floats, Surface
@@ -87,12 +91,15 @@ class Composition:
         All but the balls, which may lie at either end.
     rows : tuple of BallRow
     skin : Skin
+    deficit : Deficit
+        What the facets leave out.
     findings : tuple of Finding
     """
 
     parts: tuple[Part, ...]
     rows: tuple[BallRow, ...]
     skin: Skin
+    deficit: Deficit
     findings: tuple[Finding, ...]
 
     @cached_property
@@ -128,29 +135,33 @@ def compose(bait: Bait) -> Composition:
     body, pieces = bait.body, bait.pieces
     filling = fill(body, pieces)
     findings = list(filling.findings)
-    relations = {piece.name: relation(piece.surface, body.surface) for piece in pieces}
+    relations = {piece.name: [relation(shell, body.shells) for shell in piece.shells] for piece in pieces}
     findings += untouched(body, pieces, relations)
     if any(finding.stops for finding in findings):
-        return Composition((), (), _plain_skin(body), tuple(findings))
-    inner = all(r is Relation.INSIDE for r in relations.values())
+        return Composition((), (), _plain_skin(body), Deficit(0.0, 0.0), tuple(findings))
+    inner = all(lies is Relation.INSIDE for shells in relations.values() for lies in shells)
+    left: Solid | None = None
     if inner:
         outer = _Outer(body.surface, body.pairs, np.ones(len(body.surface.faces), dtype=np.bool_), body.surface, {})
         material = _body_alone(body, filling)
     else:
-        outer, material, met = _crossed(body, pieces, filling)
+        outer, left, met = _crossed(body, pieces, filling)
+        material = _moments(left)
         findings += met
+    if material.amount <= tolerances.VOLUME_SHARE * solid_moments(body.surface).amount:
+        findings.append(_nothing_left(body))
     skin = _skin(bait, outer, filling, inner)
-    parts = [Part(body.name, Role.BODY, body.substance, material.amount, _weighed(material, body.substance), material.centre)]
-    parts += _filling_parts(pieces, filling)
+    short = deficit(body, pieces, filling, skin.surface, left)
+    findings += coarse(body, bait.water.density)
+    parts = [_part(body, material), *_filling_parts(pieces, filling)]
     parts += [
         Part(h.name, Role.HARDWARE, h.substance, h.volume, point_moments(h.mass, h.at), h.at) for h in bait.hardware
     ]
     if bait.coat is not None:
-        coat = skin_moments(skin.surface, skin.thickness)
-        parts.append(Part("coat", Role.COAT, bait.coat.substance, coat.amount, _weighed(coat, bait.coat.substance), coat.centre))
-    chambers = {piece.name: piece for piece in pieces}
-    rows = tuple(ball_row(balls, chambers[balls.chamber], bait.frame) for balls in bait.balls)
-    return Composition(tuple(parts), rows, skin, tuple(findings))
+        volume, substance = skin_moments(skin.surface, skin.thickness), bait.coat.substance
+        parts.append(Part("coat", Role.COAT, substance, volume.amount, _weighed(volume, substance), volume.centre))
+    rows, tight = _rows(bait, filling)
+    return Composition(tuple(parts), rows, skin, short, tuple(findings + tight))
 
 
 def inserts_left(bait: Bait) -> dict[str, Solid]:
@@ -167,6 +178,33 @@ class _Outer:
     lips: dict[str, Surface]
 
 
+def _nothing_left(body: MeshPiece) -> Finding:
+    return Finding(
+        code="nothing-left",
+        level=Level.FAULT,
+        piece=body.name,
+        message="nothing is left of the body: its inserts and hollows take all its space",
+        advice="check which mesh is the body, and that every mesh is exported from the same origin in the same unit",
+        stops=True,
+    )
+
+
+def _rows(bait: Bait, filling: Filling) -> tuple[tuple[BallRow, ...], list[Finding]]:
+    """The balls in their chambers; every row that does not fit is told."""
+    drawn = {piece.name: piece for piece in bait.pieces}
+    hollow = {space.name: space for space in filling.spaces if space.owner is None}
+    rows: list[BallRow] = []
+    faults: list[Fault] = []
+    for balls in bait.balls:
+        try:
+            rows.append(ball_row(balls, drawn[balls.chamber].surface, hollow[balls.chamber], bait.frame))
+        except InputError as error:
+            faults += error.faults
+    if faults:
+        raise InputError(faults)
+    return tuple(rows), [finding for row in rows for finding in row.findings]
+
+
 def _weighed(volume: Moments, substance: Substance | None) -> Moments:
     return volume * (substance.density if substance is not None else 0.0)
 
@@ -180,16 +218,17 @@ def _body_alone(body: MeshPiece, filling: Filling) -> Moments:
     return whole if taken is None else whole - _moments(taken)
 
 
-def _crossed(body: MeshPiece, pieces: tuple[MeshPiece, ...], filling: Filling) -> tuple[_Outer, Moments, list[Finding]]:
+def _crossed(body: MeshPiece, pieces: tuple[MeshPiece, ...], filling: Filling) -> tuple[_Outer, Solid, list[Finding]]:
     """The outer skin and the body's own material where some piece crosses the body's skin."""
     tag = new_tag()
-    whole = Solid.of(body.surface, tag)
+    whole = solid_of(body.surface, body.name, tag)
     taken = filling.everything()
     assert taken is not None
     material = whole.less(taken)
     common = whole.met(taken)
-    if abs(material.volume + common.volume - whole.volume) > _BOOKS * whole.volume:
-        raise SolidError(f"cutting '{body.name}' lost {abs(material.volume + common.volume - whole.volume) * 1e9:.3g} mm3")
+    lost = abs(material.volume + common.volume - whole.volume)
+    if lost > _BOOKS * whole.volume:
+        raise SolidError(f"cutting '{body.name}' lost {lost * 1e9:.3g} mm3")
     joined = material.joined(*filling.solids.values())
     outer = joined.filled()
     lips = {piece.name for piece in pieces if piece.lip}
@@ -198,7 +237,7 @@ def _crossed(body: MeshPiece, pieces: tuple[MeshPiece, ...], filling: Filling) -
         spaces = [space.solid for space in filling.spaces]
         others = [solid for name, solid in filling.solids.items() if name not in lips]
         bare = (whole.less(*spaces) if spaces else whole).joined(*others).filled()
-    findings = outside_findings(body, pieces, filling, whole, outer, joined)
+    findings = outside_findings(body, pieces, filling, whole, outer)
     surface = outer.surface()
     beyond = {name: filling.solids[name].less(whole) for name in lips}
     skin = _Outer(
@@ -208,7 +247,7 @@ def _crossed(body: MeshPiece, pieces: tuple[MeshPiece, ...], filling: Filling) -
         bare.surface() if lips else surface,
         {name: solid.surface() for name, solid in beyond.items() if not solid.empty},
     )
-    return skin, _moments(material), findings
+    return skin, material, findings
 
 
 def _skin(bait: Bait, outer: _Outer, filling: Filling, inner: bool) -> Skin:
@@ -223,30 +262,30 @@ def _skin(bait: Bait, outer: _Outer, filling: Filling, inner: bool) -> Skin:
         surface = _together(surface, walls)
         thickness = np.concatenate([thickness, np.zeros(len(walls.faces))])
     area = np.linalg.norm(outer.surface.double_areas, axis=1) / 2
-    return Skin(surface, thickness, outer.surface, outer.pairs, outer.bare, outer.lips, float(area[outer.own].sum()))
+    painted = float(area[outer.own].sum())
+    return Skin(surface, thickness, outer.surface, outer.pairs, outer.bare, outer.lips, painted)
 
 
 def _plain_skin(body: MeshPiece) -> Skin:
-    return Skin(body.surface, np.zeros(len(body.surface.faces)), body.surface, body.pairs, body.surface, {}, body.surface.area)
+    surface = body.surface
+    return Skin(surface, np.zeros(len(surface.faces)), surface, body.pairs, surface, {}, surface.area)
 
 
 def _together(first: Surface, second: Surface) -> Surface:
-    return Surface(
-        np.concatenate([first.vertices, second.vertices]), np.concatenate([first.faces, second.faces + len(first.vertices)])
+    faces = np.concatenate([first.faces, second.faces + len(first.vertices)])
+    return Surface(np.concatenate([first.vertices, second.vertices]), faces)
+
+
+def _part(piece: MeshPiece, volume: Moments) -> Part:
+    return Part(
+        piece.name, piece.role, piece.substance, volume.amount, _weighed(volume, piece.substance), volume.centre
     )
 
 
 def _filling_parts(pieces: tuple[MeshPiece, ...], filling: Filling) -> list[Part]:
-    by_name: dict[str, Space] = {space.name: space for space in filling.spaces}
-    parts = []
-    for piece in pieces:
-        if piece.role is Role.INSERT:
-            moments = _moments(filling.solids[piece.name])
-            parts.append(Part(piece.name, piece.role, piece.substance, moments.amount, _weighed(moments, piece.substance),
-                              moments.centre))
-        else:
-            moments = _moments(by_name[piece.name].solid)
-            parts.append(Part(piece.name, piece.role, None, moments.amount, NOTHING, moments.centre))
+    """Inserts and voids in the bait file's order, then the cavities that meshes close off themselves."""
+    left = filling.solids | {space.name: space.solid for space in filling.spaces if space.owner is None}
+    parts = [_part(piece, _moments(left[piece.name])) for piece in pieces]
     for space in filling.spaces:
         if space.owner is not None:
             moments = _moments(space.solid)

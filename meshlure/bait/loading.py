@@ -145,18 +145,20 @@ def _pieces(plan: BaitFile, files: Mapping[str, MeshFile], made: _Lookup) -> tup
     findings = [finding for sound in sounds.values() for finding in sound.findings]
     refuse(findings, {name: str(file.path) for name, file in files.items()})
     body_name, *_ = files
-    outer = shape(sounds[body_name])
+    outer = shape(sounds[body_name], body_name)
     pieces = [MeshPiece(
-        name=body_name, role=Role.BODY, surface=outer.outer, pairs=outer.pairs, cavities=outer.cavities,
-        cavities_flooded=plan.body.cavities == "flooded", substance=made.body, deficit=outer.deficit,
+        name=body_name, role=Role.BODY, surface=outer.outer, pairs=outer.pairs, shells=outer.shells,
+        cavities=outer.cavities, cavities_flooded=plan.body.cavities == "flooded", substance=made.body,
+        deficit=outer.deficit, skin_deficit=outer.skin_deficit,
     )]
     for insert, of in zip(plan.inserts, made.inserts, strict=True):
-        own = shape(sounds[insert.name])
+        own = shape(sounds[insert.name], insert.name)
         pieces.append(MeshPiece(
             name=insert.name,
             role=Role.INSERT if insert.void is None else Role.VOID,
             surface=own.outer,
             pairs=own.pairs,
+            shells=own.shells,
             cavities=own.cavities,
             cavities_flooded=insert.cavities == "flooded",
             substance=of,
@@ -165,6 +167,7 @@ def _pieces(plan: BaitFile, files: Mapping[str, MeshFile], made: _Lookup) -> tup
             lip=insert.lip,
             fit=insert.fit,
             deficit=own.deficit,
+            skin_deficit=own.skin_deficit,
         ))
     return pieces, findings
 

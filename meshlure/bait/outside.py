@@ -1,64 +1,31 @@
-"""What of a bait lies outside its body: pieces that stick out, hollows that are not closed, pieces that touch nothing."""
+"""What of a bait lies outside its body: pieces that stick out, and hollows that are not closed."""
 
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
+from itertools import product
 
 import numpy as np
 
 from meshlure import tolerances
-from meshlure.bait.overlaps import Filling, cubic, millimetres, place
+from meshlure.bait.overlaps import Filling
 from meshlure.bait.pieces import MeshPiece, Role
-from meshlure.bait.relations import Relation
+from meshlure.bait.wording import middle, place_text, volume_text
 from meshlure.findings import Finding, Level
 from meshlure.geometry.clearance import nearest
-from meshlure.geometry.crossing import crossings
+from meshlure.geometry.phrasing import MOST_PLACES, counted
 from meshlure.geometry.solids import Solid
+from meshlure.geometry.surface import Floats
 
-_DEPTH_POINTS = 400
-"""Vertices of an outside part of which the distance to the body is taken; enough to name how far it sticks out."""
+_WAYS = np.array([way for way in product((-1.0, 0.0, 1.0), repeat=3) if any(way)])
+"""Directions in which the farthest vertices of an outside part are asked how far they stand off the body."""
 
-
-def untouched(body: MeshPiece, pieces: Sequence[MeshPiece], relations: Mapping[str, Relation]) -> list[Finding]:
-    """Return a stopping fault for every piece that is neither in the body nor within reach of it or of one that is."""
-    held = [body] + [piece for piece in pieces if relations[piece.name] is not Relation.APART]
-    loose = [piece for piece in pieces if relations[piece.name] is Relation.APART]
-    while True:
-        near = [piece for piece in loose if any(_near(other, piece) for other in held)]
-        if not near:
-            break
-        held += near
-        loose = [piece for piece in loose if piece not in near]
-    findings = []
-    for piece in loose:
-        middle = piece.surface.bounds.mean(axis=0)
-        apart = float(nearest(body.surface, _sample(piece.surface.vertices)).distance.min())
-        findings.append(Finding(
-            code="touches-nothing",
-            level=Level.FAULT,
-            piece=piece.name,
-            message=f"'{piece.name}' touches nothing: it lies {apart * 1e3:.1f} mm from the body, round {millimetres(middle)} mm",
-            where=((float(middle[0]), float(middle[1]), float(middle[2])),),
-            advice="export it from the same CAD origin and in the same unit as the body, or leave it out",
-            stops=True,
-        ))
-    return findings
-
-
-def _near(other: MeshPiece, piece: MeshPiece) -> bool:
-    gap = tolerances.TOUCH_GAP + max(piece.fit, other.fit)
-    low, high = other.surface.bounds
-    if (piece.surface.bounds[0] > high + gap).any() or (piece.surface.bounds[1] < low - gap).any():
-        return False
-    return len(crossings(other.surface, piece.surface, gap)) > 0
-
-
-def _sample(vertices: np.ndarray) -> np.ndarray:
-    return vertices[:: max(1, len(vertices) // _DEPTH_POINTS)]
+_NAMED = 4
+"""Outside parts named one by one in a message."""
 
 
 def outside_findings(
-    body: MeshPiece, pieces: Sequence[MeshPiece], filling: Filling, whole: Solid, outer: Solid, joined: Solid
+    body: MeshPiece, pieces: Sequence[MeshPiece], filling: Filling, whole: Solid, outer: Solid
 ) -> list[Finding]:
     """Return what is to be said of pieces that cross the body's skin.
 
@@ -69,57 +36,99 @@ def outside_findings(
     filling : Filling
     whole : Solid
         The body without regard to hollows and inserts.
-    outer, joined : Solid
-        Body and pieces together, with and without their closed-off spaces filled.
+    outer : Solid
+        Body and pieces together, their closed-off spaces filled.
     """
+    out = {piece.name: filling.solids[piece.name].less(whole) for piece in pieces if piece.role is Role.INSERT}
+    out = {name: beyond for name, beyond in out.items() if beyond.volume > _rounding(filling.solids[name])}
+    parts = {name: _parts(beyond) for name, beyond in out.items()}
+    reach = _reach(body, parts)
     findings = []
     for piece in pieces:
-        if piece.role is Role.INSERT:
-            findings += _sticking_out(body, piece, filling.solids[piece.name], whole)
-    for space in filling.spaces:
-        drawn = space.solid
-        if space.flooded or drawn.empty:
+        if piece.name not in out:
             continue
-        leak = drawn.less(outer)
-        if leak.volume > tolerances.VOLUME_SHARE * drawn.volume:
-            where = place(leak)
-            findings.append(Finding(
-                code="sealed-void-open",
-                level=Level.FAULT,
-                piece=space.name,
-                message=f"'{space.name}' is called sealed, but reaches the outside: {cubic(leak.volume)} of it, "
-                f"round {millimetres(where)} mm, is not closed off and is counted as water",
-                where=(where,),
-                advice="leave a wall between it and the skin, close it with a plug as an insert, or call it flooded",
-            ))
+        beyond, drawn = out[piece.name], filling.solids[piece.name]
+        if drawn.volume - beyond.volume <= _rounding(drawn):
+            findings.append(_sits_outside(piece, beyond))
+        else:
+            findings.append(_sticks_out(piece, beyond.volume, parts[piece.name], reach[piece.name]))
+    for space in filling.spaces:
+        if space.flooded or space.solid.empty:
+            continue
+        leak = space.solid.less(outer)
+        if leak.volume > _rounding(space.solid):
+            findings.append(_leaks(space.name, leak))
     return findings
 
 
-def _sticking_out(body: MeshPiece, piece: MeshPiece, solid: Solid, whole: Solid) -> list[Finding]:
-    out = solid.less(whole)
-    if out.volume <= tolerances.VOLUME_SHARE * solid.volume:
-        return []
-    where = place(out)
-    reach = nearest(body.surface, _sample(out.surface().vertices))
-    far = int(reach.distance.argmax())
-    inside = solid.volume - out.volume
-    share = f"{cubic(out.volume)} of '{piece.name}'"
-    if inside <= tolerances.VOLUME_SHARE * solid.volume:
-        return [Finding(
-            code="sits-outside",
-            level=Level.NOTE if piece.lip else Level.WARNING,
-            piece=piece.name,
-            message=f"all {cubic(solid.volume)} of '{piece.name}' lie outside the body's material, in a pocket drawn into it or "
-            f"on its skin, round {millimetres(where)} mm; what is not closed off displaces water",
-            where=(where,),
-            advice="right for an insert in an open pocket or a glued-on part; else check its place",
-        )]
-    return [Finding(
+def _rounding(solid: Solid) -> float:
+    return tolerances.VOLUME_SHARE * solid.volume
+
+
+def _parts(solid: Solid) -> list[Solid]:
+    """Parts that hang together, the largest first, rounding left out."""
+    parts = [part for part in solid.parts() if part.volume > _rounding(solid)]
+    return sorted(parts, key=lambda part: -part.volume)
+
+
+def _reach(body: MeshPiece, out: Mapping[str, Sequence[Solid]]) -> dict[str, float]:
+    """How far each piece's outside parts stand off the body's skin, m; all asked at once."""
+    points = {name: np.concatenate([_tips(part) for part in parts]) for name, parts in out.items()}
+    if not points:
+        return {}
+    apart = nearest(body.surface, np.concatenate(list(points.values()))).distance
+    ends = np.cumsum([len(p) for p in points.values()])
+    return {name: float(apart[end - len(points[name]) : end].max()) for name, end in zip(points, ends, strict=True)}
+
+
+def _tips(part: Solid) -> Floats:
+    vertices = part.surface().vertices
+    return np.asarray(vertices[(vertices @ _WAYS.T).argmax(axis=0)])
+
+
+def _sits_outside(piece: MeshPiece, beyond: Solid) -> Finding:
+    where = middle(beyond)
+    return Finding(
+        code="sits-outside",
+        level=Level.NOTE if piece.lip else Level.WARNING,
+        piece=piece.name,
+        message=f"all {volume_text(beyond.volume)} of '{piece.name}' lie outside the body's material, in an open "
+        f"pocket drawn into it or on its skin, round {place_text(where)}; what is not closed off displaces water",
+        where=(where,),
+        advice="right for an insert in an open pocket or a glued-on part; else check its place",
+    )
+
+
+def _sticks_out(piece: MeshPiece, volume: float, parts: Sequence[Solid], reach: float) -> Finding:
+    places = [middle(part) for part in parts]
+    head = f"{volume_text(volume)} of '{piece.name}' stick out of the body"
+    far = f"by up to {reach * 1e3:.1f} mm"
+    if len(parts) == 1:
+        text = f"{head}, {far}, round {place_text(places[0])}"
+    else:
+        both = zip(parts, places, strict=True)
+        named = [f"{volume_text(part.volume)} round {place_text(place)}" for part, place in both]
+        more = [f"{len(parts) - _NAMED} more"] if len(parts) > _NAMED else []
+        text = f"{head} at {counted(len(parts), 'place')}, {far}: {'; '.join([*named[:_NAMED], *more])}"
+    return Finding(
         code="sticks-out",
         level=Level.NOTE if piece.lip else Level.WARNING,
         piece=piece.name,
-        message=f"{share} stick out of the body, by up to {reach.distance[far] * 1e3:.1f} mm, round {millimetres(where)} mm; "
-        "it displaces water there",
-        where=(where,),
+        message=f"{text}; it displaces water there",
+        count=len(parts),
+        where=tuple(places[:MOST_PLACES]),
         advice="right for a lip, an eye or an exposed weight; else move it inward",
-    )]
+    )
+
+
+def _leaks(name: str, leak: Solid) -> Finding:
+    where = middle(leak)
+    return Finding(
+        code="sealed-void-open",
+        level=Level.FAULT,
+        piece=name,
+        message=f"'{name}' is called sealed, but reaches the outside: {volume_text(leak.volume)} of it, "
+        f"round {place_text(where)}, is not closed off and is counted as water",
+        where=(where,),
+        advice="leave a wall between it and the skin, close it with a plug as an insert, or call it flooded",
+    )

@@ -1,4 +1,4 @@
-"""Inserts and voids among themselves: what is left to each once later pieces have taken their space."""
+"""Inserts and hollows among themselves: what is left to each once later pieces have taken their space."""
 
 from __future__ import annotations
 
@@ -8,34 +8,12 @@ from dataclasses import dataclass
 import numpy as np
 
 from meshlure import tolerances
+from meshlure.bait.hollows import Space, cavities, hollow_findings, left_hollow
+from meshlure.bait.meshpiece import solid_of
 from meshlure.bait.pieces import MeshPiece, Role
+from meshlure.bait.wording import middle, place_text, volume_text
 from meshlure.findings import Finding, Level
-from meshlure.geometry.moments import solid_moments
 from meshlure.geometry.solids import Solid
-from meshlure.geometry.surface import Floats
-
-
-@dataclass(frozen=True, eq=False)
-class Space:
-    """A hollow in the bait: a void piece, or a cavity that a mesh closes off itself.
-
-    Attributes
-    ----------
-    name : str
-    owner : str or None
-        Name of the piece whose cavity it is; None for a void piece.
-    solid : Solid
-        What of it is left hollow.
-    flooded : bool
-    drawn : float, m3
-        Its volume as drawn.
-    """
-
-    name: str
-    owner: str | None
-    solid: Solid
-    flooded: bool
-    drawn: float
 
 
 @dataclass(frozen=True, eq=False)
@@ -46,12 +24,15 @@ class Filling:
     ----------
     solids : dict of Solid
         By insert name: the space that is left to it.
+    taken : frozenset of str
+        Names of inserts that have lost space to others.
     spaces : tuple of Space
         Voids and cavities, less all that is solid in them.
     findings : tuple of Finding
     """
 
     solids: dict[str, Solid]
+    taken: frozenset[str]
     spaces: tuple[Space, ...]
     findings: tuple[Finding, ...]
 
@@ -66,22 +47,6 @@ class Filling:
         return wet[0].joined(*wet[1:]) if wet else None
 
 
-def place(solid: Solid) -> tuple[float, float, float]:
-    """Return the centroid of a solid, m."""
-    x, y, z = (float(value) for value in solid_moments(solid.surface()).centre)
-    return (x, y, z)
-
-
-def millimetres(point: Sequence[float] | Floats) -> str:
-    """Return a mesh point in mm as text for a message."""
-    return ", ".join(f"{value * 1e3:.1f}" for value in point)
-
-
-def cubic(volume: float) -> str:
-    """Return a volume as text for a message: cm3, or mm3 where it is small."""
-    return f"{volume * 1e6:.2f} cm3" if volume >= 1e-7 else f"{volume * 1e9:.3g} mm3"
-
-
 def fill(body: MeshPiece, pieces: Sequence[MeshPiece]) -> Filling:
     """Return what is left to each insert and hollow of a bait.
 
@@ -94,76 +59,90 @@ def fill(body: MeshPiece, pieces: Sequence[MeshPiece]) -> Filling:
 
     Notes
     -----
-    Two solid inserts may share space only where the later one says so. A solid in a hollow is solid whatever the
-    order; of two hollows the later one takes the shared space, and a flooded one floods a sealed one it opens into.
+    Two solid inserts may share space only where the later one says so. A solid in a hollow is solid whatever the order,
+    but a void that says so, or lies wholly inside an earlier insert, is hollowed out of it. Of two hollows the later
+    one takes the shared space, and a flooded one floods a sealed one that it opens into.
     """
     findings: list[Finding] = []
-    drawn = {piece.name: _solid(piece) for piece in pieces}
-    inserts = [piece for piece in pieces if piece.role is Role.INSERT]
-    left = {piece.name: drawn[piece.name] for piece in inserts}
-    for number, later in enumerate(inserts):
-        for earlier in inserts[:number]:
-            shared = _shared(earlier, later, drawn)
+    drawn = {piece.name: _drawn(piece) for piece in pieces}
+    left: dict[str, Solid] = {}
+    taken: set[str] = set()
+    before: list[MeshPiece] = []
+    for later in pieces:
+        own = drawn[later.name]
+        for earlier in before:
+            shared = _shared(earlier, later, left[earlier.name], own)
             if shared is None:
                 continue
-            if earlier.name in later.replaces:
-                left[earlier.name] = left[earlier.name].less(drawn[later.name])
-            else:
+            inside = later.role is Role.VOID and _is_all_of(shared, own)
+            if earlier.name in later.replaces or inside:
+                left[earlier.name] = left[earlier.name].less(own)
+                taken.add(earlier.name)
+                findings += _replaced(earlier, later, left[earlier.name], shared)
+            elif later.role is Role.INSERT:
                 findings.append(_unsaid(earlier, later, shared))
-    hollows = [
-        Space(f"{owner.name} cavity{'' if len(owner.cavities) == 1 else f' {number + 1}'}", owner.name, Solid.of(cavity),
-              owner.cavities_flooded, 0.0)
-        for owner in (body, *pieces) for number, cavity in enumerate(owner.cavities)
-    ]
-    hollows += [Space(p.name, None, drawn[p.name], p.flooded, 0.0) for p in pieces if p.role is Role.VOID]
-    spaces = []
-    for number, space in enumerate(hollows):
-        later_spaces = [other.solid for other in hollows[number + 1 :]]
-        solid = space.solid.less(*left.values(), *later_spaces)
-        spaces.append(Space(space.name, space.owner, solid, space.flooded, space.solid.volume))
-        findings += [_opens(space, other) for other in hollows if space.flooded and not other.flooded and _open(space, other)]
-    return Filling(left, tuple(spaces), tuple(findings))
+        if later.role is Role.INSERT:
+            left[later.name] = own
+            before.append(later)
+    hollows = [*cavities((body, *pieces))]
+    voids = [piece for piece in pieces if piece.role is Role.VOID]
+    hollows += [Space(void.name, None, drawn[void.name], void.flooded, drawn[void.name].volume) for void in voids]
+    spaces, floods = left_hollow(hollows, tuple(left.values()))
+    findings += [*floods, *hollow_findings(hollows, spaces, left)]
+    return Filling(left, frozenset(taken), spaces, tuple(findings))
 
 
-def _solid(piece: MeshPiece) -> Solid:
-    solid = Solid.of(piece.surface)
-    return solid.less(*(Solid.of(cavity) for cavity in piece.cavities)) if piece.cavities else solid
+def _drawn(piece: MeshPiece) -> Solid:
+    solid = solid_of(piece.surface, piece.name)
+    return solid.less(*(solid_of(cavity, piece.name) for cavity in piece.cavities)) if piece.cavities else solid
 
 
-def _shared(earlier: MeshPiece, later: MeshPiece, drawn: dict[str, Solid]) -> Solid | None:
+def _is_all_of(shared: Solid, own: Solid) -> bool:
+    return abs(own.volume - shared.volume) <= tolerances.VOLUME_SHARE * own.volume
+
+
+def _shared(earlier: MeshPiece, later: MeshPiece, left: Solid, own: Solid) -> Solid | None:
     a, b = earlier.surface.bounds, later.surface.bounds
     if (np.maximum(a[0], b[0]) > np.minimum(a[1], b[1])).any():
         return None
-    shared = drawn[earlier.name].met(drawn[later.name])
-    least = min(drawn[earlier.name].volume, drawn[later.name].volume)
-    return shared if shared.volume > tolerances.VOLUME_SHARE * least else None
+    shared = left.met(own)
+    return shared if shared.volume > tolerances.VOLUME_SHARE * min(left.volume, own.volume) else None
+
+
+def _replaced(earlier: MeshPiece, later: MeshPiece, left: Solid, shared: Solid) -> list[Finding]:
+    where = middle(shared)
+    if left.volume <= tolerances.VOLUME_SHARE * shared.volume:
+        return [Finding(
+            code="nothing-left",
+            level=Level.WARNING,
+            piece=earlier.name,
+            message=f"nothing is left of '{earlier.name}': '{later.name}' takes all its space",
+            where=(where,),
+            advice="leave it out, or let the larger one come first and the smaller one replace it",
+        )]
+    if earlier.name in later.replaces:
+        return []
+    return [Finding(
+        code="hollowed-out",
+        level=Level.NOTE,
+        piece=earlier.name,
+        message=f"'{later.name}' lies wholly inside '{earlier.name}', {volume_text(shared.volume)} round "
+        f"{place_text(where)}, and is hollowed out of it",
+        where=(where,),
+        advice=f"say replaces = [\"{earlier.name}\"] beside '{later.name}' if it is meant, else move it",
+    )]
 
 
 def _unsaid(earlier: MeshPiece, later: MeshPiece, shared: Solid) -> Finding:
-    where = place(shared)
+    where = middle(shared)
     return Finding(
         code="inserts-overlap",
         level=Level.FAULT,
         piece=later.name,
-        message=f"'{later.name}' and '{earlier.name}' share {cubic(shared.volume)} at {millimetres(where)} mm, "
+        message=f"'{later.name}' and '{earlier.name}' share {volume_text(shared.volume)} at {place_text(where)}, "
         "so it is undefined which of them weighs there",
         where=(where,),
-        advice=f"move them apart in CAD, or say replaces = [\"{earlier.name}\"] beside '{later.name}' if it takes that space",
+        advice=f"move them apart in CAD, or say replaces = [\"{earlier.name}\"] beside '{later.name}' if it takes that "
+        "space",
         stops=True,
-    )
-
-
-def _open(flooded: Space, sealed: Space) -> bool:
-    return flooded.solid.met(sealed.solid).volume > tolerances.VOLUME_SHARE * min(flooded.solid.volume, sealed.solid.volume)
-
-
-def _opens(flooded: Space, sealed: Space) -> Finding:
-    where = place(flooded.solid.met(sealed.solid))
-    return Finding(
-        code="sealed-void-floods",
-        level=Level.FAULT,
-        piece=sealed.name,
-        message=f"'{sealed.name}' is called sealed, but opens into the flooded '{flooded.name}' at {millimetres(where)} mm",
-        where=(where,),
-        advice="draw a wall between them, or call both flooded",
     )

@@ -91,6 +91,8 @@ class MeshPiece:
         Outward skin without cavities, overlapping shells joined.
     pairs : EdgePairs
         Its edges.
+    shells : tuple of Surface
+        Parts of the skin that hang together.
     cavities : tuple of Surface
         Spaces that the mesh itself closes off inside the piece, each outward.
     cavities_flooded : bool
@@ -106,13 +108,16 @@ class MeshPiece:
     fit : float, m
         Gap per side of its pocket.
     deficit : float, m3
-        Volume that its facets leave out of the smooth part.
+        Volume that its facets leave out of the smooth part, cavities left out.
+    skin_deficit : float, m3
+        What the facets of its outward skin alone leave out.
     """
 
     name: str
     role: Role
     surface: Surface
     pairs: EdgePairs
+    shells: tuple[Surface, ...]
     cavities: tuple[Surface, ...] = ()
     cavities_flooded: bool = False
     substance: Substance | None = None
@@ -121,6 +126,7 @@ class MeshPiece:
     lip: bool = False
     fit: float = 0.0
     deficit: float = 0.0
+    skin_deficit: float = 0.0
 
 
 @dataclass(frozen=True, eq=False)

@@ -1,12 +1,13 @@
-"""How two closed surfaces lie to each other: apart, one in the other, or crossing."""
+"""How a piece lies to the body: apart, in it, around it, or crossing its skin; asked shell by shell."""
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from enum import StrEnum
 
 import numpy as np
 
-from meshlure.geometry.crossing import crossings
+from meshlure.geometry.crossing import meets
 from meshlure.geometry.shells import winding_number
 from meshlure.geometry.surface import Surface
 
@@ -20,21 +21,41 @@ class Relation(StrEnum):
     CROSSING = "crossing"
 
 
-def relation(piece: Surface, other: Surface) -> Relation:
-    """Return where a closed piece lies to another closed surface.
+def relation(shell: Surface, others: Sequence[Surface]) -> Relation:
+    """Return where one closed shell lies to the shells of another piece.
+
+    Parameters
+    ----------
+    shell : Surface
+        Hangs together.
+    others : sequence of Surface
+        Each hangs together; the outward skin of one piece.
 
     Notes
     -----
     Exact up to the margin of the triangle test, which counts touching as crossing; where no triangles meet,
     one vertex decides by its winding number.
     """
-    low, high = np.maximum(piece.bounds[0], other.bounds[0]), np.minimum(piece.bounds[1], other.bounds[1])
+    found = {_relation(shell, other) for other in others}
+    for first in (Relation.CROSSING, Relation.INSIDE, Relation.AROUND):
+        if first in found:
+            return first
+    return Relation.APART
+
+
+def summed(relations: Sequence[Relation]) -> Relation:
+    """Return the relation of a whole piece: a pair of eyes of which one is inside and one outside crosses the skin."""
+    return relations[0] if len(set(relations)) == 1 else Relation.CROSSING
+
+
+def _relation(shell: Surface, other: Surface) -> Relation:
+    low, high = np.maximum(shell.bounds[0], other.bounds[0]), np.minimum(shell.bounds[1], other.bounds[1])
     if (low > high).any():
         return Relation.APART
-    if len(crossings(other, piece)):
+    if meets(other, shell):
         return Relation.CROSSING
-    if winding_number(other, piece.corners[0, 0]) > 0.5:
+    if winding_number(other, shell.corners[0, 0]) > 0.5:
         return Relation.INSIDE
-    if winding_number(piece, other.corners[0, 0]) > 0.5:
+    if winding_number(shell, other.corners[0, 0]) > 0.5:
         return Relation.AROUND
     return Relation.APART

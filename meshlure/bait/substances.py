@@ -11,7 +11,7 @@ from meshlure.stock.hardware import item as stock_item
 from meshlure.stock.materials import material
 
 STATED_SPREAD = 0.005
-"""Share by which a stated density may be off either way: a careful weighing of a blank and of the water it displaces."""
+"""Share by which a stated density may be off either way: a careful weighing of a blank and of its displaced water."""
 
 WEIGHED_SPREAD = 0.01
 """Share by which a stated mass of hardware may be off: half a step of a pocket scale on a gram."""
@@ -27,7 +27,8 @@ def substance(stated: Stated, where: str) -> Substance:
     """
     if stated.density is not None:
         density = stated.density
-        return Substance(None, density, density * (1 - STATED_SPREAD), density * (1 + STATED_SPREAD), "stated", assumed=False)
+        low, high = density * (1 - STATED_SPREAD), density * (1 + STATED_SPREAD)
+        return Substance(None, density, low, high, "stated", assumed=False)
     row = material(stated.material or "", where)
     return Substance(row.name, row.density, row.low, row.high, row.source, row.assumed, row.kinds)
 

@@ -2,14 +2,14 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from enum import StrEnum
 from math import hypot
 
 from meshlure import tolerances
 from meshlure.bait.composition import Part
-from meshlure.bait.pieces import Hardware, MeshPiece, Role
+from meshlure.bait.pieces import Coat, Hardware, Role
 
 
 class Behaviour(StrEnum):
@@ -110,7 +110,7 @@ def reserve(
 
 
 def doubts(
-    parts: Sequence[Part], pieces: Sequence[MeshPiece], hardware: Sequence[Hardware], painted: float, water: float
+    parts: Sequence[Part], facets: float, hardware: Sequence[Hardware], coat: Coat | None, painted: float, water: float
 ) -> tuple[Doubt, ...]:
     """Return every source of doubt in a bait's reserve.
 
@@ -118,50 +118,45 @@ def doubts(
     ----------
     parts : sequence of Part
         What weighs, balls included.
-    pieces : sequence of MeshPiece
-        The body first: for the facet deficits.
+    facets : float, kg
+        What the facets leave out of the reserve.
     hardware : sequence of Hardware
+    coat : Coat or None
     painted : float, m2
-        Skin under the coat; 0 without one.
+        Skin under the coat.
     water : float, kg/m3
 
     Notes
     -----
-    Densities: the stock's range, or 0.5% of a stated one. Facets: what the smooth parts would weigh and displace more.
-    Hardware: the stock's range; equal items come from one packet and err together. Coat: 0.05 mm either way.
+    Densities: the stock's range, or 0.5% of a stated one; pieces of one stock material come from one batch and err
+    together. Facets: what the smooth parts would weigh and displace more. Hardware: the stock's range; equal items come
+    from one packet and err together. Coat: 0.05 mm either way, or the whole of a thinner one.
     """
-    found = []
-    for part in parts:
-        substance = part.substance
-        if substance is None or part.role in (Role.HARDWARE, Role.COAT) or part.volume <= 0:
-            continue
-        found.append(Doubt(
-            f"density of {part.name}",
-            part.volume * (substance.high - substance.density),
-            part.volume * (substance.density - substance.low),
-        ))
-    facets = _facets(pieces, water)
+    found = list(_densities(parts))
     if facets:
-        found.append(Doubt("facets", facets, facets))
+        found.append(Doubt("facets", abs(facets), abs(facets)))
     packets: dict[str, Doubt] = {}
     for item in hardware:
         key = item.item or item.name
         old = packets.get(key, Doubt(f"mass of {key}", 0.0, 0.0))
         packets[key] = Doubt(old.what, old.low + item.high - item.mass, old.high + item.mass - item.low)
     found += packets.values()
-    coats = [part for part in parts if part.role is Role.COAT and part.substance is not None]
-    for coat in coats:
-        assert coat.substance is not None
-        swing = abs(painted * COAT_SPREAD * (water - coat.substance.density))
-        found.append(Doubt("thickness of the coat", swing, swing))
+    if coat is not None:
+        lift = painted * (water - coat.substance.density)
+        thicker, thinner = lift * COAT_SPREAD, -lift * min(COAT_SPREAD, coat.thickness)
+        found.append(Doubt("thickness of the coat", -min(thicker, thinner), max(thicker, thinner)))
     return tuple(found)
 
 
-def _facets(pieces: Sequence[MeshPiece], water: float) -> float:
-    body = pieces[0]
-    within = body.substance.density if body.substance is not None else 0.0
-    change = body.deficit * (water - within)
-    for piece in pieces[1:]:
-        own = piece.substance.density if piece.substance is not None else 0.0
-        change -= piece.deficit * (own - within)
-    return abs(change)
+def _densities(parts: Sequence[Part]) -> Iterator[Doubt]:
+    """Doubts of density: by piece where a density was stated, by material where it is the stock's."""
+    batches: dict[str, Doubt] = {}
+    for part in parts:
+        substance = part.substance
+        if substance is None or part.role is Role.HARDWARE or part.volume <= 0:
+            continue
+        key = f"density of {substance.name or part.name}"
+        old = batches.get(key, Doubt(key, 0.0, 0.0))
+        low = old.low + part.volume * (substance.high - substance.density)
+        batches[key] = Doubt(key, low, old.high + part.volume * (substance.density - substance.low))
+    yield from batches.values()

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from typing import Any
 
+from meshlure.bait.smooth import Deficit
 from meshlure.geometry.surface import Floats
 from meshlure.physics.buoyancy import Behaviour, Reserve, behaviour
 from meshlure.results.numbers import GRAM, MM, MM3, plain
@@ -58,6 +59,25 @@ def buoyancy(reserve: Reserve, water: Water, displaced: float, centre: Floats, m
         "bulk_density_g_cm3": mass / displaced / 1e3,
         "suspends_within_g": reserve.threshold * GRAM,
         "doubts": [{"what": d.what, "low_g": d.low * GRAM, "high_g": d.high * GRAM} for d in reserve.doubts],
+    }
+
+
+def smooth(deficit: Deficit, mass: float, displaced: float, water: Water) -> Tree:
+    """Return mass, displaced volume and reserve of the smooth parts that the facets stand for.
+
+    Parameters
+    ----------
+    deficit : Deficit
+        What the facets leave out.
+    mass : float, kg
+    displaced : float, m3
+    water : Water
+    """
+    mass, displaced = mass + deficit.mass, displaced + deficit.displaced
+    return {
+        "mass_g": mass * GRAM,
+        "displaced_mm3": displaced * MM3,
+        "reserve_g": (displaced * water.density - mass) * GRAM,
     }
 
 
