@@ -7,6 +7,7 @@ from __future__ import annotations
 
 import copy
 import json
+import math
 from collections.abc import Callable, Iterator
 from typing import Any
 
@@ -181,6 +182,10 @@ def test_what_a_schema_cannot_say(name: str) -> None:
     tree = as_written(name)
     for table in ("rose", "stations"):
         assert len({len(column) for column in tree[table].values()}) == 1, table
+    directions = [*tree["frame"].values(), *tree["rose"]["axis"], *(area["axis"] for area in tree["areas"])]
+    directions += [*tree["weight"]["principal_axes"], *(p["up"] for p in tree["postures"] if p["up"] is not None)]
+    for direction in directions:
+        assert math.hypot(*direction) == pytest.approx(1.0, abs=1e-9)
     for curve in tree["righting"]:
         assert len(curve["heel_deg"]) == len(curve["arm_mm"])
         assert curve["heel_deg"] == sorted(curve["heel_deg"])

@@ -4,13 +4,14 @@ from __future__ import annotations
 
 import sys
 import traceback
+from dataclasses import astuple
 from pathlib import Path
 from typing import Final, NoReturn
 
 import typer
 
 from meshlure.cli import report
-from meshlure.cli.terminal import answer, tell
+from meshlure.cli.terminal import answer, harmless, tell
 from meshlure.errors import Fault, InputError
 from meshlure.version import VERSION
 
@@ -96,7 +97,8 @@ def _refuse(error: InputError) -> None:
     count = len(error.faults)
     tell("meshlure cannot go on:" if count == 1 else f"meshlure cannot go on, for {count} reasons:")
     for fault in error.faults:
-        tell(f"- {fault}")
+        plain = Fault(*map(harmless, astuple(fault)))
+        tell(*f"- {plain}".splitlines())
 
 
 def _apologize(error: Exception) -> None:

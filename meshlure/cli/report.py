@@ -117,7 +117,7 @@ def report(
     else:
         from meshlure.cli.summary import summary
 
-        answer(summary(found.results, out))
+        answer(*summary(found.results, out))
     if any(finding["level"] == "fault" for finding in found.results["findings"]):
         raise typer.Exit(1)
 

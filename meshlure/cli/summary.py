@@ -10,8 +10,8 @@ OUNCE: Final = 28.349523125
 """g. The avoirdupois ounce, exact since 1959."""
 
 
-def summary(results: Mapping[str, Any], out: Path | None) -> str:
-    """Return mass, verdict, postures, findings and files in a few lines.
+def summary(results: Mapping[str, Any], out: Path | None) -> tuple[str, ...]:
+    """Return mass, verdict, postures, findings and files, a line a thing.
 
     Parameters
     ----------
@@ -34,5 +34,4 @@ def summary(results: Mapping[str, Any], out: Path | None) -> str:
     lines += [f"           {f['level']}: {f['message']}" for f in results["findings"] if f["level"] != "note"]
     if out is not None:
         lines.append(f"  written  {', '.join(['results.json', *results['files']])} in {out}")
-    # A line a thing: a name that holds a line break would pass for another.
-    return "\n".join(" ".join(line.splitlines()) for line in lines)
+    return tuple(lines)

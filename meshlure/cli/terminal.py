@@ -15,16 +15,17 @@ _PLAINER: Final = str.maketrans({"\N{MINUS SIGN}": "-", "\N{DEGREE SIGN}": " deg
 
 
 def harmless(text: str) -> str:
-    """Return text with control characters made visible, so that no name in a file can steer a terminal."""
-    return "".join(c if c == "\n" or c.isprintable() else c.encode("unicode_escape").decode() for c in text)
+    """Return text with control characters made visible: no name of a file steers a terminal or passes for a line."""
+    return "".join(c if c.isprintable() else c.encode("unicode_escape").decode() for c in text)
 
 
-def tell(text: str) -> None:
+def tell(*lines: str) -> None:
     """Say something beside the results, on stderr."""
-    typer.echo(_shown(harmless(text), sys.stderr.encoding), err=True)
+    for line in lines:
+        typer.echo(_shown(harmless(line), sys.stderr.encoding), err=True)
 
 
-def answer(text: str) -> None:
+def answer(*lines: str) -> None:
     """Print an answer in words on stdout.
 
     Raises
@@ -32,7 +33,7 @@ def answer(text: str) -> None:
     InputError
         Where it cannot be written.
     """
-    _write(_shown(harmless(text), sys.stdout.encoding) + "\n")
+    _write("".join(f"{_shown(harmless(line), sys.stdout.encoding)}\n" for line in lines))
 
 
 def hand_on(text: str) -> None:

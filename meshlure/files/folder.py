@@ -19,6 +19,8 @@ RESULTS: Final = "results.json"
 TOOL: Final = "meshlure"
 
 _FULL: Final = frozenset({errno.ENOSPC, errno.EDQUOT})
+_UNNAMED: Final = _FULL | {errno.EFBIG, errno.EIO, errno.EROFS, errno.ESTALE}
+"""What the system answers to writing into an open file; it does not say which one."""
 _NAMED = 5
 _ALLOWED: Final = "a folder that is absent, empty, or holds only what an earlier run wrote"
 
@@ -250,7 +252,7 @@ def _parent_is_file(out: Path, parent: Path) -> Fault:
 
 def _is_about(error: OSError, staging: Path) -> bool:
     """Tell whether an error of the system is about the output, not about something else that a block does."""
-    if error.errno in _FULL:
+    if error.errno in _FULL or (error.errno in _UNNAMED and error.filename is None):
         return True
     names = [os.fsdecode(name) for name in (error.filename, error.filename2) if isinstance(name, str | bytes)]
     return any(Path(name).is_relative_to(staging) for name in names)
