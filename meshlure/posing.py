@@ -84,9 +84,8 @@ def pose(vessel: Vessel, suspends_within: float | None = None) -> Posed:
     ends = _headline_ends(afloat, hanging)
     trees = _afloat(vessel, afloat) if afloat else []
     if not afloat or _suspends(vessel, ends, suspends_within):
-        trees += [
-            postures.dangling(d, vessel.frame, vessel.composition.mass(d.ends).amount, 1.0 / len(hanging)) for d in hanging
-        ]
+        share = 1.0 / len(hanging)
+        trees += [postures.dangling(d, vessel.frame, vessel.composition.mass(d.ends).amount, share) for d in hanging]
     findings += _dry(afloat, vessel)
     return Posed(ends, trees, _righting(vessel, afloat), _balls(vessel, settings, ends), tuple(findings))
 
@@ -106,10 +105,11 @@ def _suspends(vessel: Vessel, ends: Ends, within: float | None) -> bool:
 def _afloat(vessel: Vessel, afloat: Sequence[Repose]) -> list[Tree]:
     total = sum(r.rest.share for r in afloat) or 1.0
     rises = _barriers(vessel, afloat)
-    return [
-        postures.floating(r, vessel.frame, vessel.composition.mass(r.ends).amount, vessel.water, rise, r.rest.share / total)
-        for r, rise in zip(afloat, rises, strict=True)
-    ]
+    trees = []
+    for r, rise in zip(afloat, rises, strict=True):
+        mass = vessel.composition.mass(r.ends).amount
+        trees.append(postures.floating(r, vessel.frame, mass, vessel.water, rise, r.rest.share / total))
+    return trees
 
 
 def _barriers(vessel: Vessel, afloat: Sequence[Repose]) -> list[float | None]:
@@ -179,11 +179,13 @@ def _dry(afloat: Sequence[Repose], vessel: Vessel) -> list[Finding]:
         for name in repose.dry:
             at = places[name]
             above = float(at @ repose.rest.state.up) - repose.rest.state.immersed.cut.height
+            # Without its lift the bait lies deeper: an eye near the water may be under it then.
+            where = f"stands {above * MM:.1f} mm above the water" if above >= 0 else "lies in the water's surface"
             findings.append(Finding(
                 code="eye-above-water",
                 level=Level.NOTE,
                 piece=name,
-                message=f"in posture {number} the eye of '{name}' stands {above * MM:.1f} mm above the water: it is counted dry there",
+                message=f"in posture {number} the eye of '{name}' {where}: it is counted dry there",
                 where=((float(at[0]), float(at[1]), float(at[2])),),
                 advice="a hook that still hangs into the water lifts a little of its weight off the bait",
             ))

@@ -1,4 +1,4 @@
-"""The variant to make: the body with pockets cut for its inserts, and each insert, as meshes that are checked once written."""
+"""The variant to make: the body with pockets cut for its inserts, and each insert, as meshes checked once written."""
 
 from __future__ import annotations
 
@@ -6,6 +6,7 @@ from dataclasses import dataclass
 from pathlib import Path
 
 from meshlure.bait.composition import inserts_left
+from meshlure.bait.meshpiece import solid_of
 from meshlure.bait.pieces import Bait, MeshPiece, Role
 from meshlure.errors import Fault, InputError
 from meshlure.files.reading import read_mesh
@@ -44,22 +45,24 @@ def cuttings(bait: Bait) -> tuple[Cutting, ...]:
 
     Notes
     -----
-    A pocket is its insert grown by ``fit`` on every side; voids are cut as drawn. Coordinates are those of CAD.
+    A pocket is its insert grown by ``fit`` on every side, in the body and in the inserts that it replaces; voids are
+    cut as drawn. Coordinates are those of CAD.
     """
-    body = Solid.of(bait.body.surface)
-    taken = [Solid.of(cavity) for cavity in bait.body.cavities]
-    taken += [_pocket(piece) for piece in bait.pieces]
+    body = solid_of(bait.body.surface, bait.body.name)
+    pockets = {piece.name: _pocket(piece) for piece in bait.pieces}
+    taken = [*(Solid.of(cavity) for cavity in bait.body.cavities), *pockets.values()]
     left = inserts_left(bait)
+    for piece in bait.pieces:
+        for earlier in left.keys() & set(piece.replaces):
+            left[earlier] = left[earlier].less(pockets[piece.name])
     used = {"body.stl"}
     parts = [Cutting("body.stl", body.less(*taken) if taken else body)]
-    for piece in bait.pieces:
-        if piece.role is Role.INSERT:
-            parts.append(Cutting(_file_name(piece.name, used), left[piece.name]))
+    parts += [Cutting(_file_name(name, used), solid) for name, solid in left.items()]
     return tuple(parts)
 
 
 def _pocket(piece: MeshPiece) -> Solid:
-    return Solid.of(grown(piece.surface, piece.fit if piece.role is Role.INSERT else 0.0))
+    return solid_of(grown(piece.surface, piece.fit if piece.role is Role.INSERT else 0.0), piece.name)
 
 
 def _file_name(piece: str, used: set[str]) -> str:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from itertools import product
 
 import numpy as np
@@ -21,6 +21,8 @@ Ends = dict[str, str]
 """Which end the balls of each chamber lie at."""
 
 _LEVEL = 1e-9
+
+_ALIKE = float(np.cos(np.radians(0.05)))
 
 
 @dataclass(frozen=True, eq=False)
@@ -115,12 +117,22 @@ class Vessel:
         return all(self.stays(row, ends[row.balls.chamber], up) for row in self.composition.rows)
 
     def reposes(self, ends: Ends) -> tuple[Repose, ...]:
-        """Return every resting posture with the balls at given ends, the lowest energy first; none if it does not float."""
+        """Return every resting posture with the balls at given ends, the lowest energy first; none where it sinks."""
         potential = self.potential(ends)
         if potential.volume >= potential.hull.volume or potential.volume <= potential.hull.point_volume:
             return ()
-        rests = resting(potential.hull, self.composition.skin.surface, potential.centre, potential.volume, self.frame.back)
-        return tuple(self._dried(ends, potential, rest) for rest in rests)
+        rests = resting(
+            potential.hull, self.composition.skin.surface, potential.centre, potential.volume, self.frame.back
+        )
+        found: list[Repose] = []
+        for rest in rests:
+            dried = self._dried(ends, potential, rest)
+            twin = next((number for number, other in enumerate(found) if _same(dried, other)), None)
+            if twin is None:
+                found.append(dried)
+            else:
+                found[twin] = _both(found[twin], dried)
+        return tuple(sorted(found, key=lambda repose: repose.rest.state.energy))
 
     def dangle(self, ends: Ends) -> Dangle:
         """Return how the bait hangs under water with the balls at given ends."""
@@ -145,3 +157,13 @@ class Vessel:
             state = potential.descended(state.up, 0.1)
         settled = Rest(state, rest.share, rest.upright)
         return Repose(ends, potential, settled, tuple(sorted(dry)), self.all_stay(ends, state.up))
+
+
+def _same(one: Repose, other: Repose) -> bool:
+    """Whether two postures came together once their dry hooks no longer hold them up."""
+    return one.dry == other.dry and bool(one.dry) and bool(one.rest.state.up @ other.rest.state.up > _ALIKE)
+
+
+def _both(one: Repose, other: Repose) -> Repose:
+    a, b = one.rest, other.rest
+    return replace(one, rest=Rest(a.state, a.share + b.share, a.upright or b.upright))

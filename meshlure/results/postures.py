@@ -58,7 +58,7 @@ def floating(repose: Repose, frame: Frame, mass: float, water: float, barrier: f
         "metacentric_mm": {
             "fore_aft": None if fore_aft is None else fore_aft * MM,
             "sideways": None if sideways is None else sideways * MM,
-            "least": heights[0] * MM,
+            "least": float(heights[0]) * MM,
         },
         "share": share,
         "barrier_g_mm": None if barrier is None else barrier * mass * G_MM,
@@ -90,7 +90,8 @@ def dangling(dangle: Dangle, frame: Frame, mass: float, share: float) -> Tree:
         "buoyancy_centre_mm": plain(dangle.buoyancy_centre, MM),
     }
     if up is None:
-        tree |= {"nose_up_deg": None, "lean_deg": None, "free": "both", "rounded": False, "sensitivity": _no_sensitivity()}
+        tree |= {"nose_up_deg": None, "lean_deg": None, "free": "both", "rounded": False}
+        tree["sensitivity"] = _no_sensitivity()
     else:
         stiffness = dangle.hang.stiffness
         tree |= _angles(up, frame, None, stiffness, None if nose_is_vertical(up, frame.nose) else stiffness, mass)
@@ -112,7 +113,8 @@ def _angles(
     found = attitude(up, frame.nose, frame.back, frame.side)
     nose_up, lean = degrees(found.nose_up), degrees(found.lean)
     turn, turn_moved = _turn(_MILLIMETRE, fore_aft), _turn(_MOVED / mass, fore_aft)
-    roll, roll_moved = (None, None) if sideways is None else (_turn(_MILLIMETRE, sideways), _turn(_MOVED / mass, sideways))
+    roll = None if sideways is None else _turn(_MILLIMETRE, sideways)
+    roll_moved = None if sideways is None else _turn(_MOVED / mass, sideways)
     rounded = False
     if free in ("nose_up", "both"):
         nose_up, turn, turn_moved = None, None, None
@@ -153,11 +155,12 @@ def _named(tree: Tree, frame: Frame, up: Floats | None) -> Tree:
     """Add the posture's name and sentence."""
     verb = "floats" if tree["kind"] == "floating" else "hangs"
     if up is None:
-        name, words = f"{verb}, no preferred attitude", "Hangs as it is put: its centres meet, so it has no preferred attitude."
-        return tree | {"name": name, "words": words}
+        words = "Hangs as it is put: its centres meet, so it has no preferred attitude."
+        return tree | {"name": f"{verb}, no preferred attitude", "words": words}
     if tree["free"] == "both":
         name = f"{verb}, any way up"
-        return tree | {"name": name, "words": f"{name[0].upper()}{name[1:]}, {tree['submerged_share']:.0%} under water."}
+        words = f"{name[0].upper()}{name[1:]}, {tree['submerged_share']:.0%} under water."
+        return tree | {"name": name, "words": words}
     side = _side(frame, up)
     if tree["free"] == "lean":
         side = "any side up"
@@ -199,6 +202,11 @@ def _side(frame: Frame, up: Floats) -> str:
 def righting(curves: Sequence[tuple[int, Righting]]) -> list[Tree]:
     """Return the righting curves with the number of the posture each starts from."""
     return [
-        {"plane": curve.plane, "heel_deg": plain(np.degrees(curve.heel)), "arm_mm": plain(curve.arm, MM), "posture": number}
+        {
+            "plane": curve.plane,
+            "heel_deg": plain(np.degrees(curve.heel)),
+            "arm_mm": plain(curve.arm, MM),
+            "posture": number,
+        }
         for number, curve in curves
     ]
