@@ -60,7 +60,7 @@ def _untouched(body: MeshPiece, piece: MeshPiece, shell: Surface) -> Finding:
         code="touches-nothing",
         level=Level.FAULT,
         piece=piece.name,
-        message=f"{what} touches nothing: it lies {apart * 1e3:.1f} mm from the body, round {place_text((x, y, z))}",
+        message=f"{what} touches nothing: it lies {apart * 1e3:.1f} mm from the body, about {place_text((x, y, z))}",
         where=((x, y, z),),
         advice="export it from the same CAD origin and in the same unit as the body, or leave it out",
         stops=True,

@@ -11,9 +11,9 @@ from typing import TypeVar
 
 import numpy as np
 
-from meshlure import tolerances
+from meshlure.bait.extent import check_reach, size_findings
 from meshlure.bait.meshpiece import shape
-from meshlure.bait.pieces import Bait, Balls, Coat, Frame, Hardware, MeshPiece, Role, Substance
+from meshlure.bait.pieces import Bait, Balls, Coat, Frame, MeshPiece, Role, Substance
 from meshlure.bait.refusals import refuse
 from meshlure.bait.substances import hardware, substance
 from meshlure.errors import Fault, InputError
@@ -23,12 +23,9 @@ from meshlure.files.reading import MeshFile
 from meshlure.files.sections.balls import BallsSection
 from meshlure.files.sections.inserts import InsertSection
 from meshlure.files.tables import entry_path
-from meshlure.findings import Finding, Level
-from meshlure.geometry.clearance import nearest
-from meshlure.geometry.shells import winding_number
+from meshlure.findings import Finding
 from meshlure.geometry.soundness import examine
 from meshlure.stock.waters import Water, stated_density, water
-from meshlure.units import LENGTH_UNITS
 
 T = TypeVar("T")
 
@@ -55,13 +52,34 @@ def load(plan: BaitFile) -> Bait:
     made = _Lookup(plan)
     start = time.perf_counter()
     files = read_meshes(plan)
-    read = time.perf_counter()
+    return _assembled(plan, files, made, time.perf_counter() - start)
+
+
+def assemble(plan: BaitFile, files: Mapping[str, MeshFile]) -> Bait:
+    """Return the bait of a bait file's contents and of meshes at hand.
+
+    Parameters
+    ----------
+    plan : BaitFile
+    files : mapping of MeshFile
+        By piece, the body's first, then the inserts' in the bait file's order.
+
+    Raises
+    ------
+    InputError
+        With every fault of materials and meshes found at that stage.
+    """
+    return _assembled(plan, files, _Lookup(plan), 0.0)
+
+
+def _assembled(plan: BaitFile, files: Mapping[str, MeshFile], made: _Lookup, reading: float) -> Bait:
+    start = time.perf_counter()
     findings = [finding for file in files.values() for finding in file.findings]
     pieces, found = _pieces(plan, files, made)
     findings += found
     frame = Frame.of(np.array(plan.bait.nose), np.array(plan.bait.back))
-    findings += _size(plan, pieces[0], frame, files[pieces[0].name])
-    _reach(pieces[0], made.hardware, plan)
+    findings += size_findings(pieces[0], frame, plan, str(files[pieces[0].name].path))
+    check_reach(pieces[0], made.hardware, plan)
     return Bait(
         name=plan.bait.name,
         frame=frame,
@@ -75,7 +93,7 @@ def load(plan: BaitFile) -> Bait:
         plan=plan,
         files=tuple(files.values()),
         findings=tuple(findings),
-        timings={"reading": read - start, "soundness": time.perf_counter() - read},
+        timings={"reading": reading, "soundness": time.perf_counter() - start},
     )
 
 
@@ -93,7 +111,8 @@ class _Lookup:
                 next_step="weigh the print and state density = its mass over the body's volume, both in one unit",
             ))
         stated = plan.body.substance
-        self.body = None if stated is None else self._ask(lambda: substance(stated, f"{self._file}body.material"))
+        place = f"{self._file}body.material" if plan.path is not None else "--material"
+        self.body = None if stated is None else self._ask(lambda: substance(stated, place))
         self.inserts = [self._insert(number, insert) for number, insert in enumerate(plan.inserts, 1)]
         balls = [self._ask(partial(self._balls, n, row)) for n, row in enumerate(plan.balls, 1)]
         metal = [
@@ -120,6 +139,8 @@ class _Lookup:
         if stated is None:
             return None
         where = f"{self._file}{entry_path('insert', number, insert.name)}.material"
+        if not self._file:
+            where = f"--insert {insert.mesh}={stated.material}"
         return self._ask(lambda: substance(stated, where))
 
     def _ask(self, question: Callable[[], T]) -> T | None:
@@ -170,64 +191,3 @@ def _pieces(plan: BaitFile, files: Mapping[str, MeshFile], made: _Lookup) -> tup
             skin_deficit=own.skin_deficit,
         ))
     return pieces, findings
-
-
-def _size(plan: BaitFile, body: MeshPiece, frame: Frame, file: MeshFile) -> list[Finding]:
-    """Ask about a bait of unusual length, refuse an impossible one."""
-    length = float(np.ptp(body.surface.vertices @ frame.nose))
-    usual, possible = tolerances.LENGTH_USUAL, tolerances.LENGTH_POSSIBLE
-    hint = _other_unit(length, plan.bait.length_unit)
-    if not possible[0] <= length <= possible[1]:
-        raise InputError(Fault(
-            what="the body is of no bait's length",
-            where=str(file.path),
-            found=f"{length * 1e3:.4g} mm from nose to tail, read in {plan.bait.length_unit}",
-            allowed=f"{possible[0] * 1e3:g} mm to {possible[1]:g} m",
-            next_step=f"is the file in {hint}? State length_unit (or --unit) as the mesh was exported" if hint
-            else "state length_unit (or --unit) as the mesh was exported, and check nose",
-        ))
-    if usual[0] <= length <= usual[1] or plan.bait.size_checked:
-        return []
-    asks = f": is the file in {hint}?" if hint else ": is that meant?"
-    return [Finding(
-        code="unusual-size",
-        level=Level.WARNING,
-        message=f"the body is {length * 1e3:.4g} mm long, read in {plan.bait.length_unit}{asks}",
-        piece=body.name,
-        advice="state length_unit as the mesh was exported; if the size is meant, add size_checked = true to [bait]",
-    )]
-
-
-def _other_unit(length: float, unit: str) -> str | None:
-    """Name the unit in which the length would be usual, the nearest to a hand's length where several would."""
-    middle = float(np.sqrt(np.prod(tolerances.LENGTH_USUAL)))
-    low, high = tolerances.LENGTH_USUAL
-    words = {"mm": "millimetres", "cm": "centimetres", "m": "metres", "in": "inches"}
-    lengths = {name: length / LENGTH_UNITS[unit] * metres for name, metres in LENGTH_UNITS.items() if name != unit}
-    fitting = {name: value for name, value in lengths.items() if low <= value <= high}
-    if not fitting:
-        return None
-    best = min(fitting, key=lambda name: abs(float(np.log(fitting[name] / middle))))
-    return f"{words[best]} ({fitting[best] * 1e3:.0f} mm)"
-
-
-def _reach(body: MeshPiece, items: tuple[Hardware, ...], plan: BaitFile) -> None:
-    """Refuse hardware far from the body."""
-    if not items:
-        return
-    apart = nearest(body.surface, np.array([item.at for item in items])).distance
-    faults = []
-    for number, (item, distance) in enumerate(zip(items, apart, strict=True), 1):
-        if distance <= tolerances.HARDWARE_REACH or winding_number(body.surface, item.at) > 0.5:
-            continue
-        place = ", ".join(f"{value / plan.bait.metres:.4g}" for value in item.at)
-        where = entry_path("hardware", number, item.name) + ".at"
-        faults.append(Fault(
-            what="the hardware is far from the body",
-            where=f"{plan.path.name}: {where}" if plan.path is not None else where,
-            found=f"[{place}] {plan.bait.length_unit}, {distance * 1e3:.1f} mm from the body's skin",
-            allowed=f"within {tolerances.HARDWARE_REACH * 1e3:g} mm of it",
-            next_step="give its eye in the mesh's own coordinates and unit",
-        ))
-    if faults:
-        raise InputError(faults)

@@ -93,7 +93,7 @@ def _sits_outside(piece: MeshPiece, beyond: Solid) -> Finding:
         level=Level.NOTE if piece.lip else Level.WARNING,
         piece=piece.name,
         message=f"all {volume_text(beyond.volume)} of '{piece.name}' lie outside the body's material, in an open "
-        f"pocket drawn into it or on its skin, round {place_text(where)}; what is not closed off displaces water",
+        f"pocket drawn into it or on its skin, about {place_text(where)}; what is not closed off displaces water",
         where=(where,),
         advice="right for an insert in an open pocket or a glued-on part; else check its place",
     )
@@ -104,10 +104,10 @@ def _sticks_out(piece: MeshPiece, volume: float, parts: Sequence[Solid], reach: 
     head = f"{volume_text(volume)} of '{piece.name}' stick out of the body"
     far = f"by up to {reach * 1e3:.1f} mm"
     if len(parts) == 1:
-        text = f"{head}, {far}, round {place_text(places[0])}"
+        text = f"{head}, {far}, about {place_text(places[0])}"
     else:
         both = zip(parts, places, strict=True)
-        named = [f"{volume_text(part.volume)} round {place_text(place)}" for part, place in both]
+        named = [f"{volume_text(part.volume)} about {place_text(place)}" for part, place in both]
         more = [f"{len(parts) - _NAMED} more"] if len(parts) > _NAMED else []
         text = f"{head} at {counted(len(parts), 'place')}, {far}: {'; '.join([*named[:_NAMED], *more])}"
     return Finding(
@@ -128,7 +128,7 @@ def _leaks(name: str, leak: Solid) -> Finding:
         level=Level.FAULT,
         piece=name,
         message=f"'{name}' is called sealed, but reaches the outside: {volume_text(leak.volume)} of it, "
-        f"round {place_text(where)}, is not closed off and is counted as water",
+        f"about {place_text(where)}, is not closed off and is counted as water",
         where=(where,),
         advice="leave a wall between it and the skin, close it with a plug as an insert, or call it flooded",
     )

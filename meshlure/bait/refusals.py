@@ -18,6 +18,7 @@ _ALLOWED: Final = {
     "duplicate-faces": _CLOSED,
     "flat-shells": _CLOSED,
     "cavity-crossing": "cavities wholly inside the solid, and solids that look outwards",
+    "nothing-left": "inserts and hollows that leave some of the body",
     "inserts-overlap": "inserts that share no space, or a later one that says replaces",
     "touches-nothing": f"at most {tolerances.TOUCH_GAP * 1e3:g} mm from the body or from a piece that touches it",
 }

@@ -17,9 +17,9 @@ def middle(solid: Solid) -> Point:
 
 
 def place_text(point: Sequence[float] | Floats) -> str:
-    """Return a mesh point given in m as text in mm, to a tenth."""
+    """Return a mesh point given in m as text in mm, to a tenth: "(31.0, 0.0, -9.5) mm"."""
     # Adding zero keeps a rounded negative from reading as minus nothing.
-    return ", ".join(f"{round(float(value) * 1e3, 1) + 0.0:.1f}" for value in point) + " mm"
+    return "(" + ", ".join(f"{round(float(value) * 1e3, 1) + 0.0:.1f}" for value in point) + ") mm"
 
 
 def volume_text(volume: float) -> str:

@@ -16,7 +16,7 @@ from meshlure.stock.materials import Material, material
 from meshlure.units import GRAM, MM
 
 _TABLE = "hardware.toml"
-_WEIGH = 'or leave the item out and give mass = "..." as you weighed it'
+_WEIGH = "or weigh it and give its mass instead of the item"
 _WIRE = re.compile(r"wire (?P<diameter>\d+(?:\.\d+)?) x (?P<length>\d+(?:\.\d+)?)", re.ASCII)
 
 

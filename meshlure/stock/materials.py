@@ -11,7 +11,7 @@ from meshlure.errors import Fault, InputError
 from meshlure.stock import shelf
 
 _TABLE = "materials.toml"
-_WEIGH = 'or leave the material out and give density = "..." as you weighed it'
+_WEIGH = "or weigh it and give its density instead of the material"
 
 
 @dataclass(frozen=True)
