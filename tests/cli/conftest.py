@@ -5,7 +5,7 @@ from __future__ import annotations
 from pathlib import Path
 
 import pytest
-from workbench import Workbench
+from command_bench import Workbench
 
 
 @pytest.fixture

@@ -6,7 +6,7 @@ import re
 from pathlib import Path
 
 import pytest
-from workbench import BAD_MESHES, BAIT, QUICK, Workbench, box, fault
+from command_bench import BAD_MESHES, BAIT, QUICK, Workbench, box, fault
 
 INSERT = '[[insert]]\nname = "belly weight"\nmesh = "weight.stl"\nmaterial = "lead"\n'
 HOOK = '[[hardware]]\nname = "front treble"\nmass = "0.7 g"\nat = [20, 5, -2]\nhangs = true\n'

@@ -11,7 +11,7 @@ from typing import Any
 
 import pytest
 import typer
-from workbench import Workbench
+from command_bench import Workbench
 
 from meshlure.cli.main import app
 

@@ -6,7 +6,7 @@ import json
 from typing import Any
 
 import pytest
-from workbench import BAD_MESHES, BAIT, Ran, Workbench, box
+from command_bench import BAD_MESHES, BAIT, Ran, Workbench, box
 
 BOX = 6400.0
 """mm3: 40 x 10 x 16."""

@@ -11,7 +11,7 @@ from pathlib import Path
 from typing import Any
 
 import pytest
-from workbench import QUICK, Workbench, fault
+from command_bench import QUICK, Workbench, fault
 
 
 def refused(bench: Workbench, out: str | Path, *said: str) -> None:

@@ -8,8 +8,8 @@ from typing import Any
 
 import numpy as np
 import pytest
+from command_bench import BAIT, QUICK, Workbench, box
 from jsonschema import Draft202012Validator
-from workbench import BAIT, QUICK, Workbench, box
 
 from meshlure.results import schema
 from meshlure.version import VERSION

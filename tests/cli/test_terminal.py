@@ -13,7 +13,7 @@ from collections.abc import Callable
 from pathlib import Path
 
 import pytest
-from workbench import QUICK, SCRIPT, Workbench, box
+from command_bench import QUICK, SCRIPT, Workbench, box
 
 FULL = Path("/dev/full")
 
