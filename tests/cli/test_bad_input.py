@@ -6,7 +6,7 @@ import re
 from pathlib import Path
 
 import pytest
-from command_bench import BAD_MESHES, BAIT, QUICK, Workbench, box, fault
+from command_bench import BAD_MESHES, BAIT, QUICK, Bench, box, fault
 
 INSERT = '[[insert]]\nname = "belly weight"\nmesh = "weight.stl"\nmaterial = "lead"\n'
 HOOK = '[[hardware]]\nname = "front treble"\nmass = "0.7 g"\nat = [20, 5, -2]\nhangs = true\n'
@@ -52,7 +52,7 @@ MESHES = {
 
 
 @pytest.mark.parametrize("name", MESHES)
-def test_a_bad_mesh(bench: Workbench, name: str) -> None:
+def test_a_bad_mesh(bench: Bench, name: str) -> None:
     told = fault(bench.report(BAD_MESHES / name))
     assert re.search(".*".join(MESHES[name]), told, re.DOTALL), told
     assert not bench.out.exists()
@@ -139,7 +139,7 @@ FILES = {
 
 
 @pytest.mark.parametrize("case", FILES)
-def test_a_bad_bait_file(bench: Workbench, case: str) -> None:
+def test_a_bad_bait_file(bench: Bench, case: str) -> None:
     bench.put("far.stl", box((100, 3, 3), (5, 4, 4)))
     bench.put("shared.stl", box((12, 3, 3), (5, 4, 4)))
     text, said = FILES[case]
@@ -170,7 +170,7 @@ QUICK_FORM = {
 
 
 @pytest.mark.parametrize("case", QUICK_FORM)
-def test_a_bad_quick_form(bench: Workbench, case: str) -> None:
+def test_a_bad_quick_form(bench: Bench, case: str) -> None:
     words, said = QUICK_FORM[case]
     body = words[0] if not words[0].startswith("-") else "body.stl"
     told = fault(bench.report(Path(body), *(words if body == "body.stl" else [])))
@@ -178,17 +178,17 @@ def test_a_bad_quick_form(bench: Workbench, case: str) -> None:
     assert not bench.out.exists()
 
 
-def test_an_unknown_material_of_the_body(bench: Workbench) -> None:
+def test_an_unknown_material_of_the_body(bench: Bench) -> None:
     told = fault(bench.run("report", "body.stl", "--material", "balza", *QUICK[2:], "--out", "out"))
     assert re.search("- --material: no material.*found: balza.*allowed: .*balsa", told, re.DOTALL), told
 
 
-def test_what_the_mesh_cannot_say_must_be_stated(bench: Workbench) -> None:
+def test_what_the_mesh_cannot_say_must_be_stated(bench: Bench) -> None:
     told = fault(bench.run("report", "body.stl", "--density", "1 g/cm3", "--nose", "-x", "--out", "out"))
     assert re.search("- body.stl: .*does not say.*found: no --unit, --back.*next: add them", told, re.DOTALL)
 
 
-def test_options_of_the_quick_form_beside_a_bait_file(bench: Workbench) -> None:
+def test_options_of_the_quick_form_beside_a_bait_file(bench: Bench) -> None:
     told = fault(bench.report(BAIT, "--density", "1 g/cm3"))
     assert re.search(
         "- minnow.toml: .*quick form.*found: --density.*next: write them into the bait file", told, re.DOTALL
@@ -208,7 +208,7 @@ NO_BAIT_FILE = {
 
 
 @pytest.mark.parametrize("case", NO_BAIT_FILE)
-def test_no_bait_file(bench: Workbench, case: str) -> None:
+def test_no_bait_file(bench: Bench, case: str) -> None:
     content, said = NO_BAIT_FILE[case]
     if content == "folder":
         (bench.folder / "minnow.toml").mkdir()
@@ -218,7 +218,7 @@ def test_no_bait_file(bench: Workbench, case: str) -> None:
     assert re.search(".*".join(said), told, re.DOTALL), told
 
 
-def test_all_faults_of_a_file_at_once(bench: Workbench) -> None:
+def test_all_faults_of_a_file_at_once(bench: Bench) -> None:
     text = BAIT.replace("1.2 g/cm3", "1.2").replace('"mm"', '"furlong"') + HOOK.replace("true", '"yes"')
     ran = bench.report(text)
     assert ran.code == 2
@@ -227,7 +227,7 @@ def test_all_faults_of_a_file_at_once(bench: Workbench) -> None:
     assert places == ["bait.length_unit", "body.density", "hardware[1] 'front treble'.hangs"]
 
 
-def test_all_broken_meshes_at_once(bench: Workbench) -> None:
+def test_all_broken_meshes_at_once(bench: Bench) -> None:
     bench.put("weight.stl", (BAD_MESHES / "open_box.stl").read_bytes())
     ran = bench.report(BAD_MESHES / "mixed_winding.stl", "--insert", "weight.stl=lead")
     assert ran.code == 2
@@ -237,12 +237,12 @@ def test_all_broken_meshes_at_once(bench: Workbench) -> None:
     ]
 
 
-def test_a_file_in_the_commands_place(bench: Workbench) -> None:
+def test_a_file_in_the_commands_place(bench: Bench) -> None:
     told = fault(bench.run("body.stl", "--out", "out"))
     assert re.search("found: body.stl.*next: write meshlure report body.stl", told, re.DOTALL)
 
 
-def test_a_name_cannot_steer_the_terminal(bench: Workbench) -> None:
+def test_a_name_cannot_steer_the_terminal(bench: Bench) -> None:
     told = fault(bench.report(Path("\x1b[31mred\n- body.stl: fine.stl")))
     assert "\x1b" not in told
     assert "\\x1b[31mred" in told

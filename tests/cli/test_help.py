@@ -11,7 +11,7 @@ from typing import Any
 
 import pytest
 import typer
-from command_bench import Workbench
+from command_bench import Bench
 
 from meshlure.cli.main import app
 
@@ -25,7 +25,7 @@ def options() -> list[tuple[str, Any]]:
 
 
 @pytest.mark.parametrize(("command", "parameter"), options(), ids=lambda it: getattr(it, "name", it))
-def test_every_option_is_described(bench: Workbench, command: str, parameter: Any) -> None:
+def test_every_option_is_described(bench: Bench, command: str, parameter: Any) -> None:
     assert len(parameter.help) >= 15
     shown = " ".join(bench.run(*command.split(), "--help").out.split())
     assert " ".join(parameter.help.split()) in shown
@@ -33,7 +33,7 @@ def test_every_option_is_described(bench: Workbench, command: str, parameter: An
         assert re.search(rf"{name} ", shown)
 
 
-def test_every_command_is_listed_with_what_it_does(bench: Workbench) -> None:
+def test_every_command_is_listed_with_what_it_does(bench: Bench) -> None:
     ran = bench.run("--help")
     assert (ran.code, ran.err) == (0, "")
     listed = re.findall(r"^  (\w+)  (.*\w.*)$", ran.out.partition("Commands:")[2], re.MULTILINE)
@@ -41,7 +41,7 @@ def test_every_command_is_listed_with_what_it_does(bench: Workbench) -> None:
     assert not any(words.endswith("...") for _, words in listed)
 
 
-def test_no_words_show_the_help_and_fail(bench: Workbench) -> None:
+def test_no_words_show_the_help_and_fail(bench: Bench) -> None:
     ran = bench.run()
     assert (ran.code, ran.out) == (2, "")
     assert ran.err == bench.run("--help").out
@@ -53,7 +53,7 @@ def examples(help_text: str) -> list[list[str]]:
 
 
 @pytest.mark.parametrize("command", COMMAND.commands)
-def test_every_example_runs(bench: Workbench, command: str) -> None:
+def test_every_example_runs(bench: Bench, command: str) -> None:
     given = examples(bench.run(command, "--help").out)
     assert len(given) >= 2
     (bench.folder / "samples").symlink_to(SAMPLES)

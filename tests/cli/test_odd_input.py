@@ -6,7 +6,7 @@ import json
 from typing import Any
 
 import pytest
-from command_bench import BAD_MESHES, BAIT, Ran, Workbench, box
+from command_bench import BAD_MESHES, BAIT, Bench, Ran, box
 
 BOX = 6400.0
 """mm3: 40 x 10 x 16."""
@@ -14,7 +14,7 @@ BOX = 6400.0
 Tree = dict[str, Any]
 
 
-def results(bench: Workbench, ran: Ran) -> Tree:
+def results(bench: Bench, ran: Ran) -> Tree:
     assert (ran.code, ran.err) == (0, ""), ran
     tree: Tree = json.loads((bench.out / "results.json").read_text(encoding="utf-8"))
     return tree
@@ -39,7 +39,7 @@ def codes(tree: Tree) -> dict[str, str]:
         ("concave.obj", 2160.0, {}),
     ],
 )
-def test_the_volume_that_counts(bench: Workbench, name: str, volume: float, found: dict[str, str] | None) -> None:
+def test_the_volume_that_counts(bench: Bench, name: str, volume: float, found: dict[str, str] | None) -> None:
     tree = results(bench, bench.report(BAD_MESHES / name))
     assert tree["facets"][0]["volume_mm3"] == pytest.approx(volume, rel=1e-6)
     assert tree["weight"]["mass_g"] == pytest.approx(volume * 1.2e-3, rel=1e-6)
@@ -47,7 +47,7 @@ def test_the_volume_that_counts(bench: Workbench, name: str, volume: float, foun
         assert codes(tree) == found
 
 
-def test_a_concave_polygon_shows_its_area_by_the_shoelace_formula(bench: Workbench) -> None:
+def test_a_concave_polygon_shows_its_area_by_the_shoelace_formula(bench: Bench) -> None:
     tree = results(bench, bench.report(BAD_MESHES / "concave.obj"))
     areas = {area["name"]: area["area_mm2"] for area in tree["areas"]}
     # The outline from above is the polygon itself; a face folded at its concave corner would show more.
@@ -56,7 +56,7 @@ def test_a_concave_polygon_shows_its_area_by_the_shoelace_formula(bench: Workben
     assert (areas["side"], areas["front"]) == pytest.approx((300.0, 200.0), rel=1e-6)
 
 
-def test_a_turned_mesh_is_said_on_stdout_too(bench: Workbench) -> None:
+def test_a_turned_mesh_is_said_on_stdout_too(bench: Bench) -> None:
     ran = bench.report(BAD_MESHES / "inside_out.stl")
     assert "warning: all faces looked inwards; the surface was turned" in ran.out
 
@@ -75,7 +75,7 @@ LENGTHS = [
 
 @pytest.mark.parametrize("checked", [False, True], ids=["unchecked", "checked"])
 @pytest.mark.parametrize(("length", "does", "hint"), LENGTHS)
-def test_a_length_of_no_usual_bait(bench: Workbench, length: float, does: str, hint: str, checked: bool) -> None:
+def test_a_length_of_no_usual_bait(bench: Bench, length: float, does: str, hint: str, checked: bool) -> None:
     bench.put("body.stl", box((0, 0, 0), (length, length / 4, length / 5)))
     ran = bench.report(BAIT.replace("[body]", "size_checked = true\n[body]") if checked else BAIT)
     if does == "stops":
@@ -90,7 +90,7 @@ def test_a_length_of_no_usual_bait(bench: Workbench, length: float, does: str, h
         assert checked or hint in ran.out
 
 
-def test_inches_taken_for_millimetres(bench: Workbench) -> None:
+def test_inches_taken_for_millimetres(bench: Bench) -> None:
     # 3.94 in are 100 mm.
     bench.put("body.stl", box((0, 0, 0), (3.94, 0.6, 0.8)))
     ran = bench.report(BAIT)

@@ -11,10 +11,10 @@ from pathlib import Path
 from typing import Any
 
 import pytest
-from command_bench import QUICK, Workbench, fault
+from command_bench import QUICK, Bench, fault
 
 
-def refused(bench: Workbench, out: str | Path, *said: str) -> None:
+def refused(bench: Bench, out: str | Path, *said: str) -> None:
     """The run is refused by one fault that says this, and every file is as it was."""
     before = bench.contents()
     told = fault(bench.run("report", "body.stl", *QUICK, "--out", out))
@@ -22,7 +22,7 @@ def refused(bench: Workbench, out: str | Path, *said: str) -> None:
     assert bench.contents() == before
 
 
-def test_someone_elses_files(bench: Workbench) -> None:
+def test_someone_elses_files(bench: Bench) -> None:
     bench.put("out/notes.txt", "bench notes")
     refused(
         bench, "out", "- out: the output folder holds what meshlure did not write", "found: notes.txt",
@@ -30,31 +30,31 @@ def test_someone_elses_files(bench: Workbench) -> None:
     )  # fmt: skip
 
 
-def test_someone_elses_files_among_ours(bench: Workbench) -> None:
+def test_someone_elses_files_among_ours(bench: Bench) -> None:
     assert bench.report("body.stl").code == 0
     bench.put("out/notes.txt", "bench notes")
     refused(bench, "out", "- out: .*did not write", "found: notes.txt")
 
 
-def test_a_file_in_the_folders_place(bench: Workbench) -> None:
+def test_a_file_in_the_folders_place(bench: Bench) -> None:
     bench.put("out", "a file")
     refused(bench, "out", "- out: the output folder is a file", "allowed: a folder", "next: name another folder")
 
 
-def test_a_folder_under_a_file(bench: Workbench) -> None:
+def test_a_folder_under_a_file(bench: Bench) -> None:
     refused(bench, "body.stl/out", "- body.stl/out: ", "found: .*body.stl", "allowed: a folder", "next: name another")
 
 
-def test_the_folder_that_one_stands_in(bench: Workbench) -> None:
+def test_the_folder_that_one_stands_in(bench: Bench) -> None:
     refused(bench, ".", r"- \.: the output folder is the one that you stand in", "next: name a folder inside it")
 
 
 @pytest.mark.skipif(not sys.platform.startswith("linux"), reason="/proc is Linux's")
-def test_a_folder_where_nothing_can_be_made(bench: Workbench) -> None:
+def test_a_folder_where_nothing_can_be_made(bench: Bench) -> None:
     refused(bench, "/proc/meshlure/out", "- /proc/meshlure/out: ", "found: ", "next: name another folder")
 
 
-def test_no_right_to_write(bench: Workbench, monkeypatch: pytest.MonkeyPatch) -> None:
+def test_no_right_to_write(bench: Bench, monkeypatch: pytest.MonkeyPatch) -> None:
     # The tests may run as one who may write anywhere, so the system's answer is put in its place.
     asked = os.access
 
@@ -82,14 +82,14 @@ def _refuse_results(monkeypatch: pytest.MonkeyPatch, code: int) -> None:
 
 
 @pytest.mark.parametrize("earlier", [False, True], ids=["no folder yet", "over an earlier run"])
-def test_a_full_disk(bench: Workbench, monkeypatch: pytest.MonkeyPatch, earlier: bool) -> None:
+def test_a_full_disk(bench: Bench, monkeypatch: pytest.MonkeyPatch, earlier: bool) -> None:
     if earlier:
         assert bench.report("body.stl").code == 0
     _refuse_results(monkeypatch, errno.ENOSPC)
     refused(bench, "out", "- out: the disk is full", "found: .* MB free", "next: free some space .*nothing was written")
 
 
-def test_a_disk_that_fails(bench: Workbench, monkeypatch: pytest.MonkeyPatch) -> None:
+def test_a_disk_that_fails(bench: Bench, monkeypatch: pytest.MonkeyPatch) -> None:
     _refuse_results(monkeypatch, errno.EIO)
     refused(
         bench, "out", "- out: the output folder cannot be written", "found: Input/output error", "next: name another"
@@ -97,7 +97,7 @@ def test_a_disk_that_fails(bench: Workbench, monkeypatch: pytest.MonkeyPatch) ->
 
 
 @pytest.mark.skipif(sys.platform == "win32", reason="limits a process as POSIX systems can")
-def test_a_file_that_may_not_grow_so_large(bench: Workbench) -> None:
+def test_a_file_that_may_not_grow_so_large(bench: Bench) -> None:
     import resource
 
     def limited() -> None:

@@ -8,7 +8,7 @@ from typing import Any
 
 import numpy as np
 import pytest
-from command_bench import BAIT, QUICK, Workbench, box
+from command_bench import BAIT, QUICK, Bench, box
 from jsonschema import Draft202012Validator
 
 from meshlure.results import schema
@@ -18,7 +18,7 @@ VOID = '[[insert]]\nname = "chamber"\nmesh = "chamber.stl"\nvoid = "sealed"\n'
 WEIGHT = '[[insert]]\nname = "belly weight"\nmesh = "weight.stl"\nmaterial = "lead"\nfit = "0.2 mm"\n'
 
 
-def written(bench: Workbench) -> dict[str, Any]:
+def written(bench: Bench) -> dict[str, Any]:
     tree: dict[str, Any] = json.loads((bench.out / "results.json").read_text(encoding="utf-8"))
     assert [error.message for error in Draft202012Validator(schema()).iter_errors(tree)] == []
     return tree
@@ -31,7 +31,7 @@ def volume(stl: bytes) -> float:
     return float((a * np.cross(b, c)).sum()) / 6
 
 
-def test_the_quick_form(bench: Workbench) -> None:
+def test_the_quick_form(bench: Bench) -> None:
     ran = bench.run(
         "report", "body.stl", "--density", "0.72 g/cm3", "--insert", "weight.stl=lead", "--unit", "mm",
         "--nose", "-x", "--back", "+z", "--name", "Alder", "--temperature", "12 degC", "--salinity", "35 g/kg",
@@ -49,7 +49,7 @@ def test_the_quick_form(bench: Workbench) -> None:
     assert tree["run"] in (bench.out / "report.html").read_text(encoding="utf-8")
 
 
-def test_the_same_bait_either_way(bench: Workbench) -> None:
+def test_the_same_bait_either_way(bench: Bench) -> None:
     assert bench.report(BAIT + WEIGHT).code == 0
     stated = written(bench)
     assert bench.report("body.stl", "--insert", "weight.stl=lead").code == 0
@@ -58,7 +58,7 @@ def test_the_same_bait_either_way(bench: Workbench) -> None:
         assert quick[key] == stated[key], key
 
 
-def test_stdout_says_what_a_maker_asks_first(bench: Workbench) -> None:
+def test_stdout_says_what_a_maker_asks_first(bench: Bench) -> None:
     ran = bench.report(BAIT)
     assert (ran.code, ran.err) == (0, "")
     # 6400 mm3 of 1.2 g/cm3 are 7.68 g, and 0.2709 oz of 28.349523 g.
@@ -71,14 +71,14 @@ def test_stdout_says_what_a_maker_asks_first(bench: Workbench) -> None:
     assert ran.out.endswith(f"  written  results.json in {bench.out}\n")
 
 
-def test_no_page(bench: Workbench) -> None:
+def test_no_page(bench: Bench) -> None:
     assert bench.report("body.stl").code == 0
     assert [path.name for path in bench.out.iterdir()] == ["results.json"]
     tree = written(bench)
     assert (tree["files"], tree["timings_s"]["page"]) == ([], 0.0)
 
 
-def test_json_prints_one_object_and_nothing_else(bench: Workbench) -> None:
+def test_json_prints_one_object_and_nothing_else(bench: Bench) -> None:
     before = bench.contents()
     ran = bench.run("report", "body.stl", *QUICK, "--json")
     assert (ran.code, ran.err) == (0, "")
@@ -89,14 +89,14 @@ def test_json_prints_one_object_and_nothing_else(bench: Workbench) -> None:
     assert bench.contents() == before
 
 
-def test_json_beside_a_folder_is_the_file(bench: Workbench) -> None:
+def test_json_beside_a_folder_is_the_file(bench: Bench) -> None:
     ran = bench.report("body.stl", "--json")
     assert (ran.code, ran.err) == (0, "")
     assert ran.out == (bench.out / "results.json").read_text(encoding="utf-8")
     assert written(bench)["files"] == []
 
 
-def test_cut_lists_its_files_and_they_are_there(bench: Workbench) -> None:
+def test_cut_lists_its_files_and_they_are_there(bench: Bench) -> None:
     ran = bench.report(BAIT + WEIGHT, "--cut")
     assert (ran.code, ran.err) == (0, "")
     tree = written(bench)
@@ -111,7 +111,7 @@ def test_cut_lists_its_files_and_they_are_there(bench: Workbench) -> None:
     assert sizes["body.stl"] <= (6400 - 104.06) * (1 + 1e-4)
 
 
-def test_a_second_run_replaces_the_first_whole(bench: Workbench) -> None:
+def test_a_second_run_replaces_the_first_whole(bench: Bench) -> None:
     assert bench.report(BAIT + WEIGHT, "--cut").code == 0
     first = written(bench)["run"]
     assert bench.report(BAIT + WEIGHT).code == 0
@@ -120,7 +120,7 @@ def test_a_second_run_replaces_the_first_whole(bench: Workbench) -> None:
     assert [path.name for path in bench.folder.iterdir() if path.name.startswith(".")] == []
 
 
-def test_exit_1_and_everything_written_where_a_fault_is_found(bench: Workbench) -> None:
+def test_exit_1_and_everything_written_where_a_fault_is_found(bench: Bench) -> None:
     # It opens through the body's side at y = 0.
     bench.put("chamber.stl", box((20, -1, 3), (6, 6, 6)))
     ran = bench.report(BAIT + VOID)
@@ -132,7 +132,7 @@ def test_exit_1_and_everything_written_where_a_fault_is_found(bench: Workbench) 
     assert bench.run("report", "minnow.toml", "--json").code == 1
 
 
-def test_a_warning_ends_with_0(bench: Workbench) -> None:
+def test_a_warning_ends_with_0(bench: Bench) -> None:
     bench.put("weight.stl", box((-2, 3, 3), (5, 4, 4)))
     ran = bench.report(BAIT + WEIGHT)
     assert (ran.code, ran.err) == (0, "")
@@ -140,14 +140,14 @@ def test_a_warning_ends_with_0(bench: Workbench) -> None:
 
 
 @pytest.mark.parametrize("words", [["--out"], ["--foo"], [], ["body.stl", "extra.stl"]])
-def test_exit_2_where_it_is_used_wrongly(bench: Workbench, words: list[str]) -> None:
+def test_exit_2_where_it_is_used_wrongly(bench: Bench, words: list[str]) -> None:
     ran = bench.run("report", *words)
     assert (ran.code, ran.out) == (2, "")
     assert "Error: " in ran.err
     assert "Traceback" not in ran.err
 
 
-def test_nowhere_to_write_to(bench: Workbench) -> None:
+def test_nowhere_to_write_to(bench: Bench) -> None:
     ran = bench.run("report", "body.stl", *QUICK)
     assert (ran.code, ran.out) == (2, "")
     assert "next: add --out DIR, or --json" in ran.err
@@ -163,7 +163,7 @@ def _break(monkeypatch: pytest.MonkeyPatch, error: Exception) -> None:
     monkeypatch.setattr("meshlure.examine.study", broken)
 
 
-def test_exit_3_and_an_apology_for_a_fault_of_ours(bench: Workbench, monkeypatch: pytest.MonkeyPatch) -> None:
+def test_exit_3_and_an_apology_for_a_fault_of_ours(bench: Bench, monkeypatch: pytest.MonkeyPatch) -> None:
     _break(monkeypatch, ZeroDivisionError("division by zero"))
     before = bench.contents()
     ran = bench.report("body.stl")
@@ -174,7 +174,7 @@ def test_exit_3_and_an_apology_for_a_fault_of_ours(bench: Workbench, monkeypatch
     assert bench.contents() == before
 
 
-def test_debug_shows_where_it_happened(bench: Workbench, monkeypatch: pytest.MonkeyPatch) -> None:
+def test_debug_shows_where_it_happened(bench: Bench, monkeypatch: pytest.MonkeyPatch) -> None:
     _break(monkeypatch, ZeroDivisionError("division by zero"))
     ran = bench.report("body.stl", "--debug")
     assert (ran.code, ran.out) == (3, "")
@@ -183,18 +183,18 @@ def test_debug_shows_where_it_happened(bench: Workbench, monkeypatch: pytest.Mon
     assert "We are sorry." in ran.err
 
 
-def test_debug_changes_nothing_for_bad_input(bench: Workbench) -> None:
+def test_debug_changes_nothing_for_bad_input(bench: Bench) -> None:
     plain, debug = bench.report("bodi.stl"), bench.report("bodi.stl", "--debug")
     assert (plain.code, plain.err) == (2, debug.err)
     assert debug.code == 2
 
 
-def test_too_little_memory_is_no_fault_of_ours(bench: Workbench, monkeypatch: pytest.MonkeyPatch) -> None:
+def test_too_little_memory_is_no_fault_of_ours(bench: Bench, monkeypatch: pytest.MonkeyPatch) -> None:
     _break(monkeypatch, MemoryError())
     ran = bench.report("body.stl")
     assert (ran.code, ran.out) == (2, "")
     assert "more memory" in ran.err
 
 
-def test_version(bench: Workbench) -> None:
+def test_version(bench: Bench) -> None:
     assert bench.run("--version") == type(bench.run("--version"))(0, f"meshlure {VERSION}\n", "")

@@ -13,7 +13,7 @@ from collections.abc import Callable
 from pathlib import Path
 
 import pytest
-from command_bench import QUICK, SCRIPT, Workbench, box
+from command_bench import QUICK, SCRIPT, Bench, box
 
 FULL = Path("/dev/full")
 
@@ -26,14 +26,14 @@ main()
 """
 
 
-def test_results_and_narration_keep_apart(bench: Workbench) -> None:
+def test_results_and_narration_keep_apart(bench: Bench) -> None:
     ran = bench.launch("report", "body.stl", *QUICK, "--json", env=os.environ | {"FORCE_COLOR": "1", "LC_ALL": "C"})
     assert (ran.code, ran.err) == (0, "")
     assert json.loads(ran.out)["name"] == "body"
     assert "\x1b" not in ran.out
 
 
-def test_a_terminal_without_a_minus_sign_shows_a_hyphen(bench: Workbench) -> None:
+def test_a_terminal_without_a_minus_sign_shows_a_hyphen(bench: Bench) -> None:
     narrow = os.environ | {"PYTHONIOENCODING": "ascii", "PYTHONUTF8": "0"}
     ran = bench.launch("report", "body.stl", *QUICK, "--no-page", "--out", "out", "--name", "Ålder", env=narrow)
     assert (ran.code, ran.err) == (0, "")
@@ -45,7 +45,7 @@ def test_a_terminal_without_a_minus_sign_shows_a_hyphen(bench: Workbench) -> Non
 
 
 @pytest.mark.parametrize(("chamber", "code"), [((20, 3, 3), 0), ((20, -1, 3), 1)], ids=["done", "fault found"])
-def test_a_reader_that_has_gone_changes_nothing(bench: Workbench, chamber: tuple[int, int, int], code: int) -> None:
+def test_a_reader_that_has_gone_changes_nothing(bench: Bench, chamber: tuple[int, int, int], code: int) -> None:
     bench.put("chamber.stl", box(chamber, (6, 4, 6)))
     words = ["report", "body.stl", *QUICK, "--insert", "chamber.stl=sealed", "--no-page", "--out", "out", "--json"]
     reading, writing = os.pipe()
@@ -59,7 +59,7 @@ def test_a_reader_that_has_gone_changes_nothing(bench: Workbench, chamber: tuple
 
 
 @pytest.mark.skipif(not FULL.exists(), reason="this system has no device that is always full")
-def test_stdout_on_a_full_disk(bench: Workbench) -> None:
+def test_stdout_on_a_full_disk(bench: Bench) -> None:
     with FULL.open("w") as full:
         done = subprocess.run(
             [SCRIPT, "report", "body.stl", *QUICK, "--json"],
@@ -71,7 +71,7 @@ def test_stdout_on_a_full_disk(bench: Workbench) -> None:
 
 
 @pytest.mark.skipif(sys.platform == "win32", reason="sends a POSIX signal")
-def test_ctrl_c_leaves_nothing(bench: Workbench) -> None:
+def test_ctrl_c_leaves_nothing(bench: Bench) -> None:
     before = bench.contents()
     staging = bench.folder / "new"
     words = ["report", "body.stl", *QUICK, "--out", "new/out"]

@@ -1,4 +1,4 @@
-"""A workbench for the command line: a folder with a body and a weight, and the command run in this process."""
+"""A bench for the command line: a folder with a body and a weight, and the command run in this process."""
 
 from __future__ import annotations
 
@@ -15,7 +15,7 @@ import pytest
 
 from meshlure.cli import main
 
-BAD_MESHES = Path(__file__).parents[1] / "bad_meshes"
+BAD_MESHES = Path(__file__).parent / "bad_meshes"
 BUILD: dict[str, Any] = runpy.run_path(str(BAD_MESHES / "build.py"))
 SCRIPT = Path(sys.executable).with_name("meshlure")
 """The command as pip installed it."""
@@ -51,7 +51,7 @@ def box(low: Sequence[float], size: Sequence[float]) -> bytes:
     return data
 
 
-class Workbench:
+class Bench:
     """A folder with body.stl, 40 x 10 x 16 mm from the origin on, and weight.stl, 5 x 4 x 4 mm inside it."""
 
     def __init__(self, folder: Path, monkeypatch: pytest.MonkeyPatch, capsys: pytest.CaptureFixture[str]) -> None:
