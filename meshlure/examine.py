@@ -20,7 +20,8 @@ from meshlure.physics.drag import Drag
 from meshlure.physics.passage import LAYERS, LEADS, Passage, passage
 from meshlure.physics.repose import Ends, Vessel
 from meshlure.posing import pose
-from meshlure.results import account, passage as passage_tree, pieces, shape, water
+from meshlure.results import account, pieces, shape, water
+from meshlure.results import passage as passage_tree
 from meshlure.results.study import Study
 from meshlure.stock.waters import standard_air
 from meshlure.version import VERSION

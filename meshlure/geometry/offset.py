@@ -24,8 +24,8 @@ def grown(surface: Surface, distance: float) -> Surface:
 
     Notes
     -----
-    Each vertex moves along the angle-weighted mean of its faces' normals, so far that it clears every one of them by the
-    distance: faces move in parallel, edges stay mitred, a box grows to a box. Where that would make the skin cross
+    Each vertex moves along the angle-weighted mean of its faces' normals, so far that it clears every one of them by
+    the distance: faces move in parallel, edges stay mitred, a box grows to a box. Where that would make the skin cross
     itself or a corner stick out more than about three times the distance, the Minkowski sum with a ball is taken on a
     copy simplified to a tenth of the distance, which is slower and leaves a gap up to a fifth wider.
 

@@ -65,7 +65,7 @@ class Cut:
 
     @cached_property
     def section(self) -> Section:
-        """Area, centroid, second moments and perimeter of the section by Green's theorem, a coat's own section included.
+        """Area, centroid, second moments and perimeter of the section by Green's theorem, a coat's section included.
 
         Notes
         -----

@@ -22,7 +22,8 @@ class Rose:
     Attributes
     ----------
     plane : tuple of str
-        Per direction: around (across the bait, from side to back), level (from nose to side) or upright (from nose to back).
+        Per direction: around (across the bait, from side to back), level (from nose to side) or upright (from nose to
+        back).
     angle : (n,) array, rad
         From the plane's first direction to its second.
     axis : (n, 3) array
@@ -60,7 +61,11 @@ def rose(surface: Surface, pairs: EdgePairs, frame: Frame) -> Rose:
     -----
     The other half of each turn shows the same area from behind.
     """
-    planes = (("around", frame.side, frame.back), ("level", frame.nose, frame.side), ("upright", frame.nose, frame.back))
+    planes = (
+        ("around", frame.side, frame.back),
+        ("level", frame.nose, frame.side),
+        ("upright", frame.nose, frame.back),
+    )
     steps = np.arange(round(np.pi / ROSE_STEP)) * ROSE_STEP
     names, angles, directions = [], [], []
     for name, first, second in planes:

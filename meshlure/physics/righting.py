@@ -7,8 +7,8 @@ from dataclasses import dataclass
 import numpy as np
 
 from meshlure.geometry.surface import Floats
-from meshlure.physics.potential import Potential, State
 from meshlure.physics.posture import horizontal
+from meshlure.physics.potential import Potential, State
 
 
 @dataclass(frozen=True, eq=False)
@@ -54,7 +54,8 @@ def righting(potential: Potential, state: State, nose: Floats, side: Floats) -> 
     left = np.cross(state.up, along)
     left = left if left @ side >= 0 else -left
     curves = []
-    for plane, towards, heels in (("sideways", left, HEELS), ("fore_aft", along, HEELS[np.abs(HEELS) <= np.pi / 2 + 1e-9])):
+    pitches = HEELS[np.abs(HEELS) <= np.pi / 2 + 1e-9]
+    for plane, towards, heels in (("sideways", left, HEELS), ("fore_aft", along, pitches)):
         near = state
         arms = np.empty(len(heels))
         # From the posture outwards both ways, so that each draught starts from its neighbour's.

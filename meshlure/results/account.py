@@ -120,10 +120,11 @@ def _surroundings(bait: Bait) -> list[Tree]:
     for key, value in (("temperature", f"{water.temperature} °C"), ("salinity", f"{water.salinity} g/kg")):
         if key in plan.water.assumed:
             rows.append(_row(f"{key} of the water", value, "nothing stated", assumed=True))
+    cast = f"{cast_speed(bait)[0]:g} m/s"
     if plan.cast.sinker is not None:
-        rows.append(_row("speed of the cast", f"{cast_speed(bait)[0]:g} m/s", "the sinker's distance is not used here", assumed=True))
+        rows.append(_row("speed of the cast", cast, "the sinker's distance is not used here", assumed=True))
     elif "speed" in plan.cast.assumed:
-        rows.append(_row("speed of the cast", f"{cast_speed(bait)[0]:g} m/s", "a one-handed cast; from memory", assumed=True))
+        rows.append(_row("speed of the cast", cast, "a one-handed cast; from memory", assumed=True))
     if plan.retrieve.assumed:
         speeds = ", ".join(f"{speed:g}" for speed in plan.retrieve.speeds)
         rows.append(_row("speeds of the retrieve", f"{speeds} m/s", "common practice, no source", assumed=True))

@@ -22,5 +22,5 @@ def degrees(angle: float | None) -> float | None:
 
 
 def to_fives(angle: float) -> float:
-    """Return an angle in degrees rounded to a step of five: for postures that a millimetre turns by more than twenty."""
+    """Return an angle in degrees rounded to a step of five, as for a posture that a millimetre turns by over twenty."""
     return round(angle / 5) * 5.0 + 0.0

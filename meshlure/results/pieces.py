@@ -83,7 +83,8 @@ def facets(pieces: Sequence[MeshPiece], volumes: Mapping[str, float]) -> list[Tr
 
 def pieces(composition: Composition, ends: Mapping[str, str]) -> list[Tree]:
     """Return every piece as it counts, the balls at the given ends."""
-    return [_part(part) for part in composition.parts] + [_balls(row, ends[row.balls.chamber]) for row in composition.rows]
+    rows = [_balls(row, ends[row.balls.chamber]) for row in composition.rows]
+    return [_part(part) for part in composition.parts] + rows
 
 
 def _part(part: Part) -> Tree:

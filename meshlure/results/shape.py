@@ -63,7 +63,10 @@ def stations(found: Stations, tip: float) -> Tree:
 
 
 def views(
-    silhouettes: Sequence[tuple[str, Outline]], pieces: Sequence[tuple[str, str, Surface, EdgePairs]], frame: Frame, tip: float
+    silhouettes: Sequence[tuple[str, Outline]],
+    pieces: Sequence[tuple[str, str, Surface, EdgePairs]],
+    frame: Frame,
+    tip: float,
 ) -> tuple[View, ...]:
     """Return side, top and front view with every piece's outline.
 
