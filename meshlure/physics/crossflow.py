@@ -12,8 +12,8 @@ from meshlure.geometry.surface import Floats
 
 _RATIO: Final = (0.125, 0.25, 0.5, 1.0, 2.0, 4.0, 8.0)
 _ELLIPSE_CD: Final = (1.9, 1.8, 1.6, 1.2, 0.65, 0.35, 0.25)
-"""Elliptic sections, depth along the flow over width across it, below the drag crisis. 0.5 to 8: White, Fluid Mechanics,
-table 7.2 after Hoerner (from memory); a plate across the flow has 2.0 without end, so thinner ones run towards that."""
+"""Elliptic sections, depth along the flow over width across it, below the drag crisis. 0.5 to 8: White, Fluid
+Mechanics, table 7.2 after Hoerner (from memory); an endless plate has 2.0, so thinner ones run towards that."""
 
 
 def section_cd(depth_over_width: Floats) -> Floats:
@@ -52,8 +52,8 @@ class Crossflow:
     position: float
 
 
-def crossflow(stations: Stations, towards: int) -> Crossflow:
-    """Return what a flow along one of the two lateral directions meets.
+def crossflow_strips(stations: Stations, towards: int) -> Floats:
+    """Return section coefficient times width at each station, (n,) array, m, without the loss round the ends.
 
     Parameters
     ----------
@@ -63,7 +63,19 @@ def crossflow(stations: Stations, towards: int) -> Crossflow:
     """
     depth, width = stations.spread[:, towards], stations.spread[:, 1 - towards]
     ratio = np.divide(depth, width, out=np.ones_like(depth), where=width > 0)
-    strips = section_cd(ratio) * width
+    return np.asarray(section_cd(ratio) * width)
+
+
+def crossflow(stations: Stations, towards: int) -> Crossflow:
+    """Return what a flow along one of the two lateral directions meets.
+
+    Parameters
+    ----------
+    stations : Stations
+    towards : int
+        0 for a flow along the first lateral direction (which sees the second as width), 1 for the other.
+    """
+    width, strips = stations.spread[:, 1 - towards], crossflow_strips(stations, towards)
     area = float(np.trapezoid(width, stations.position))
     total = float(np.trapezoid(strips, stations.position))
     moment = float(np.trapezoid(strips * stations.position, stations.position))
