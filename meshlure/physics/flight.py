@@ -22,6 +22,13 @@ OFF_END: Final = np.radians(15.0)
 DIRECTIONS: Final = 400
 """Directions over which a tumbling bait's drag is averaged."""
 
+_NUDGE: Final = 0.02
+_HEAVY: Final = 0.85
+_ROUNDS: Final = (12, 60)
+_STILL: Final = 3e-4
+"""The search for a trim in both planes: how far off its balance it starts (rad), the share of its step that it keeps
+to the next, its least and most steps, and the step (rad) that ends it."""
+
 ANGLES: Final = np.radians(np.arange(5, 80, 5))
 """Launch angles of the curve of distance."""
 
@@ -96,17 +103,24 @@ def moment_curves(glider: Glider, mass: Moments, air: Air) -> tuple[MomentCurve,
     air : Air
     """
     angle = np.arange(-np.pi, np.pi + STEP / 2, STEP)
-    pressure = air.density * air.throw.speed**2 / 2
     nose = glider.frame.nose
     curves = []
     for plane, lateral in plane_axes(glider).items():
         towards = np.cos(angle)[:, None] * nose + np.sin(angle)[:, None] * lateral
         hinge = np.cross(nose, lateral)
-        moment = pressure * glider.loads(towards).about(mass.centre) @ hinge
-        if air.tie is not None and air.throw.pull:
-            moment = moment + np.cross(air.tie - mass.centre, -air.throw.pull * towards) @ hinge
-        curves.append(MomentCurve(plane, angle, moment, float(hinge @ mass.inertia @ hinge)))
+        force, moment = _acting(glider, mass, air, towards)
+        curves.append(MomentCurve(plane, angle, moment @ hinge, float(hinge @ mass.inertia @ hinge), force @ lateral))
     return tuple(curves)
+
+
+def _acting(glider: Glider, mass: Moments, air: Air, towards: Floats) -> tuple[Floats, Floats]:
+    """Forces, and moments about the centre of gravity, of air and line for directions of motion, (n, 3) arrays."""
+    pressure, loads = air.density * air.throw.speed**2 / 2, glider.loads(towards)
+    force, moment = pressure * loads.force, pressure * loads.about(mass.centre)
+    if air.tie is not None and air.throw.pull:
+        pull = -air.throw.pull * towards
+        force, moment = force + pull, moment + np.cross(air.tie - mass.centre, pull)
+    return force, moment
 
 
 def fly(
@@ -128,13 +142,14 @@ def fly(
     curves = moment_curves(glider, mass, air)
     lead = leading(curves) if end is None else bearing(curves, end)
     other = bearing(curves, "tail" if lead.end == "nose" else "nose")
-    towards = _towards(glider, curves, lead)
+    towards = _towards(glider, mass, air, curves, lead)
     everywhere = spread_directions(DIRECTIONS) if lead.verdict == "tumbles" else towards[None, :]
     whole = float(-np.einsum("ij,ij->i", glider.loads(everywhere).force, everywhere).mean())
     body = float(glider.body_area(everywhere).mean())
     low, high = band[lead.end]
     paths = [
-        trajectory(mass.amount, max(whole + body * (share - 1), 1e-9), air.throw, air.density) for share in (1.0, low, high)
+        trajectory(mass.amount, max(whole + body * (share - 1), 1e-9), air.throw, air.density)
+        for share in (1.0, low, high)
     ]
     return Flight(
         bearing=lead,
@@ -150,20 +165,38 @@ def fly(
     )
 
 
-def _towards(glider: Glider, curves: tuple[MomentCurve, ...], lead: Bearing) -> Floats:
-    """Direction of motion with the leading end at its trim in both planes."""
-    sign = 1.0 if lead.end == "nose" else -1.0
-    direction = sign * glider.frame.nose
+def _towards(glider: Glider, mass: Moments, air: Air, curves: tuple[MomentCurve, ...], lead: Bearing) -> Floats:
+    """Direction of motion in which the bait, leading end first, comes to rest in both planes at once.
+
+    Notes
+    -----
+    From the trim of the plane that is farther off the bait is let turn as its moments bid, without inertia. Adding the
+    trims of both planes up would count the angle of a round bait's trim, which lies on a cone, twice.
+    """
+    nose = glider.frame.nose
+    direction = nose if lead.end == "nose" else -nose
     if lead.verdict == "tumbles":
         return np.asarray(direction)
+    offs = []
     for curve, lateral in zip(curves, plane_axes(glider).values(), strict=True):
         trim = curve.nearest_trim(lead.end)
-        if trim is not None:
-            # From the tail, the angle grows the other way round: a positive one still leans towards the lateral side.
-            away = min(abs(trim.from_end(lead.end)), np.radians(80.0))
-            side = np.sign(np.sin(trim.angle))
-            direction = direction + side * np.tan(away) * lateral
-    return np.asarray(direction / np.linalg.norm(direction))
+        away = 0.0 if trim is None else abs(trim.from_end(lead.end))
+        # From the tail, the angle grows the other way round: a positive one still leans towards the lateral side.
+        side = 0.0 if trim is None else np.sign(np.sin(trim.angle))
+        offs.append((away, np.cos(away) * direction + side * np.sin(away) * lateral))
+    towards = max(offs, key=lambda off: off[0])[1] + _NUDGE * glider.frame.back + _NUDGE * glider.frame.side
+    towards = towards / np.linalg.norm(towards)
+    stiffest = max(float(np.abs(np.diff(curve.moment)).max()) for curve in curves) / STEP
+    step = np.zeros(3)
+    for number in range(_ROUNDS[1]):
+        moment = _acting(glider, mass, air, towards[None, :])[1][0]
+        # The bait turns by the moment, so that the motion turns the other way in its own frame; roll is left out.
+        step = _HEAVY * step + np.cross(towards, moment - (moment @ nose) * nose) / stiffest
+        towards = towards + step
+        towards = towards / np.linalg.norm(towards)
+        if number >= _ROUNDS[0] and float(np.linalg.norm(step)) < _STILL:
+            break
+    return np.asarray(towards)
 
 
 def _swing(curves: tuple[MomentCurve, ...], lead: Bearing) -> float | None:

@@ -1,9 +1,9 @@
-"""Trim: at which angles a bait in flight meets the air without turning, how wide their wells are, how fast it swings."""
+"""Trim: at which angles a bait in flight meets the air without turning, and how far it swings about them."""
 
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 from typing import Final
 
@@ -37,12 +37,19 @@ class MomentCurve:
         Positive lessens the angle.
     inertia : float, kg m2
         About the axis that it turns on.
+    force : (n,) array, N
+        Across the bait in that plane, towards its back or its left side.
     """
 
     plane: str
     angle: Floats
     moment: Floats
     inertia: float
+    force: Floats
+
+    def moved(self, shift: float) -> MomentCurve:
+        """Return the curve with the centre of gravity so much nearer the nose, m; the inertia is kept."""
+        return replace(self, moment=self.moment - shift * self.force)
 
     @cached_property
     def work(self) -> Floats:
