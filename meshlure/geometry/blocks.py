@@ -190,6 +190,10 @@ class BlockIndex:
         shift = float(self.origin @ n)
         return shift - self._highest(-n), shift + self._highest(n)
 
+    def _extent(self) -> float:
+        """Greatest extent along an axis, m."""
+        return 2 * float((np.abs(self.groups.middle) + self.groups.half).max())
+
     def _highest(self, n: Floats) -> float:
         middle, half = self.blocks.middle @ n, self.blocks.half @ np.abs(n)
         # Every box holds a corner at or above its bottom, so only boxes reaching over the best bottom matter.
@@ -253,7 +257,7 @@ class BlockIndex:
             coat_moment=coat_moment + self.origin * coat,
             start=start.T + (apex + self.origin),
             end=end.T + (apex + self.origin),
-            ribbon=_ribbon(tips.thickness, tips.normals, n) if self.coated else None,
+            ribbon=_ribbon(tips.thickness, tips.normals, n, self._extent()) if self.coated else None,
         )
 
     def _gathered(self, n: Floats, local: float) -> tuple[Floats, Floats]:
@@ -372,9 +376,9 @@ class _Tips:
         )
 
 
-def _ribbon(thickness: Floats, normals: Floats, plane: Floats) -> Floats:
+def _ribbon(thickness: Floats, normals: Floats, plane: Floats, extent: float) -> Floats:
     """Width of the coat's own section with a plane across each face, m: thickness over the sine between them."""
     length = np.sqrt(_dot(normals, normals))
     cosine = _dot(plane, normals) / np.where(length == 0, 1.0, length)
-    # A face that lies in the plane would have a ribbon without end; 1e-6 of a radian stands for it.
-    return np.asarray(thickness / np.sqrt(np.maximum(1 - cosine**2, 1e-12)))
+    # On a face that all but lies in the plane the ribbon ends with the face, at the latest with the body.
+    return np.asarray(thickness / np.maximum(np.sqrt(np.maximum(1 - cosine**2, 0.0)), thickness / extent + 1e-12))

@@ -68,7 +68,7 @@ def barriers(rough: Potential, full: Potential, rests: Sequence[Rest], nose: Flo
     full : Potential
         Of the hull itself.
     rests : sequence of Rest
-        Every stable posture, from `posture.resting`.
+        Every stable posture, from `posture.resting`; directions only are taken from them.
     nose : (3,) array
         Direction out of the nose; the grid's lines follow it, as the valleys of a slender bait do.
 
@@ -102,20 +102,22 @@ def barriers(rough: Potential, full: Potential, rests: Sequence[Rest], nose: Flo
             continue
         top = _pass(full, saddle.up)
         for end in open_ends:
-            found[end] = _barrier(rests[end], top or full.at(saddle.up, saddle), top is not None)
+            found[end] = _barrier(full, rests[end], top or full.at(saddle.up, saddle), top is not None)
         if len(found) == len(rests):
             break
     if len(found) < len(rests):
         ups = np.array([rest.state.up for rest in rests])
         for number, over in enumerate(_grid_ways(grid, energies, ups, landscape.energies(ups))):
             if number not in found:
-                found[number] = _barrier(rests[number], full.at(over), False)
+                found[number] = _barrier(full, rests[number], full.at(over), False)
     return tuple(found[number] for number in range(len(rests)))
 
 
-def _barrier(rest: Rest, top: State, settled: bool) -> Barrier:
+def _barrier(full: Potential, rest: Rest, top: State, settled: bool) -> Barrier:
+    # The posture may have been settled without hardware that is dry there; its height is taken where the pass's is.
+    height = full.at(rest.state.up, rest.state).energy
     # A way starts at the posture itself, so that its highest point is nowhere below it.
-    return Barrier(max(top.energy, rest.state.energy) - rest.state.energy, top.up, settled)
+    return Barrier(max(top.energy, height) - height, top.up, settled)
 
 
 def _saddles(rough: Potential, grid: DirectionGrid, energies: Floats) -> list[State]:

@@ -93,7 +93,8 @@ class Hull:
 
         Notes
         -----
-        Newton's method (the waterplane's area is the derivative) inside a bracket that shrinks with every cut.
+        Newton's method (the waterplane's area is the derivative) inside a bracket that shrinks with every cut. Where a
+        coated face lies in the water's surface the volume jumps by that face's coat; it is then wetted in part.
         """
         if not self.point_volume < volume < self.volume:
             raise ValueError(f"{volume * 1e6:.4g} cm3 cannot be displaced: the hull holds {self.volume * 1e6:.4g} cm3")
@@ -106,19 +107,26 @@ class Hull:
         for _ in range(_ROUNDS):
             missing = volume - best.volume
             if abs(missing) <= close * volume:
-                break
+                return best
             low, high = (height, high) if missing > 0 else (low, height)
             area = best.cut.section.area
             step = missing / area if area > 0 else np.inf
             if abs(step) <= 2 * np.spacing(abs(height)):
                 # Far from the origin of the coordinates a height has too few digits to come closer.
-                break
+                return best
             wished = height + step
             height = wished if low < wished < high else (low + high) / 2
             if not low < height < high:
                 break
             best = self.at(up, height)
-        return best
+        return self._awash(up, low, high, volume)
+
+    def _awash(self, up: Floats, low: float, high: float, volume: float) -> Immersed:
+        """Return the hull where its volume jumps: the coat of a face lying in the water's surface is wetted in part."""
+        under, over = self.at(up, low), self.at(up, high)
+        share = (volume - under.volume) / (over.volume - under.volume)
+        moment = (1 - share) * under.volume * under.centre + share * over.volume * over.centre
+        return Immersed(under.cut, volume, moment / volume)
 
     def _reach(self, up: Floats) -> float:
         groups = self.index.groups

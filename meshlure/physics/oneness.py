@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
 
 import numpy as np
 
@@ -17,6 +17,9 @@ _LEVEL = 0.05
 """How far the heights of two directions over a common axis may differ for the two to lie on one ring round it."""
 
 _PARALLEL = 0.1
+
+_PLACES = (0.5, 0.29, 0.13)
+"""Shares of the way between two states at which it is looked at: no regular section has all of them alike."""
 
 
 def free_direction(state: State) -> Floats | None:
@@ -49,26 +52,27 @@ def _linked(potential: Potential, one: State, other: State) -> bool:
         return False
     if _free_all_round(one) and _free_all_round(other):
         # As an even ball is; any way will do.
-        halfway = _unit(one.up + other.up, tangents(one.up)[:, 0])
-        return bool(abs(potential.at(halfway, one).energy - one.energy) <= _LIKE)
-    halfway_round = _halfway_round(one, other)
-    if halfway_round is None:
+        axis = np.cross(one.up, _unit(np.asarray(other.up - (other.up @ one.up) * one.up), tangents(one.up)[:, 0]))
+        return all(abs(state.energy - one.energy) <= _LIKE for state in _between(potential, one, other, axis))
+    axis_of_ring = _axis(one, other)
+    if axis_of_ring is None:
         return False
-    between = potential.at(halfway_round, one)
-    heights, directions = between.modes()
-    if heights[1] <= 0:
-        return False
-    # The valley's floor, where the halfway point lies on its side.
-    slope = float(directions[:, 1] @ between.lever)
-    return bool(abs(between.energy - slope**2 / (2 * heights[1]) - one.energy) <= _LIKE)
+    return all(_floor(state) <= one.energy + _LIKE for state in _between(potential, one, other, axis_of_ring))
+
+
+def _floor(state: State) -> float:
+    """Energy of the valley's floor beside a state on its side, m; infinite on a ridge."""
+    heights, directions = state.modes()
+    slope = float(directions[:, 1] @ state.lever)
+    return state.energy - slope**2 / (2 * float(heights[1])) if heights[1] > 0 else np.inf
 
 
 def _free_all_round(state: State) -> bool:
     return bool(np.abs(state.modes()[0]).max() < tolerances.NEUTRAL_HEIGHT)
 
 
-def _halfway_round(one: State, other: State) -> Floats | None:
-    """Return the direction halfway between two on a ring round some axis of the body; None where no ring holds both.
+def _axis(one: State, other: State) -> Floats | None:
+    """Return the axis of the body round which two directions lie on one ring, free along it; None where there is none.
 
     Two rings may be mirror images, one nose up and one nose down, with equal energies and stiffnesses.
     """
@@ -80,11 +84,18 @@ def _halfway_round(one: State, other: State) -> Floats | None:
         # On opposite sides of a ring the free directions are parallel; the axis is square to the way across too.
         axis = np.cross(first, one.up - other.up)
     axis = axis / np.linalg.norm(axis)
-    if abs(axis @ (one.up - other.up)) > _LEVEL:
-        return None
-    flat, facing = (up - (up @ axis) * axis for up in (one.up, other.up))
-    half = _unit(flat + facing, np.cross(axis, flat)) * np.linalg.norm(flat)
-    return _unit((one.up @ axis) * axis + half, one.up)
+    return None if abs(axis @ (one.up - other.up)) > _LEVEL else np.asarray(axis)
+
+
+def _between(potential: Potential, one: State, other: State, axis: Floats) -> Iterator[State]:
+    """Yield states on the way round an axis from one direction to another."""
+    along = (one.up @ axis) * axis
+    arm = one.up - along
+    quarter = np.cross(axis, arm)
+    angle = float(np.arctan2(other.up @ quarter, other.up @ arm))
+    for share in _PLACES:
+        up = along + np.cos(share * angle) * arm + np.sin(share * angle) * quarter
+        yield potential.at(np.asarray(up / np.linalg.norm(up)), one)
 
 
 def _unit(vector: Floats, otherwise: Floats) -> Floats:

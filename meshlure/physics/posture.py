@@ -20,7 +20,9 @@ STARTS = 36
 _ROUGH = 1e-4
 """rad. Precision of the search on the coarse copy; the full mesh settles the rest."""
 
-_BOWL = np.cos(np.radians(4.0))
+_BOWL = np.cos(np.radians(1.0))
+"""A descent this near to a minimum found before, in the bowl round it, ends there; two minima nearer count as one."""
+
 _SAME = np.cos(np.radians(0.05))
 
 

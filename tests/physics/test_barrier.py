@@ -130,6 +130,14 @@ def test_against_a_flood_of_energies_in_a_fine_net(seed: int) -> None:
         assert top.energy - rest.state.energy == pytest.approx(barrier.rise, rel=1e-9)
 
 
+def test_a_posture_settled_with_a_hook_dry_is_measured_with_it_wet_as_the_pass_is() -> None:
+    surface = shapes.lumpy(6, level=3)
+    wet, dry = Afloat(surface, 0.55, None, 0.0, 5e-8, (0.0, 0.02, 0.0)), Afloat(surface, 0.55)
+    for barrier, rest in zip(barriers(wet.rough, wet.potential, dry.rests(), NOSE), dry.rests(), strict=True):
+        assert barrier is not None
+        assert barrier.rise == pytest.approx(wet.at(barrier.over).energy - wet.at(rest.state.up).energy, rel=1e-6)
+
+
 def test_barriers_turn_with_the_bait() -> None:
     surface, turn = shapes.lumpy(6, level=3), shapes.turn(6)
     body, moved = Afloat(surface, 0.55), Afloat(surface.moved(turn, np.array([0.1, 0.2, 0.3])), 0.55)

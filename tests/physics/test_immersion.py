@@ -177,6 +177,24 @@ def test_a_coat_displaces_by_its_wetted_skin() -> None:
     assert body.settled(UP, found.volume).cut.height == pytest.approx(draught - height / 2, abs=1e-13)
 
 
+def test_a_coated_deck_awash_is_wetted_in_part() -> None:
+    # The deck's coat comes under all at once; between, so much of it is wet as makes up the volume. B by hand: box,
+    # bottom coat, side coats and a part of the deck's, each at its own middle.
+    length, beam, height, coat = 0.1, 0.03, 0.02, 0.2e-3
+    body = hull(shapes.box((length, beam, height), level=2), coat)
+    solid, deck, sides = length * beam * height, coat * length * beam, coat * 2 * (length + beam) * height
+    volume = solid + deck + sides + 0.3 * deck
+    found = body.settled(UP, volume)
+    assert found.volume == pytest.approx(volume, rel=1e-14)
+    assert found.cut.height == pytest.approx(height / 2, abs=1e-12)
+    assert found.centre == pytest.approx([0, 0, (0.3 - 1) * deck * height / 2 / volume], abs=1e-12)
+    section = found.cut.section
+    assert section.area == pytest.approx(length * beam + 2 * (length + beam) * coat, rel=1e-9)
+    # A hair off the level the ribbon ends with the body instead of going on without end.
+    aslant = body.at(np.array([0, 1e-9, 1.0]), height / 2 - 1e-12).cut.section
+    assert section.area < aslant.area < 8 * section.area
+
+
 @given(st.integers(0, 10_000), st.floats(0.002, 0.998))
 def test_what_is_displaced_is_what_was_asked(seed: int, share: float) -> None:
     body = hull(shapes.lumpy(seed, level=2), 0.1e-3, 2e-8, np.array([0.0, 0.0, -0.05]))

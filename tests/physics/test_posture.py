@@ -42,7 +42,7 @@ def log_tilt(share: float) -> float:
 
 
 @pytest.mark.parametrize(
-    "share", [0.1, 0.2, 0.22, 0.24, 0.26, 0.275, 0.3, 0.5, 0.65, 0.73, 0.74, 0.76, 0.78, 0.8, 0.95]
+    "share", [0.1, 0.2, 0.213, 0.22, 0.24, 0.26, 0.275, 0.3, 0.5, 0.65, 0.73, 0.74, 0.76, 0.78, 0.8, 0.95]
 )
 def test_every_way_a_square_log_rests(share: float) -> None:
     tilt = np.radians(log_tilt(share))
@@ -59,6 +59,19 @@ def test_every_way_a_square_log_rests(share: float) -> None:
         assert rest.state.modes()[0][0] > 0
     assert sum(rest.share for rest in rests) == pytest.approx(1)
     assert sum(rest.upright for rest in rests) == 1
+
+
+@pytest.mark.parametrize(("share", "angle"), [(0.2114, 1.3), (0.2815, 45.0)])
+def test_wells_with_next_to_no_rise_between_them_count_as_one_free_posture(share: float, angle: float) -> None:
+    # Just past the transition the log lies 1.3 degrees to either side of flat, its metacentric height microns. But the
+    # four flat sides stay four postures, alike in all though they are.
+    rests = log(share).rests()
+    assert len(rests) == 4
+    for rest in rests:
+        assert rest.neutral is not None
+        assert np.abs(rest.neutral @ np.cross(rest.state.up, EAST)) == pytest.approx(1, rel=1e-9)
+        off = np.degrees(np.arctan2(np.abs(rest.state.up[1:]).min(), np.abs(rest.state.up[1:]).max()))
+        assert off == pytest.approx(angle, abs=0.1)
 
 
 def test_where_a_square_log_changes_its_way_to_rest() -> None:
