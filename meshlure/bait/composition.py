@@ -150,7 +150,7 @@ def compose(bait: Bait) -> Composition:
         findings += met
     if material.amount <= tolerances.VOLUME_SHARE * solid_moments(body.surface).amount:
         findings.append(_nothing_left(body))
-    skin = _skin(bait, outer, filling, inner)
+    skin = _skin(bait, outer, filling)
     short = deficit(body, pieces, filling, skin.surface, left)
     findings += coarse(body, bait.water.density)
     parts = [_part(body, material), *_filling_parts(pieces, filling)]
@@ -176,6 +176,7 @@ class _Outer:
     own: Bools
     bare: Surface
     lips: dict[str, Surface]
+    solid: Solid | None = None
 
 
 def _nothing_left(body: MeshPiece) -> Finding:
@@ -229,14 +230,13 @@ def _crossed(body: MeshPiece, pieces: tuple[MeshPiece, ...], filling: Filling) -
     lost = abs(material.volume + common.volume - whole.volume)
     if lost > _BOOKS * whole.volume:
         raise SolidError(f"cutting '{body.name}' lost {lost * 1e9:.3g} mm3")
-    joined = material.joined(*filling.solids.values())
-    outer = joined.filled()
+    # Hollows as drawn, and solids laid over them: no two skins then lie in each other that were not drawn so, which
+    # the solid library would leave folded.
+    walls = whole.less(*filling.drawn) if filling.drawn else whole
+    outer = walls.joined(*filling.solids.values()).filled()
     lips = {piece.name for piece in pieces if piece.lip}
-    bare = outer
-    if lips:
-        spaces = [space.solid for space in filling.spaces]
-        others = [solid for name, solid in filling.solids.items() if name not in lips]
-        bare = (whole.less(*spaces) if spaces else whole).joined(*others).filled()
+    others = [solid for name, solid in filling.solids.items() if name not in lips]
+    bare = walls.joined(*others).filled() if lips else outer
     findings = outside_findings(body, pieces, filling, whole, outer)
     surface = outer.surface()
     beyond = {name: filling.solids[name].less(whole) for name in lips}
@@ -246,18 +246,19 @@ def _crossed(body: MeshPiece, pieces: tuple[MeshPiece, ...], filling: Filling) -
         outer.sources() == tag,
         bare.surface() if lips else surface,
         {name: solid.surface() for name, solid in beyond.items() if not solid.empty},
+        outer,
     )
     return skin, material, findings
 
 
-def _skin(bait: Bait, outer: _Outer, filling: Filling, inner: bool) -> Skin:
+def _skin(bait: Bait, outer: _Outer, filling: Filling) -> Skin:
     coat = 0.0 if bait.coat is None else bait.coat.thickness
     thickness = np.where(outer.own, coat, 0.0)
     surface = outer.surface
     wet = filling.flooded()
     if wet is not None:
-        if not inner:
-            wet = wet.met(Solid.of(outer.surface))
+        if outer.solid is not None:
+            wet = wet.met(outer.solid)
         walls = wet.surface().turned()
         surface = _together(surface, walls)
         thickness = np.concatenate([thickness, np.zeros(len(walls.faces))])

@@ -28,12 +28,15 @@ class Filling:
         Names of inserts that have lost space to others.
     spaces : tuple of Space
         Voids and cavities, less all that is solid in them.
+    drawn : tuple of Solid
+        The same as drawn.
     findings : tuple of Finding
     """
 
     solids: dict[str, Solid]
     taken: frozenset[str]
     spaces: tuple[Space, ...]
+    drawn: tuple[Solid, ...]
     findings: tuple[Finding, ...]
 
     def everything(self) -> Solid | None:
@@ -89,7 +92,7 @@ def fill(body: MeshPiece, pieces: Sequence[MeshPiece]) -> Filling:
     hollows += [Space(void.name, None, drawn[void.name], void.flooded, drawn[void.name].volume) for void in voids]
     spaces, floods = left_hollow(hollows, tuple(left.values()))
     findings += [*floods, *hollow_findings(hollows, spaces, left)]
-    return Filling(left, frozenset(taken), spaces, tuple(findings))
+    return Filling(left, frozenset(taken), spaces, tuple(space.solid for space in hollows), tuple(findings))
 
 
 def _drawn(piece: MeshPiece) -> Solid:

@@ -43,11 +43,6 @@ def relation(shell: Surface, others: Sequence[Surface]) -> Relation:
     return Relation.APART
 
 
-def summed(relations: Sequence[Relation]) -> Relation:
-    """Return the relation of a whole piece: a pair of eyes of which one is inside and one outside crosses the skin."""
-    return relations[0] if len(set(relations)) == 1 else Relation.CROSSING
-
-
 def _relation(shell: Surface, other: Surface) -> Relation:
     low, high = np.maximum(shell.bounds[0], other.bounds[0]), np.minimum(shell.bounds[1], other.bounds[1])
     if (low > high).any():
