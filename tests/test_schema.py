@@ -101,6 +101,15 @@ def test_every_key_with_a_unit_names_it_in_its_description() -> None:
     assert found >= 80
 
 
+@pytest.mark.parametrize(
+    ("table", "unit"), [("$.drag[].parts.", "mm2. "), ("$.timings_s.", "s. "), ("#metacentric.", "mm. ")]
+)
+def test_keys_that_share_a_unit_name_it_too(table: str, unit: str) -> None:
+    shared = [node["description"] for path, _, node in keys() if path.startswith(table)]
+    assert len(shared) >= 3
+    assert all(description.startswith(unit) for description in shared), shared
+
+
 def test_every_shape_of_ours_is_closed_and_its_keys_are_always_there() -> None:
     for path, node in nodes(schema()):
         if "properties" in node:

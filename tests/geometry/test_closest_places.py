@@ -14,14 +14,16 @@ from meshlure.geometry.surface import Floats, Surface
 def box_distance(points: Floats, half: Floats) -> Floats:
     """Distance to the skin of a box about the origin: outside by Pythagoras, inside to the next face."""
     beyond = np.abs(points) - half
-    return np.where((beyond > 0).any(axis=1), np.linalg.norm(np.maximum(beyond, 0), axis=1), -beyond.max(axis=1))
+    outside = (beyond > 0).any(axis=1)
+    found: Floats = np.where(outside, np.linalg.norm(np.maximum(beyond, 0), axis=1), -beyond.max(axis=1))
+    return found
 
 
 @pytest.mark.parametrize("level", [0, 2, 5])
 def test_distances_to_a_box(level: int) -> None:
     half = np.array([0.5, 1.0, 1.5])
     points = np.random.default_rng(level).uniform(-2, 2, (200, 3))
-    found = nearest(shapes.box(2 * half, level=level), points)
+    found = nearest(shapes.box(list(2 * half), level=level), points)
     np.testing.assert_allclose(found.distance, box_distance(points, half), rtol=1e-12)
     np.testing.assert_allclose(np.linalg.norm(found.place - points, axis=1), found.distance, rtol=1e-12)
 
@@ -37,7 +39,8 @@ def test_the_unit_of_length_does_not_matter(scale: float) -> None:
 
 
 def test_a_point_and_a_triangle_against_a_general_least_squares_solver() -> None:
-    # Nearest convex combination of the corners by scipy's bounded least squares; a heavy row makes the weights sum to 1.
+    # Nearest convex combination of the corners by scipy's bounded least squares; a heavy row makes the weights add up
+    # to 1.
     random = np.random.default_rng(7)
     for _ in range(40):
         corners, point = random.normal(size=(3, 3)), random.normal(size=3) * 1.5
