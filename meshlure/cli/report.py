@@ -139,6 +139,19 @@ def _plan(bait: Path, options: dict[str, str | None], inserts: list[str]) -> Bai
         from meshlure.files.baitfile import read_baitfile
 
         return read_baitfile(bait)
+    if bait.suffix.casefold() not in SUFFIXES:
+        folder = bait.is_dir()
+        raise InputError(
+            Fault(
+                what="this is a folder, not a bait"
+                if folder
+                else "this is neither a bait file nor a mesh, by its name",
+                where=str(bait),
+                found="" if folder else repr(bait.suffix or bait.name),
+                allowed=f"a file that ends in {', '.join(SUFFIXES)}",
+                next_step="name the bait file in it" if folder else "export the part as STL, or name the bait file",
+            )
+        )
     missing = [option for option in ("--unit", "--nose", "--back") if options[option] is None]
     if missing:
         raise InputError(

@@ -178,6 +178,20 @@ def test_a_bad_quick_form(bench: Bench, case: str) -> None:
     assert not bench.out.exists()
 
 
+@pytest.mark.parametrize(
+    ("name", "said"),
+    [
+        ("samples", ["- samples: this is a folder", "allowed: .*.toml, .stl, .obj", "next: name the bait file in it"]),
+        ("body.step", ["- body.step: this is neither a bait file nor a mesh", "found: '.step'", "next: export .* STL"]),
+        ("minnow", ["- minnow: this is neither", "found: 'minnow'", "allowed: .*.toml"]),
+    ],
+)
+def test_neither_a_bait_file_nor_a_mesh(bench: Bench, name: str, said: list[str]) -> None:
+    (bench.folder / "samples").mkdir()
+    told = fault(bench.run("report", name, "--out", "out"))
+    assert re.search(".*".join(said), told, re.DOTALL), told
+
+
 def test_an_unknown_material_of_the_body(bench: Bench) -> None:
     told = fault(bench.run("report", "body.stl", "--material", "balza", *QUICK[2:], "--out", "out"))
     assert re.search("- --material: no material.*found: balza.*allowed: .*balsa", told, re.DOTALL), told
