@@ -10,7 +10,7 @@ from meshlure.bait.hollows import Space
 from meshlure.bait.pieces import Balls, Frame
 from meshlure.errors import Fault, InputError
 from meshlure.findings import Finding, Level
-from meshlure.geometry.clearance import nearest
+from meshlure.geometry.clearance import Boxes
 from meshlure.geometry.moments import NOTHING, Moments, ball_moments, solid_moments
 from meshlure.geometry.shells import winding_number
 from meshlure.geometry.surface import Floats, Surface
@@ -94,9 +94,10 @@ def ball_row(balls: Balls, drawn: Surface, hollow: Space, frame: Frame) -> BallR
     middle, axis = _axis(drawn, frame)
     along = (drawn.vertices - middle) @ axis
     low, high = float(along.min()), float(along.max())
-    walls, radius = hollow.solid.surface(), balls.diameter / 2
-    if hollow.solid.empty or winding_number(walls, middle) < 0.5:
+    surface, radius = hollow.solid.surface(), balls.diameter / 2
+    if hollow.solid.empty or winding_number(surface, middle) < 0.5:
         raise InputError(_no_room(balls, "something solid lies in the chamber's middle"))
+    walls = Boxes.of(surface)
     places = np.sort(np.append(np.linspace(low, high, _STEPS), 0.0))
     room = _room(walls, middle, axis, places)
     widest = float(room.max())
@@ -134,13 +135,13 @@ def _axis(drawn: Surface, frame: Frame) -> tuple[Floats, Floats]:
     return moments.centre, axis
 
 
-def _room(walls: Surface, middle: Floats, axis: Floats, places: Floats) -> Floats:
+def _room(walls: Boxes, middle: Floats, axis: Floats, places: Floats) -> Floats:
     """Distance from places along the axis to the nearest wall, m."""
-    return nearest(walls, middle + np.outer(places, axis)).distance
+    return walls.nearest(middle + np.outer(places, axis)).distance
 
 
 def _reach(
-    walls: Surface, middle: Floats, axis: Floats, places: Floats, room: Floats, least: float
+    walls: Boxes, middle: Floats, axis: Floats, places: Floats, room: Floats, least: float
 ) -> tuple[float, float]:
     """How far either way along the axis there is room enough, m."""
     start = int(np.searchsorted(places, 0.0))

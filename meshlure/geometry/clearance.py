@@ -48,23 +48,23 @@ def nearest(surface: Surface, points: Floats) -> Nearest:
     Neighbouring triangles share a box. The distance to the nearest middle of a triangle bounds the search, and every
     box within that bound is looked at.
     """
-    points = np.asarray(points, dtype=np.float64).reshape(-1, 3)
-    boxes = _Boxes.of(surface)
-    distance, place = np.empty(len(points)), np.empty((len(points), 3))
-    step = max(1, _PAIRS // len(boxes.low))
-    for at in range(0, len(points), step):
-        piece = slice(at, at + step)
-        distance[piece], place[piece] = boxes.nearest(points[piece])
-    return Nearest(distance, place)
+    return Boxes.of(surface).nearest(points)
 
 
 @dataclass(frozen=True, eq=False)
-class _Boxes:
-    """Triangles by boxes of neighbours, the last box filled up with its last triangle.
+class Boxes:
+    """Triangles of a surface by boxes of neighbours, to be asked for distances more than once.
 
-    corners : (b, k, 3, 3) array, box, triangle, corner, coordinate; low, high : (b, 3) arrays.
-    middle : (b, k, 3) array, and radius : (b, k) array, of a ball round each triangle.
-    tree : of the middles of some, which bound the distance from above.
+    Attributes
+    ----------
+    corners : (b, k, 3, 3) array, m
+        Box, triangle, corner, coordinate; the last box is filled up with its last triangle.
+    low, high : (b, 3) arrays, m
+        Bounds of the boxes.
+    middle, radius : (b, k, 3) and (b, k) arrays, m
+        Of a ball round each triangle.
+    tree : cKDTree
+        Of the middles of some, which bound the distance from above.
     """
 
     corners: Floats
@@ -75,7 +75,8 @@ class _Boxes:
     tree: cKDTree[None]
 
     @classmethod
-    def of(cls, surface: Surface) -> _Boxes:
+    def of(cls, surface: Surface) -> Boxes:
+        """Return the boxes of a surface's triangles."""
         order = curve_order(surface.corners.sum(axis=1))
         order = np.append(order, np.repeat(order[-1:], -len(order) % _BOX))
         corners = surface.corners[order].reshape(-1, _BOX, 3, 3)
@@ -84,7 +85,17 @@ class _Boxes:
         some = middle.reshape(-1, 3)[:: max(1, len(order) // _IN_TREE)]
         return cls(corners, corners.min(axis=(1, 2)), corners.max(axis=(1, 2)), middle, radius, cKDTree(some))
 
-    def nearest(self, points: Floats) -> tuple[Floats, Floats]:
+    def nearest(self, points: Floats) -> Nearest:
+        """Return the distance from each of (n, 3) points, m, with the nearest place; as the function of this name."""
+        points = np.asarray(points, dtype=np.float64).reshape(-1, 3)
+        distance, place = np.empty(len(points)), np.empty((len(points), 3))
+        step = max(1, _PAIRS // len(self.low))
+        for at in range(0, len(points), step):
+            piece = slice(at, at + step)
+            distance[piece], place[piece] = self._nearest(points[piece])
+        return Nearest(distance, place)
+
+    def _nearest(self, points: Floats) -> tuple[Floats, Floats]:
         apart = np.zeros((len(points), len(self.low)))
         for axis in range(3):
             p = points[:, axis, None]
