@@ -178,7 +178,7 @@ def _tight(balls: Balls, play: float) -> tuple[Finding, ...]:
         code="balls-tight",
         level=Level.WARNING,
         piece=balls.chamber,
-        message=f"the balls of {balls.diameter * 1e3:.4g} mm have {max(play, 0.0) * 1e3:.2f} mm of play in their bore: "
-        "they may jam",
+        message=f"the balls of {balls.diameter * 1e3:.4g} mm have {max(play, 0.0) * 1e3:.2f} mm of play in their "
+        "bore: they may jam",
         advice="draw the bore some tenths of a millimetre wider",
     ),)

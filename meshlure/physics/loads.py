@@ -182,7 +182,7 @@ class Glider:
 
 
 def _plate(lip: LipPlate, u: Floats) -> Loads:
-    """A lip's normal force, at its centre of pressure by Joessel's rule: 0.2 + 0.3 sin a of the chord from its front."""
+    """A lip's normal force, at its centre of pressure by Joessel's rule: 0.2 + 0.3 sin a of the chord from ahead."""
     facing = u @ lip.normal
     sine = np.minimum(np.abs(facing), 1.0)
     flat = u - facing[:, None] * lip.normal
