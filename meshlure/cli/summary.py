@@ -28,10 +28,16 @@ def summary(results: Mapping[str, Any], out: Path | None) -> tuple[str, ...]:
         f"  mass     {mass:.2f} g ({mass / OUNCE:.3f} oz), {place}",
         f"  verdict  {results['buoyancy']['verdict']}",
     ]
-    lines += [f"  posture  {posture['words']}" for posture in results["postures"]]
+    lines += [f"  posture  {posture['words']}{_balls(posture)}" for posture in results["postures"]]
     counts = {level: sum(f["level"] == level for f in results["findings"]) for level in ("fault", "warning", "note")}
     lines.append("  found    " + ", ".join(f"{n} {level}{'' if n == 1 else 's'}" for level, n in counts.items()))
     lines += [f"           {f['level']}: {f['message']}" for f in results["findings"] if f["level"] != "note"]
     if out is not None:
         lines.append(f"  written  {', '.join(['results.json', *results['files']])} in {out}")
     return tuple(lines)
+
+
+def _balls(posture: Mapping[str, Any]) -> str:
+    """Say at which ends the balls lie; postures that differ by nothing else would read alike."""
+    ends = [f"those of '{chamber}' at the {end}" for chamber, end in (posture["balls"] or {}).items()]
+    return f" Balls: {', '.join(ends)}." if ends else ""

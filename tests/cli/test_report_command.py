@@ -71,6 +71,17 @@ def test_stdout_says_what_a_maker_asks_first(bench: Bench) -> None:
     assert ran.out.endswith(f"  written  results.json in {bench.out}\n")
 
 
+def test_postures_that_differ_by_the_balls_say_so(bench: Bench) -> None:
+    # A bore of 20 mm along the box; a ball at one of its ends moves the centre of gravity towards it.
+    bench.put("chamber.stl", box((10, 3, 6), (20, 4, 4)))
+    balls = '[[balls]]\nchamber = "chamber"\ndiameter = "3.5 mm"\ncount = 1\nmaterial = "bearing steel"\n'
+    ran = bench.report(BAIT + VOID + balls)
+    assert (ran.code, ran.err) == (0, "")
+    said = re.findall(r"^  posture  .*\. Balls: those of 'chamber' at the (nose|tail)\.$", ran.out, re.MULTILINE)
+    assert sorted(said) == sorted(posture["balls"]["chamber"] for posture in written(bench)["postures"])
+    assert len(said) >= 1
+
+
 def test_no_page(bench: Bench) -> None:
     assert bench.report("body.stl").code == 0
     assert [path.name for path in bench.out.iterdir()] == ["results.json"]
