@@ -17,9 +17,9 @@ EAST, NORTH = np.array([1.0, 0, 0]), np.array([0, 1.0, 0])
 SEEDS = st.integers(0, 10_000)
 
 
-def log(share: float, level: int = 2) -> Afloat:
-    """A square log of side 20 mm lying along x, long enough not to stand up."""
-    return Afloat(shapes.box((0.12, 0.02, 0.02), level=level), share)
+def log(share: float, side: float = 0.02) -> Afloat:
+    """A square log lying along x, long enough not to stand up."""
+    return Afloat(shapes.box((6 * side, side, side), level=2), share)
 
 
 def log_tilt(share: float) -> float:
@@ -59,6 +59,14 @@ def test_every_way_a_square_log_rests(share: float) -> None:
         assert rest.state.modes()[0][0] > 0
     assert sum(rest.share for rest in rests) == pytest.approx(1)
     assert sum(rest.upright for rest in rests) == 1
+
+
+def test_wells_four_degrees_apart_are_two_postures() -> None:
+    # Two degrees to either side of flat; the log is big so that its metacentric heights are not next to none.
+    rests = log(0.2115, 0.2).rests()
+    assert log_tilt(0.2115) == pytest.approx(2.0, abs=0.01)
+    assert len(rests) == 8
+    assert all(rest.neutral is None for rest in rests)
 
 
 @pytest.mark.parametrize(("share", "angle"), [(0.2114, 1.3), (0.2815, 45.0)])
