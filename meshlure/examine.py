@@ -8,6 +8,7 @@ from collections.abc import Iterator
 from contextlib import contextmanager
 from typing import Any
 
+from meshlure import flying
 from meshlure.bait.composition import Composition, Part, compose
 from meshlure.bait.pieces import Bait, Role
 from meshlure.bait.refusals import refuse
@@ -19,16 +20,19 @@ from meshlure.physics.buoyancy import Reserve, doubts, reserve
 from meshlure.physics.drag import Drag
 from meshlure.physics.passage import LAYERS, LEADS, Passage, passage
 from meshlure.physics.repose import Ends, Vessel
+from meshlure.physics.sinking import sinking, submerged
+from meshlure.physics.tow import tow
 from meshlure.posing import pose
 from meshlure.results import account, pieces, shape, water
 from meshlure.results import passage as passage_tree
+from meshlure.results import sinking as sinking_tree
 from meshlure.results.study import Study
 from meshlure.stock.waters import standard_air
 from meshlure.version import VERSION
 
 Tree = dict[str, Any]
 
-PHASES = ("reading", "soundness", "weight", "posture", "areas", "drag", "page")
+PHASES = ("reading", "soundness", "weight", "posture", "areas", "drag", "flight", "sinking", "page")
 
 
 class Clock:
@@ -47,13 +51,15 @@ class Clock:
             self.spent[name] += time.perf_counter() - start
 
 
-def study(bait: Bait) -> Study:
+def study(bait: Bait, against: Bait | None = None) -> Study:
     """Return everything that one examination of a bait finds.
 
     Parameters
     ----------
     bait : Bait
         From `read_bait`.
+    against : Bait, optional
+        Another one, whose flight the distance is held against.
 
     Returns
     -------
@@ -89,7 +95,16 @@ def study(bait: Bait) -> Study:
         views = shape.views(seen, shape.drawn_pieces(bait.pieces), frame, tip)
     with clock.phase("drag"):
         way = passage(skin, bait.hardware, frame, cuts, outer)
-        drags = _drags(bait, way, mass.amount)
+        speed = flying.launch(bait, mass.amount)
+        drags = _drags(bait, way, speed)
+    with clock.phase("flight"):
+        flight = flying.flight(
+            bait, composition, way, seen, hull.volume, tip, None if against is None else flying.distance(against)
+        )
+    with clock.phase("sinking"):
+        viscosity = bait.water.viscosity
+        below = sinking(submerged(vessel, posed.ends, way, viscosity), way, viscosity, bait.plan.bait.suspends_within)
+        pulls = tow(way, bait.plan.retrieve.speeds, bait.water.density, viscosity)
     tree: Tree = {
         "format": 1,
         "run": uuid.uuid4().hex,
@@ -116,8 +131,10 @@ def study(bait: Bait) -> Study:
         "skin_mm2": skin.painted * 1e6,
         "form": passage_tree.form(way, skin.outer, outer.volume, _trailing(drags)),
         "drag": passage_tree.drag(drags),
-        **account.stated(bait, mass, held, posed.trees),
-        "assumptions": account.assumptions(bait),
+        "flight": flight,
+        "sinking": sinking_tree.sinking(below, pulls),
+        **account.stated(bait, mass, held, posed.trees, speed),
+        "assumptions": account.assumptions(bait, speed),
         "cautions": account.cautions(bait),
         "timings_s": clock.spent,
     }
@@ -144,8 +161,8 @@ def _mesh_volumes(bait: Bait) -> dict[str, float]:
     }
 
 
-def _drags(bait: Bait, way: Passage, mass: float) -> list[tuple[str, str, bool, Drag]]:
-    air, speed = standard_air(), account.thrown(bait, mass)[0]
+def _drags(bait: Bait, way: Passage, speed: float) -> list[tuple[str, str, bool, Drag]]:
+    air = standard_air()
     flows = [("air", speed, air.density, air.viscosity)]
     flows += [("water", s, bait.water.density, bait.water.viscosity) for s in bait.plan.retrieve.speeds]
     return [

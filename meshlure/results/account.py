@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from math import degrees, sqrt
+from math import degrees
 from typing import Any
 
 from meshlure.bait.pieces import Bait, Substance
@@ -16,37 +16,18 @@ from meshlure.stock.waters import standard_air
 Tree = dict[str, Any]
 
 
-def cast_speed(bait: Bait) -> tuple[float, bool]:
-    """Return the speed at which the bait leaves the rod, m/s, and whether it was assumed.
-
-    Notes
-    -----
-    From an energy it is that of bait and moving rod together, sqrt(2 E / (m + m_rod)); the bait's mass is found
-    by the study, so `stated` gives that one.
-    """
-    speed = bait.plan.cast.speed
-    return (25.0, True) if speed is None else (speed, "speed" in bait.plan.cast.assumed)
-
-
-def thrown(bait: Bait, mass: float) -> tuple[float, bool]:
-    """Return the cast's speed, m/s, for the bait's mass, kg, and whether it was assumed."""
-    cast = bait.plan.cast
-    if cast.energy is not None and cast.rod_mass is not None:
-        return sqrt(2 * cast.energy / (mass + cast.rod_mass)), False
-    return cast_speed(bait)
-
-
-def stated(bait: Bait, mass: Moments, reserve: Reserve, postures: Sequence[Tree]) -> Tree:
-    """Return line, cast, retrieve and limits as they are taken."""
+def stated(bait: Bait, mass: Moments, reserve: Reserve, postures: Sequence[Tree], speed: float) -> Tree:
+    """Return line, cast at its speed (m/s), retrieve and limits as they are taken."""
     plan = bait.plan
-    speed, assumed = thrown(bait, mass.amount)
     return {
         "line": None if plan.line is None else {"tie_mm": plain(plan.line.tie, MM)},
         "cast": {
             "speed_m_s": speed,
             "angle_deg": degrees(plan.cast.angle),
             "height_m": plan.cast.height,
-            "assumed": sorted({*plan.cast.assumed, *(["speed"] if assumed else [])}),
+            "line_pull_n": plan.cast.line_pull,
+            "wind_m_s": plan.cast.wind,
+            "assumed": sorted(plan.cast.assumed),
         },
         "retrieve": {"speeds_m_s": list(plan.retrieve.speeds), "assumed": list(plan.retrieve.assumed)},
         "limits": _limits(bait, reserve, postures),
@@ -93,8 +74,8 @@ def _measured(bait: Bait, mass: Moments, reserve: Reserve) -> Tree | None:
     return {"rows": rows, "water_c": weighed.water}
 
 
-def assumptions(bait: Bait) -> list[Tree]:
-    """Return everything that the numbers rest on, what was assumed first."""
+def assumptions(bait: Bait, speed: float) -> list[Tree]:
+    """Return everything that the numbers rest on, what was assumed first; ``speed`` is the cast's, m/s."""
     rows = [_substance(bait.body.name, bait.body.substance)]
     rows += [_substance(piece.name, piece.substance) for piece in bait.pieces if piece.substance is not None]
     rows += [_substance(f"balls in {balls.chamber}", balls.substance) for balls in bait.balls]
@@ -105,7 +86,7 @@ def assumptions(bait: Bait) -> list[Tree]:
             rows.append(_row(f"displacement of {item.name}", "none", "no material stated for it", assumed=True))
     if bait.coat is not None:
         rows.append(_substance("coat", bait.coat.substance))
-    rows += _surroundings(bait)
+    rows += _surroundings(bait, speed)
     for piece in bait.pieces:
         if piece.substance is None:
             what = "fills with water" if piece.flooded else "stays dry and weighs nothing"
@@ -113,18 +94,22 @@ def assumptions(bait: Bait) -> list[Tree]:
     return sorted(rows, key=lambda row: not row["assumed"])
 
 
-def _surroundings(bait: Bait) -> list[Tree]:
+def _surroundings(bait: Bait, speed: float) -> list[Tree]:
     plan, water, air = bait.plan, bait.water, standard_air()
     source = "TEOS-10 at sea pressure 0" if plan.water.density is None else "stated"
     rows = [_row("density of the water", f"{water.density:.2f} kg/m3", source, assumed=False)]
     for key, value in (("temperature", f"{water.temperature} °C"), ("salinity", f"{water.salinity} g/kg")):
         if key in plan.water.assumed:
             rows.append(_row(f"{key} of the water", value, "nothing stated", assumed=True))
-    cast = f"{cast_speed(bait)[0]:g} m/s"
-    if plan.cast.sinker is not None:
-        rows.append(_row("speed of the cast", cast, "the sinker's distance is not used here", assumed=True))
-    elif "speed" in plan.cast.assumed:
-        rows.append(_row("speed of the cast", cast, "a one-handed cast; from memory", assumed=True))
+    cast = plan.cast
+    if cast.sinker is not None:
+        rows.append(_row("speed of the cast", f"{speed:.1f} m/s", "settled by the sinker's measured distance", assumed=False))
+    elif "speed" in cast.assumed:
+        rows.append(_row("speed of the cast", f"{speed:g} m/s", "a one-handed cast; from memory", assumed=True))
+    for key, value in (("angle", f"{degrees(cast.angle):.0f}°"), ("height", f"{cast.height:g} m"), ("line_pull", f"{cast.line_pull:g} N")):
+        if key in cast.assumed:
+            what = {"angle": "angle of the cast", "height": "height of the release", "line_pull": "pull of the line in flight"}[key]
+            rows.append(_row(what, value, "common practice, no source", assumed=True))
     if plan.retrieve.assumed:
         speeds = ", ".join(f"{speed:g}" for speed in plan.retrieve.speeds)
         rows.append(_row("speeds of the retrieve", f"{speeds} m/s", "common practice, no source", assumed=True))

@@ -1,0 +1,197 @@
+"""The flight of a whole bait: with its balls at either end, against a sphere, itself reversed and another bait."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+from typing import Any
+
+import numpy as np
+
+from meshlure.bait.composition import Composition, compose
+from meshlure.bait.pieces import Bait
+from meshlure.bait.refusals import refuse
+from meshlure.bait.refusals import refuse
+from meshlure.errors import Fault, InputError
+from meshlure.files.sections.retrieve import FASTEST
+from meshlure.geometry.blocks import BlockIndex
+from meshlure.geometry.blocks import BlockIndex
+from meshlure.geometry.moments import Moments
+from meshlure.geometry.outline import Outline
+from meshlure.geometry.stations import stations
+from meshlure.geometry.stations import stations
+from meshlure.physics.betterment import better
+from meshlure.physics.flight import Air, Flight, distances, fly
+from meshlure.physics.glider import glider
+from meshlure.physics.loads import Glider
+from meshlure.physics.passage import Passage, passage
+from meshlure.physics.repose import Ends
+from meshlure.physics.trajectory import Throw, launch_speed, sphere_drag_area, trajectory
+from meshlure.results import flight as tree
+from meshlure.stock.waters import standard_air
+
+Tree = dict[str, Any]
+
+
+@dataclass(frozen=True, eq=False)
+class Flown:
+    """A bait's flight.
+
+    Attributes
+    ----------
+    ends : dict
+        Where the balls lie in it.
+    flight : Flight
+    mass : Moments, kg
+    air : Air
+    glider : Glider
+    """
+
+    ends: Ends
+    flight: Flight
+    mass: Moments
+    air: Air
+    glider: Glider
+
+
+def launch(bait: Bait, mass: float) -> float:
+    """Return the speed at which a bait of a mass, kg, leaves the rod, m/s.
+
+    Raises
+    ------
+    InputError
+        Where the sinker named in the bait file could not have flown so far.
+
+    Notes
+    -----
+    Stated, or from the energy given to bait and moving rod together, or the speed at which a plain sinker, a smooth
+    sphere, reaches its measured distance from the same throw.
+    """
+    cast = bait.plan.cast
+    if cast.speed is not None:
+        return cast.speed
+    if cast.energy is not None and cast.rod_mass is not None:
+        return float(np.sqrt(2 * cast.energy / (mass + cast.rod_mass)))
+    sinker = cast.sinker
+    assert sinker is not None
+    air = standard_air()
+    area = sphere_drag_area(sinker.diameter, air.viscosity)
+
+    def reach(speed: float) -> float:
+        throw = Throw(speed, cast.angle, cast.height, cast.line_pull, cast.wind)
+        return trajectory(sinker.mass, area, throw, air.density, 2).distance
+
+    speed = launch_speed(sinker.distance, reach, FASTEST)
+    if speed is None:
+        raise InputError(Fault(
+            what="the sinker could not have flown so far",
+            where="cast.sinker.distance",
+            found=f"{sinker.distance:g} m with {sinker.mass * 1e3:g} g of {sinker.diameter * 1e3:g} mm",
+            allowed=f"{reach(0.1):.1f} to {reach(FASTEST):.0f} m, for speeds up to {FASTEST:g} m/s",
+            next_step="check mass, diameter and distance, or the cast's angle and height",
+        ))
+    return speed
+
+
+def flown(bait: Bait, composition: Composition, way: Passage) -> dict[str, Flown]:
+    """Return the flights with the balls at the nose and at the tail, one named "still" where there are none."""
+    chambers = [row.balls.chamber for row in composition.rows]
+    fixed = {row.balls.chamber: row.balls.at for row in composition.rows}
+    found = {}
+    for end in ("tail", "nose") if chambers else ("still",):
+        ends = {chamber: fixed[chamber] or end for chamber in chambers}
+        found[end] = _one(bait, composition, way, ends)
+    return found
+
+
+def _one(bait: Bait, composition: Composition, way: Passage, ends: Ends) -> Flown:
+    mass = composition.mass(ends)
+    air, cast = standard_air(), bait.plan.cast
+    speed = launch(bait, mass.amount)
+    wings = glider(way, composition.skin, bait.hardware, bait.frame, speed, air.density, air.viscosity)
+    tie = None if bait.plan.line is None else np.array(bait.plan.line.tie)
+    around = Air(air.density, Throw(speed, cast.angle, cast.height, cast.line_pull, cast.wind), tie)
+    return Flown(ends, fly(wings, mass, around, band(way, speed)), mass, around, wings)
+
+
+def band(way: Passage, speed: float) -> dict[str, tuple[float, float]]:
+    """Return by leading end the ends of the body's drag band as shares of the drag."""
+    air = standard_air()
+    drags = {end: way.drag(end, speed, air.density, air.viscosity, None) for end in ("nose", "tail")}
+    return {end: (drag.cd_low / drag.cd, drag.cd_high / drag.cd) for end, drag in drags.items()}
+
+
+def distance(bait: Bait) -> float:
+    """Return how far a bait flies in its own throw, m."""
+    composition = compose(bait)
+    skin, frame = composition.skin, bait.frame
+    refuse(composition.findings, {})
+    index = BlockIndex.build(skin.outer)
+    cuts = stations(index, frame.nose, (frame.side, frame.back))
+    return headline(flown(bait, composition, passage(skin, bait.hardware, frame, cuts, index))).flight.path.distance
+
+
+def distance(bait: Bait) -> float:
+    """Return how far a bait flies in its own throw, m."""
+    composition = compose(bait)
+    skin, frame = composition.skin, bait.frame
+    refuse(composition.findings, {})
+    index = BlockIndex.build(skin.outer)
+    cuts = stations(index, frame.nose, (frame.side, frame.back))
+    return headline(flown(bait, composition, passage(skin, bait.hardware, frame, cuts, index))).flight.path.distance
+
+
+def headline(flights: dict[str, Flown]) -> Flown:
+    """Return the flight in which the balls lie at the end that leads, where the air's drag presses them."""
+    for end in ("tail", "nose"):
+        if end in flights and flights[end].flight.bearing.end == end:
+            return flights[end]
+    return next(iter(flights.values()))
+
+
+def flight(
+    bait: Bait, composition: Composition, way: Passage, seen: Sequence[tuple[str, Outline]], displaced: float,
+    tip: float, against: float | None,
+) -> Tree:
+    """Return the result tree of a bait's flight.
+
+    Parameters
+    ----------
+    bait, composition, way : Bait, Composition, Passage
+    seen : sequence of (name, Outline)
+        Silhouettes: side and top are wanted.
+    displaced : float, m3
+        For the sphere of the same mass and bulk.
+    tip : float, m
+        Of the nose along the nose direction.
+    against : float or None, m
+        Distance of another bait in its own throw.
+    """
+    flights = flown(bait, composition, way)
+    main = headline(flights)
+    found, air = main.flight, main.air
+    other = "tail" if found.bearing.end == "nose" else "nose"
+    reversed_ = fly(main.glider, main.mass, air, band(way, air.throw.speed), other)
+    still = standard_air()
+    diameter = float(np.cbrt(6 * displaced / np.pi))
+    ball = trajectory(main.mass.amount, sphere_drag_area(diameter, still.viscosity), air.throw, air.density, 2)
+    ahead = tip - float(main.mass.centre @ bait.frame.nose)
+    areas = {name: outline.centre for name, outline in seen}
+    return tree.flight(
+        main=found,
+        mass=main.mass,
+        frame=bait.frame,
+        centres={"yaw": areas["side"], "pitch": areas["top"]},
+        length=way.stations.length,
+        ratios={
+            "sphere": found.path.distance / ball.distance,
+            "reversed": found.path.distance / reversed_.path.distance,
+            "against": None if against is None else found.path.distance / against,
+        },
+        reversed_path=reversed_,
+        sphere_path=ball,
+        balls={end: (flights[end].flight, flights[end].mass) for end in ("nose", "tail")} if "tail" in flights else None,
+        angles=distances(main.mass.amount, found.drag_area, air),
+        change=better(found.curves, found.bearing, main.mass.amount, ahead, way.stations.length - ahead),
+        throw=air.throw,
+    )
