@@ -12,6 +12,7 @@ from meshlure import flying
 from meshlure.bait.composition import Composition, Part, compose
 from meshlure.bait.pieces import Bait, Role
 from meshlure.bait.refusals import refuse
+from meshlure.errors import Fault, InputError
 from meshlure.geometry.blocks import BlockIndex
 from meshlure.geometry.moments import Moments, solid_moments
 from meshlure.geometry.stations import stations
@@ -78,6 +79,7 @@ def study(bait: Bait, against: Bait | None = None) -> Study:
         skin = composition.skin
         pieces_read = zip((bait.body, *bait.pieces), bait.files, strict=True)
         refuse(composition.findings, {piece.name: str(file.path) for piece, file in pieces_read})
+        _lips(bait, composition)
         index = BlockIndex.build(skin.surface, skin.thickness)
     with clock.phase("posture"):
         vessel = Vessel(composition, index, bait.hardware, frame, bait.water.density)
@@ -99,7 +101,7 @@ def study(bait: Bait, against: Bait | None = None) -> Study:
         drags = _drags(bait, way, speed)
     with clock.phase("flight"):
         flight = flying.flight(
-            bait, composition, way, seen, hull.volume, tip, None if against is None else flying.distance(against)
+            bait, composition, way, seen, hull.volume, tip, None if against is None else flying.reference(against)
         )
     with clock.phase("sinking"):
         viscosity = bait.water.viscosity
@@ -139,6 +141,22 @@ def study(bait: Bait, against: Bait | None = None) -> Study:
         "timings_s": clock.spent,
     }
     return Study(tree, views)
+
+
+def _lips(bait: Bait, composition: Composition) -> None:
+    """Refuse lips that show nothing outside the body."""
+    hidden = [piece for piece in bait.pieces if piece.lip and piece.name not in composition.skin.lips]
+    if hidden:
+        raise InputError([
+            Fault(
+                what="the lip has no area outside the body",
+                where=f"insert '{piece.name}'",
+                found="all of it lies inside",
+                allowed="a part that stands out into the water",
+                next_step="check its place, or remove lip = true",
+            )
+            for piece in hidden
+        ])
 
 
 def _reserve(bait: Bait, composition: Composition, mass: Moments, displaced: float, ends: Ends) -> Reserve:

@@ -121,24 +121,26 @@ def band(way: Passage, speed: float) -> dict[str, tuple[float, float]]:
     return {end: (drag.cd_low / drag.cd, drag.cd_high / drag.cd) for end, drag in drags.items()}
 
 
-def distance(bait: Bait) -> float:
-    """Return how far a bait flies in its own throw, m."""
+def reference(bait: Bait) -> tuple[str, float]:
+    """Return a bait's name and how far it flies in its own throw, m."""
     composition = compose(bait)
     skin, frame = composition.skin, bait.frame
     refuse(composition.findings, {})
     index = BlockIndex.build(skin.outer)
     cuts = stations(index, frame.nose, (frame.side, frame.back))
-    return headline(flown(bait, composition, passage(skin, bait.hardware, frame, cuts, index))).flight.path.distance
+    way = passage(skin, bait.hardware, frame, cuts, index)
+    return bait.name, headline(flown(bait, composition, way)).flight.path.distance
 
 
-def distance(bait: Bait) -> float:
-    """Return how far a bait flies in its own throw, m."""
+def reference(bait: Bait) -> tuple[str, float]:
+    """Return a bait's name and how far it flies in its own throw, m."""
     composition = compose(bait)
     skin, frame = composition.skin, bait.frame
     refuse(composition.findings, {})
     index = BlockIndex.build(skin.outer)
     cuts = stations(index, frame.nose, (frame.side, frame.back))
-    return headline(flown(bait, composition, passage(skin, bait.hardware, frame, cuts, index))).flight.path.distance
+    way = passage(skin, bait.hardware, frame, cuts, index)
+    return bait.name, headline(flown(bait, composition, way)).flight.path.distance
 
 
 def headline(flights: dict[str, Flown]) -> Flown:
@@ -151,7 +153,7 @@ def headline(flights: dict[str, Flown]) -> Flown:
 
 def flight(
     bait: Bait, composition: Composition, way: Passage, seen: Sequence[tuple[str, Outline]], displaced: float,
-    tip: float, against: float | None,
+    tip: float, against: tuple[str, float] | None,
 ) -> Tree:
     """Return the result tree of a bait's flight.
 
@@ -164,8 +166,8 @@ def flight(
         For the sphere of the same mass and bulk.
     tip : float, m
         Of the nose along the nose direction.
-    against : float or None, m
-        Distance of another bait in its own throw.
+    against : (str, float) or None
+        Another bait's name and its distance in its own throw, m.
     """
     flights = flown(bait, composition, way)
     main = headline(flights)
@@ -186,8 +188,9 @@ def flight(
         ratios={
             "sphere": found.path.distance / ball.distance,
             "reversed": found.path.distance / reversed_.path.distance,
-            "against": None if against is None else found.path.distance / against,
+            "against": None if against is None else found.path.distance / against[1],
         },
+        against=None if against is None else against[0],
         reversed_path=reversed_,
         sphere_path=ball,
         balls={end: (flights[end].flight, flights[end].mass) for end in ("nose", "tail")} if "tail" in flights else None,

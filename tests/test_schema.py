@@ -135,7 +135,7 @@ NULLS = {
     "#sensitivity.deg_per_0_1g_10mm", "#sensitivity.deg_per_mm", "#sensitivity.g_per_mm",
     "#sensitivity.lean_deg_per_0_1g_10mm", "#sensitivity.lean_deg_per_mm",
     "$.balls[].nose_up_deg", "$.balls[].lean_deg",
-    "$.flight.pressure_margin_mm", "$.flight.swing_hz", "$.flight.swings", "$.flight.ratios.against",
+    "$.flight.pressure_margin_mm", "$.flight.swing_hz", "$.flight.swings", "$.flight.ratios.against", "$.flight.against",
     "$.flight.balls", "$.flight.better", "$.flight.better.added_g",
     "$.sinking.seconds_to_1m", "$.sinking.seconds_to_3m",
     "$.sinking.starts[].seconds_to_1m", "$.sinking.starts[].seconds_to_3m",

@@ -76,6 +76,10 @@ def report(
     salinity: Annotated[
         str | None, typer.Option("--salinity", metavar="SALT", help='Quick: of the water, "35 g/kg".')
     ] = None,
+    against: Annotated[
+        Path | None,
+        typer.Option("--against", metavar="BAIT.toml", help="Another bait file whose flight this one is held against."),
+    ] = None,
     debug: Annotated[bool, typer.Option("--debug", help="On a fault of ours, print where it happened.")] = False,
 ) -> None:
     """Study a bait and write what was found."""
@@ -107,7 +111,8 @@ def report(
     from meshlure.examine import study
 
     read = load(plan)
-    found = study(read)
+    other = None if against is None else load(_plan(against, {}, []))
+    found = study(read, other)
     if out is not None:
         from meshlure.cli.writing import write
 
@@ -132,7 +137,7 @@ def _plan(bait: Path, options: dict[str, str | None], inserts: list[str]) -> Bai
                     what="these options belong to the quick form, which takes a mesh instead of a bait file",
                     where=str(bait),
                     found=", ".join(given),
-                    allowed="--out, --no-page, --json, --cut",
+                    allowed="--out, --no-page, --json, --cut, --against",
                     next_step="write them into the bait file",
                 )
             )

@@ -27,6 +27,7 @@ def flight(
     centres: Mapping[str, Floats],
     length: float,
     ratios: Mapping[str, float | None],
+    against: str | None,
     reversed_path: Flight,
     sphere_path: Trajectory,
     balls: Mapping[str, tuple[Flight, Moments]] | None,
@@ -46,6 +47,8 @@ def flight(
     length : float, m
     ratios : mapping
         Distance over that of a sphere, of the bait reversed and of another bait.
+    against : str or None
+        Name of the other bait.
     reversed_path, sphere_path : Flight, Trajectory
     balls : mapping or None
         By end, the flight with the balls there.
@@ -85,6 +88,7 @@ def flight(
         "speed_m_s": throw.speed,
         "towards": plain(main.towards),
         "ratios": dict(ratios),
+        "against": against,
         "balls": None if balls is None else {name: _balls(*one, centres, frame, length) for name, one in balls.items()},
         "better": None if change is None else {
             "verdict": change.verdict,
