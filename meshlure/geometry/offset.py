@@ -9,7 +9,10 @@ from meshlure.geometry.solids import Solid
 from meshlure.geometry.surface import Floats, Surface
 
 _STEEPEST = 0.35
-"""Cosine between a corner's direction and one of its faces below which a mitred corner would stick out too far."""
+"""Cosine between a corner's step and one of its faces' normals below which a mitred corner would stick out too far."""
+
+_ALIKE = 0.03
+"""Share of the normals' common weight below which they count as one direction: they differ by some ten degrees."""
 
 
 def grown(surface: Surface, distance: float) -> Surface:
@@ -48,27 +51,41 @@ def _mitred(surface: Surface, distance: float) -> Surface | None:
     normals = surface.double_areas
     length = np.linalg.norm(normals, axis=1)
     unit = normals / np.where(length > 0, length, 1.0)[:, None]
-    corners = surface.corners
-    mean = np.zeros_like(surface.vertices)
+    angles = _corner_angles(surface, length)
+    count = len(surface.vertices)
+    pull, spread = np.zeros((count, 3)), np.zeros((count, 3, 3))
+    for corner in range(3):
+        at = surface.faces[:, corner]
+        for i in range(3):
+            pull[:, i] += np.bincount(at, angles[corner] * unit[:, i], count)
+            for j in range(i, 3):
+                spread[:, i, j] += np.bincount(at, angles[corner] * unit[:, i] * unit[:, j], count)
+                spread[:, j, i] = spread[:, i, j]
+    # Each vertex goes where its faces' planes, all moved by one, meet; a direction in which they hardly differ is left.
+    values, vectors = np.linalg.eigh(spread)
+    told = values > _ALIKE * values[:, 2:]
+    along = np.einsum("nij,ni->nj", vectors, pull) / np.where(told, values, 1.0)
+    step = np.einsum("nij,nj->ni", vectors, np.where(told, along, 0.0))
+    clears = _least_cosine(surface, unit, length, step)
+    if (clears <= 0).any() or (np.linalg.norm(step, axis=1) > clears / _STEEPEST).any():
+        return None
+    return Surface(surface.vertices + step * (distance / clears)[:, None], surface.faces)
+
+
+def _corner_angles(surface: Surface, length: Floats) -> list[Floats]:
+    """Angles of every face at each of its three corners, rad."""
+    corners, angles = surface.corners, []
     for corner in range(3):
         ahead = corners[:, (corner + 1) % 3] - corners[:, corner]
         behind = corners[:, (corner + 2) % 3] - corners[:, corner]
-        angle = np.arctan2(length, np.einsum("ij,ij->i", ahead, behind))
-        for axis in range(3):
-            mean[:, axis] += np.bincount(surface.faces[:, corner], angle * unit[:, axis], len(surface.vertices))
-    size = np.linalg.norm(mean, axis=1)
-    direction = mean / np.where(size > 0, size, 1.0)[:, None]
-    clears = _least_cosine(surface, unit, length, direction)
-    if (clears < _STEEPEST).any():
-        return None
-    return Surface(surface.vertices + direction * (distance / clears)[:, None], surface.faces)
+        angles.append(np.arctan2(length, np.einsum("ij,ij->i", ahead, behind)))
+    return angles
 
 
-def _least_cosine(surface: Surface, unit: Floats, length: Floats, direction: Floats) -> Floats:
-    """Least cosine between each vertex's direction and its faces' normals; faces without area have none."""
-    least = np.ones(len(surface.vertices))
+def _least_cosine(surface: Surface, unit: Floats, length: Floats, step: Floats) -> Floats:
+    """Least advance of each vertex's step square to its faces; faces without area have none."""
+    least = np.full(len(surface.vertices), np.inf)
     for corner in range(3):
         at = surface.faces[:, corner]
-        cosine = np.where(length > 0, np.einsum("ij,ij->i", unit, direction[at]), 1.0)
-        np.minimum.at(least, at, cosine)
-    return least
+        np.minimum.at(least, at, np.where(length > 0, np.einsum("ij,ij->i", unit, step[at]), np.inf))
+    return np.where(np.isfinite(least), least, 1.0)
