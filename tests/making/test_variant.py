@@ -75,7 +75,7 @@ def test_round_inserts_get_their_gap_everywhere(tmp_path: Path, shape: str) -> N
     body = made["body.stl"]
     room = nearest(Surface(np.asarray(body.vertices) * 1e-3, np.asarray(body.faces)), surface.vertices).distance
     assert room.min() > 0.2e-3 * (1 - 1e-3)
-    assert room.max() < 0.2e-3 * 1.02
+    assert room.max() < 0.2e-3 * 1.15
     # Steiner's formula for a convex body: V + A g + at least 4 pi g^3 / 3; mitred edges take a little more.
     grown = 72e3 - body.volume
     least = (shapes.as_trimesh(surface).volume * 1e9) + surface.area * 1e6 * 0.2
