@@ -3,19 +3,25 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
 from meshlure.geometry.blocks import BlockIndex
+from meshlure.geometry.contours import outer_contours
 from meshlure.geometry.surface import Floats
-from meshlure.geometry.waterplane import Section
+from meshlure.geometry.waterplane import Cut, Section
 
 STATIONS = 121
 """Enough that area and girth of a bait are followed to a thousandth between neighbours."""
 
 END_INSET = 1e-4
 """Share of the length by which the outermost stations stand inside the ends, so that a flat face shows its area."""
+
+END_STATIONS = 16
+END_REACH = 0.05
+"""Further stations near each end, and the share of the length over which they thin out: eight of them stand within an
+edge rounded to a tenth of the diameter of a body eight diameters long."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -40,6 +46,8 @@ class Stations:
         Centroids of the sections, mesh coordinates.
     low, high : float, m
         The solid's ends along the axis.
+    filled, girth : (n,) arrays, m2 and m
+        Area within the outer boundaries of each section, its holes filled, and the length of those boundaries.
     """
 
     axis: Floats
@@ -52,11 +60,19 @@ class Stations:
     centre: Floats
     low: float
     high: float
+    filled: Floats
+    girth: Floats
 
     @property
     def length(self) -> float:
         """Length along the axis, m."""
         return self.high - self.low
+
+    def even(self, count: int = STATIONS) -> Stations:
+        """Return the evenly spread ones among stations that stand closer together near both ends."""
+        kept = np.isin(self.position, station_positions(self.low, self.high, count))
+        arrays = {name: value[kept] for name, value in vars(self).items() if name not in ("axis", "low", "high")}
+        return replace(self, **arrays)
 
 
 def station_positions(low: float, high: float, count: int = STATIONS) -> Floats:
@@ -65,7 +81,26 @@ def station_positions(low: float, high: float, count: int = STATIONS) -> Floats:
     return np.linspace(low + inset, high - inset, count)
 
 
-def stations(index: BlockIndex, axis: Floats, lateral: Sequence[Floats], count: int = STATIONS) -> Stations:
+def dense_positions(low: float, high: float, count: int = STATIONS) -> Floats:
+    """Return plane positions that stand closer together near both ends, (count + 2 END_STATIONS,) array, m.
+
+    Notes
+    -----
+    The evenly spread ones, and near each end further ones at distances that grow with the square of their number.
+    """
+    near = END_INSET + END_REACH * ((np.arange(END_STATIONS) + 0.5) / END_STATIONS) ** 2
+    along = (high - low) * near
+    return np.sort(np.concatenate([station_positions(low, high, count), low + along, high - along]))
+
+
+def stations(
+    index: BlockIndex,
+    axis: Floats,
+    lateral: Sequence[Floats],
+    count: int = STATIONS,
+    *,
+    dense: bool = False,
+) -> Stations:
     """Return a solid's cross-sections along an axis.
 
     Parameters
@@ -77,16 +112,33 @@ def stations(index: BlockIndex, axis: Floats, lateral: Sequence[Floats], count: 
     lateral : two (3,) arrays
         Unit vectors along which width and depth are measured.
     count : int
-        Number of planes.
+        Number of planes, evenly spread.
+    dense : bool
+        Whether further planes stand near both ends.
     """
     low, high = index.reach(axis)
-    position = station_positions(low, high, count)
-    cuts = [index.cut(axis, float(height)) for height in position]
+    position = (dense_positions if dense else station_positions)(low, high, count)
+    return stations_of([index.cut(axis, float(height)) for height in position], lateral, low, high)
+
+
+def stations_of(cuts: Sequence[Cut], lateral: Sequence[Floats], low: float, high: float) -> Stations:
+    """Return the cross-sections that cuts along one axis make.
+
+    Parameters
+    ----------
+    cuts : sequence of Cut
+        Of one direction, ascending.
+    lateral : two (3,) arrays
+        Unit vectors along which width and depth are measured.
+    low, high : float, m
+        The solid's ends along the axis.
+    """
     sections = [cut.bare_section for cut in cuts]
     extents = np.array([cut.extents(*lateral) for cut in cuts])
+    filled, girth = outer_contours(cuts)
     return Stations(
-        axis=np.asarray(axis, dtype=np.float64),
-        position=position,
+        axis=cuts[0].normal,
+        position=np.array([cut.height for cut in cuts]),
         area=np.array([section.area for section in sections]),
         perimeter=np.array([section.perimeter for section in sections]),
         width=extents[:, 0],
@@ -95,6 +147,8 @@ def stations(index: BlockIndex, axis: Floats, lateral: Sequence[Floats], count: 
         centre=np.array([section.centre for section in sections]),
         low=low,
         high=high,
+        filled=filled,
+        girth=girth,
     )
 
 
