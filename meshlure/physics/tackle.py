@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from meshlure.bait.pieces import Hardware
-from meshlure.physics.wire import wire_drag_area
+from meshlure.physics.wire import Lie, wire_drag_area
 
 
 def hook_drag_area(item: Hardware) -> float:
@@ -15,10 +15,10 @@ def hook_drag_area(item: Hardware) -> float:
 
     Notes
     -----
-    The stated drag area, or that of its wire lying anyhow.
+    The stated drag area, or that of its wire: trailing where it hangs, else lying anyhow.
     """
     if item.drag_area is not None:
         return item.drag_area
     if item.wire is None or item.wire_length is None:
         return 0.0
-    return wire_drag_area(item.wire_length, item.wire)
+    return wire_drag_area(item.wire_length, item.wire, Lie.TRAILING if item.hangs else Lie.ANYHOW)

@@ -11,6 +11,15 @@ WIRE_CD: Final = 1.1
 1e4 to 2e5 (Hoerner, S. F. 1965: Fluid-Dynamic Drag, ch. 3, from memory)."""
 
 
+BENT: Final = 3 * (math.pi / 2) / 11
+"""Share of a treble's wire that its three bends take up, each half a ring as wide as the gape: a regular treble's wire
+is eleven gapes long (shop experience, no source). What remains is shank and points, which lie along each other."""
+
+ALONG_CD: Final = 0.035
+"""Drag coefficient of wire along the flow, on length x diameter: its skin, pi x length x diameter, rubbed by a laminar
+layer (Blasius, C_f 0.011 at the Reynolds number 1.5e4 of a shank)."""
+
+
 class Lie(Enum):
     """How a wire lies to the flow; the value is the mean of |sin a|^3 over its length, a between wire and flow.
 
@@ -26,6 +35,9 @@ class Lie(Enum):
     """Every direction in space as likely as any other: bends, points and shank of a hook."""
     RING_EDGE_ON = 4 / (3 * math.pi)
     """A ring whose plane holds the flow; the shelter of its rear half is neglected."""
+    TRAILING = BENT * 4 / (3 * math.pi) + (1 - BENT) * ALONG_CD / WIRE_CD
+    """A treble that trails from its eye: shank and points along the flow, only rubbed, and the bends half rings whose
+    planes hold the flow. A hook that swings by 20 degrees has the same within a quarter."""
 
 
 def wire_drag_area(length: float, diameter: float, lie: Lie = Lie.ANYHOW) -> float:
