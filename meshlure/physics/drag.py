@@ -68,6 +68,12 @@ class _States:
         return (cd - self.laminar.cd) / apart
 
 
+def spread_of(laminar: float, tripped: float) -> float:
+    """Share by which a drag may be off to either side, by how far apart both states of its layer put it."""
+    apart = abs(math.log(tripped / laminar)) / math.log(1 + SMOOTH_BAND)
+    return SHARP_BAND + (SMOOTH_BAND - SHARP_BAND) * min(1.0, apart)
+
+
 def _states(profile: Profile, reynolds_diameter: float, cup: float, transition: float = 0.0) -> _States:
     """Both states; behind a sharp front the laminar one is tripped too."""
     tripped = layer_parts(profile, reynolds_diameter, tripped=True, transition=transition, cup=cup)

@@ -65,8 +65,10 @@ def leading_bluffness(profile: Profile) -> float:
     """
     area = np.concatenate([[0.0], np.maximum.accumulate(profile.area)])
     x = np.concatenate([[0.0], profile.x])
-    rise, run = np.diff(np.sqrt(area / math.pi)), np.diff(x)
-    sine_squared = rise**2 / np.maximum(rise**2 + run**2, np.finfo(float).tiny)
+    sine_squared = profile.steepness
+    if sine_squared is None:
+        rise, run = np.diff(np.sqrt(area / math.pi)), np.diff(x)
+        sine_squared = rise**2 / np.maximum(rise**2 + run**2, np.finfo(float).tiny)
     total = np.concatenate([[0.0], np.cumsum(sine_squared * np.diff(area))])
     grows = np.concatenate([[True], np.diff(area) > 0])
     share = np.linspace(0.5, 1.0, 251)

@@ -12,7 +12,7 @@ import math
 from dataclasses import dataclass
 from typing import Final
 
-from meshlure.physics.form import fineness, leading_bluffness, shoulder_station
+from meshlure.physics.form import fineness, leading_bluffness
 from meshlure.physics.friction import NATURAL_TRANSITION, friction, laminar_friction
 from meshlure.physics.plate import normal_plate_cd
 from meshlure.physics.profile import Profile
@@ -42,7 +42,7 @@ BASE_FACTOR: Final = 0.029
 """Hoerner's base suction 0.029/sqrt(C_fB), C_fB the drag of the body ahead of its base on the base's area (Hoerner
 1965, ch. 3; also in Mandell, G. K. 1973, eq. 125)."""
 
-CLOSED_BEFORE: Final = 0.12
+CLOSED_BEFORE: Final = 0.1
 """Share of the greatest section that a turbulent layer must have closed before it leaves a smooth wall for the whole of
 the pressure recovery to count; less counts in proportion. Ours, chosen with the
 table's tripped sphere, which closes 0.14, in sight."""
@@ -139,8 +139,7 @@ def layer_parts(
     rubbing = flank * (1 + 1.5 / max(slenderness, 1.0) ** 1.5)
     pressing = FACE_PRESSURE * bluff * (1 + CUP_GAIN * cup)
 
-    body_behind_shoulder = max(leaves.station - shoulder_station(profile), 0.0)
-    reattached = min(1.0, body_behind_shoulder / (REATTACHMENT * diameter))
+    reattached = min(1.0, leaves.parallel_run / (REATTACHMENT * diameter))
     detached = bluff * (1 - reattached)
     open_share = detached + (1 - detached) * leaves.trailing_bluffness
 

@@ -5,21 +5,18 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass
 
-import numpy as np
-
 from meshlure.bait.composition import Skin
 from meshlure.bait.pieces import Frame, Hardware
 from meshlure.geometry.blocks import BlockIndex
 from meshlure.geometry.outline import outline
-from meshlure.geometry.stations import Stations, stations
-from meshlure.geometry.surface import Floats, Surface
-from meshlure.geometry.topology import EdgePairs, paired
-from meshlure.physics.cup import FRONT, cup_depth
+from meshlure.geometry.stations import Stations
+from meshlure.geometry.topology import paired
 from meshlure.physics.drag import Drag, Layer, axial_drag, headline_drag
 from meshlure.physics.form import Profile
 from meshlure.physics.lip import lip_plate
 from meshlure.physics.plate import lip_drag_area
 from meshlure.physics.resistance import Fittings
+from meshlure.physics.sections import Sections, smooth
 from meshlure.physics.tackle import hook_drag_area
 
 LEADS = ("nose", "tail")
@@ -58,7 +55,13 @@ class Passage:
         profile, cup = self.profiles[leads], self.cups[leads]
         if layer is None:
             return headline_drag(
-                profile, speed, density, viscosity, trips=self.trips, silhouette=self.frontal, cup=cup,
+                profile,
+                speed,
+                density,
+                viscosity,
+                trips=self.trips,
+                silhouette=self.frontal,
+                cup=cup,
                 fittings=self.fittings,
             )
         return axial_drag(
@@ -79,37 +82,21 @@ def passage(skin: Skin, hardware: Sequence[Hardware], frame: Frame, whole: Stati
     index : BlockIndex
         Of the outer skin.
     """
-    bare, pairs, cuts = skin.bare, skin.outer_pairs, whole
-    if skin.lips:
-        index = BlockIndex.build(bare)
-        cuts = stations(index, frame.nose, (frame.side, frame.back))
-        pairs = paired(bare)
-    first = Profile.from_stations(cuts, leads_low=False)
+    bare, pairs = skin.bare, paired(skin.bare) if skin.lips else skin.outer_pairs
+    frontal = outline(bare, pairs, frame.nose).area
+    fine, pairs = smooth(bare, pairs)
+    if skin.lips or fine is not bare:
+        index = BlockIndex.build(fine)
+    cut = Sections.of(fine, pairs, index, frame.nose, (frame.side, frame.back))
+    ends = {"nose": frame.nose, "tail": -frame.nose}
     return Passage(
-        stations=cuts,
-        profiles={"nose": first, "tail": first.reversed()},
-        cups={"nose": _cup(bare, index, cuts, frame.nose), "tail": _cup(bare, index, cuts, -frame.nose)},
-        frontal=_frontal(bare, pairs, frame),
+        stations=cut.stations.even() if skin.lips else whole,
+        profiles={end: cut.profile(towards) for end, towards in ends.items()},
+        cups={end: cut.cup(towards) for end, towards in ends.items()},
+        frontal=frontal,
         fittings=_fittings(skin, hardware, frame),
         trips=bool(hardware),
     )
-
-
-def _cup(bare: Surface, index: BlockIndex, cuts: Stations, leads: Floats) -> float:
-    """Depth of a hollow in the end that leads: what the hull of its foremost fifth holds beyond the solid."""
-    from scipy.spatial import ConvexHull
-
-    tip = cuts.high if leads @ cuts.axis > 0 else -cuts.low
-    front = FRONT * cuts.length
-    behind = index.cut(leads, tip - front)
-    ahead = bare.vertices[bare.vertices @ leads > tip - front]
-    points = np.concatenate([ahead, behind.start])
-    missing = float(ConvexHull((points - points.mean(axis=0)) / front).volume) * front**3 - (index.volume - behind.volume)
-    return cup_depth(max(missing, 0.0), float(cuts.area.max()), front)
-
-
-def _frontal(bare: Surface, pairs: EdgePairs, frame: Frame) -> float:
-    return outline(bare, pairs, frame.nose).area
 
 
 def _fittings(skin: Skin, hardware: Sequence[Hardware], frame: Frame) -> Fittings:

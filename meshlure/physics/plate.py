@@ -12,7 +12,8 @@ SQUARE_PLATE: Final = 1.13
 
 _ASPECT: Final = (1.0, 1.5, 3.0, 6.0, 10.0, 14.6, 20.0, 30.0, 41.5, 50.0)
 _RATIO: Final = (1.0, 1.04, 1.07, 1.10, 1.145, 1.25, 1.34, 1.40, 1.435, 1.47)
-_ENDLESS: Final = 2.0
+ENDLESS_PLATE: Final = 2.0
+"""Drag coefficient of an endless plate normal to the flow (White, F. M., Fluid Mechanics, table 7.2, from memory)."""
 
 PEAK_ANGLE: Final = math.radians(37)
 """rad. Angle at which a square plate's normal force is greatest (Eiffel 1910/11)."""
@@ -46,7 +47,7 @@ def normal_plate_cd(aspect: float) -> float:
     """
     aspect = max(_checked_aspect(aspect), 1 / aspect)
     inverse = [0.0, *(1 / a for a in reversed(_ASPECT))]
-    value = [_ENDLESS, *(SQUARE_PLATE * r for r in reversed(_RATIO))]
+    value = [ENDLESS_PLATE, *(SQUARE_PLATE * r for r in reversed(_RATIO))]
     return float(np.interp(1 / aspect, inverse, value))
 
 

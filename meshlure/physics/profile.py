@@ -30,7 +30,11 @@ class Profile:
     perimeter : (n,) array, m
     length : float, m
     elongation : float
-        Greatest lateral extent over the one across it, at least 1; 1 for round and square silhouettes.
+        Long over short axis of the ellipse with the largest section's second moments, at least 1; 1 for round and
+        square silhouettes, a rectangle's own aspect.
+    steepness : (n,) array or None
+        sin^2 of the angle between flow and skin, its mean over what the section grows by from the station before to
+        each one; None takes the sections for circles about one axis.
     """
 
     x: Floats
@@ -38,6 +42,7 @@ class Profile:
     perimeter: Floats
     length: float
     elongation: float = 1.0
+    steepness: Floats | None = None
 
     def __post_init__(self) -> None:
         arrays = {name: np.array(getattr(self, name), dtype=np.float64) for name in ("x", "area", "perimeter")}
@@ -51,25 +56,46 @@ class Profile:
             raise ValueError("a profile's areas and perimeters are not negative and not all zero")
         if not 1.0 <= self.elongation < math.inf:
             raise ValueError(f"a profile's elongation is at least 1, not {self.elongation}")
+        if self.steepness is not None:
+            arrays["steepness"] = np.array(self.steepness, dtype=np.float64)
+            if arrays["steepness"].shape != arrays["x"].shape or not (np.abs(arrays["steepness"] - 0.5) <= 0.5).all():
+                raise ValueError("a profile's steepness lies between 0 and 1 at every station")
         for name, values in arrays.items():
             values.flags.writeable = False
             object.__setattr__(self, name, values)
 
     @classmethod
-    def from_stations(cls, stations: Stations, *, leads_low: bool) -> Profile:
+    def from_stations(
+        cls,
+        stations: Stations,
+        *,
+        leads_low: bool,
+        filled: float = 1.0,
+        facing: Callable[[Floats], tuple[Floats, Floats]] | None = None,
+    ) -> Profile:
         """Return the sections counted from the low end of the axis, or from the high end.
 
         Parameters
         ----------
         stations : Stations
+            Their lateral directions along the greatest section's own axes.
         leads_low : bool
             True where the end with the lesser position along the axis goes first.
+        filled : float
+            Share to which holes of the sections count as filled: a hollow in a face stands full of dead fluid, a hole
+            right through does not.
+        facing : callable, optional
+            What the faces turn ahead up to given distances from the leading end, plain and by steepness, as
+            `geometry.steepness.facing_ahead`. Left out, the sections are taken for circles.
         """
         order = slice(None) if leads_low else slice(None, None, -1)
-        x = stations.position - stations.low if leads_low else stations.high - stations.position
-        extents = sorted((float(stations.width.max()), float(stations.depth.max())))
-        elongation = extents[1] / extents[0] if extents[0] > 0 else 1.0
-        return cls(x[order], stations.area[order], stations.perimeter[order], stations.length, elongation)
+        x = (stations.position - stations.low if leads_low else stations.high - stations.position)[order]
+        area = (stations.area + filled * (stations.filled - stations.area))[order]
+        perimeter = (stations.perimeter + filled * (stations.girth - stations.perimeter))[order]
+        axes = sorted(float(axis) for axis in stations.spread[stations.area.argmax()])
+        elongation = axes[1] / axes[0] if axes[0] > 0 else 1.0
+        steepness = None if facing is None else _steepness(area, *facing(x))
+        return cls(x, area, perimeter, stations.length, elongation, steepness)
 
     @classmethod
     def of_revolution(cls, radius: Callable[[Floats], Floats], length: float, count: int = 121) -> Profile:
@@ -138,3 +164,12 @@ class Profile:
             power = power * u
         normal = np.array([[moments[i + j] for j in range(3)] for i in range(3)]).transpose(2, 0, 1)
         return np.asarray(np.linalg.solve(normal, np.array(right).T[..., None])[:, 1, 0] / reach, dtype=np.float64)
+
+
+def _steepness(area: Floats, shown: Floats, weighted: Floats) -> Floats:
+    """Mean steepness of what the section grows by between stations; what grows without a face is a hollow's mouth."""
+    growth = np.diff(np.maximum.accumulate(area), prepend=0.0)
+    shown, weighted = np.diff(shown, prepend=0.0), np.diff(weighted, prepend=0.0)
+    mouth = np.maximum(growth - shown, 0.0)
+    whole = np.maximum(shown + mouth, 1e-12 * float(area.max()))
+    return np.asarray(np.clip((weighted + mouth) / whole, 0.0, 1.0))

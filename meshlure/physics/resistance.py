@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
+from dataclasses import dataclass, fields
 from typing import Final
 
 
@@ -15,9 +15,11 @@ class DragParts:
     ----------
     friction, forebody, base, tail : float, m2
         Of the body: rubbing along the flank, pressure on the leading end, suction on what is open to the wake, or
-        pressure on a closing tail (one of the last two is zero).
+        pressure on a closing tail (straight on, one of the last two is zero).
     lip, hooks, eyes : float, m2
         Each taken alone in the full speed, without sheltering one another.
+    induced : float, m2
+        What the side force of a body at an angle to the flow adds.
     """
 
     friction: float
@@ -27,16 +29,28 @@ class DragParts:
     lip: float = 0.0
     hooks: float = 0.0
     eyes: float = 0.0
+    induced: float = 0.0
 
     @property
     def body(self) -> float:
         """Drag area of the body alone, m2."""
-        return self.friction + self.forebody + self.base + self.tail
+        return self.friction + self.forebody + self.base + self.tail + self.induced
 
     @property
     def total(self) -> float:
         """Drag area of everything, m2."""
         return self.body + self.lip + self.hooks + self.eyes
+
+    def __add__(self, other: DragParts) -> DragParts:
+        return DragParts(*(getattr(self, name) + getattr(other, name) for name in _NAMES))
+
+    def __mul__(self, factor: float) -> DragParts:
+        return DragParts(*(getattr(self, name) * factor for name in _NAMES))
+
+    __rmul__ = __mul__
+
+
+_NAMES: Final = tuple(field.name for field in fields(DragParts))
 
 
 @dataclass(frozen=True)

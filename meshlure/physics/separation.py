@@ -9,19 +9,24 @@ from typing import Final
 import numpy as np
 
 from meshlure.geometry.surface import Floats
+from meshlure.physics.form import shoulder_station
 from meshlure.physics.profile import Profile
 
-LAMINAR_ANGLE: Final = math.radians(10)
+LAMINAR_ANGLE: Final = math.radians(7)
 """rad. Closing angle at which a laminar layer leaves a smooth wall; spheres show 0 to 10 degrees (Achenbach, E. 1972:
 J. Fluid Mech. 54, from memory: separation 80 to 85 degrees from the nose). Both angles were kept among several
 tried with the published table in sight."""
 
-TRIPPED_ANGLE: Final = math.radians(22)
+TRIPPED_ANGLE: Final = math.radians(21)
 """rad. Closing angle at which a turbulent layer leaves; boat-tails stay attached to about 22 degrees (Mair, W. A. 1969:
 Aeronautical Quarterly 20, from memory), spheres show 20 to 30 (Achenbach 1972, from memory)."""
 
 ANGLE_SPREAD: Final = 0.3
 """Every angle within this share of the nominal one is taken as equally likely, and the result averaged over them."""
+
+RECEDES: Final = 0.25
+"""Share of the greatest radius by which a wall may lie further in than that radius before a flow that left a sharp edge
+ahead no longer finds it; less counts in proportion. Ours."""
 
 WAIST_FULL: Final = 0.8
 """A section behind a waist that is this share of the greatest or less no longer catches the flow that left ahead."""
@@ -41,12 +46,15 @@ class Separation:
         Skin of the flank ahead of it.
     arc : float, m
         Way of the flow along the surface, from the axis over the face to that line.
+    parallel_run : float, m
+        Length of wall between shoulder and separation on which a flow that left a sharp edge ahead can settle.
     """
 
     station: float
     trailing_bluffness: float
     wetted_area: float
     arc: float
+    parallel_run: float
 
 
 def attached_share(profile: Profile, angle: float) -> Floats:
@@ -93,9 +101,14 @@ def separation(profile: Profile, angle: float) -> Separation:
     run = np.diff(profile.x)
     later = np.maximum.accumulate(profile.area[::-1])[::-1]
     ends = profile.x[0] * attached[0] + (profile.length - profile.x[-1]) * attached[-1]
+    station = float((between * run).sum() + ends)
+    inward = 1 - profile.radius / (profile.diameter / 2)
+    receded = np.clip(inward / RECEDES, 0, 1) * (np.arange(inward.size) > profile.area.argmax())
+    lost = float((between * run * (receded[1:] + receded[:-1]) / 2).sum())
     return Separation(
-        station=float((between * run).sum() + ends),
+        station=station,
         trailing_bluffness=float(1 + (between * np.diff(later)).sum() / profile.greatest_area),
         wetted_area=float((between * profile.skin).sum()),
         arc=float(profile.radius[0] + (between * np.hypot(run, np.diff(profile.radius))).sum()),
+        parallel_run=max(station - shoulder_station(profile) - lost, 0.0),
     )
