@@ -16,15 +16,14 @@ LONGEST: Final = 600.0
 """s. A bait that takes longer for its way is not waited for."""
 
 _LENGTHS: Final = 4.0
-_SWINGS: Final = 1.5
-"""A window of time holds the longer of so many of its own lengths travelled and so many swings."""
+_SWINGS: Final = (1.5, 10.0)
+"""A window of time holds four of its own lengths travelled, but at least and at most so many swings."""
 
 _WINDOWS: Final = 12
 """Windows after which a motion that is still unsteady is not followed further."""
 
-_LEAST: Final = 3
-_ENOUGH: Final = 20
-"""Windows and swings that are followed at least, unless the motion becomes steady before."""
+_ENOUGH: Final = (12.0, 20.0, 60.0)
+"""Nor after so many lengths and swings, or after so many more swings."""
 
 _POINTS: Final = 48
 
@@ -38,7 +37,7 @@ _NUDGE: Final = np.radians(1.0)
 _NEAR: Final = np.radians(20.0)
 """rad between the mean pitch of the last window and that of the steady motion that it is taken to lead to."""
 
-_PRECISION: Final = 1e-6
+_PRECISION: Final = 1e-5
 
 
 @dataclass(frozen=True)
@@ -85,6 +84,8 @@ def free_fall_speed(body: Submerged, pitch: float) -> float:
     -----
     sqrt(2 |W - B|/(rho C A)), C A the drag area along the path.
     """
+    if body.net == 0:
+        return 0.0
     area = body.drag_area(pitch, float(np.sign(body.net)))
     return float(np.sqrt(2 * abs(body.net) / (body.density * area)))
 
@@ -199,11 +200,15 @@ def _followed(body: Submerged, pitch: float) -> _Path:
     def change(_: float, state: Floats) -> Floats:
         return np.concatenate([body.change(state[:4]), _rates(state)])
 
-    window = max(_LENGTHS * body.cuts.length / free_fall_speed(body, pitch), _SWINGS * body.swing_period)
+    speed = free_fall_speed(body, pitch)
+    pace, period = body.cuts.length / speed, body.swing_period
+    window = _LENGTHS * pace
+    if period:
+        window = min(max(window, _SWINGS[0] * period), _SWINGS[1] * period)
     state = np.zeros(6)
     state[PITCH] = pitch + _NUDGE
     times, states = [np.zeros(1)], [state[None, :]]
-    scale = np.array([1.0, *[free_fall_speed(body, pitch)] * 2, 1.0, body.cuts.length, body.cuts.length])
+    scale = np.array([1.0, speed, speed, 1.0, body.cuts.length, body.cuts.length])
     for number in range(_WINDOWS):
         begin = number * window
         moments = np.linspace(begin, begin + window, _POINTS)
@@ -215,9 +220,10 @@ def _followed(body: Submerged, pitch: float) -> _Path:
         times.append(moments[1:])
         states.append(rows[1:])
         state = rows[-1]
-        speed = np.hypot(rows[:, ALONG], rows[:, UP])
-        if np.ptp(rows[:, PITCH]) < _STILL_PITCH and np.ptp(speed) < _STILL_SPEED * speed.mean():
+        through = np.hypot(rows[:, ALONG], rows[:, UP])
+        if np.ptp(rows[:, PITCH]) < _STILL_PITCH and np.ptp(through) < _STILL_SPEED * through.mean():
             break
-        if number >= _LEAST and moments[-1] >= _ENOUGH * body.swing_period:
+        passed = float(moments[-1])
+        if passed >= max(_ENOUGH[0] * pace, _ENOUGH[1] * period) or (period and passed >= _ENOUGH[2] * period):
             break
     return _Path(np.concatenate(times), np.vstack(states), rows)

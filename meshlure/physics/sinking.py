@@ -8,7 +8,7 @@ from typing import Final
 
 import numpy as np
 
-from meshlure.physics.course import Course, course, free_fall_speed, steady_motion
+from meshlure.physics.course import Course, course, free_fall_speed, holds, steady_motion
 from meshlure.physics.glider import glider
 from meshlure.physics.passage import LEADS, Passage
 from meshlure.physics.repose import Vessel
@@ -167,15 +167,22 @@ def _at_its_speed(body: Submerged, way: Passage, viscosity: float, pitch: float)
     if body.net == 0:
         return body, speed
     for _ in range(_ROUNDS):
-        fall = free_fall_speed(body, pitch) * np.sign(-body.net)
-        guess = np.array([pitch, -fall * np.sin(pitch), -fall * np.cos(pitch), 0.0])
-        state = steady_motion(body, guess)
-        found = abs(float(fall)) if state is None else float(np.hypot(state[ALONG], state[UP]))
+        found = _likely_speed(body, pitch)
         if abs(found - speed) <= _CLOSE * speed:
             break
         speed = found
         body = _with_drag(body, way, viscosity, speed)
     return body, speed
+
+
+def _likely_speed(body: Submerged, pitch: float) -> float:
+    """Speed of the steady motion that holds near the hanging posture, else near level, else of a straight fall, m/s."""
+    for near in (pitch, 0.0):
+        fall = free_fall_speed(body, near) * float(np.sign(-body.net))
+        state = steady_motion(body, np.array([near, -fall * np.sin(near), -fall * np.cos(near), 0.0]))
+        if state is not None and holds(body, state):
+            return float(np.hypot(state[ALONG], state[UP]))
+    return free_fall_speed(body, pitch)
 
 
 def _with_drag(body: Submerged, way: Passage, viscosity: float, speed: float) -> Submerged:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass, field
 from functools import cached_property
 from typing import Final
@@ -131,7 +132,9 @@ class Submerged:
         loads = self.glider.loads(towards)
         # side = back x nose, so that the nose rises about its opposite.
         table = np.column_stack([loads.force @ nose, loads.force @ back, -loads.about(middle) @ side])
-        run = np.gradient(self.cuts.position)
+        steps = np.diff(self.cuts.position)
+        # Weights of the trapezoidal rule: the ends, where turning is fastest, count for half a step.
+        run = (np.append(steps, 0.0) + np.insert(steps, 0, 0.0)) / 2
         strips = crossflow_factor(self.glider.fineness) * crossflow_strips(self.cuts, 1) * run
         hooks = [(h.drag_area, (h.place - middle) @ nose, (h.place - middle) @ back) for h in self.glider.hooks]
         for name, values in (
@@ -161,24 +164,25 @@ class Submerged:
         hook, from the speed there. A still bait that turns meets rho/2 eta times the integral of C_dc b |x|^3 dx.
         """
         pitch, along, up, turning = (float(value) for value in state[:4])
-        sine, cosine = np.sin(pitch), np.cos(pitch)
+        sine, cosine = math.sin(pitch), math.cos(pitch)
         gx, gz = self.offset
         weight = GRAVITY * self.mass.amount
-        moment = -weight * (gx * cosine - gz * sine)
-        still = np.array([self.net * sine, self.net * cosine, moment])
-        half = self.density / 2
-        met = half * (along**2 + up**2) * self._loads(float(np.arctan2(up, along)))
+        half, net = self.density / 2, self.net
+        met = half * (along * along + up * up) * self._loads(math.atan2(up, along))
+        met += (net * sine, net * cosine, -weight * (gx * cosine - gz * sine))
         if turning:
             across = up + turning * self._arm
             extra = self._strips * (across * np.abs(across) - up * abs(up))
-            met[1] -= half * extra.sum()
-            met[2] -= half * (extra @ self._arm)
             area, x, z = self._eyes
             u, w = along - turning * z, up + turning * x
-            speed, before = np.hypot(u, w), np.hypot(along, up)
+            speed, before = np.sqrt(u * u + w * w), math.hypot(along, up)
             fx, fz = area * (speed * u - before * along), area * (speed * w - before * up)
-            met -= half * np.array([fx.sum(), fz.sum(), (x * fz - z * fx).sum()])
-        return np.asarray(still + met)
+            met -= (
+                half * fx.sum(),
+                half * (extra.sum() + fz.sum()),
+                half * (extra @ self._arm + x @ fz - z @ fx),
+            )
+        return met
 
     def change(self, state: Floats) -> Floats:
         """Return the rate of change of a state, (4,) array.
