@@ -20,7 +20,11 @@ SWAYS_TO: Final = np.radians(60.0)
 DISTURBED: Final = np.radians(30.0)
 """rad off the leading end: the start that a well must hold, for a bait does not leave the rod straight; our limit."""
 
-STEP: Final = np.radians(1.0)
+STEP: Final = float(np.radians(1.0))
+"""rad between the angles of a moment curve."""
+
+_NOUGHT: Final = 1e-9
+"""Share of the greatest moment that counts as none."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -32,7 +36,7 @@ class MomentCurve:
     plane : str
         pitch or yaw.
     angle : (n,) array, rad
-        From -pi to pi; positive where the bait moves towards its back (pitch) or its left side (yaw).
+        From -pi to pi by `STEP`; positive where the bait moves towards its back (pitch) or its left side (yaw).
     moment : (n,) array, N m
         Positive lessens the angle.
     inertia : float, kg m2
@@ -59,15 +63,22 @@ class MomentCurve:
 
     @cached_property
     def trims(self) -> tuple[Trim, ...]:
-        """Every angle without moment, ascending."""
+        """Every angle without moment, ascending.
+
+        Notes
+        -----
+        The first and the last angle are the same direction; an end that the curve crosses there, as every bait alike
+        on both sides does tail first, is found once.
+        """
+        moment, angle = self.moment[:-1].copy(), self.angle
+        moment[np.abs(moment) <= _NOUGHT * np.abs(moment).max()] = 0.0
+        after = np.roll(moment, -1)
+        slopes = (after - np.roll(moment, 1)) / (2 * STEP)
         found = []
-        for k in range(len(self.angle) - 1):
-            low, high = float(self.moment[k]), float(self.moment[k + 1])
-            if low == 0 or low * high < 0:
-                run = float(self.angle[k + 1] - self.angle[k])
-                slope = (high - low) / run
-                at = float(self.angle[k]) + (-low / slope if slope else 0.0)
-                found.append(Trim(at, slope > 0, slope))
+        for k in np.flatnonzero((moment == 0) | (moment * after < 0)):
+            share = float(moment[k] / (moment[k] - after[k])) if moment[k] else 0.0
+            slope = float((1 - share) * slopes[k] + share * slopes[(k + 1) % len(slopes)])
+            found.append(Trim(float(angle[k]) + share * STEP, slope > 0, slope))
         return tuple(found)
 
     def from_end(self, end: str) -> Floats:
