@@ -83,7 +83,8 @@ def trajectory(
     Raises
     ------
     ValueError
-        Where mass, density or speed is not positive, or the body is still in the air after a minute.
+        Where mass, density or speed is not positive, where the line pulls as hard as the body weighs, or where the
+        body is still in the air after a minute.
 
     Notes
     -----
@@ -94,6 +95,8 @@ def trajectory(
 
     if not (mass > 0 and density > 0 and throw.speed > 0):
         raise ValueError(f"a throw has mass, air and speed, not {mass} kg, {density} kg/m3, {throw.speed} m/s")
+    if not 0 <= throw.pull < mass * GRAVITY:
+        raise ValueError(f"a line that pulls {throw.pull:g} N stops a bait of {mass * GRAVITY:.3g} N weight in the air")
     area = drag_area if callable(drag_area) else (lambda _: drag_area)
 
     def change(_: float, state: Floats) -> list[float]:
@@ -111,7 +114,8 @@ def trajectory(
     lands.direction = -1  # type: ignore[attr-defined]
     start = [0.0, throw.height, throw.speed * np.cos(throw.angle), throw.speed * np.sin(throw.angle)]
     found = solve_ivp(
-        change, (0.0, LONGEST), start, method="DOP853", events=lands, dense_output=True, rtol=_PRECISION, atol=_PRECISION
+        change, (0.0, LONGEST), start, method="DOP853", events=lands, dense_output=True,
+        rtol=_PRECISION, atol=_PRECISION,
     )
     if found.t_events is None or found.y_events is None or found.sol is None or not len(found.t_events[0]):
         raise ValueError(f"still in the air after {LONGEST:g} s")
