@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
+from itertools import combinations
 
 import numpy as np
 
@@ -28,14 +29,21 @@ _CLOSE = 1e-9
 _ASIDE = 0.05
 """rad. From a pass, descents to both sides start this far away."""
 
-_SAME = np.cos(np.radians(2.0))
-_BOWL = np.cos(np.radians(4.0))
+_SAME = np.cos(np.radians(1.0))
+_BOWL = np.cos(np.radians(1.0))
 
 _CANDIDATES = 24
 """Passes that are looked at, the lowest of the grid first."""
 
 _LINKS = 6
 """Directions of the grid that a posture is taken as a neighbour of."""
+
+_NEAR = np.cos(np.radians(30.0))
+_SHARES = np.linspace(0.1, 0.9, 9)
+"""Minima nearer than this are looked at for a pass between them, at these shares of the way."""
+
+_MISSED, _UNSURE = 1.25, 0.05e-3
+"""A settled pass higher than this many times the grid's and so many metres was not the lowest."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -82,7 +90,8 @@ def barriers(rough: Potential, full: Potential, rests: Sequence[Rest], nose: Flo
     The lowest way between two minima leads over a critical point of index one. Saddles of the potential on a grid of
     directions are sharpened by Newton's method on the coarse copy; descents to both sides tell which postures each
     of them joins; the first in ascending order that joins a posture to another one is the way out of it, and is
-    settled on the full hull. Energies are those of slow tilting: a bait's swing and waves need less.
+    settled on the full hull. Where a flood of the grid's energies finds a much lower way, that one counts.
+    Energies are those of slow tilting: a bait's swing and waves need less.
 
     References
     ----------
@@ -94,8 +103,9 @@ def barriers(rough: Potential, full: Potential, rests: Sequence[Rest], nose: Flo
     landscape = Landscape.of(rough)
     energies = landscape.energies(grid.directions)
     minima = [rough.descended(rest.state.up, 0.1) for rest in rests]
+    starts = [*_between(rough, minima), *grid.directions[grid.saddles(energies)[:_CANDIDATES]]]
     found: dict[int, Barrier] = {}
-    for saddle in _saddles(rough, grid, energies):
+    for saddle in _saddles(rough, starts):
         ends = {_end(rough, saddle, side, minima) for side in (-1.0, 1.0)}
         open_ends = [end for end in ends if end is not None and end not in found]
         if len(ends) < 2 or None in ends or not open_ends:
@@ -105,11 +115,13 @@ def barriers(rough: Potential, full: Potential, rests: Sequence[Rest], nose: Flo
             found[end] = _barrier(full, rests[end], top or full.at(saddle.up, saddle), top is not None)
         if len(found) == len(rests):
             break
-    if len(found) < len(rests):
-        ups = np.array([rest.state.up for rest in rests])
-        for number, over in enumerate(_grid_ways(grid, energies, ups, landscape.energies(ups))):
-            if number not in found:
-                found[number] = _barrier(full, rests[number], full.at(over), False)
+    ups = np.array([rest.state.up for rest in rests])
+    for number, (over, rise) in enumerate(_grid_ways(grid, energies, ups, landscape.energies(ups))):
+        # A pass that the search has missed shows where the grid knows a much lower way.
+        if number not in found or found[number].rise > _MISSED * rise + _UNSURE:
+            by_grid = _barrier(full, rests[number], full.at(over), False)
+            if number not in found or by_grid.rise < found[number].rise:
+                found[number] = by_grid
     return tuple(found[number] for number in range(len(rests)))
 
 
@@ -120,25 +132,36 @@ def _barrier(full: Potential, rest: Rest, top: State, settled: bool) -> Barrier:
     return Barrier(max(top.energy, height) - height, top.up, settled)
 
 
-def _saddles(rough: Potential, grid: DirectionGrid, energies: Floats) -> list[State]:
-    """Return the saddles of the coarse copy's potential, the lowest first, each once."""
+def _between(rough: Potential, minima: Sequence[State]) -> Iterator[Floats]:
+    """Yield the highest of a few directions between each two minima that are too near for the grid to part."""
+    for one, other in combinations(minima, 2):
+        if one.up @ other.up < _NEAR:
+            continue
+        ways = [one.up + share * (other.up - one.up) for share in _SHARES]
+        states = [rough.at(np.asarray(way / np.linalg.norm(way)), one) for way in ways]
+        yield max(states, key=lambda state: state.energy).up
+
+
+def _saddles(rough: Potential, starts: Sequence[Floats]) -> list[State]:
+    """Return the saddles of the coarse copy's potential near some directions, the lowest first, each once."""
     found: list[State] = []
-    for place in grid.saddles(energies)[:_CANDIDATES]:
-        saddle = _pass(rough, grid.directions[place])
+    for start in starts:
+        saddle = _pass(rough, start)
         if saddle is not None and all(saddle.up @ other.up < _SAME for other in found):
             found.append(saddle)
     return sorted(found, key=lambda state: state.energy)
 
 
-def _grid_ways(grid: DirectionGrid, energies: Floats, ups: Floats, heights: Floats) -> Floats:
-    """Return the highest direction on the lowest way over the grid from each posture to any other, (n, 3) array."""
+def _grid_ways(
+    grid: DirectionGrid, energies: Floats, ups: Floats, heights: Floats
+) -> list[tuple[Floats, float]]:
+    """Return the highest direction on the lowest way over the grid from each posture to any other, and its rise, m."""
     first = len(energies)
     nearest = np.argsort(grid.directions @ ups.T, axis=0)[-_LINKS:].T
     links = np.column_stack([nearest.reshape(-1), np.repeat(np.arange(first, first + len(ups)), _LINKS)])
-    met = first_meetings(
-        np.concatenate([energies, heights]), np.vstack([grid.edges, links]), np.arange(first, first + len(ups))
-    )
-    return np.asarray(np.vstack([grid.directions, ups])[met])
+    values, directions = np.concatenate([energies, heights]), np.vstack([grid.directions, ups])
+    met = first_meetings(values, np.vstack([grid.edges, links]), np.arange(first, first + len(ups)))
+    return [(directions[node], float(values[node] - height)) for node, height in zip(met, heights, strict=True)]
 
 
 def _end(rough: Potential, saddle: State, side: float, minima: Sequence[State]) -> int | None:

@@ -130,6 +130,20 @@ def test_against_a_flood_of_energies_in_a_fine_net(seed: int) -> None:
         assert top.energy - rest.state.energy == pytest.approx(barrier.rise, rel=1e-9)
 
 
+@pytest.mark.parametrize(("seed", "share"), [(17, 0.08), (3, 0.3), (9, 0.9)])
+def test_no_barrier_is_higher_than_the_straight_way_to_any_other_posture(seed: int, share: float) -> None:
+    # The highest energy on the great circle to another posture bounds the pass from above. The first body has a second
+    # hollow nine degrees beside the first, too shallow for a coarse grid to see.
+    body = Afloat(shapes.lumpy(seed, level=4, depth=0.9), share)
+    rests = body.rests()
+    assert len(rests) > 1
+    for number, (barrier, rest) in enumerate(zip(found(body, rests), rests, strict=True)):
+        for other in (*rests[:number], *rests[number + 1 :]):
+            ways = [rest.state.up + s * (other.state.up - rest.state.up) for s in np.linspace(0.02, 0.98, 25)]
+            highest = max(body.at(way).energy for way in ways if np.linalg.norm(way) > 0.1)
+            assert barrier.rise <= max(highest, other.state.energy) - rest.state.energy + 1e-7
+
+
 def test_a_posture_settled_with_a_hook_dry_is_measured_with_it_wet_as_the_pass_is() -> None:
     surface = shapes.lumpy(6, level=3)
     wet, dry = Afloat(surface, 0.55, None, 0.0, 5e-8, (0.0, 0.02, 0.0)), Afloat(surface, 0.55)
