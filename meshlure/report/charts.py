@@ -35,8 +35,8 @@ PARTS = {
 """Parts of the drag: name in the legend, ink, hatch."""
 
 
-def _axes(figure: Figure, left: float, bottom: float, right: float, top: float) -> Axes:
-    """Axes with margins in mm."""
+def margins(figure: Figure, left: float, bottom: float, right: float, top: float) -> Axes:
+    """Return axes with margins in mm."""
     width, height = figure.get_size_inches() * ink.MM_PER_INCH
     return figure.add_axes((left / width, bottom / height, 1 - (left + right) / width, 1 - (bottom + top) / height))
 
@@ -46,7 +46,7 @@ def reserve(buoyancy: Mapping[str, Any]) -> Picture:
     value, low, high = buoyancy["reserve_g"], buoyancy["reserve_low_g"], buoyancy["reserve_high_g"]
     reach = 1.25 * max(abs(low), abs(high), abs(value), 1e-3)
     figure = blank(WIDE, 20.5)
-    axes = _axes(figure, 4, 9.5, 4, 6)
+    axes = margins(figure, 4, 9.5, 4, 6)
     axes.set(xlim=(-reach, reach), ylim=(-1, 1), yticks=[])
     axes.spines["left"].set_visible(False)
     axes.grid(visible=False)
@@ -69,7 +69,7 @@ def waters(rows: Sequence[Mapping[str, Any]]) -> Picture | None:
     if not kinds:
         return None
     figure = blank(WIDE, 52)
-    axes = _axes(figure, 14, 10, 3, 6)
+    axes = margins(figure, 14, 10, 3, 6)
     for kind, look in zip(kinds, _cycle(len(kinds)), strict=True):
         of_kind = sorted(
             (row["temperature_c"], row["reserve_g"])
@@ -95,7 +95,7 @@ def righting(curves: Sequence[Mapping[str, Any]], plane: str, postures: Sequence
     if not chosen:
         return None
     figure = blank(WIDE, 52)
-    axes = _axes(figure, 14, 10, 3, 6)
+    axes = margins(figure, 14, 10, 3, 6)
     for curve, look in zip(chosen, _cycle(len(chosen)), strict=True):
         index = curve.get("posture")
         name = f"from posture {index + 1}" if index is not None and len(postures) > index else "righting arm"
@@ -118,12 +118,12 @@ def stations(curves: Mapping[str, Any]) -> Picture:
     width, depth = curves.get("width_mm") or [], curves.get("depth_mm") or []
     below = bool(width and depth)
     figure = blank(WIDE, 78 if below else 52)
-    top = _axes(figure, 14, 42 if below else 10, 3, 3)
+    top = margins(figure, 14, 42 if below else 10, 3, 3)
     top.fill_between(x, curves["area_mm2"], color=ink.SHALLOW, linewidth=0)
     top.plot(x, curves["area_mm2"], **LINES[0])
     top.set(ylabel="section area, mm²", ylim=(0, None))
     if below:
-        under = _axes(figure, 14, 10, 3, 44)
+        under = margins(figure, 14, 10, 3, 44)
         under.plot(x, depth, label="depth", **LINES[0])
         under.plot(x, width, label="width", **LINES[1])
         under.set(ylabel="mm", ylim=(0, None), xlabel="mm from the nose")
@@ -158,7 +158,7 @@ def rose(table: Mapping[str, Any], frame: Mapping[str, Any], plane: str) -> Pict
     angle, kept = np.unique(np.round(np.mod(angle, 2 * np.pi), 6), return_index=True)
     angle, area = np.append(angle, angle[0] + 2 * np.pi), np.append(area[kept], area[kept[0]])
     figure = blank(62, 62)
-    axes: Any = figure.add_axes((0.17, 0.13, 0.66, 0.70), projection="polar")
+    axes: Any = figure.add_axes((0.17, 0.11, 0.66, 0.68), projection="polar")
     axes.plot(angle, area, **LINES[0])
     axes.fill(angle, area, color=ink.SHALLOW)
     words = {0: names[first][0], 180: names[first][1] or "right", 90: names[second][0], 270: names[second][1]}
@@ -175,7 +175,8 @@ def rose(table: Mapping[str, Any], frame: Mapping[str, Any], plane: str) -> Pict
     for level in axes.get_yticks()[1:]:
         if level <= axes.get_ylim()[1]:
             axes.text(np.radians(67.5), level, fixed(level, 0), fontsize=6, ha="center", va="center", color=ink.PENCIL)
-    figure.text(0.5, 0.965, f"silhouette area, mm², {rose_words(across)}", ha="center", va="center", fontsize=7)
+    for height, line in ((0.972, "silhouette area, mm²"), (0.925, rose_words(across))):
+        figure.text(0.5, height, line, ha="center", va="center", fontsize=7)
     most, least = int(np.argmax(area)), int(np.argmin(area))
     ends = f"from {square_millimetres(area[least])} to {square_millimetres(area[most])}"
     return picture(figure, f"Silhouette area by direction of view, {rose_words(across)}: {ends}; numbers in the table.")
@@ -194,7 +195,7 @@ def drag(rows: Sequence[Mapping[str, Any]], fluid: str) -> Picture | None:
     fastest = max(row["speed_m_s"] for row in of_fluid)
     chosen = [row for row in of_fluid if row["speed_m_s"] == fastest][::-1]
     figure = blank(WIDE, 27.5 + 7.5 * len(chosen))
-    axes = _axes(figure, 25, 18, 4, 5)
+    axes = margins(figure, 25, 18, 4, 5)
     axes.grid(visible=False, axis="y")
     start = np.zeros(len(chosen))
     for key in [*PARTS, *sorted({key for row in chosen for key in row["parts"]} - set(PARTS))]:
@@ -220,7 +221,7 @@ def drag(rows: Sequence[Mapping[str, Any]], fluid: str) -> Picture | None:
     labels = [f"{leads_words(row['leads'])}\n{layer_words(row)}" for row in chosen]
     axes.set_yticks(range(len(chosen)), [label if drawable(label.replace("\n", "")) else "?" for label in labels])
     axes.tick_params(axis="y", length=0)
-    axes.set_title(f"in {fluid}, {fastest:g} m/s", fontsize=7.5, loc="left", pad=3)
+    axes.set_title(f"in {fluid}, {fixed(fastest, 1)} m/s", fontsize=7.5, loc="left", pad=3)
     axes.set(xlabel="drag area, mm²   (line: how sure)", xlim=(0, None))
     handles, names = axes.get_legend_handles_labels()
     figure.legend(
@@ -233,8 +234,8 @@ def drag(rows: Sequence[Mapping[str, Any]], fluid: str) -> Picture | None:
         handlelength=2.2,
         borderaxespad=0.2,
     )
-    words = f"Bars of the drag area in {fluid} at {fastest:g} m/s by parts, nose first and tail first, with bands"
-    return picture(figure, f"{words}; numbers in the table of drag.")
+    words = f"Bars of the drag area in {fluid} at {fixed(fastest, 1)} m/s by parts, nose first and tail first"
+    return picture(figure, f"{words}, with bands; numbers in the table of drag.")
 
 
 def leads_words(leads: Any) -> str:

@@ -34,12 +34,13 @@ def areas(results: Results) -> Table | None:
 def rose(results: Results) -> Table | None:
     """Return the silhouette's area direction by direction."""
     found = results["rose"]
-    planes = found.get("plane") or [""] * len(found["axis"])
     rows = [
-        (", ".join(fixed(c, 3) for c in axis), str(plane), fixed(area, 0))
-        for axis, plane, area in zip(found["axis"], planes, found["area_mm2"], strict=True)
+        (plane, f"{fixed(angle, 0)}°", ", ".join(fixed(c, 3) for c in axis), fixed(area, 0))
+        for plane, angle, axis, area in zip(
+            found["plane"], found["angle_deg"], found["axis"], found["area_mm2"], strict=True
+        )
     ]
-    return table("Silhouette area by direction", ("along, mesh axes", "turned", "mm²"), rows, (0, 1))
+    return table("Silhouette area by direction", ("turned", "by", "along, mesh axes", "mm²"), rows, (0, 2))
 
 
 def stations(results: Results) -> Table | None:

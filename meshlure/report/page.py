@@ -6,13 +6,14 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import Any
 
-from meshlure.report import attitude, charts, flow, origin, substance, water, wording
+from meshlure.report import airborne, attitude, charts, flight, flow, origin, substance, underwater, water, wording
 from meshlure.report.drawings import TITLES, Drawing, drawing
 from meshlure.report.figures import Picture, drawing_style
 from meshlure.report.layout import scale_for, scale_words
 from meshlure.report.pen import swatches
 from meshlure.report.resting import resting
 from meshlure.report.subject import Subject, main_posture, readable, subject, touchy
+from meshlure.report.windward import windward
 from meshlure.results import Study
 
 MOST_PARTS = 400
@@ -77,6 +78,10 @@ def page(study: Study) -> str:
         buoyancy_of=shown.buoyancy_of,
         findings=origin.findings(results),
         journey=flow.journey(results),
+        flies=flight.verdict(results["flight"]),
+        reach=flight.headline(results),
+        throw=flight.throw(results),
+        help_words=flight.help_words(results["flight"]),
         timings=origin.timings(results),
         tables=_tables(results),
         w=wording,
@@ -110,7 +115,7 @@ def _verdict(results: Mapping[str, Any]) -> Verdict:
     missed = [substance.missed(row) for row in results.get("limits") or [] if row["met"] is False]
     return Verdict(
         state=found["state"],
-        sentence=found["verdict"],
+        sentence=water.verdict_words(found),
         mass=wording.headline_grams(results["weight"]["mass_g"]),
         ounces=wording.ounces(results["weight"]["mass_g"]),
         reserve=wording.banded_grams(found["reserve_g"], low, high),
@@ -135,6 +140,7 @@ def _tables(results: Mapping[str, Any]) -> dict[str, Any]:
         "limits": substance.limits(results),
         "measured": substance.measured(results),
         "buoyancy": water.buoyancy(results),
+        "doubts": water.doubts(results),
         "waters": water.waters(results),
         "balls": water.balls(results),
         "postures": attitude.postures(results),
@@ -146,6 +152,14 @@ def _tables(results: Mapping[str, Any]) -> dict[str, Any]:
         "form": flow.form(results),
         "drag": flow.drag(results),
         "parts": flow.parts(results),
+        "flight": flight.facts(results),
+        "flight_balls": flight.balls(results),
+        "trims": flight.trims(results),
+        "moments": flight.moments(results),
+        "paths": flight.paths(results),
+        "launch": flight.launch(results),
+        "sinking": underwater.facts(results),
+        "tow": underwater.tow(results),
         "assumptions": origin.assumptions(results),
         "inputs": origin.inputs(results),
     }
@@ -173,6 +187,9 @@ def _pictures(study: Study, results: Mapping[str, Any], shown: Subject) -> dict[
         "stations_chart": charts.stations(results["stations"]),
         "rose_charts": _present(charts.rose(results["rose"], results["frame"], plane) for plane in planes),
         "drag_charts": _present(charts.drag(results["drag"], fluid) for fluid in fluids),
+        "wind": windward(views, shown, results),
+        "moment_charts": _present(airborne.moments(results["flight"], plane) for plane in ("pitch", "yaw")),
+        "path_charts": [airborne.paths(results["flight"]), airborne.launch(results["flight"], results["cast"])],
     }
 
 

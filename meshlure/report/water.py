@@ -41,6 +41,25 @@ def buoyancy(results: Results) -> Table | None:
     return table("In the stated water", (), rows, (0, 1))
 
 
+def verdict_words(found: Mapping[str, Any]) -> str:
+    """Return the verdict's sentence with no more digits in its masses than their band earns."""
+    low, high = found["reserve_low_g"], found["reserve_high_g"]
+    places, words = earned(low, high), str(found["verdict"])
+    if places < 2:
+        for value in (found["reserve_g"], low, high):
+            words = words.replace(fixed(value, 2, signed=True), fixed(value, places, signed=True))
+    return words
+
+
+def doubts(results: Results) -> Table | None:
+    """Return what the reserve's band is made of."""
+    rows = [
+        (row["what"], fixed(-row["low_g"], 2), fixed(row["high_g"], 2, signed=True))
+        for row in results["buoyancy"]["doubts"]
+    ]
+    return table("What the band is made of, by the root of the sum of squares", ("doubt", "g", "g"), rows)
+
+
 def known(water: Mapping[str, Any]) -> bool:
     """Return whether a water is known by more than its density."""
     return water["salinity_g_kg"] is not None or water["temperature_c"] is not None

@@ -7,6 +7,7 @@ import math
 from typing import Any
 
 import numpy as np
+from invented_flights import fluttering, rising, swaying_flight, tumbling_flight
 
 from meshlure.results import DrawnPiece, Study, View
 
@@ -142,15 +143,20 @@ def _drags() -> list[dict[str, Any]]:
     return rows
 
 
+PLANES = {"around": (SIDE, BACK), "level": (NOSE, SIDE), "upright": (NOSE, BACK)}
+
+
 def _rose() -> dict[str, Any]:
-    axis, area, plane = [], [], []
-    for name in ("level", "sideways"):
-        for angle in np.radians(np.arange(0, 180, 10)):
-            c, s = math.cos(angle), math.sin(angle)
-            axis.append([-c, -s, 0.0] if name == "level" else [0.0, -s, c])
-            area.append(math.hypot(205 * c, 1290 * s) if name == "level" else math.hypot(880 * c, 1290 * s))
-            plane.append(name)
-    return {"axis": axis, "area_mm2": area, "plane": plane}
+    found: dict[str, Any] = {"axis": [], "area_mm2": [], "plane": [], "angle_deg": []}
+    for name, ends in PLANES.items():
+        for angle in range(0, 180, 10):
+            c, s = math.cos(math.radians(angle)), math.sin(math.radians(angle))
+            axis = [c * first + s * second for first, second in zip(*ends, strict=True)]
+            seen = (205 * axis[0], 1290 * axis[1], 880 * axis[2])
+            row = {"axis": axis, "area_mm2": math.hypot(*seen), "plane": name, "angle_deg": float(angle)}
+            for key, value in row.items():
+                found[key].append(value)
+    return found
 
 
 def minnow_results() -> dict[str, Any]:
@@ -245,10 +251,16 @@ def minnow_results() -> dict[str, Any]:
             "reserve_g": 1.2233,
             "reserve_low_g": 0.91,
             "reserve_high_g": 1.54,
+            "suspends_within_g": 0.07,
+            "doubts": [
+                {"what": "density of the body", "low_g": 0.28, "high_g": 0.28},
+                {"what": "mass of front treble", "low_g": 0.14, "high_g": 0.16},
+            ],
             "state": "floats",
-            "verdict": "It floats with 1.2 g in reserve (0.9 to 1.5 g), 8 % of what it displaces.",
+            "verdict": "Floats: reserve +1.22 g, between +0.91 and +1.54 g.",
             "bulk_density_g_cm3": 0.914,
         },
+        "smooth": {"mass_g": 13.24, "displaced_mm3": 14480.0, "reserve_g": 1.22},
         "waters": [
             {
                 "name": f"{kind}, {t} °C",
@@ -280,6 +292,7 @@ def minnow_results() -> dict[str, Any]:
                 "reserve_g": 1.2233,
                 "nose_up_deg": -3.9,
                 "lean_deg": 0.1,
+                "stays": True,
             },
         ],
         "postures": [
@@ -306,6 +319,7 @@ def minnow_results() -> dict[str, Any]:
                     "lean_deg_per_mm": 24.1,
                 },
                 "balls": {"rattle chamber": "tail"},
+                "dry": ["rear treble"],
                 "centre_mm": [42.85, 0.01, -1.62],
                 "buoyancy_centre_mm": [42.62, 0.0, -1.51],
                 "rounded": False,
@@ -333,6 +347,7 @@ def minnow_results() -> dict[str, Any]:
                     "lean_deg_per_mm": 190.0,
                 },
                 "balls": {"rattle chamber": "nose"},
+                "dry": [],
                 "centre_mm": [42.4, 0.01, -1.62],
                 "buoyancy_centre_mm": [42.5, 0.0, -1.9],
                 "rounded": True,
@@ -376,11 +391,20 @@ def minnow_results() -> dict[str, Any]:
             "fineness": 5.85,
             "surface_mm2": 3980.0,
             "sphericity": 0.72,
-            "nose_first": {"leading_bluffness": 0.021, "trailing_bluffness": 0.31},
-            "tail_first": {"leading_bluffness": 0.004, "trailing_bluffness": 0.66},
+            "nose_first": {"leading_bluffness": 0.021, "trailing_bluffness": 0.31, "cup": 0.0},
+            "tail_first": {"leading_bluffness": 0.004, "trailing_bluffness": 0.66, "cup": 0.12},
         },
         "drag": _drags(),
-        "cast": {"speed_m_s": 25.0, "angle_deg": 40.0, "height_m": 2.0, "assumed": ["speed", "wind"]},
+        "flight": swaying_flight(),
+        "sinking": rising(),
+        "cast": {
+            "speed_m_s": 25.0,
+            "angle_deg": 40.0,
+            "height_m": 2.0,
+            "line_pull_n": 0.03,
+            "wind_m_s": -3.0,
+            "assumed": ["speed", "line_pull"],
+        },
         "retrieve": {"speeds_m_s": [0.5, 1.0], "assumed": ["speeds"]},
         "assumptions": [
             {
@@ -404,6 +428,7 @@ def minnow_results() -> dict[str, Any]:
             },
             {"trigger": "hooks fitted", "text": "Fit hooks last and cover the points."},
         ],
+        "measured": None,
         "limits": [
             {"what": "reserve, g", "low": 0.8, "high": 1.6, "value": 1.2233, "met": True},
             {"what": "nose up, degrees", "low": -3.0, "high": 0.0, "value": -3.9, "met": False},
@@ -415,7 +440,9 @@ def minnow_results() -> dict[str, Any]:
             "posture": 0.21,
             "areas": 0.06,
             "drag": 0.02,
-            "page": None,
+            "flight": 0.3,
+            "sinking": 0.1,
+            "page": 0.0,
         },
     }
 
@@ -434,7 +461,7 @@ def sinker() -> Study:
         reserve_low_g=-6.9,
         reserve_high_g=-5.9,
         state="sinks",
-        verdict="It sinks, 6.4 g too heavy to hang.",
+        verdict="Sinks: reserve −6.41 g, between −6.90 and −5.90 g.",
     )
     for row in results["waters"]:
         row.update(reserve_g=row["reserve_g"] - 7.6, state="sinks")
@@ -449,13 +476,22 @@ def sinker() -> Study:
             "lean_deg": None,
             "free": "both",
             "waterline_mm": None,
-            "submerged_share": None,
+            "submerged_share": 1.0,
             "waterplane_mm2": None,
             "metacentric_mm": {"fore_aft": None, "sideways": None, "least": 0.0},
             "share": 1.0,
             "barrier_g_mm": None,
-            "sensitivity": None,
+            "sensitivity": dict.fromkeys(
+                (
+                    "deg_per_0_1g_10mm",
+                    "deg_per_mm",
+                    "g_per_mm",
+                    "lean_deg_per_0_1g_10mm",
+                    "lean_deg_per_mm",
+                )
+            ),
             "balls": None,
+            "dry": [],
             "centre_mm": [42.8, 0.0, -0.7],
             "buoyancy_centre_mm": [42.8, 0.0, -0.7],
             "rounded": False,
@@ -465,8 +501,8 @@ def sinker() -> Study:
     results["pieces"] = [row for row in results["pieces"] if row["role"] in ("body", "insert")]
     for key in ("hardware", "balls", "limits", "findings", "cautions", "assumptions"):
         results[key] = []
-    for key in ("line", "cast", "retrieve"):
-        results[key] = None
+    results["line"] = None
+    results.update(flight=tumbling_flight(), sinking=fluttering())
     views = tuple(
         View(v.name, v.right, v.up, v.shift, tuple(p for p in v.pieces if p.role in ("skin", "insert")))
         for v in minnow_views()
@@ -535,7 +571,7 @@ def hostile() -> Study:
             "at_mm": [40.0 + 0.01 * i, 0.0, -9.0],
             "hangs": True,
             "item": HOSTILE,
-            "displaced_mm3": None,
+            "displaced_mm3": 0.0,
         }
         for i in range(40)
     ]

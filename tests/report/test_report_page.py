@@ -13,12 +13,27 @@ from xml.etree import ElementTree as ET
 
 import invented_baits as baits
 import pytest
+from invented_flights import tumbling_flight
+from jsonschema import Draft202012Validator
 
 from meshlure.report.page import page
-from meshlure.results import Study
+from meshlure.results import Study, schema
 
 VOID = {"meta", "img", "br", "hr", "link", "input", "col"}
-SECTIONS = ["drawings", "weight", "buoyancy", "postures", "areas", "drag", "assumed", "findings", "cautions", "inputs"]
+SECTIONS = [
+    "drawings",
+    "weight",
+    "buoyancy",
+    "postures",
+    "areas",
+    "drag",
+    "flight",
+    "sinking",
+    "assumed",
+    "findings",
+    "cautions",
+    "inputs",
+]
 
 
 class Reader(HTMLParser):
@@ -72,6 +87,13 @@ def html(request: pytest.FixtureRequest) -> str:
 @pytest.fixture(scope="module")
 def minnow_html() -> str:
     return page(baits.minnow())
+
+
+@pytest.mark.parametrize("name", STUDIES)
+def test_the_invented_trees_keep_the_published_schema(name: str) -> None:
+    # Judged by the independent library jsonschema.
+    faults = Draft202012Validator(schema()).iter_errors(dict(STUDIES[name]().results))
+    assert [f"{fault.json_path}: {fault.message[:120]}" for fault in faults] == []
 
 
 def test_every_element_is_closed_in_order(html: str) -> None:
@@ -167,7 +189,9 @@ def test_the_verdict_stands_before_everything_else(minnow_html: str) -> None:
     for words in (
         "Alder pool minnow",
         "Floats",
-        "It floats with 1.2 g in reserve",
+        "Floats: reserve +1.2 g, between +0.9 and +1.5 g.",
+        "Sways, tail first",
+        "Rises at 17 cm/s",
         "13.2\u00a0g",
         "0.47\u00a0oz",
         "+1.2\u00a0g",
@@ -232,8 +256,8 @@ def test_a_study_without_outlines_still_reports() -> None:
 
 def test_what_may_be_null_may_be_null() -> None:
     results = baits.minnow_results()
-    keys = ("name", "line", "hardware", "balls", "limits", "cast", "retrieve", "cautions", "assumptions", "skin_mm2")
-    results.update(dict.fromkeys(keys))
+    results.update(line=None, measured=None)
+    results["flight"].update(tumbling_flight())
     assert read(page(Study(results, ()))).faults == []
 
 
