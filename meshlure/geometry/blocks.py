@@ -138,7 +138,7 @@ class BlockIndex:
             named = order[piece.start * BLOCK : piece.stop * BLOCK]
             rows = np.zeros((_ROWS, (piece.stop - piece.start) * BLOCK))
             rows[:9, : len(named)] = vertices.take(surface.faces.take(named, axis=0), axis=0).reshape(-1, 9).T
-            rows[:9, len(named):] = np.tile(vertices[surface.faces[order[-1], 0]], 3)[:, None]
+            rows[:9, len(named) :] = np.tile(vertices[surface.faces[order[-1], 0]], 3)[:, None]
             if coat is not None:
                 rows[12, : len(named)] = coat[named]
             _put_normals(rows)
