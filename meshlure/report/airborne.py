@@ -42,6 +42,8 @@ def from_leading(curve: Mapping[str, Any], leads: str) -> tuple[Floats, Floats]:
     moment = moment[kept]
     if angle[0] == -180 and angle[-1] < 180:
         angle, moment = np.append(angle, 180.0), np.append(moment, moment[0])
+    elif angle[0] > -180 and angle[-1] == 180:
+        angle, moment = np.insert(angle, 0, -180.0), np.insert(moment, 0, moment[-1])
     return angle, moment
 
 
@@ -52,7 +54,7 @@ def moments(flight: Flight, plane: str) -> Picture | None:
         return None
     angle, moment = from_leading(curve, flight["leads"])
     steady, sways = flight["limits"]["steady_deg"], flight["limits"]["sways_deg"]
-    reach = 1.3 * max(float(np.abs(moment).max()), 1e-9)
+    reach = 1.45 * max(float(np.abs(moment).max()), 1e-9)
     figure = blank(WIDE, 58)
     axes = margins(figure, 14, 10, 3, 10)
     axes.set(xlim=(-180, 180), ylim=(-reach, reach), xticks=range(-180, 181, 60))
@@ -61,7 +63,8 @@ def moments(flight: Flight, plane: str) -> Picture | None:
         axes.axvline(limit, color=ink.PENCIL, linewidth=0.7, linestyle=(0, (1, 1.5)))
     axes.text(0, 0.96 * reach, "steady", ha="center", va="top", fontsize=6.2)
     for side in (-1, 1):
-        axes.text(side * (steady + sways) / 2, 0.84 * reach, "sways", ha="center", va="top", fontsize=6.2)
+        middle = side * (steady + sways) / 2
+        axes.text(middle, 0.84 * reach, "sways", ha="center", va="top", fontsize=6.2)
     axes.axhline(0, color=ink.PENCIL, linewidth=0.8)
     axes.plot(angle, moment, **LINES[0])
     trims = [trim for trim in flight["trims"] if trim["plane"] == plane]

@@ -99,7 +99,7 @@ def facts(results: Results) -> Table | None:
     ]
     if f["ratios"]["against"] is not None:
         rows.append((f"reach over {f['against']}", significant(f["ratios"]["against"], 3)))
-    ahead = f"{_ahead(f['margin_mm'])}, {fixed(f['margin_percent'], 0)}{SPACE}% of the length"
+    ahead = f"{_ahead(f['margin_mm'])}, {fixed(abs(f['margin_percent']), 0)}{SPACE}% of the length"
     drag = f"{significant(f['drag_area_mm2'], 2)}{SPACE}mm²"
     where = "mean over all directions" if f["verdict"] == "tumbles" else "at its trim"
     splash = f"{significant(f['splash_m_s'], 2)}{SPACE}m/s, {fixed(f['splash_deg'], 0)}° below the horizontal"
@@ -147,7 +147,7 @@ def balls(results: Results) -> Table | None:
         ("it", DOES[nose["verdict"]], DOES[tail["verdict"]]),
         ("reach, balls at the nose = 1", "1", significant(tail["distance_m"] / base, 3) if base else DASH),
         ("G ahead of A", _ahead(nose["margin_mm"]), _ahead(tail["margin_mm"])),
-        ("the same, of the length", *(f"{fixed(one['margin_percent'], 1)}{SPACE}%" for one in (nose, tail))),
+        ("the same, of the length", *(f"{fixed(abs(one['margin_percent']), 1)}{SPACE}%" for one in (nose, tail))),
         ("distance, m", *(fixed(one["distance_m"], 0) for one in (nose, tail))),
     ]
     return table("Balls at either end, side by side", ("", "balls at the nose", "balls at the tail"), rows, (0, 1, 2))
