@@ -11,14 +11,11 @@ import numpy as np
 from meshlure.bait.composition import Composition, compose
 from meshlure.bait.pieces import Bait
 from meshlure.bait.refusals import refuse
-from meshlure.bait.refusals import refuse
 from meshlure.errors import Fault, InputError
 from meshlure.files.sections.retrieve import FASTEST
 from meshlure.geometry.blocks import BlockIndex
-from meshlure.geometry.blocks import BlockIndex
 from meshlure.geometry.moments import Moments
 from meshlure.geometry.outline import Outline
-from meshlure.geometry.stations import stations
 from meshlure.geometry.stations import stations
 from meshlure.physics.betterment import better
 from meshlure.physics.flight import Air, Flight, distances, fly
@@ -132,17 +129,6 @@ def reference(bait: Bait) -> tuple[str, float]:
     return bait.name, headline(flown(bait, composition, way)).flight.path.distance
 
 
-def reference(bait: Bait) -> tuple[str, float]:
-    """Return a bait's name and how far it flies in its own throw, m."""
-    composition = compose(bait)
-    skin, frame = composition.skin, bait.frame
-    refuse(composition.findings, {})
-    index = BlockIndex.build(skin.outer)
-    cuts = stations(index, frame.nose, (frame.side, frame.back))
-    way = passage(skin, bait.hardware, frame, cuts, index)
-    return bait.name, headline(flown(bait, composition, way)).flight.path.distance
-
-
 def headline(flights: dict[str, Flown]) -> Flown:
     """Return the flight in which the balls lie at the end that leads, where the air's drag presses them."""
     for end in ("tail", "nose"):
@@ -176,7 +162,7 @@ def flight(
     reversed_ = fly(main.glider, main.mass, air, band(way, air.throw.speed), other)
     still = standard_air()
     diameter = float(np.cbrt(6 * displaced / np.pi))
-    ball = trajectory(main.mass.amount, sphere_drag_area(diameter, still.viscosity), air.throw, air.density, 2)
+    ball = trajectory(main.mass.amount, sphere_drag_area(diameter, still.viscosity), air.throw, air.density)
     ahead = tip - float(main.mass.centre @ bait.frame.nose)
     areas = {name: outline.centre for name, outline in seen}
     return tree.flight(
