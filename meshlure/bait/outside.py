@@ -20,6 +20,9 @@ from meshlure.geometry.surface import Floats
 _WAYS = np.array([way for way in product((-1.0, 0.0, 1.0), repeat=3) if any(way)])
 """Directions in which the farthest vertices of an outside part are asked how far they stand off the body."""
 
+_FITTED = 0.02
+"""Share of an insert that may lie in the body's material though it sits in a pocket: the facets of the two differ."""
+
 _NAMED = 4
 """Outside parts named one by one in a message."""
 
@@ -48,8 +51,8 @@ def outside_findings(
         if piece.name not in out:
             continue
         beyond, drawn = out[piece.name], filling.solids[piece.name]
-        if drawn.volume - beyond.volume <= _rounding(drawn):
-            findings.append(_sits_outside(piece, beyond))
+        if drawn.volume - beyond.volume <= _FITTED * drawn.volume:
+            findings.append(_sits_outside(piece, drawn.volume, beyond))
         else:
             findings.append(_sticks_out(piece, beyond.volume, parts[piece.name], reach[piece.name]))
     for space in filling.spaces:
@@ -86,13 +89,13 @@ def _tips(part: Solid) -> Floats:
     return np.asarray(vertices[(vertices @ _WAYS.T).argmax(axis=0)])
 
 
-def _sits_outside(piece: MeshPiece, beyond: Solid) -> Finding:
+def _sits_outside(piece: MeshPiece, drawn: float, beyond: Solid) -> Finding:
     where = middle(beyond)
     return Finding(
         code="sits-outside",
         level=Level.NOTE if piece.lip else Level.WARNING,
         piece=piece.name,
-        message=f"all {volume_text(beyond.volume)} of '{piece.name}' lie outside the body's material, in an open "
+        message=f"all {volume_text(drawn)} of '{piece.name}' lie outside the body's material, in an open "
         f"pocket drawn into it or on its skin, about {place_text(where)}; what is not closed off displaces water",
         where=(where,),
         advice="right for an insert in an open pocket or a glued-on part; else check its place",

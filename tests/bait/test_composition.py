@@ -10,12 +10,14 @@ import shapes
 from cells import Block, account
 from hypothesis import assume, given, settings
 from hypothesis import strategies as st
+from scipy.spatial.transform import Rotation
 from workbench import MM, bait, coat, codes, hardware, insert, only, vector, void
 
 from meshlure.bait.composition import Composition, compose
 from meshlure.bait.pieces import Bait
 from meshlure.geometry.blocks import BlockIndex
 from meshlure.geometry.moments import solid_moments
+from meshlure.geometry.solids import Solid
 from meshlure.geometry.surface import Floats, Surface
 
 BODY = shapes.box((0.08, 0.016, 0.02))
@@ -167,13 +169,29 @@ def test_a_ballast_in_a_pocket_with_a_gap(kind: str, what: str) -> None:
 
 def test_an_open_pocket_lets_the_water_in() -> None:
     # Pocket of 12 x 6 x 8 open at the top, slug of 10 x 4 x 8 flush with the skin: the gap is water.
-    from meshlure.geometry.solids import Solid
-
     pocketed = Solid.of(BODY).less(Solid.of(block((12, 6, 10), (0, 0, 7)))).surface()
     made = compose(bait(pocketed, insert("slug", block((10, 4, 8), (0, 0, 6)), 11.34)))
     body, slug = BODY_VOLUME - 576e-9, 320e-9
     assert displaced(made)[0] == pytest.approx(body + slug, rel=1e-9)
     assert made.still_mass.amount == pytest.approx(body * 600 + slug * 11340, rel=1e-9)
+
+
+@pytest.mark.parametrize("across", [False, True])
+@pytest.mark.parametrize("turn", [0.0, 3.0])
+def test_a_pocket_drawn_for_its_insert_changes_nothing(across: bool, turn: float) -> None:
+    # A cylinder in the body, or the body with that cylinder cut out and put back, its facets alike or turned a little:
+    # then they miss each other by up to the segment between them, 1 - sin(a)/a of the section with a = 2 pi / 48.
+    slug = shapes.cylinder(3 * MM, 20 * MM, 48)
+    turned = slug.moved(Rotation.from_euler("z", turn, degrees=True).as_matrix())
+    slug, turned = (s.moved(np.eye(3)[[2, 0, 1]], vector(36 if across else 0, 0, 0)) for s in (slug, turned))
+    pocketed = Solid.of(BODY).less(Solid.of(slug)).surface()
+    plain = compose(bait(BODY, insert("slug", slug, 11.34)))
+    fitted = compose(bait(pocketed, insert("slug", turned, 11.34)))
+    miss = (1 - np.sinc(2 / 48)) * solid_moments(slug).amount if turn else 1e-9 * BODY_VOLUME
+    assert fitted.still_mass.amount == pytest.approx(plain.still_mass.amount, abs=miss * 600)
+    assert displaced(fitted)[0] == pytest.approx(displaced(plain)[0], abs=miss)
+    said = {(True, 0.0): {"sits-outside"}, (False, 0.0): {"hollow-filled"}, (False, 3.0): {"insert-in-cavity"}}
+    assert codes(fitted.findings) == said.get((across, turn), {"sits-outside"})
 
 
 @pytest.mark.parametrize(("kind", "share"), [("sealed", 0.0), ("flooded", 1.0)])
