@@ -104,7 +104,7 @@ def test_allen_and_perkins_for_a_body_with_a_base(degrees: float) -> None:
 def test_as_much_lift_is_kept_on_a_smooth_tail_as_datcom_keeps() -> None:
     # DATCOM 4.2.1.1 counts the sections as far as x0/l = 0.378 + 0.527 x1/l, x1 where they shrink fastest: of a
     # spheroid that is its end, so that x0/l = 0.905 and 4 x0 (l - x0)/l^2 = 0.344 of the greatest section is kept:
-    # 2 (k2 - k1) 0.344 per radian on it. That is for turbulent layers; here it lies midway between them and laminar ones,
+    # 2 (k2 - k1) 0.344 per radian on it. That is for turbulent layers; here it lies midway between those and laminar ones,
     # which leave earlier and so keep more.
     wings = Winged(spheroid(LENGTH, DIAMETER)).wings()
     slope = -float(wings.loads(bent(1e-4)).force[0] @ FRAME.back) / 1e-4
@@ -187,6 +187,31 @@ def test_a_mirrored_bait_has_mirrored_loads() -> None:
     assert other.force == pytest.approx(one.force * flip, abs=1e-6 * size)
     # Moments are axial vectors: they mirror the other way.
     assert other.moment == pytest.approx(-one.moment * flip, abs=1e-6 * size * 0.09)
+
+
+def test_loads_stay_with_a_mesh_that_is_drawn_elsewhere() -> None:
+    # Statics: the same forces, and the same moments about the same point of the bait.
+    away = np.array([0.3, -0.2, 0.15])
+    one = _bait(SHAPE, PLATE, PLACES, FRAME).wings().loads(DIRECTIONS)
+    shape, plate = (Surface(surface.vertices + away, surface.faces) for surface in (SHAPE, PLATE))
+    other = _bait(shape, plate, PLACES + away, FRAME).wings().loads(DIRECTIONS)
+    size = np.abs(one.force).max()
+    assert other.force == pytest.approx(one.force, abs=1e-6 * size)
+    assert other.about(away) == pytest.approx(one.moment, abs=1e-6 * size * 0.09)
+
+
+@pytest.mark.parametrize(("across", "width"), [(FRAME.side, 0.024), (FRAME.back, 0.012)])
+def test_a_flat_body_lifts_by_the_circle_on_the_width_that_the_flow_sees(across: Floats, width: float) -> None:
+    # Apparent mass of an ellipse (Lamb 1932, art. 71; Jorgensen 1977): pi/4 of the square of its axis across the flow.
+    # The base, cut square, keeps all of it: 12 mm wide, 24 mm deep, an elliptic nose of 60 mm before 40 mm alike.
+    def half(z: Floats) -> Floats:
+        return np.asarray(0.5 * np.sqrt(np.clip((0.10 - z) / 0.06, 0.0, 1.0)))
+
+    round_ = turned(half, 0.10, along=300)
+    wings = Winged(Surface(round_.vertices * (0.012, 0.024, 1.0), round_.faces)).wings()
+    slope = -float(wings.loads(bent(1e-4, across)).force[0] @ across) / 1e-4
+    # Fineness 0.1/sqrt(0.012 0.024) = 5.89: k2 - k1 0.868 between Lamb's 0.835 at 5 and 0.872 at 6.
+    assert slope == pytest.approx(2 * 0.868 * math.pi / 4 * width**2, rel=0.02)
 
 
 def test_loads_turn_with_the_mesh() -> None:

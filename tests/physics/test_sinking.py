@@ -73,6 +73,15 @@ def test_the_ball_is_followed_along_tanh() -> None:
     assert -path.y[2] == pytest.approx(speed * np.tanh([0.3, 1.0, 2.0]), rel=1e-4)
 
 
+@pytest.mark.parametrize(("pitch", "factor"), [(-math.pi / 2, 0.0591), (0.0, 0.8943)])
+def test_it_sets_off_against_what_it_carries_along(pitch: float, factor: float) -> None:
+    # At rest |W - B|/(m + k rho Vol): k1 lengthwise and k2 crosswise at fineness 5 (Lamb 1932, art. 114).
+    displaced = DENSITY * LONG.bulk.amount
+    rates = LONG.sunk(LONG.weighed(1.2 * displaced)).change(np.array([pitch, 0.0, 0.0, 0.0]))
+    down = -(rates[1] * math.sin(pitch) + rates[2] * math.cos(pitch))
+    assert down == pytest.approx(0.2 * GRAVITY / (1.2 + factor), rel=2e-3)
+
+
 @pytest.mark.parametrize("net", [0.02, -0.02])
 def test_a_level_bait_meets_the_water_with_its_plan(net: float) -> None:
     # Broadside: sqrt(2|W - B|/(rho eta C_dc A_p)), A_p = pi/4 l d, C_dc 1.2, eta of fineness 5 from DATCOM, 0.615. The

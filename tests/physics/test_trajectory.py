@@ -88,6 +88,16 @@ def test_the_line_pulls_against_the_motion() -> None:
     assert found.splash_speed == pytest.approx(math.sqrt(2 * down * top), rel=1e-6)
 
 
+@pytest.mark.parametrize("degrees", [20.0, 60.0])
+def test_the_line_takes_its_pull_times_the_way(degrees: float) -> None:
+    # Energy without air: v^2/2 falls by g times the rise and by T/m times the length of the path.
+    pull, height = 0.05, 2.0
+    found = trajectory(MASS, 0.0, thrown(25, degrees, height, pull=pull), DENSITY, points=4001)
+    way = float(np.hypot(np.diff(found.x), np.diff(found.y)).sum())
+    lost = 25**2 / 2 + GRAVITY * height - found.splash_speed**2 / 2
+    assert lost == pytest.approx(pull / MASS * way, rel=1e-5)
+
+
 @pytest.mark.parametrize("reynolds", [2e3, 1e4, 1e5])
 def test_spheres_agree_with_other_correlations(reynolds: float) -> None:
     # Clift and Gauvin 1970, Haider and Levenspiel 1989, as coded in fluids: not the one that is used.
