@@ -26,8 +26,12 @@ from meshlure.physics.repose import Ends
 from meshlure.physics.trajectory import Throw, launch_speed, sphere_drag_area, trajectory
 from meshlure.results import flight as tree
 from meshlure.stock.waters import standard_air
+from meshlure.tolerances import GRAVITY
 
 Tree = dict[str, Any]
+
+_MOST_PULL = 0.9
+"""Share of its weight with which the line may pull at what is thrown: with all of it, it would never come down."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -71,6 +75,7 @@ def launch(bait: Bait, mass: float) -> float:
         return float(np.sqrt(2 * cast.energy / (mass + cast.rod_mass)))
     sinker = cast.sinker
     assert sinker is not None
+    _check_pull(bait, sinker.mass, "the sinker")
     air = standard_air()
     area = sphere_drag_area(sinker.diameter, air.viscosity)
 
@@ -90,6 +95,32 @@ def launch(bait: Bait, mass: float) -> float:
     return speed
 
 
+def _check_pull(bait: Bait, mass: float, what: str) -> None:
+    """Refuse a line that holds what is thrown up in the air."""
+    pull, weight = bait.plan.cast.line_pull, mass * GRAVITY
+    if pull > _MOST_PULL * weight:
+        raise InputError(Fault(
+            what=f"the line would hold {what} up in the air",
+            where="cast.line_pull",
+            found=f"{pull:g} N, where {what} weighs {weight:.3g} N",
+            allowed=f"0 to {_MOST_PULL * weight:.2g} N",
+            next_step="state what a free line drags in flight, about 0.03 N, or leave the key out",
+        ))
+
+
+def _check_lands_ahead(bait: Bait, reaches: Sequence[float]) -> None:
+    """Refuse a throw that gets nowhere, or that the wind carries back: no reach can be held against its own."""
+    if min(reaches) <= 0:
+        cast = bait.plan.cast
+        raise InputError(Fault(
+            what="the throw does not come down ahead of the thrower",
+            where="cast",
+            found=f"{np.degrees(cast.angle):.3g} deg from {cast.height:g} m, wind {cast.wind:g} m/s from behind",
+            allowed="a height above 0 m or an angle above 0 deg, and a headwind that the throw gets through",
+            next_step="check angle, height and wind",
+        ))
+
+
 def flown(bait: Bait, composition: Composition, way: Passage) -> dict[str, Flown]:
     """Return the flights with the balls at the nose and at the tail, one named "still" where there are none."""
     chambers = [row.balls.chamber for row in composition.rows]
@@ -103,6 +134,7 @@ def flown(bait: Bait, composition: Composition, way: Passage) -> dict[str, Flown
 
 def _one(bait: Bait, composition: Composition, way: Passage, ends: Ends) -> Flown:
     mass = composition.mass(ends)
+    _check_pull(bait, mass.amount, "the bait")
     air, cast = standard_air(), bait.plan.cast
     speed = launch(bait, mass.amount)
     wings = glider(way, composition.skin, bait.hardware, bait.frame, speed, air.density, air.viscosity)
@@ -163,6 +195,7 @@ def flight(
     still = standard_air()
     diameter = float(np.cbrt(6 * displaced / np.pi))
     ball = trajectory(main.mass.amount, sphere_drag_area(diameter, still.viscosity), air.throw, air.density)
+    _check_lands_ahead(bait, (found.path.distance, reversed_.path.distance, ball.distance))
     ahead = tip - float(main.mass.centre @ bait.frame.nose)
     areas = {name: outline.centre for name, outline in seen}
     return tree.flight(
