@@ -104,8 +104,8 @@ def test_allen_and_perkins_for_a_body_with_a_base(degrees: float) -> None:
 def test_as_much_lift_is_kept_on_a_smooth_tail_as_datcom_keeps() -> None:
     # DATCOM 4.2.1.1 counts the sections as far as x0/l = 0.378 + 0.527 x1/l, x1 where they shrink fastest: of a
     # spheroid that is its end, so that x0/l = 0.905 and 4 x0 (l - x0)/l^2 = 0.344 of the greatest section is kept:
-    # 2 (k2 - k1) 0.344 per radian on it. That is for turbulent layers; here it lies midway between those and laminar ones,
-    # which leave earlier and so keep more.
+    # 2 (k2 - k1) 0.344 per radian on it. That is for turbulent layers; here it lies midway between those and laminar
+    # ones, which leave earlier and so keep more.
     wings = Winged(spheroid(LENGTH, DIAMETER)).wings()
     slope = -float(wings.loads(bent(1e-4)).force[0] @ FRAME.back) / 1e-4
     assert slope == pytest.approx(2 * COUPLE * 0.344 * math.pi / 4 * DIAMETER**2, rel=0.3)
@@ -170,9 +170,9 @@ def _bait(surface: Surface, lip: Surface, places: Floats, frame: Frame) -> Winge
 SHAPE = Surface(spheroid(0.09, 0.02).vertices * (0.6, 1.0, 1.0) + (0.0, 0.001, 0.0), spheroid(0.09, 0.02).faces)
 PLATE = box((0.012, 0.001, 0.016), (0.001, -0.008, 0.09))
 PLACES = np.array([[0.001, -0.012, 0.05], [-0.001, 0.0, -0.002]])
-DIRECTIONS = np.array([
-    bent(a, math.cos(r) * FRAME.back + math.sin(r) * FRAME.side) for a in (0.2, 1.1, 2.4) for r in (0.3, 2.0, 4.4)
-])
+DIRECTIONS = np.array(
+    [bent(a, math.cos(r) * FRAME.back + math.sin(r) * FRAME.side) for a in (0.2, 1.1, 2.4) for r in (0.3, 2.0, 4.4)]
+)
 
 
 def test_a_mirrored_bait_has_mirrored_loads() -> None:
