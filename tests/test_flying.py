@@ -58,8 +58,8 @@ def test_a_throw_that_gets_nowhere_is_refused(cast: dict[str, float]) -> None:
 
 
 def test_a_sinker_settles_the_speed() -> None:
-    # A heavy ball of 22 mm hardly feels the air: a little faster than in a vacuum, where 45 degrees from a height h reach
-    # R at v^2 = g R/(1 + h/R).
+    # A heavy ball of 22 mm hardly feels the air: a little faster than in a vacuum, where 45 degrees from a height h
+    # reach R at v^2 = g R/(1 + h/R).
     bait = thrown(speed=None, sinker=Sinker(0.060, 0.022, 38.4), angle=radians(45), height=2.0, line_pull=0.0)
     bare = (GRAVITY * 38.4 / (1 + 2.0 / 38.4)) ** 0.5
     assert bare < launch(bait, 0.012) < 1.06 * bare
