@@ -49,8 +49,8 @@ def _relation(shell: Surface, other: Surface) -> Relation:
         return Relation.APART
     if meets(other, shell):
         return Relation.CROSSING
-    if winding_number(other, shell.corners[0, 0]) > 0.5:
+    if winding_number(other, shell.vertices[shell.faces[0, 0]]) > 0.5:
         return Relation.INSIDE
-    if winding_number(shell, other.corners[0, 0]) > 0.5:
+    if winding_number(shell, other.vertices[other.faces[0, 0]]) > 0.5:
         return Relation.AROUND
     return Relation.APART

@@ -3,12 +3,15 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
 import numpy as np
-from scipy.spatial import cKDTree
 
 from meshlure.geometry.blocks import curve_order
 from meshlure.geometry.surface import Floats, Ints, Surface
+
+if TYPE_CHECKING:
+    from scipy.spatial import cKDTree
 
 _BOX = 32
 """Triangles in a box."""
@@ -83,6 +86,8 @@ class Boxes:
         middle = corners.mean(axis=2)
         radius = np.sqrt(((corners - middle[:, :, None]) ** 2).sum(axis=-1).max(axis=-1))
         some = middle.reshape(-1, 3)[:: max(1, len(order) // _IN_TREE)]
+        from scipy.spatial import cKDTree
+
         return cls(corners, corners.min(axis=(1, 2)), corners.max(axis=(1, 2)), middle, radius, cKDTree(some))
 
     def nearest(self, points: Floats) -> Nearest:

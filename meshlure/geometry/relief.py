@@ -49,18 +49,23 @@ def relief(surface: Surface, axis: Floats, cells: int = CELLS) -> Relief:
     Every face that looks towards the eye is asked at the middles of the cells that its box covers.
     """
     right, up = drawing_axes(axis)
-    front = np.flatnonzero(surface.double_areas @ axis > 0)
+    faces = surface.faces.take(np.flatnonzero(surface.double_areas @ axis > 0), axis=0)
+    seen = np.zeros(len(surface.vertices), dtype=np.bool_)
+    seen[faces] = True
     height = surface.vertices @ axis
-    plane = np.column_stack([surface.vertices @ right, surface.vertices @ up])
-    low, high = (end(plane[surface.faces[front].reshape(-1)], axis=0) for end in (np.min, np.max))
+    plane = [surface.vertices @ right, surface.vertices @ up]
+    low, high = (np.array([end(along[seen]) for along in plane]) for end in (np.min, np.max))
     step = float((high - low).max()) / cells
     shape = np.ceil((high - low) / step - 1e-9).astype(np.intp)
     # Middles of the cells lie at whole numbers.
-    plane = (plane - (low + high) / 2) / step + (shape - 1) / 2
-    top = float(height[surface.faces[front]].max())
-    corners = plane[surface.faces[front]]
-    first = np.maximum(np.ceil(corners.min(axis=1) - 1e-9), 0).astype(np.intp)
-    last = np.minimum(np.floor(corners.max(axis=1) + 1e-9), shape - 1).astype(np.intp)
+    plane = [(plane[k] - (low[k] + high[k]) / 2) / step + (shape[k] - 1) / 2 for k in range(2)]
+    top = float(height[seen].max())
+    first, last = np.empty((len(faces), 2), dtype=np.intp), np.empty((len(faces), 2), dtype=np.intp)
+    for k in range(2):
+        a, b, c = plane[k].take(faces.T)
+        first[:, k] = np.maximum(np.ceil(np.minimum(np.minimum(a, b), c) - 1e-9), 0)
+        last[:, k] = np.minimum(np.floor(np.maximum(np.maximum(a, b), c) + 1e-9), shape[k] - 1)
+    flat = np.column_stack(plane)
     wide = np.maximum(last - first + 1, 0)
     count = wide[:, 0] * wide[:, 1]
     asked = np.flatnonzero(count)
@@ -70,7 +75,8 @@ def relief(surface: Surface, axis: Floats, cells: int = CELLS) -> Relief:
     while at < len(asked):
         taken = int(np.searchsorted(ends, (ends[at - 1] if at else 0) + _AT_ONCE, side="right"))
         rows = asked[at : max(taken, at + 1)]
-        _drop(depth, corners[rows], top - height[surface.faces[front[rows]]], first[rows], wide[rows], count[rows])
+        named = faces[rows]
+        _drop(depth, flat[named], top - height[named], first[rows], wide[rows], count[rows])
         at += len(rows)
     return Relief(depth.T, step)
 

@@ -11,6 +11,8 @@ from meshlure.geometry.surface import Floats, Ints, Surface
 
 _ODD = tuple(np.uint64(k) for k in (0x9E3779B97F4A7C15, 0xBF58476D1CE4E5B9, 0x94D049BB133111EB))
 _HALF = np.uint64(32)
+_AT_ONCE = 16384
+"""Corners worked on at a time, so that they stay in the processor's cache and no second copy of all of them is made."""
 _SALTS = tuple(np.uint64(k) for k in (0x0, 0xD1B54A32D192ED03, 0x8CB92BA72F3D8DD7))
 
 
@@ -58,15 +60,14 @@ def weld(corners: Floats) -> Welded:
         raise ValueError(f"welding takes (m, 3, 3) corners, not {corners.shape}")
     if not np.isfinite(corners).all():
         raise ValueError("welding takes finite corners")
-    # Adding zero turns -0.0 into 0.0, whose bits are the ones hashed.
-    points = np.asarray(corners, dtype=np.float64).reshape(-1, 3) + 0.0
+    points = np.asarray(corners, dtype=np.float64).reshape(-1, 3)
     heads = _heads(points)
     first = np.zeros(len(points), dtype=np.bool_)
     first[heads] = True
     numbers = np.cumsum(first, dtype=np.intp)
     numbers -= 1
     faces = numbers[heads].reshape(-1, 3)
-    vertices = points[first]
+    vertices = points.take(np.flatnonzero(first), axis=0) + 0.0
     a, b, c = faces.T
     whole = (a != b) & (b != c) & (c != a)
     collapsed = len(faces) - int(np.count_nonzero(whole))
@@ -106,9 +107,10 @@ def _heads_by_hash(points: Floats, salt: np.uint64) -> Ints | None:
     np.not_equal(words[1:], words[:-1], out=starts[1:])
     heads = np.empty(count, dtype=np.intp)
     heads[order] = _spread(order, starts)
-    later = np.flatnonzero(heads != np.arange(count))
-    if (points[later] != points[heads[later]]).any():
-        return None
+    for at in range(0, count, _AT_ONCE):
+        piece = slice(at, at + _AT_ONCE)
+        if (points[piece] != points.take(heads[piece], axis=0)).any():
+            return None
     return heads
 
 
@@ -132,11 +134,14 @@ def _spread(order: Ints, starts: NDArray[np.bool_]) -> Ints:
 
 def _mixed(points: Floats, salt: np.uint64) -> NDArray[np.uint64]:
     """Mix each point's 192 bits into one word (multiply, fold, xor)."""
-    bits = points.view(np.uint64)
     words = np.full(len(points), salt, dtype=np.uint64)
-    for axis, odd in enumerate(_ODD):
-        words ^= bits[:, axis]
-        words *= odd
-        words ^= words >> _HALF
-    words *= _ODD[0]
+    for at in range(0, len(points), _AT_ONCE):
+        # Adding zero turns -0.0 into 0.0, whose bits are the ones hashed.
+        bits = (points[at : at + _AT_ONCE] + 0.0).view(np.uint64)
+        some = words[at : at + _AT_ONCE]
+        for axis, odd in enumerate(_ODD):
+            some ^= bits[:, axis]
+            some *= odd
+            some ^= some >> _HALF
+        some *= _ODD[0]
     return words
