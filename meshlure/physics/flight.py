@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Final
 
 import numpy as np
@@ -229,6 +229,5 @@ def distances(mass: float, drag_area: float, air: Air) -> Floats:
     """Return the distance over the launch angles, (n,) array, m."""
     throw = air.throw
     return np.array([
-        trajectory(mass, drag_area, Throw(throw.speed, float(angle), throw.height, throw.pull, throw.wind), air.density, 2).distance
-        for angle in ANGLES
+        trajectory(mass, drag_area, replace(throw, angle=float(angle)), air.density, 2).distance for angle in ANGLES
     ])

@@ -21,7 +21,13 @@ from meshlure.physics.tackle import hook_drag_area
 
 
 def glider(
-    passage: Passage, skin: Skin, hardware: Sequence[Hardware], frame: Frame, speed: float, density: float, viscosity: float
+    passage: Passage,
+    skin: Skin,
+    hardware: Sequence[Hardware],
+    frame: Frame,
+    speed: float,
+    density: float,
+    viscosity: float,
 ) -> Glider:
     """Return what a bait's loads follow from, at the Reynolds number of a speed.
 
