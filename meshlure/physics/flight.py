@@ -138,6 +138,13 @@ def fly(
         By end: ends of the body's drag as shares of it.
     end : str, optional
         nose or tail, to be taken for the leading one.
+
+    Notes
+    -----
+    The trim is that at the speed of the throw and is kept all the way. A line that pulls as hard when the bait has
+    slowed down would straighten it (a stick that trims at 47 degrees then reaches a quarter farther); but what it
+    pulls falls with the speed too, and how much is not known. The lift at the trim is left out: the bait rolls and
+    swings, and it shows no one side to the air for long.
     """
     curves = moment_curves(glider, mass, air)
     lead = leading(curves) if end is None else bearing(curves, end)
