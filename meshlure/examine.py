@@ -94,7 +94,8 @@ def study(bait: Bait, against: Bait | None = None) -> Study:
         turned = rose(skin.outer, skin.outer_pairs, frame)
         cuts = stations(outer, frame.nose, (frame.side, frame.back))
         tip = pieces.nose_tip(bait.body.surface, frame)
-        views = shape.views(seen, shape.drawn_pieces(bait.pieces), frame, tip)
+        rows = [(f"balls in {r.balls.chamber}", r.balls.diameter, r.places[posed.ends[r.balls.chamber]]) for r in composition.rows]
+        views = shape.views(seen, shape.drawn_pieces(bait.pieces), frame, tip, rows)
     with clock.phase("drag"):
         way = passage(skin, bait.hardware, frame, cuts, outer)
         speed = flying.launch(bait, mass.amount)

@@ -10,13 +10,16 @@ import numpy as np
 from meshlure.bait.pieces import Frame, MeshPiece
 from meshlure.geometry.outline import Outline, outline
 from meshlure.geometry.stations import Stations
-from meshlure.geometry.surface import Surface
+from meshlure.geometry.surface import Floats, Surface
 from meshlure.geometry.topology import EdgePairs
 from meshlure.physics.areas import Rose
 from meshlure.results.numbers import MM, MM2, plain
 from meshlure.results.study import DrawnPiece, View
 
 Tree = dict[str, Any]
+
+_ROUND = 48
+"""Corners of the ring that a ball is drawn by."""
 
 
 def areas(silhouettes: Sequence[tuple[str, Outline]]) -> list[Tree]:
@@ -67,6 +70,7 @@ def views(
     pieces: Sequence[tuple[str, str, Surface, EdgePairs]],
     frame: Frame,
     tip: float,
+    balls: Sequence[tuple[str, float, Floats]] = (),
 ) -> tuple[View, ...]:
     """Return side, top and front view with every piece's outline.
 
@@ -78,13 +82,20 @@ def views(
     frame : Frame
     tip : float, m
         Of the nose along the nose direction.
+    balls : sequence of (name, diameter, centres)
+        Rows of balls: m, and (n, 3) array, m.
     """
     drawn = []
+    turn = np.linspace(0.0, 2 * np.pi, _ROUND, endpoint=False)
+    circle = np.column_stack([np.cos(turn), np.sin(turn)])
     for name, skin in silhouettes[:3]:
         seen = [DrawnPiece("skin", "skin", tuple(ring * MM for ring in skin.region.rings))]
         for piece, role, surface, pairs in pieces:
             region = outline(surface, pairs, skin.axis, skin.up).region
             seen.append(DrawnPiece(piece, role, tuple(ring * MM for ring in region.rings)))
+        for name_of, diameter, centres in balls:
+            middles = centres @ np.column_stack([skin.right, skin.up])
+            seen.append(DrawnPiece(name_of, "ball", tuple((middle + diameter / 2 * circle) * MM for middle in middles)))
         shift = -tip * MM if abs(skin.right @ frame.nose + 1) < 1e-6 else 0.0
         shifted = tuple(DrawnPiece(p.name, p.role, tuple(ring - [shift, 0.0] for ring in p.rings)) for p in seen)
         drawn.append(View(name, skin.right, skin.up, shift, shifted))
