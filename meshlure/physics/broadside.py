@@ -124,7 +124,7 @@ class Strips:
     width : (n,) array, m
         Across the flow.
     facing : (n,) array
-        Share of each strip's pressure that counts: the square of the cosine between the outline's edge and the axis.
+        Share of each strip's force that counts: the cube of the cosine between the outline's edge and the axis.
     shaped : (k,) array, m
         Positions of the sections of which the shape was read.
     profiles : sequence of Profile
@@ -157,7 +157,7 @@ def strips(sections: Sections, towards: Floats) -> Strips:
     edges = np.array([[side.min(), side.max()] for side in reach])
     position = sections.stations.position
     slope = np.gradient(edges, position, axis=0)
-    facing = (1 / (1 + slope**2)).mean(axis=1)
+    facing = ((1 + slope**2) ** -1.5).mean(axis=1)
     length = sections.stations.length
     shaped, profiles = [], []
     for share in (np.arange(SHAPED) + 0.5) / SHAPED:
@@ -187,9 +187,9 @@ def broadside(body: Strips, reynolds_per_length: float, *, tripped: bool, natura
     Notes
     -----
     Strip theory: the coefficient of each section as if it were endless (`prism.prism_parts`), times its width, times
-    the square of the cosine between the silhouette's edge and the axis, because only the speed square to an edge
-    presses (Hoerner 1965, ch. 3, from memory), times the factor of a finite body. A sphere taken so has 0.50, and a
-    cylinder keeps its whole width.
+    the cube of the cosine between the silhouette's edge and the axis, because only the speed square to an edge presses
+    (two powers; Hoerner 1965, ch. 3, from memory) and the strip is narrower across its edge (one), times the factor of
+    a finite body. A sphere taken so has 0.47, and a cylinder keeps its whole width.
 
     References
     ----------

@@ -11,7 +11,7 @@ import numpy as np
 
 from meshlure.geometry.surface import Floats
 from meshlure.physics.broadside import Broadside, broadside, strips
-from meshlure.physics.drag import SHARP_BAND, Drag, Layer, axial_drag, spread_of
+from meshlure.physics.drag import SHARP_BAND, Drag, Layer, axial_drag, share_for, spread_of
 from meshlure.physics.form import fineness
 from meshlure.physics.lamb import lamb_factors
 from meshlure.physics.layer import ramp, turns_by_itself
@@ -69,8 +69,9 @@ def across_axis(sections: Sections, towards: Floats, reynolds_per_length: float,
     body = strips(sections, towards)
     laminar, tripped = (broadside(body, reynolds_per_length, tripped=state) for state in (False, True))
     if layer is None:
-        share = turns_by_itself(laminar.arc_reynolds)
+        share = turns_by_itself(tripped.arc_reynolds)
         turned = broadside(body, reynolds_per_length, tripped=True, natural=True) if share else tripped
+        share = share_for(laminar.area, turned.area, share)
     else:
         share, turned = float(layer == "tripped"), tripped
     parts = _parts(laminar) * (1 - share) + _parts(turned) * share

@@ -29,10 +29,9 @@ side first) against the flat face of a disc or a hemisphere (1.17)."""
 WAKE_SUCTION: Final = 0.22
 WAKE_SUCTION_TURNED: Final = 0.19
 """Suction coefficient of a free wake, K = 0.22 + 0.19 sin(phi), with tan(phi) = greatest radius over the run to the
-separation line. Chosen by hand from three pairs that were tried, with every row of the published table in
-sight. Least squares on its cones (10 to 75 degrees), disc and dome-first hemisphere gives 0.235 and 0.155, on all its
-axial rows 0.277 and 0.096: the rows hold the sum better than the two apart. With each family in turn left out of that
-fit, its own rows come out within 0.34 in |ln ratio|, median 0.055; no other constant was refitted."""
+separation line. Chosen by hand with every row of the published table in sight; its cones, disc, hemisphere and laminar
+spheres decide. The developers' comparison refits this pair with REATTACHMENT, CLOSED_BEFORE and both closing angles of
+`separation`, a family of rows left out each time: its rows then come out within 0.34 in |ln ratio|, median 0.063."""
 
 REATTACHMENT: Final = 1.6
 """Diameters behind a sharp leading edge at which the flow is back on the wall; chosen with the table's
@@ -44,8 +43,8 @@ BASE_FACTOR: Final = 0.029
 
 CLOSED_BEFORE: Final = 0.1
 """Share of the greatest section that a turbulent layer must have closed before it leaves a smooth wall for the whole of
-the pressure recovery to count; less counts in proportion. Ours, chosen with the
-table's tripped sphere, which closes 0.14, in sight."""
+the pressure recovery to count; less counts in proportion. Ours, chosen with the table's tripped sphere, which closes
+0.13, and tripped oblate spheroid, which closes 0.08, in sight."""
 
 TAIL_CLOSES: Final = 0.05
 """Trailing bluffness from which on no pressure drag of a closed tail is counted; below it in proportion."""
@@ -94,7 +93,14 @@ def front_trips(profile: Profile) -> float:
 
 
 def turns_by_itself(arc_reynolds: float) -> float:
-    """Share to which a smooth laminar layer has turned turbulent by itself, ramped around a Reynolds number of 5e5."""
+    """Share to which a smooth laminar layer has turned turbulent by itself, ramped around a Reynolds number of 5e5.
+
+    Parameters
+    ----------
+    arc_reynolds : float
+        Of the way to where a turbulent layer leaves: a laminar one that left earlier turns on its way, and comes back
+        to a wall that closes gently.
+    """
     return ramp(math.log(arc_reynolds / NATURAL_TRANSITION), -math.log(1.5), math.log(1.5))
 
 

@@ -14,12 +14,13 @@ from meshlure.physics.profile import Profile
 
 LAMINAR_ANGLE: Final = math.radians(7)
 """rad. Closing angle at which a laminar layer leaves a smooth wall; spheres show 0 to 10 degrees (Achenbach, E. 1972:
-J. Fluid Mech. 54, from memory: separation 80 to 85 degrees from the nose). Both angles were kept among several
-tried with the published table in sight."""
+J. Fluid Mech. 54, from memory: separation 80 to 85 degrees from the nose). Both angles were chosen with the published
+table in sight: its laminar spheres and spheroids decide this one."""
 
 TRIPPED_ANGLE: Final = math.radians(21)
 """rad. Closing angle at which a turbulent layer leaves; boat-tails stay attached to about 22 degrees (Mair, W. A. 1969:
-Aeronautical Quarterly 20, from memory), spheres show 20 to 30 (Achenbach 1972, from memory)."""
+Aeronautical Quarterly 20, from memory), spheres show 20 to 30 (Achenbach 1972, from memory). The table's tripped
+spheres and spheroids decide."""
 
 ANGLE_SPREAD: Final = 0.3
 """Every angle within this share of the nominal one is taken as equally likely, and the result averaged over them."""

@@ -7,6 +7,7 @@ import math
 from collections.abc import Callable, Iterator
 from dataclasses import dataclass
 from pathlib import Path
+from typing import Literal
 
 import numpy as np
 from numpy.typing import NDArray
@@ -28,10 +29,18 @@ class Row:
 
     case: str
     family: str
+    shape: str
+    orientation: str
     reynolds: float
     layer: str
     cd: float
+    source: str
     scored: bool
+
+    @property
+    def given(self) -> Literal["laminar", "tripped"] | None:
+        """State of the layer in the source; None where it hardly matters or was not said."""
+        return self.layer if self.layer in ("laminar", "tripped") else None  # type: ignore[return-value]
 
 
 def rows() -> Iterator[Row]:
@@ -41,9 +50,12 @@ def rows() -> Iterator[Row]:
             yield Row(
                 row["case"],
                 row["family"],
+                row["shape"],
+                row["orientation"],
                 float(row["reynolds_on_diameter"]),
                 row["layer"],
                 float(row["cd"]),
+                f"{row['source']} ({row['seen_or_memory']})",
                 row["scored"] == "1",
             )
 
@@ -79,6 +91,14 @@ def airship() -> Outline:
     u = (1 - np.cos(np.linspace(0, math.pi, FINE))) / 2
     y = 0.2969 * np.sqrt(u) - 0.1260 * u - 0.3516 * u**2 + 0.2843 * u**3 - 0.1036 * u**4
     return 4 * u, np.clip(R * y / y.max(), 0, None)
+
+
+def cup(wall: float = 0.02) -> Outline:
+    """Hemispherical cup, its outside first."""
+    turn = np.linspace(0, math.pi / 2, FINE // 2)
+    inner = R - wall
+    x = np.concatenate([R * (1 - np.cos(turn)), (R - inner * np.cos(turn))[::-1]])
+    return x, np.concatenate([R * np.sin(turn), (inner * np.sin(turn))[::-1]])
 
 
 def bullet() -> Outline:
@@ -127,6 +147,8 @@ PLATES = {
     "block3": (3.0, 1.0, 1.0),
 }
 
+CUPS: dict[str, Callable[[], Outline]] = {"cup_fwd": cup, "cup_rev": lambda: flipped(cup())}
+
 CROSSWISE = {"cylx_1": 1.0, "cylx_2": 2.0, "cylx_4": 4.0, "cylx_10": 10.0, "cylx_40": 40.0}
 
 
@@ -160,7 +182,7 @@ def respaced(outline: Outline, count: int) -> Outline:
     if len(x) <= 4:
         return outline
     arc = np.concatenate([[0], np.cumsum(np.hypot(np.diff(x), np.diff(r)))])
-    turn = np.abs(np.diff(np.arctan2(np.diff(r), np.diff(x))))
+    turn = np.abs(np.diff(np.unwrap(np.arctan2(np.diff(r), np.diff(x)))))
     corners = arc[1:-1][turn > math.radians(8)]
     at = np.unique(np.concatenate([np.linspace(0, arc[-1], count), corners]))
     return np.interp(at, arc, x), np.interp(at, arc, r)
@@ -196,5 +218,19 @@ def boxed(length: float, short: float, long: float) -> Surface:
 
 
 def meshed(case: str, along: int = 60, around: int = 64) -> Surface:
-    """Mesh of a row's body, its leading end at x = 0."""
-    return revolved(respaced(REVOLVED[case](), along), around) if case in REVOLVED else boxed(*PLATES[case])
+    """Mesh of a row's body; what leads lies on the side of x = 0, or of any y for what lies crosswise."""
+    if case in PLATES:
+        return boxed(*PLATES[case])
+    return revolved(respaced(outline(case), along), around)
+
+
+def outline(case: str) -> Outline:
+    """Outline of a row's body of revolution, along its own axis."""
+    if case in CROSSWISE:
+        return cylinder(CROSSWISE[case])
+    return CUPS[case]() if case in CUPS else REVOLVED[case]()
+
+
+def leads(case: str) -> tuple[float, float, float]:
+    """Direction that goes first in a row."""
+    return (0, -1, 0) if case in CROSSWISE else (-1, 0, 0)

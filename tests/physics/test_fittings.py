@@ -55,8 +55,8 @@ def test_lies_of_a_wire_are_means_of_the_cubed_sine() -> None:
 
 @pytest.mark.parametrize(("swing", "within"), [(0, 0.03), (10, 0.1), (20, 0.25)])
 def test_a_trailing_treble_is_its_bends_and_a_rubbed_shank(swing: float, within: float) -> None:
-    # Crossflow principle on the wire of a regular treble of gape 1: shanks of two gapes, three half rings, and points to
-    # make up eleven gapes (shop experience, no source), turned by an angle in many directions.
+    # Crossflow principle on the wire of a regular treble of gape 1: shanks of two gapes, three half rings, and points
+    # to make up eleven gapes (shop experience, no source), turned by an angle in many directions.
     turn = math.radians(swing)
     total = []
     for way in np.linspace(0, 2 * math.pi, 12, endpoint=False):
