@@ -139,7 +139,9 @@ def doubts(
     for item in hardware:
         key = item.item or item.name
         old = packets.get(key, Doubt(f"mass of {key}", 0.0, 0.0))
-        packets[key] = Doubt(old.what, old.low + item.high - item.mass, old.high + item.mass - item.low)
+        # A heavier hook of a known material displaces more too.
+        wet = 1.0 if item.substance is None else 1 - water / item.substance.density
+        packets[key] = Doubt(old.what, old.low + (item.high - item.mass) * wet, old.high + (item.mass - item.low) * wet)
     found += packets.values()
     if coat is not None:
         lift = painted * (water - coat.substance.density)
