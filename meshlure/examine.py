@@ -94,7 +94,10 @@ def study(bait: Bait, against: Bait | None = None) -> Study:
         turned = rose(skin.outer, skin.outer_pairs, frame)
         cuts = stations(outer, frame.nose, (frame.side, frame.back))
         tip = pieces.nose_tip(bait.body.surface, frame)
-        rows = [(f"balls in {r.balls.chamber}", r.balls.diameter, r.places[posed.ends[r.balls.chamber]]) for r in composition.rows]
+        rows = [
+            (f"balls in {r.balls.chamber}", r.balls.diameter, r.places[posed.ends[r.balls.chamber]])
+            for r in composition.rows
+        ]
         views = shape.views(seen, shape.drawn_pieces(bait.pieces), frame, tip, rows)
     with clock.phase("drag"):
         way = passage(skin, bait.hardware, frame, cuts, outer)
@@ -148,16 +151,18 @@ def _lips(bait: Bait, composition: Composition) -> None:
     """Refuse lips that show nothing outside the body."""
     hidden = [piece for piece in bait.pieces if piece.lip and piece.name not in composition.skin.lips]
     if hidden:
-        raise InputError([
-            Fault(
-                what="the lip has no area outside the body",
-                where=f"insert '{piece.name}'",
-                found="all of it lies inside",
-                allowed="a part that stands out into the water",
-                next_step="check its place, or remove lip = true",
-            )
-            for piece in hidden
-        ])
+        raise InputError(
+            [
+                Fault(
+                    what="the lip has no area outside the body",
+                    where=f"insert '{piece.name}'",
+                    found="all of it lies inside",
+                    allowed="a part that stands out into the water",
+                    next_step="check its place, or remove lip = true",
+                )
+                for piece in hidden
+            ]
+        )
 
 
 def _reserve(bait: Bait, composition: Composition, mass: Moments, displaced: float, ends: Ends) -> Reserve:

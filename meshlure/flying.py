@@ -85,13 +85,15 @@ def launch(bait: Bait, mass: float) -> float:
 
     speed = launch_speed(sinker.distance, reach, FASTEST)
     if speed is None:
-        raise InputError(Fault(
-            what="the sinker could not have flown so far",
-            where="cast.sinker.distance",
-            found=f"{sinker.distance:g} m with {sinker.mass * 1e3:g} g of {sinker.diameter * 1e3:g} mm",
-            allowed=f"{reach(0.1):.1f} to {reach(FASTEST):.0f} m, for speeds up to {FASTEST:g} m/s",
-            next_step="check mass, diameter and distance, or the cast's angle and height",
-        ))
+        raise InputError(
+            Fault(
+                what="the sinker could not have flown so far",
+                where="cast.sinker.distance",
+                found=f"{sinker.distance:g} m with {sinker.mass * 1e3:g} g of {sinker.diameter * 1e3:g} mm",
+                allowed=f"{reach(0.1):.1f} to {reach(FASTEST):.0f} m, for speeds up to {FASTEST:g} m/s",
+                next_step="check mass, diameter and distance, or the cast's angle and height",
+            )
+        )
     return speed
 
 
@@ -99,26 +101,30 @@ def _check_pull(bait: Bait, mass: float, what: str) -> None:
     """Refuse a line that holds what is thrown up in the air."""
     pull, weight = bait.plan.cast.line_pull, mass * GRAVITY
     if pull > _MOST_PULL * weight:
-        raise InputError(Fault(
-            what=f"the line would hold {what} up in the air",
-            where="cast.line_pull",
-            found=f"{pull:g} N, where {what} weighs {weight:.3g} N",
-            allowed=f"0 to {_MOST_PULL * weight:.2g} N",
-            next_step="state what a free line drags in flight, about 0.03 N, or leave the key out",
-        ))
+        raise InputError(
+            Fault(
+                what=f"the line would hold {what} up in the air",
+                where="cast.line_pull",
+                found=f"{pull:g} N, where {what} weighs {weight:.3g} N",
+                allowed=f"0 to {_MOST_PULL * weight:.2g} N",
+                next_step="state what a free line drags in flight, about 0.03 N, or leave the key out",
+            )
+        )
 
 
 def _check_lands_ahead(bait: Bait, reaches: Sequence[float]) -> None:
     """Refuse a throw that gets nowhere, or that the wind carries back: no reach can be held against its own."""
     if min(reaches) <= 0:
         cast = bait.plan.cast
-        raise InputError(Fault(
-            what="the throw does not come down ahead of the thrower",
-            where="cast",
-            found=f"{np.degrees(cast.angle):.3g} deg from {cast.height:g} m, wind {cast.wind:g} m/s from behind",
-            allowed="a height above 0 m or an angle above 0 deg, and a headwind that the throw gets through",
-            next_step="check angle, height and wind",
-        ))
+        raise InputError(
+            Fault(
+                what="the throw does not come down ahead of the thrower",
+                where="cast",
+                found=f"{np.degrees(cast.angle):.3g} deg from {cast.height:g} m, wind {cast.wind:g} m/s from behind",
+                allowed="a height above 0 m or an angle above 0 deg, and a headwind that the throw gets through",
+                next_step="check angle, height and wind",
+            )
+        )
 
 
 def flown(bait: Bait, composition: Composition, way: Passage) -> dict[str, Flown]:
@@ -170,8 +176,13 @@ def headline(flights: dict[str, Flown]) -> Flown:
 
 
 def flight(
-    bait: Bait, composition: Composition, way: Passage, seen: Sequence[tuple[str, Outline]], displaced: float,
-    tip: float, against: tuple[str, float] | None,
+    bait: Bait,
+    composition: Composition,
+    way: Passage,
+    seen: Sequence[tuple[str, Outline]],
+    displaced: float,
+    tip: float,
+    against: tuple[str, float] | None,
 ) -> Tree:
     """Return the result tree of a bait's flight.
 
@@ -212,7 +223,9 @@ def flight(
         against=None if against is None else against[0],
         reversed_path=reversed_,
         sphere_path=ball,
-        balls={end: (flights[end].flight, flights[end].mass) for end in ("nose", "tail")} if "tail" in flights else None,
+        balls={end: (flights[end].flight, flights[end].mass) for end in ("nose", "tail")}
+        if "tail" in flights
+        else None,
         angles=distances(main.mass.amount, found.drag_area, air),
         change=better(found.curves, found.bearing, main.mass.amount, ahead, way.stations.length - ahead),
         throw=air.throw,

@@ -132,11 +132,15 @@ def _righting(vessel: Vessel, afloat: Sequence[Repose]) -> list[Tree]:
     starts = [number for number, r in enumerate(afloat) if r.rest.upright][:1]
     if afloat and 0 not in starts:
         starts.append(0)
-    return postures.righting([
-        (number, curve)
-        for number in starts
-        for curve in righting(afloat[number].potential, afloat[number].rest.state, vessel.frame.nose, vessel.frame.side)
-    ])
+    return postures.righting(
+        [
+            (number, curve)
+            for number in starts
+            for curve in righting(
+                afloat[number].potential, afloat[number].rest.state, vessel.frame.nose, vessel.frame.side
+            )
+        ]
+    )
 
 
 def _balls(vessel: Vessel, settings: Sequence[_Setting], headline: Ends) -> list[Tree]:
@@ -150,15 +154,17 @@ def _balls(vessel: Vessel, settings: Sequence[_Setting], headline: Ends) -> list
             up = setting.upright.rest.state.up if setting.upright is not None else setting.dangle.hang.up
             frame = vessel.frame
             angles = None if up is None else attitude(up, frame.nose, frame.back, frame.side)
-            rows.append({
-                "chamber": chamber,
-                "end": setting.ends[chamber],
-                "mass_g": mass.amount * GRAM,
-                "centre_mm": plain(mass.centre, MM),
-                "nose_up_deg": None if angles is None else degrees(angles.nose_up),
-                "lean_deg": None if angles is None else degrees(angles.lean),
-                "stays": setting.upright.held if setting.upright is not None else setting.dangle.held,
-            })
+            rows.append(
+                {
+                    "chamber": chamber,
+                    "end": setting.ends[chamber],
+                    "mass_g": mass.amount * GRAM,
+                    "centre_mm": plain(mass.centre, MM),
+                    "nose_up_deg": None if angles is None else degrees(angles.nose_up),
+                    "lean_deg": None if angles is None else degrees(angles.lean),
+                    "stays": setting.upright.held if setting.upright is not None else setting.dangle.held,
+                }
+            )
     return rows
 
 
@@ -168,7 +174,7 @@ def _restless() -> Finding:
         level=Level.WARNING,
         message="with the balls at either end, that end comes to lie higher: they have no place of rest, and the "
         "postures shown hold them where each says",
-        advice="give the chamber more slope, or hold the balls with at = \"nose\" or \"tail\"",
+        advice='give the chamber more slope, or hold the balls with at = "nose" or "tail"',
     )
 
 
@@ -181,12 +187,14 @@ def _dry(afloat: Sequence[Repose], vessel: Vessel) -> list[Finding]:
             above = float(at @ repose.rest.state.up) - repose.rest.state.immersed.cut.height
             # Without its lift the bait lies deeper: an eye near the water may be under it then.
             where = f"stands {above * MM:.1f} mm above the water" if above >= 0 else "lies in the water's surface"
-            findings.append(Finding(
-                code="eye-above-water",
-                level=Level.NOTE,
-                piece=name,
-                message=f"in posture {number} the eye of '{name}' {where}: it is counted dry there",
-                where=((float(at[0]), float(at[1]), float(at[2])),),
-                advice="a hook that still hangs into the water lifts a little of its weight off the bait",
-            ))
+            findings.append(
+                Finding(
+                    code="eye-above-water",
+                    level=Level.NOTE,
+                    piece=name,
+                    message=f"in posture {number} the eye of '{name}' {where}: it is counted dry there",
+                    where=((float(at[0]), float(at[1]), float(at[2])),),
+                    advice="a hook that still hangs into the water lifts a little of its weight off the bait",
+                )
+            )
     return findings

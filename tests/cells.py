@@ -100,8 +100,10 @@ def _flooded(free: Sequence[Bools], void: Sequence[bool], blocks: Sequence[Block
     while True:
         spread = False
         for number, (mine, is_void) in enumerate(zip(free, void, strict=True)):
-            if is_void and not wet[number] and any(
-                w and _meet(mine, other) for w, other in zip(wet, free, strict=True)
+            if (
+                is_void
+                and not wet[number]
+                and any(w and _meet(mine, other) for w, other in zip(wet, free, strict=True))
             ):
                 wet[number] = spread = True
         if not spread:

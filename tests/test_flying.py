@@ -65,9 +65,13 @@ def test_a_sinker_settles_the_speed() -> None:
     assert bare < launch(bait, 0.012) < 1.06 * bare
 
 
-@pytest.mark.parametrize(("sinker", "said"), [
-    (Sinker(0.02, 0.015, 400.0), "could not have flown"), (Sinker(0.001, 0.008, 20.0), "hold the sinker up"),
-])
+@pytest.mark.parametrize(
+    ("sinker", "said"),
+    [
+        (Sinker(0.02, 0.015, 400.0), "could not have flown"),
+        (Sinker(0.001, 0.008, 20.0), "hold the sinker up"),
+    ],
+)
 def test_a_sinker_that_could_not_is_refused(sinker: Sinker, said: str) -> None:
     with pytest.raises(InputError, match=said):
         launch(thrown(speed=None, sinker=sinker, line_pull=0.03), 0.012)

@@ -33,12 +33,15 @@ def test_every_shape_is_closed_and_outward(name: str) -> None:
     assert shapes.as_trimesh(surface).volume > 0
 
 
-@pytest.mark.parametrize(("surface", "skin"), [
-    (SHAPES["sphere"], lambda p: np.linalg.norm(p, axis=1) / 2 - 1),
-    (SHAPES["ellipsoid"], lambda p: ((p / (3, 2, 1)) ** 2).sum(axis=1) - 1),
-    (SHAPES["torus"], lambda p: np.hypot(np.hypot(p[:, 0], p[:, 1]) - 3, p[:, 2]) - 1),
-    (SHAPES["paraboloid"], lambda p: np.where(p[:, 2] < 2, p[:, 0] ** 2 + p[:, 1] ** 2 - p[:, 2], 0)),
-])
+@pytest.mark.parametrize(
+    ("surface", "skin"),
+    [
+        (SHAPES["sphere"], lambda p: np.linalg.norm(p, axis=1) / 2 - 1),
+        (SHAPES["ellipsoid"], lambda p: ((p / (3, 2, 1)) ** 2).sum(axis=1) - 1),
+        (SHAPES["torus"], lambda p: np.hypot(np.hypot(p[:, 0], p[:, 1]) - 3, p[:, 2]) - 1),
+        (SHAPES["paraboloid"], lambda p: np.where(p[:, 2] < 2, p[:, 0] ** 2 + p[:, 1] ** 2 - p[:, 2], 0)),
+    ],
+)
 def test_vertices_lie_on_the_exact_skin(surface: Surface, skin: object) -> None:
     assert callable(skin)
     np.testing.assert_allclose(skin(surface.vertices), 0, atol=1e-14)

@@ -61,8 +61,15 @@ def coat(thickness: float, density: float) -> Table:
 
 
 def bait(
-    body: Surface, *inserts: Insert, density: float = 0.6, water: float = 1000.0, nose: Any = "-x", back: Any = "+z",
-    cavities: str = "sealed", within: float | None = None, **sections: Any,
+    body: Surface,
+    *inserts: Insert,
+    density: float = 0.6,
+    water: float = 1000.0,
+    nose: Any = "-x",
+    back: Any = "+z",
+    cavities: str = "sealed",
+    within: float | None = None,
+    **sections: Any,
 ) -> Bait:
     """A bait of a body, m, of a density in g/cm3, in water of kg/m3; further sections as a bait file has them."""
     head: Table = {"name": "bench bait", "length_unit": "mm", "nose": nose, "back": back, "size_checked": True}

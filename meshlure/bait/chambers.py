@@ -174,11 +174,13 @@ def _no_room(balls: Balls, allowed: str) -> Fault:
 def _tight(balls: Balls, play: float) -> tuple[Finding, ...]:
     if play >= LEAST_PLAY:
         return ()
-    return (Finding(
-        code="balls-tight",
-        level=Level.WARNING,
-        piece=balls.chamber,
-        message=f"the balls of {balls.diameter * 1e3:.4g} mm have {max(play, 0.0) * 1e3:.2f} mm of play in their "
-        "bore: they may jam",
-        advice="draw the bore some tenths of a millimetre wider",
-    ),)
+    return (
+        Finding(
+            code="balls-tight",
+            level=Level.WARNING,
+            piece=balls.chamber,
+            message=f"the balls of {balls.diameter * 1e3:.4g} mm have {max(play, 0.0) * 1e3:.2f} mm of play in their "
+            "bore: they may jam",
+            advice="draw the bore some tenths of a millimetre wider",
+        ),
+    )

@@ -292,5 +292,3 @@ def _filling_parts(pieces: tuple[MeshPiece, ...], filling: Filling) -> list[Part
             moments = _moments(space.solid)
             parts.append(Part(space.name, Role.VOID, None, moments.amount, NOTHING, moments.centre))
     return parts
-
-

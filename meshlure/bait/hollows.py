@@ -85,7 +85,8 @@ def hollow_findings(hollows: Sequence[Space], spaces: Sequence[Space], inserts: 
     for drawn, left in zip(hollows, spaces, strict=True):
         held = {name: solid.met(drawn.solid) for name, solid in inserts.items()}
         held = {
-            name: shared for name, shared in held.items()
+            name: shared
+            for name, shared in held.items()
             if shared.volume > tolerances.VOLUME_SHARE * min(inserts[name].volume, drawn.drawn)
         }
         if held and left.solid.volume <= tolerances.VOLUME_SHARE * drawn.drawn:

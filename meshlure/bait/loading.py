@@ -104,12 +104,14 @@ class _Lookup:
         self._faults: list[Fault] = []
         self._file = f"{plan.path.name}: " if plan.path is not None else ""
         if plan.body.printed is not None:
-            self._faults.append(Fault(
-                what="the weight of a printed wall with infill is not computed",
-                where=f"{self._file}body.printed",
-                allowed="density or material",
-                next_step="weigh the print and state density = its mass over the body's volume, both in one unit",
-            ))
+            self._faults.append(
+                Fault(
+                    what="the weight of a printed wall with infill is not computed",
+                    where=f"{self._file}body.printed",
+                    allowed="density or material",
+                    next_step="weigh the print and state density = its mass over the body's volume, both in one unit",
+                )
+            )
         stated = plan.body.substance
         place = f"{self._file}body.material" if plan.path is not None else "--material"
         self.body = None if stated is None else self._ask(lambda: substance(stated, place))
@@ -120,8 +122,10 @@ class _Lookup:
             for n, row in enumerate(plan.hardware, 1)
         ]
         coat = plan.coat
-        self.coat = None if coat is None else self._ask(
-            lambda: Coat(coat.thickness, substance(coat.substance, f"{self._file}coat.material"))
+        self.coat = (
+            None
+            if coat is None
+            else self._ask(lambda: Coat(coat.thickness, substance(coat.substance, f"{self._file}coat.material")))
         )
         found = self._ask(lambda: _water(plan, f"{self._file}water"))
         if self._faults or found is None:
@@ -167,27 +171,38 @@ def _pieces(plan: BaitFile, files: Mapping[str, MeshFile], made: _Lookup) -> tup
     refuse(findings, {name: str(file.path) for name, file in files.items()})
     body_name, *_ = files
     outer = shape(sounds[body_name], body_name)
-    pieces = [MeshPiece(
-        name=body_name, role=Role.BODY, surface=outer.outer, pairs=outer.pairs, shells=outer.shells,
-        cavities=outer.cavities, cavities_flooded=plan.body.cavities == "flooded", substance=made.body,
-        deficit=outer.deficit, skin_deficit=outer.skin_deficit,
-    )]
+    pieces = [
+        MeshPiece(
+            name=body_name,
+            role=Role.BODY,
+            surface=outer.outer,
+            pairs=outer.pairs,
+            shells=outer.shells,
+            cavities=outer.cavities,
+            cavities_flooded=plan.body.cavities == "flooded",
+            substance=made.body,
+            deficit=outer.deficit,
+            skin_deficit=outer.skin_deficit,
+        )
+    ]
     for insert, of in zip(plan.inserts, made.inserts, strict=True):
         own = shape(sounds[insert.name], insert.name)
-        pieces.append(MeshPiece(
-            name=insert.name,
-            role=Role.INSERT if insert.void is None else Role.VOID,
-            surface=own.outer,
-            pairs=own.pairs,
-            shells=own.shells,
-            cavities=own.cavities,
-            cavities_flooded=insert.cavities == "flooded",
-            substance=of,
-            flooded=insert.void == "flooded",
-            replaces=insert.replaces,
-            lip=insert.lip,
-            fit=insert.fit,
-            deficit=own.deficit,
-            skin_deficit=own.skin_deficit,
-        ))
+        pieces.append(
+            MeshPiece(
+                name=insert.name,
+                role=Role.INSERT if insert.void is None else Role.VOID,
+                surface=own.outer,
+                pairs=own.pairs,
+                shells=own.shells,
+                cavities=own.cavities,
+                cavities_flooded=insert.cavities == "flooded",
+                substance=of,
+                flooded=insert.void == "flooded",
+                replaces=insert.replaces,
+                lip=insert.lip,
+                fit=insert.fit,
+                deficit=own.deficit,
+                skin_deficit=own.skin_deficit,
+            )
+        )
     return pieces, findings

@@ -52,12 +52,14 @@ def solid_of(surface: Surface, piece: str, tag: int | None = None) -> Solid:
     try:
         return Solid.of(surface, tag)
     except SolidError as error:
-        raise InputError(Fault(
-            what="the mesh is closed, but no solid that others can be cut from",
-            where=piece,
-            found=str(error),
-            next_step="join its parts into one solid in CAD, or export it finer or coarser, and try again",
-        )) from error
+        raise InputError(
+            Fault(
+                what="the mesh is closed, but no solid that others can be cut from",
+                where=piece,
+                found=str(error),
+                next_step="join its parts into one solid in CAD, or export it finer or coarser, and try again",
+            )
+        ) from error
 
 
 def shape(sound: Soundness, piece: str) -> Shape:

@@ -115,25 +115,29 @@ def _shared(earlier: MeshPiece, later: MeshPiece, left: Solid, own: Solid) -> So
 def _replaced(earlier: MeshPiece, later: MeshPiece, left: Solid, shared: Solid) -> list[Finding]:
     where = middle(shared)
     if left.volume <= tolerances.VOLUME_SHARE * shared.volume:
-        return [Finding(
-            code="nothing-left",
-            level=Level.WARNING,
-            piece=earlier.name,
-            message=f"nothing is left of '{earlier.name}': '{later.name}' takes all its space",
-            where=(where,),
-            advice="leave it out, or let the larger one come first and the smaller one replace it",
-        )]
+        return [
+            Finding(
+                code="nothing-left",
+                level=Level.WARNING,
+                piece=earlier.name,
+                message=f"nothing is left of '{earlier.name}': '{later.name}' takes all its space",
+                where=(where,),
+                advice="leave it out, or let the larger one come first and the smaller one replace it",
+            )
+        ]
     if earlier.name in later.replaces:
         return []
-    return [Finding(
-        code="hollowed-out",
-        level=Level.NOTE,
-        piece=earlier.name,
-        message=f"'{later.name}' lies wholly inside '{earlier.name}', {volume_text(shared.volume)} round "
-        f"{place_text(where)}, and is hollowed out of it",
-        where=(where,),
-        advice=f"say replaces = [\"{earlier.name}\"] beside '{later.name}' if it is meant, else move it",
-    )]
+    return [
+        Finding(
+            code="hollowed-out",
+            level=Level.NOTE,
+            piece=earlier.name,
+            message=f"'{later.name}' lies wholly inside '{earlier.name}', {volume_text(shared.volume)} round "
+            f"{place_text(where)}, and is hollowed out of it",
+            where=(where,),
+            advice=f"say replaces = [\"{earlier.name}\"] beside '{later.name}' if it is meant, else move it",
+        )
+    ]
 
 
 def _unsaid(earlier: MeshPiece, later: MeshPiece, shared: Solid) -> Finding:

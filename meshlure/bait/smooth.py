@@ -88,11 +88,13 @@ def coarse(body: MeshPiece, water: float) -> list[Finding]:
     missing = body.skin_deficit
     does, share = "leave out" if missing > 0 else "add", abs(missing) / volume
     weight, lift = (abs(missing * density) * 1e3 for density in (_density(body), water - _density(body)))
-    return [Finding(
-        code="coarse-facets",
-        level=Level.WARNING,
-        piece=body.name,
-        message=f"the body's facets {does} about {volume_text(abs(missing))}, {share:.1%} of its volume: "
-        f"{weight:.2f} g of its weight and {lift:.2f} g of reserve",
-        advice="export the mesh finer: 0.02 mm chord and 20 degrees keep it well below",
-    )]
+    return [
+        Finding(
+            code="coarse-facets",
+            level=Level.WARNING,
+            piece=body.name,
+            message=f"the body's facets {does} about {volume_text(abs(missing))}, {share:.1%} of its volume: "
+            f"{weight:.2f} g of its weight and {lift:.2f} g of reserve",
+            advice="export the mesh finer: 0.02 mm chord and 20 degrees keep it well below",
+        )
+    ]

@@ -33,7 +33,9 @@ def summary(results: Mapping[str, Any], out: Path | None) -> tuple[str, ...]:
     ratios = flight["ratios"]
     other = "" if flight["against"] is None else f", {ratios['against']:.2f} of '{flight['against']}'"
     lines.append(f"  flight   {flight['words']}")
-    lines.append(f"           about {flight['distance_m']:.0f} m: {ratios['sphere']:.2f} of a sphere of its mass and bulk{other}")
+    lines.append(
+        f"           about {flight['distance_m']:.0f} m: {ratios['sphere']:.2f} of a sphere of its mass and bulk{other}"
+    )
     lines.append(f"  water    {results['sinking']['words']}")
     counts = {level: sum(f["level"] == level for f in results["findings"]) for level in ("fault", "warning", "note")}
     lines.append("  found    " + ", ".join(f"{n} {level}{'' if n == 1 else 's'}" for level, n in counts.items()))

@@ -103,10 +103,13 @@ def write_cuttings(bait: Bait, folder: Path) -> list[str]:
 def _write(cutting: Cutting, path: Path) -> None:
     promised = cutting.solid.volume
     if cutting.solid.empty:
-        raise InputError(Fault(
-            what="nothing is left of it once the pockets are cut", where=path.name,
-            next_step="check that the inserts are smaller than what they lie in",
-        ))
+        raise InputError(
+            Fault(
+                what="nothing is left of it once the pockets are cut",
+                where=path.name,
+                next_step="check that the inserts are smaller than what they lie in",
+            )
+        )
     trouble = ""
     for slack in _SLACKS:
         write_stl(path, cutting.solid.simplified(slack).surface())
@@ -118,11 +121,15 @@ def _write(cutting: Cutting, path: Path) -> None:
         if abs(volume - promised) <= AGREES * promised:
             return
         trouble = f"{volume * 1e9:.6g} mm3"
-    raise InputError(Fault(
-        what="the mesh written does not keep its promise once read back", where=path.name, found=trouble,
-        allowed=f"closed, {promised * 1e9:.6g} mm3 within 0.01%",
-        next_step="move the insert's skin a little off the body's, or draw the pocket in CAD",
-    ))
+    raise InputError(
+        Fault(
+            what="the mesh written does not keep its promise once read back",
+            where=path.name,
+            found=trouble,
+            allowed=f"closed, {promised * 1e9:.6g} mm3 within 0.01%",
+            next_step="move the insert's skin a little off the body's, or draw the pocket in CAD",
+        )
+    )
 
 
 def _volume(surface: Surface) -> float:

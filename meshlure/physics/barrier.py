@@ -152,9 +152,7 @@ def _saddles(rough: Potential, starts: Sequence[Floats]) -> list[State]:
     return sorted(found, key=lambda state: state.energy)
 
 
-def _grid_ways(
-    grid: DirectionGrid, energies: Floats, ups: Floats, heights: Floats
-) -> list[tuple[Floats, float]]:
+def _grid_ways(grid: DirectionGrid, energies: Floats, ups: Floats, heights: Floats) -> list[tuple[Floats, float]]:
     """Return the highest direction on the lowest way over the grid from each posture to any other, and its rise, m."""
     first = len(energies)
     nearest = np.argsort(grid.directions @ ups.T, axis=0)[-_LINKS:].T
@@ -182,10 +180,12 @@ def _pass(potential: Potential, up: Floats) -> State | None:
         heights, directions = state.modes()
         slope = directions.T @ state.lever
         floor = 1e-7 * max(float(np.abs(heights).max()), 1e-9)
-        step = np.array([
-            -slope[0] / heights[0] if heights[0] < -floor else np.sign(slope[0]) * _RADIUS,
-            -slope[1] / heights[1] if heights[1] > floor else -np.sign(slope[1]) * _RADIUS,
-        ])
+        step = np.array(
+            [
+                -slope[0] / heights[0] if heights[0] < -floor else np.sign(slope[0]) * _RADIUS,
+                -slope[1] / heights[1] if heights[1] > floor else -np.sign(slope[1]) * _RADIUS,
+            ]
+        )
         length = float(np.linalg.norm(step))
         if length > _RADIUS:
             step *= _RADIUS / length

@@ -87,9 +87,7 @@ def behaviour(reserve: float, threshold: float) -> Behaviour:
     return Behaviour.FLOATS if reserve > 0 else Behaviour.SINKS
 
 
-def reserve(
-    mass: float, displaced: float, water: float, threshold: float | None, doubts: Sequence[Doubt]
-) -> Reserve:
+def reserve(mass: float, displaced: float, water: float, threshold: float | None, doubts: Sequence[Doubt]) -> Reserve:
     """Return the reserve buoyancy of a bait.
 
     Parameters

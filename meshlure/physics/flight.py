@@ -235,6 +235,6 @@ def _pressure_margin(glider: Glider, mass: Moments, end: str) -> float | None:
 def distances(mass: float, drag_area: float, air: Air) -> Floats:
     """Return the distance over the launch angles, (n,) array, m."""
     throw = air.throw
-    return np.array([
-        trajectory(mass, drag_area, replace(throw, angle=float(angle)), air.density, 2).distance for angle in ANGLES
-    ])
+    return np.array(
+        [trajectory(mass, drag_area, replace(throw, angle=float(angle)), air.density, 2).distance for angle in ANGLES]
+    )

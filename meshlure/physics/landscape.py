@@ -66,7 +66,10 @@ class Landscape:
         small = matched(coarse(soup, triangles), index.volume, index.moment / index.volume - index.origin)
         share = (potential.volume - hull.point_volume) / (hull.volume - hull.point_volume)
         return cls(
-            small, potential.centre - index.origin, share, hull.point_volume,
+            small,
+            potential.centre - index.origin,
+            share,
+            hull.point_volume,
             hull.point_moment - hull.point_volume * index.origin,
         )
 
@@ -85,8 +88,12 @@ class Landscape:
     def _energies(self, directions: Floats) -> Floats:
         heights = self.surface.vertices @ directions.T
         faces = self.surface.faces
-        slices = _Slices.of(heights[faces[:, 0]], heights[faces[:, 1]], heights[faces[:, 2]],
-                            self.surface.double_areas @ directions.T / 2)
+        slices = _Slices.of(
+            heights[faces[:, 0]],
+            heights[faces[:, 1]],
+            heights[faces[:, 2]],
+            self.surface.double_areas @ directions.T / 2,
+        )
         low, high = heights.min(axis=0), heights.max(axis=0)
         solid = float(np.einsum("ij,ij->", self.surface.corners[:, 0], self.surface.double_areas) / 6) * self.share
         level = low + self.share * (high - low)
@@ -128,8 +135,12 @@ class _Slices:
         middle = np.maximum(np.minimum(a, b), np.minimum(np.maximum(a, b), c))
         span = highest - lowest
         return cls(
-            lowest, middle, highest, area,
-            np.maximum((middle - lowest) * span, _TINY), np.maximum((highest - middle) * span, _TINY),
+            lowest,
+            middle,
+            highest,
+            area,
+            np.maximum((middle - lowest) * span, _TINY),
+            np.maximum((highest - middle) * span, _TINY),
         )
 
     def below(self, level: Floats) -> tuple[Floats, Floats, Floats]:

@@ -190,10 +190,12 @@ def _plate(lip: LipPlate, u: Floats) -> Loads:
     ahead = flat / np.maximum(length, _STILL)[:, None]
     chord = lip.extent(ahead)
     span = lip.extent(np.cross(lip.normal, ahead))
-    cn = np.array([
-        inclined_plate_cn(s / c if c > 0 else 1.0, float(np.arcsin(a)))
-        for s, c, a in zip(span, chord, sine, strict=True)
-    ])
+    cn = np.array(
+        [
+            inclined_plate_cn(s / c if c > 0 else 1.0, float(np.arcsin(a)))
+            for s, c, a in zip(span, chord, sine, strict=True)
+        ]
+    )
     force = -(lip.area * cn * np.sign(facing))[:, None] * lip.normal
     place = lip.centre + (chord * np.where(length > _STILL, 0.3 * (1 - sine), 0.0))[:, None] * ahead
     return Loads(force, np.cross(place, force))

@@ -122,11 +122,13 @@ class Submerged:
         gx, gz = self.offset
         m = self.mass.amount
         turning = float(side @ self.mass.inertia @ side) + m * (gx**2 + gz**2) + self.added.turning
-        matrix = np.array([
-            [m + self.added.along, 0.0, -m * gz],
-            [0.0, m + self.added.up, m * gx],
-            [-m * gz, m * gx, turning],
-        ])
+        matrix = np.array(
+            [
+                [m + self.added.along, 0.0, -m * gz],
+                [0.0, m + self.added.up, m * gx],
+                [-m * gz, m * gx, turning],
+            ]
+        )
         angle = np.arange(-np.pi, np.pi + _STEP / 2, _STEP)
         towards = np.cos(angle)[:, None] * nose + np.sin(angle)[:, None] * back
         loads = self.glider.loads(towards)
@@ -138,8 +140,11 @@ class Submerged:
         strips = crossflow_factor(self.glider.fineness) * crossflow_strips(self.cuts, 1) * run
         hooks = [(h.drag_area, (h.place - middle) @ nose, (h.place - middle) @ back) for h in self.glider.hooks]
         for name, values in (
-            ("_matrix", matrix), ("_inverse", np.linalg.inv(matrix)), ("_table", _spline(table)),
-            ("_arm", self.cuts.position - float(middle @ nose)), ("_strips", strips),
+            ("_matrix", matrix),
+            ("_inverse", np.linalg.inv(matrix)),
+            ("_table", _spline(table)),
+            ("_arm", self.cuts.position - float(middle @ nose)),
+            ("_strips", strips),
             ("_eyes", np.array(hooks, dtype=np.float64).reshape(-1, 3).T),
         ):
             object.__setattr__(self, name, values)

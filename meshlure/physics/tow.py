@@ -63,13 +63,15 @@ def tow(way: Passage, speeds: Sequence[float], density: float, viscosity: float)
         pressure = density * speed**2 / 2
         parts = drag.parts
         fittings = parts.total - parts.body
-        rows.append(Tow(
-            speed=speed,
-            body=pressure * parts.body,
-            lip=pressure * parts.lip,
-            hooks=pressure * parts.hooks,
-            eyes=pressure * parts.eyes,
-            low=pressure * (parts.body * drag.cd_low / drag.cd + fittings),
-            high=pressure * (parts.body * drag.cd_high / drag.cd + fittings),
-        ))
+        rows.append(
+            Tow(
+                speed=speed,
+                body=pressure * parts.body,
+                lip=pressure * parts.lip,
+                hooks=pressure * parts.hooks,
+                eyes=pressure * parts.eyes,
+                low=pressure * (parts.body * drag.cd_low / drag.cd + fittings),
+                high=pressure * (parts.body * drag.cd_high / drag.cd + fittings),
+            )
+        )
     return tuple(rows)

@@ -114,8 +114,14 @@ def trajectory(
     lands.direction = -1  # type: ignore[attr-defined]
     start = [0.0, throw.height, throw.speed * np.cos(throw.angle), throw.speed * np.sin(throw.angle)]
     found = solve_ivp(
-        change, (0.0, LONGEST), start, method="DOP853", events=lands, dense_output=True,
-        rtol=_PRECISION, atol=_PRECISION,
+        change,
+        (0.0, LONGEST),
+        start,
+        method="DOP853",
+        events=lands,
+        dense_output=True,
+        rtol=_PRECISION,
+        atol=_PRECISION,
     )
     if found.t_events is None or found.y_events is None or found.sol is None or not len(found.t_events[0]):
         raise ValueError(f"still in the air after {LONGEST:g} s")

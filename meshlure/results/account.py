@@ -69,8 +69,14 @@ def _measured(bait: Bait, mass: Moments, reserve: Reserve) -> Tree | None:
         ("in water, g", weighed.in_water, -reserve.reserve),
     ):
         if value is not None:
-            rows.append({"what": what, "weighed": value * GRAM, "predicted": predicted * GRAM,
-                         "difference": (value - predicted) * GRAM})
+            rows.append(
+                {
+                    "what": what,
+                    "weighed": value * GRAM,
+                    "predicted": predicted * GRAM,
+                    "difference": (value - predicted) * GRAM,
+                }
+            )
     return {"rows": rows, "water_c": weighed.water}
 
 
@@ -103,12 +109,22 @@ def _surroundings(bait: Bait, speed: float) -> list[Tree]:
             rows.append(_row(f"{key} of the water", value, "nothing stated", assumed=True))
     cast = plan.cast
     if cast.sinker is not None:
-        rows.append(_row("speed of the cast", f"{speed:.1f} m/s", "settled by the sinker's measured distance", assumed=False))
+        rows.append(
+            _row("speed of the cast", f"{speed:.1f} m/s", "settled by the sinker's measured distance", assumed=False)
+        )
     elif "speed" in cast.assumed:
         rows.append(_row("speed of the cast", f"{speed:g} m/s", "a one-handed cast; from memory", assumed=True))
-    for key, value in (("angle", f"{degrees(cast.angle):.0f}°"), ("height", f"{cast.height:g} m"), ("line_pull", f"{cast.line_pull:g} N")):
+    for key, value in (
+        ("angle", f"{degrees(cast.angle):.0f}°"),
+        ("height", f"{cast.height:g} m"),
+        ("line_pull", f"{cast.line_pull:g} N"),
+    ):
         if key in cast.assumed:
-            what = {"angle": "angle of the cast", "height": "height of the release", "line_pull": "pull of the line in flight"}[key]
+            what = {
+                "angle": "angle of the cast",
+                "height": "height of the release",
+                "line_pull": "pull of the line in flight",
+            }[key]
             rows.append(_row(what, value, "common practice, no source", assumed=True))
     if plan.retrieve.assumed:
         speeds = ", ".join(f"{speed:g}" for speed in plan.retrieve.speeds)

@@ -90,13 +90,16 @@ def flight(
         "ratios": dict(ratios),
         "against": against,
         "balls": None if balls is None else {name: _balls(*one, centres, frame, length) for name, one in balls.items()},
-        "better": None if change is None else {
+        "better": None
+        if change is None
+        else {
             "verdict": change.verdict,
             "shift_to_nose_mm": change.shift * MM,
             "added_g": None if change.added is None else change.added * GRAM,
         },
         "moments": [
-            {"plane": c.plane, "angle_deg": plain(np.degrees(c.angle)), "moment_n_mm": plain(c.moment, MM)} for c in main.curves
+            {"plane": c.plane, "angle_deg": plain(np.degrees(c.angle)), "moment_n_mm": plain(c.moment, MM)}
+            for c in main.curves
         ],
         "paths": [
             {"name": name, "x_m": plain(p.x), "y_m": plain(p.y)}
@@ -104,8 +107,10 @@ def flight(
         ],
         "launch": {"angle_deg": plain(np.degrees(ANGLES)), "distance_m": plain(angles)},
         "limits": {
-            "steady_deg": degrees(float(STEADY_TRIM)), "sways_deg": degrees(float(SWAYS_TO)),
-            "start_deg": degrees(float(DISTURBED)), "pressure_deg": degrees(float(OFF_END)),
+            "steady_deg": degrees(float(STEADY_TRIM)),
+            "sways_deg": degrees(float(SWAYS_TO)),
+            "start_deg": degrees(float(DISTURBED)),
+            "pressure_deg": degrees(float(OFF_END)),
         },
     }
 

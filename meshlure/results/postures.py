@@ -101,14 +101,10 @@ def dangling(dangle: Dangle, frame: Frame, mass: float, share: float) -> Tree:
 
 
 def _no_sensitivity() -> Tree:
-    return dict.fromkeys(
-        ("deg_per_0_1g_10mm", "deg_per_mm", "g_per_mm", "lean_deg_per_0_1g_10mm", "lean_deg_per_mm")
-    )
+    return dict.fromkeys(("deg_per_0_1g_10mm", "deg_per_mm", "g_per_mm", "lean_deg_per_0_1g_10mm", "lean_deg_per_mm"))
 
 
-def _angles(
-    up: Floats, frame: Frame, free: str | None, fore_aft: float, sideways: float | None, mass: float
-) -> Tree:
+def _angles(up: Floats, frame: Frame, free: str | None, fore_aft: float, sideways: float | None, mass: float) -> Tree:
     """Angles with their sensitivities; a free angle is None, a touchy one comes in steps of five."""
     found = attitude(up, frame.nose, frame.back, frame.side)
     nose_up, lean = degrees(found.nose_up), degrees(found.lean)
@@ -193,8 +189,12 @@ def _tilt(angle: float, more: str, less: str, none: str) -> str:
 def _side(frame: Frame, up: Floats) -> str:
     """Name what of the bait points up."""
     choices = {
-        "nose up": frame.nose, "nose down": -frame.nose, "back up": frame.back, "belly up": -frame.back,
-        "on its right side": frame.side, "on its left side": -frame.side,
+        "nose up": frame.nose,
+        "nose down": -frame.nose,
+        "back up": frame.back,
+        "belly up": -frame.back,
+        "on its right side": frame.side,
+        "on its left side": -frame.side,
     }
     return max(choices, key=lambda name: float(choices[name] @ up))
 

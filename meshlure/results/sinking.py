@@ -74,7 +74,11 @@ def _words(found: Sinking) -> str:
     nose = np.degrees(found.nose_up)
     level = "level" if abs(nose) < 0.5 else f"nose {abs(nose):.0f}\N{DEGREE SIGN} {'up' if nose > 0 else 'down'}"
     glide = abs(np.degrees(found.glide))
-    way = "" if glide < 1 else f", {glide:.0f}\N{DEGREE SIGN} off the vertical towards the {'nose' if found.glide > 0 else 'tail'}"
+    way = (
+        ""
+        if glide < 1
+        else f", {glide:.0f}\N{DEGREE SIGN} off the vertical towards the {'nose' if found.glide > 0 else 'tail'}"
+    )
     swings = "" if found.settles else "; it does not settle, these are means of its swings"
     over = ", belly up" if found.overturned else ""
     return f"{speed}, {level}{over}{way}{swings}."

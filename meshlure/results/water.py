@@ -97,12 +97,14 @@ def waters(mass: float, displaced: float, threshold: float | None) -> list[Tree]
     for name, water in table():
         limit = SUSPENDS_SHARE * displaced * water.density if threshold is None else threshold
         left = displaced * water.density - mass
-        rows.append({
-            "name": name,
-            "temperature_c": water.temperature,
-            "salinity_g_kg": water.salinity,
-            "density_kg_m3": water.density,
-            "reserve_g": left * GRAM,
-            "state": str(behaviour(left, limit)),
-        })
+        rows.append(
+            {
+                "name": name,
+                "temperature_c": water.temperature,
+                "salinity_g_kg": water.salinity,
+                "density_kg_m3": water.density,
+                "reserve_g": left * GRAM,
+                "state": str(behaviour(left, limit)),
+            }
+        )
     return rows

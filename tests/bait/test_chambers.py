@@ -57,9 +57,7 @@ def test_a_row_lies_against_either_end_wall(count: int) -> None:
 def test_a_sloping_bore_turned_any_way() -> None:
     turn, shift = shapes.turn(5), vector(3, -1, 2)
     nose, back = (turn @ np.array(v, dtype=float) for v in ([-1, 0, 0], [0, 0, 1]))
-    found = row(
-        bore().moved(turn, shift), run(2), body=BODY.moved(turn, shift), nose=nose.tolist(), back=back.tolist()
-    )
+    found = row(bore().moved(turn, shift), run(2), body=BODY.moved(turn, shift), nose=nose.tolist(), back=back.tolist())
     np.testing.assert_allclose(found.axis, nose, atol=1e-9)
     along = [shift + nose * (0.0125 - D / 2 - k * D) for k in range(2)]
     np.testing.assert_allclose(found.places["nose"], along, atol=1e-8)
@@ -109,13 +107,16 @@ def test_a_chamber_across_the_bait_has_its_nose_end_to_the_left() -> None:
     np.testing.assert_allclose(row(across, run(1)).axis, [0, -1, 0], atol=1e-9)
 
 
-@pytest.mark.parametrize(("chamber", "stated", "allowed"), [
-    (bore(length=24.9), run(5), r"a row of 24\.9 mm"),
-    (bore(width=4.9), run(1), r"a bore of 4\.9 mm"),
-    # Its diagonal is 7.8 mm, but a ball sees the sides.
-    (shapes.box((25e-3, 5.5e-3, 5.5e-3)).moved(shapes.turn(2)), run(1, 6e-3), r"a bore of 5\.5 mm"),
-    (shapes.box((25e-3, 5.5e-3, 3e-3)), run(1), r"a bore of 3 mm"),
-])
+@pytest.mark.parametrize(
+    ("chamber", "stated", "allowed"),
+    [
+        (bore(length=24.9), run(5), r"a row of 24\.9 mm"),
+        (bore(width=4.9), run(1), r"a bore of 4\.9 mm"),
+        # Its diagonal is 7.8 mm, but a ball sees the sides.
+        (shapes.box((25e-3, 5.5e-3, 5.5e-3)).moved(shapes.turn(2)), run(1, 6e-3), r"a bore of 5\.5 mm"),
+        (shapes.box((25e-3, 5.5e-3, 3e-3)), run(1), r"a bore of 3 mm"),
+    ],
+)
 def test_balls_that_do_not_fit_are_refused(chamber: Surface, stated: Table, allowed: str) -> None:
     with pytest.raises(InputError, match=rf"do not fit into 'chamber'(.|\n)*allowed: {allowed}(.|\n)*next: "):
         row(chamber, stated)
@@ -149,5 +150,3 @@ def test_a_tight_bore_is_told() -> None:
 def test_balls_displace_where_their_chamber_floods(kind: str, flooded: bool) -> None:
     made = compose(bait(BODY, void("chamber", bore(), kind), balls=[run(1)]))
     assert made.rows[0].flooded is flooded
-
-

@@ -103,12 +103,15 @@ def test_every_mesh_that_is_open_is_told() -> None:
     assert [fault.where for fault in raised.value.faults] == ["body.stl", "slug.stl"]
 
 
-@pytest.mark.parametrize(("at", "allowed"), [
-    (vector(0, 0, 0), True),  # in the middle of the body
-    (vector(-65, 0, 0), True),  # 25 mm before the nose
-    (vector(-75, 0, 0), False),
-    (vector(-400, 0, 0), False),
-])
+@pytest.mark.parametrize(
+    ("at", "allowed"),
+    [
+        (vector(0, 0, 0), True),  # in the middle of the body
+        (vector(-65, 0, 0), True),  # 25 mm before the nose
+        (vector(-75, 0, 0), False),
+        (vector(-400, 0, 0), False),
+    ],
+)
 def test_hardware_far_from_the_body_is_refused(at: Floats, allowed: bool) -> None:
     if allowed:
         assert len(bait(BODY, hardware=[hardware("hook", 0.8, at)]).hardware) == 1

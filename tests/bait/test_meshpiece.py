@@ -71,7 +71,10 @@ def test_an_island_makes_its_cavity_smaller() -> None:
 
 def test_a_hollow_in_an_island_is_a_second_cavity() -> None:
     shells = (
-        shapes.box((8, 8, 8)), shapes.box((6, 6, 6)).turned(), shapes.box((4, 4, 4)), shapes.box((2, 2, 2)).turned(),
+        shapes.box((8, 8, 8)),
+        shapes.box((6, 6, 6)).turned(),
+        shapes.box((4, 4, 4)),
+        shapes.box((2, 2, 2)).turned(),
     )
     found = made(*shells)
     assert volume(found.outer) == pytest.approx(512, rel=1e-12)

@@ -12,17 +12,20 @@ from meshlure.geometry.surface import Surface
 BOX = shapes.box((4, 4, 4))
 
 
-@pytest.mark.parametrize(("shell", "expected"), [
-    (shapes.box((1, 1, 1)), Relation.INSIDE),
-    (shapes.box((1, 1, 1), (9, 0, 0)), Relation.APART),
-    # Its bounds meet the box's, its skin does not.
-    (shapes.torus(9.0, 1.0, 24), Relation.APART),
-    (shapes.box((9, 9, 9)), Relation.AROUND),
-    (shapes.box((1, 1, 1), (2, 0, 0)), Relation.CROSSING),
-    (shapes.box((1, 1, 1), (1.5, 0, 0)), Relation.CROSSING),  # flush with a face: touching is crossing
-    (shapes.box((1, 1, 1), (2.5, 0, 0)), Relation.CROSSING),  # laid on a face
-    (shapes.box((1, 1, 1), (1.499, 0, 0)), Relation.INSIDE),  # a thousandth below the face
-])
+@pytest.mark.parametrize(
+    ("shell", "expected"),
+    [
+        (shapes.box((1, 1, 1)), Relation.INSIDE),
+        (shapes.box((1, 1, 1), (9, 0, 0)), Relation.APART),
+        # Its bounds meet the box's, its skin does not.
+        (shapes.torus(9.0, 1.0, 24), Relation.APART),
+        (shapes.box((9, 9, 9)), Relation.AROUND),
+        (shapes.box((1, 1, 1), (2, 0, 0)), Relation.CROSSING),
+        (shapes.box((1, 1, 1), (1.5, 0, 0)), Relation.CROSSING),  # flush with a face: touching is crossing
+        (shapes.box((1, 1, 1), (2.5, 0, 0)), Relation.CROSSING),  # laid on a face
+        (shapes.box((1, 1, 1), (1.499, 0, 0)), Relation.INSIDE),  # a thousandth below the face
+    ],
+)
 def test_one_shell(shell: Surface, expected: Relation) -> None:
     assert relation(shell, [BOX]) is expected
 

@@ -37,11 +37,15 @@ def test_cap_of_a_sphere_converges_with_the_square_of_the_facets_size(share: flo
         section = cut.section
         centre = cut.moment / cut.volume - shift
         second = np.pi * a2**2 / 4 * (np.eye(3) - np.outer(normal, normal))
-        errors.append([
-            cut.volume / volume - 1, (centre @ normal - depth) / radius, section.area / (np.pi * a2) - 1,
-            np.abs(section.second - second).max() / (np.pi * a2**2 / 4),
-            section.perimeter / (2 * np.pi * np.sqrt(a2)) - 1,
-        ])
+        errors.append(
+            [
+                cut.volume / volume - 1,
+                (centre @ normal - depth) / radius,
+                section.area / (np.pi * a2) - 1,
+                np.abs(section.second - second).max() / (np.pi * a2**2 / 4),
+                section.perimeter / (2 * np.pi * np.sqrt(a2)) - 1,
+            ]
+        )
     # Section errors hang on where the plane meets the facets, so that their order wavers.
     orders = np.log2(np.abs(np.array(errors)[0] / np.array(errors)[2])) / 2
     assert orders == pytest.approx(np.full(5, 2.0), abs=0.25)
@@ -222,11 +226,13 @@ def test_coat_of_a_zone_of_a_sphere() -> None:
         surface = shapes.sphere(radius, level)
         cut = BlockIndex.build(surface, np.full(len(surface.faces), thickness)).cut(UP, h - radius)
         ring = cut.section.area - cut.bare_section.area
-        errors.append([
-            cut.coat_volume / (2 * np.pi * radius * h * thickness) - 1,
-            (cut.coat_moment[2] / cut.coat_volume - (h / 2 - radius)) / radius,
-            ring / (2 * np.pi * radius * thickness) - 1,
-        ])
+        errors.append(
+            [
+                cut.coat_volume / (2 * np.pi * radius * h * thickness) - 1,
+                (cut.coat_moment[2] / cut.coat_volume - (h / 2 - radius)) / radius,
+                ring / (2 * np.pi * radius * thickness) - 1,
+            ]
+        )
     orders = np.log2(np.abs(np.array(errors)[0] / np.array(errors)[2])) / 2
     assert orders[:2] == pytest.approx([2, 2], abs=0.1)
     # The ring's width hangs on the slope of the few facets that the plane meets.

@@ -30,9 +30,12 @@ def test_ellipsoid() -> None:
     assert found.length == pytest.approx(2 * a, rel=1e-12)
     middle = slice(2, -2)
     for values, exact in (
-        (found.area, np.pi * b * c * k**2), (found.perimeter, 4 * c * ellipe(1 - (b / c) ** 2) * k),
-        (found.width, 2 * b * k), (found.depth, 2 * c * k),
-        (found.spread[:, 0], 2 * b * k), (found.spread[:, 1], 2 * c * k),
+        (found.area, np.pi * b * c * k**2),
+        (found.perimeter, 4 * c * ellipe(1 - (b / c) ** 2) * k),
+        (found.width, 2 * b * k),
+        (found.depth, 2 * c * k),
+        (found.spread[:, 0], 2 * b * k),
+        (found.spread[:, 1], 2 * c * k),
     ):
         np.testing.assert_allclose(values[middle], exact[middle], rtol=6e-3)
     np.testing.assert_allclose(found.centre[:, 1:], np.tile(shift[1:], (31, 1)), rtol=0, atol=1e-5)

@@ -121,7 +121,11 @@ def test_names_of_files_are_plain_and_no_two_alike(tmp_path: Path) -> None:
     names = ["Belly weight #1", "belly/weight: 1", "öse", "wire"]
     pieces = [insert(name, block((4, 4, 4), (10.0 * k - 20, 0, 0)), 7.9) for k, name in enumerate(names)]
     assert set(written(tmp_path, *pieces)) == {
-        "body.stl", "belly-weight-1.stl", "belly-weight-1-2.stl", "se.stl", "wire.stl"
+        "body.stl",
+        "belly-weight-1.stl",
+        "belly-weight-1-2.stl",
+        "se.stl",
+        "wire.stl",
     }
 
 
@@ -157,9 +161,12 @@ def test_the_samples(tmp_path: Path, name: str, gap: str | None) -> None:
         np.testing.assert_allclose([low, high], piece.surface.bounds * 1e3, atol=0.02)
     # Every pocket is its piece's inside part; the lip's is wider by 0.1 mm on every side.
     whole = shapes.as_trimesh(given.body.surface).volume * 1e9
-    inside = trimesh.boolean.difference([shapes.as_trimesh(given.body.surface.moved(scale=1e3)), *(
-        shapes.as_trimesh(piece.surface.moved(scale=1e3)) for piece in given.pieces
-    )])
+    inside = trimesh.boolean.difference(
+        [
+            shapes.as_trimesh(given.body.surface.moved(scale=1e3)),
+            *(shapes.as_trimesh(piece.surface.moved(scale=1e3)) for piece in given.pieces),
+        ]
+    )
     if gap is None:
         assert made["body.stl"].volume == pytest.approx(inside.volume, rel=1e-4)
     else:

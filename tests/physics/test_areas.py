@@ -63,7 +63,9 @@ def test_planes_of_the_rose_run_from_their_first_direction_to_their_second() -> 
     degrees = np.round(np.degrees(found.angle)).astype(int).tolist()
     at = dict(zip(zip(found.plane, degrees, strict=True), found.axis, strict=True))
     for plane, first, second in (
-        ("around", FRAME.side, FRAME.back), ("level", FRAME.nose, FRAME.side), ("upright", FRAME.nose, FRAME.back),
+        ("around", FRAME.side, FRAME.back),
+        ("level", FRAME.nose, FRAME.side),
+        ("upright", FRAME.nose, FRAME.back),
     ):
         assert at[plane, 0] == pytest.approx(first, abs=1e-12)
         assert at[plane, 90] == pytest.approx(second, abs=1e-12)

@@ -27,8 +27,17 @@ def part(name: str, volume: float, made_of: Substance | None, role: Role = Role.
 
 def hook(name: str, mass: float, low: float, high: float, item: str | None) -> Hardware:
     return Hardware(
-        name=name, mass=mass, low=low, high=high, at=np.zeros(3), hangs=True, volume=0.0, substance=None, item=item,
-        source="for the test", assumed=True,
+        name=name,
+        mass=mass,
+        low=low,
+        high=high,
+        at=np.zeros(3),
+        hangs=True,
+        volume=0.0,
+        substance=None,
+        item=item,
+        source="for the test",
+        assumed=True,
     )
 
 
@@ -51,9 +60,15 @@ def test_the_band_is_the_root_of_the_squares_each_way() -> None:
     assert found.high == pytest.approx(1.1 * GRAM)
 
 
-@pytest.mark.parametrize(("grams", "state"), [
-    (0.021, Behaviour.FLOATS), (0.019, Behaviour.SUSPENDS), (-0.019, Behaviour.SUSPENDS), (-0.021, Behaviour.SINKS),
-])
+@pytest.mark.parametrize(
+    ("grams", "state"),
+    [
+        (0.021, Behaviour.FLOATS),
+        (0.019, Behaviour.SUSPENDS),
+        (-0.019, Behaviour.SUSPENDS),
+        (-0.021, Behaviour.SINKS),
+    ],
+)
 def test_the_line_lies_at_two_thousandths_of_the_displaced_mass(grams: float, state: Behaviour) -> None:
     # 10 cm3 of water of 1000 kg/m3: 0.02 g either way.
     assert reserve((10 - grams) * GRAM, 10 * CM3, 1000.0, None, ()).state is state
@@ -66,10 +81,17 @@ def test_an_own_threshold_is_kept() -> None:
     assert found.state is Behaviour.SUSPENDS
 
 
-@pytest.mark.parametrize(("middle", "half", "states"), [
-    (1.0, 0.5, {"floats"}), (0.3, 0.25, {"floats", "suspends"}), (0.05, 0.02, {"suspends"}),
-    (0.0, 0.5, {"floats", "suspends", "sinks"}), (-0.3, 0.25, {"sinks", "suspends"}), (-1.0, 0.5, {"sinks"}),
-])
+@pytest.mark.parametrize(
+    ("middle", "half", "states"),
+    [
+        (1.0, 0.5, {"floats"}),
+        (0.3, 0.25, {"floats", "suspends"}),
+        (0.05, 0.02, {"suspends"}),
+        (0.0, 0.5, {"floats", "suspends", "sinks"}),
+        (-0.3, 0.25, {"sinks", "suspends"}),
+        (-1.0, 0.5, {"sinks"}),
+    ],
+)
 def test_every_state_that_the_band_holds_is_said(middle: float, half: float, states: set[str]) -> None:
     # Against a walk along the band in small steps.
     found = Reserve(middle, middle - half, middle + half, 0.1, ())
@@ -82,9 +104,17 @@ def test_stated_densities_err_each_for_itself_and_stock_by_the_batch() -> None:
     stated = substance(1000, 995, 1005)
     lead = substance(11340, 11300, 11350, "lead")
     found = doubts(
-        [part("body", 10 * CM3, stated, Role.BODY), part("one", 1 * CM3, lead), part("two", 2 * CM3, lead),
-         part("void", 5 * CM3, None)],
-        0.0, (), None, 0.0, WATER,
+        [
+            part("body", 10 * CM3, stated, Role.BODY),
+            part("one", 1 * CM3, lead),
+            part("two", 2 * CM3, lead),
+            part("void", 5 * CM3, None),
+        ],
+        0.0,
+        (),
+        None,
+        0.0,
+        WATER,
     )
     by_name = {doubt.what: doubt for doubt in found}
     assert set(by_name) == {"density of body", "density of lead"}
@@ -106,15 +136,18 @@ def test_equal_hooks_err_together_and_others_apart() -> None:
     assert len(found) == 2
 
 
-@pytest.mark.parametrize(("density", "thickness", "low", "high"), [
-    # 50 cm2 of skin, 0.05 mm either way: 0.25 cm3 of a coat 151.8 kg/m3 heavier than water pulls 0.038 g down.
-    (1150, 0.15e-3, 0.03795, 0.03795),
-    # A lighter coat lifts when it is thicker.
-    (900, 0.15e-3, 0.02455, 0.02455),
-    # A coat of 0.02 mm can be no more than that thinner.
-    (1150, 0.02e-3, 0.03795, 0.01518),
-    (900, 0.02e-3, 0.00982, 0.02455),
-])
+@pytest.mark.parametrize(
+    ("density", "thickness", "low", "high"),
+    [
+        # 50 cm2 of skin, 0.05 mm either way: 0.25 cm3 of a coat 151.8 kg/m3 heavier than water pulls 0.038 g down.
+        (1150, 0.15e-3, 0.03795, 0.03795),
+        # A lighter coat lifts when it is thicker.
+        (900, 0.15e-3, 0.02455, 0.02455),
+        # A coat of 0.02 mm can be no more than that thinner.
+        (1150, 0.02e-3, 0.03795, 0.01518),
+        (900, 0.02e-3, 0.00982, 0.02455),
+    ],
+)
 def test_a_coats_thickness(density: float, thickness: float, low: float, high: float) -> None:
     coat = Coat(thickness, substance(density, density, density))
     (found,) = doubts((), 0.0, (), coat, 50e-4, WATER)
@@ -134,9 +167,15 @@ def test_a_bait_of_everything() -> None:
     # Body 18.4 cm3 of 0.75 +- 0.5% (0.069 g), lead 0.4 cm3 (0.016, 0.004), two hooks (0.1, 0.2 each), facets 0.05.
     hooks = [hook(name, 0.6 * GRAM, 0.5 * GRAM, 0.8 * GRAM, "treble 6") for name in ("front", "rear")]
     found = doubts(
-        [part("body", 18.4 * CM3, substance(750, 746.25, 753.75), Role.BODY),
-         part("ballast", 0.4 * CM3, substance(11340, 11300, 11350, "lead"))],
-        0.05 * GRAM, hooks, None, 0.0, WATER,
+        [
+            part("body", 18.4 * CM3, substance(750, 746.25, 753.75), Role.BODY),
+            part("ballast", 0.4 * CM3, substance(11340, 11300, 11350, "lead")),
+        ],
+        0.05 * GRAM,
+        hooks,
+        None,
+        0.0,
+        WATER,
     )
     whole = reserve(16 * GRAM, 18.8 * CM3, WATER, None, found)
     assert whole.reserve - whole.low == pytest.approx(hypot(0.069, 0.004, 0.4, 0.05) * GRAM, rel=1e-9)

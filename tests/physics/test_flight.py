@@ -91,7 +91,12 @@ def test_swings_agree_with_a_motion_followed_in_time(tail: float) -> None:
 
         hinge = np.cross(FRAME.nose, lateral)
         path = solve_ivp(
-            change, (0, 1.6 / found.swing_hz), [trim.angle + 3e-4, 0.0], events=crosses, rtol=1e-5, atol=1e-9,
+            change,
+            (0, 1.6 / found.swing_hz),
+            [trim.angle + 3e-4, 0.0],
+            events=crosses,
+            rtol=1e-5,
+            atol=1e-9,
             args=(hinge, lateral, curve.inertia),
         )
         assert path.t_events is not None
@@ -157,7 +162,9 @@ def test_a_flight_turns_with_the_mesh() -> None:
     one = Winged(PLAIN.surface, hooks, lips={"lip": lip})
     moved = [replace(item, at=q @ item.at) for item in hooks]
     other = Winged(
-        Surface(PLAIN.surface.vertices @ q.T, PLAIN.surface.faces), moved, Frame.of(q @ FRAME.nose, q @ FRAME.back),
+        Surface(PLAIN.surface.vertices @ q.T, PLAIN.surface.faces),
+        moved,
+        Frame.of(q @ FRAME.nose, q @ FRAME.back),
         {"lip": Surface(lip.vertices @ q.T, lip.faces)},
     )
     tie = np.array([0.0, 0.002, 0.1])

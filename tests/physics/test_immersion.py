@@ -128,13 +128,18 @@ def test_wigleys_hull() -> None:
         body = hull(shapes.wigley(length, beam, draught, 0.004, cells))
         found = body.at(UP, 0.0)
         section = found.cut.section
-        errors.append(np.array([
-            found.volume / (length * beam * draught * 4 / 9),
-            section.area / (length * beam * 2 / 3),
-            (found.centre[2] + draught) / (5 / 8 * draught),
-            section.second[1, 1] / found.volume / (3 / 35 * beam**2 / draught),
-            section.second[0, 0] / found.volume / (3 / 40 * length**2 / draught),
-        ]) - 1)
+        errors.append(
+            np.array(
+                [
+                    found.volume / (length * beam * draught * 4 / 9),
+                    section.area / (length * beam * 2 / 3),
+                    (found.centre[2] + draught) / (5 / 8 * draught),
+                    section.second[1, 1] / found.volume / (3 / 35 * beam**2 / draught),
+                    section.second[0, 0] / found.volume / (3 / 40 * length**2 / draught),
+                ]
+            )
+            - 1
+        )
         amidships = body.index.cut(np.array([1.0, 0, 0]), 1e-9).section.area - beam * 0.004
         assert amidships == pytest.approx(2 / 3 * beam * draught, rel=1e-2)
     assert np.log2(np.abs(errors[0] / errors[2])) / 2 == pytest.approx(np.full(5, 2.0), abs=0.1)

@@ -41,9 +41,7 @@ def log_tilt(share: float) -> float:
     return 45.0
 
 
-@pytest.mark.parametrize(
-    "share", [0.1, 0.2, 0.213, 0.24, 0.26, 0.275, 0.3, 0.5, 0.71, 0.73, 0.76, 0.785, 0.8, 0.95]
-)
+@pytest.mark.parametrize("share", [0.1, 0.2, 0.213, 0.24, 0.26, 0.275, 0.3, 0.5, 0.71, 0.73, 0.76, 0.785, 0.8, 0.95])
 def test_every_way_a_square_log_rests(share: float) -> None:
     tilt = np.radians(log_tilt(share))
     turns = {round(float(np.degrees(q * np.pi / 2 + s * tilt)) % 360, 6) for q in range(4) for s in (-1, 1)}

@@ -50,9 +50,17 @@ def test_against_an_independent_minimiser(seed: int) -> None:
     for up in ways[heights < heights[neighbours].min(axis=1)]:
         start = np.array([np.arccos(up[2]), np.arctan2(up[1], up[0])])
         simplex = start + np.array([[0.0, 0.0], [0.15, 0.0], [0.0, 0.15]])
-        found = minimize(energy, start, method="Nelder-Mead", options={
-            "initial_simplex": simplex, "xatol": 3e-4, "fatol": 1e-9, "maxfev": 100,
-        })
+        found = minimize(
+            energy,
+            start,
+            method="Nelder-Mead",
+            options={
+                "initial_simplex": simplex,
+                "xatol": 3e-4,
+                "fatol": 1e-9,
+                "maxfev": 100,
+            },
+        )
         number = int(np.argmin([angle_between(pointing(found.x), rest.state.up) for rest in rests]))
         assert angle_between(pointing(found.x), rests[number].state.up) < 2e-3
         assert found.fun == pytest.approx(rests[number].state.energy, rel=1e-6)

@@ -62,7 +62,12 @@ class Winged:
         pairs = paired(bare)
         lips = dict(self.lips or {})
         return Skin(
-            surface=bare, thickness=np.zeros(len(bare.faces)), outer=bare, outer_pairs=pairs, bare=bare, lips=lips,
+            surface=bare,
+            thickness=np.zeros(len(bare.faces)),
+            outer=bare,
+            outer_pairs=pairs,
+            bare=bare,
+            lips=lips,
             painted=1.0,
         )
 
