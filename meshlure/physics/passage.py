@@ -104,5 +104,5 @@ def _fittings(skin: Skin, hardware: Sequence[Hardware], frame: Frame) -> Fitting
     for surface in skin.lips.values():
         plate = lip_plate(surface, frame.nose)
         lips += lip_drag_area(plate.area, plate.aspect, plate.angle)
-    hooks = sum(hook_drag_area(item) for item in hardware)
-    return Fittings(lip=lips, hooks=hooks)
+    hanging, fixed = (sum(hook_drag_area(item) for item in hardware if item.hangs is hangs) for hangs in (True, False))
+    return Fittings(lip=lips, hooks=hanging, eyes=fixed)

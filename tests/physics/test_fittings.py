@@ -3,12 +3,15 @@
 from __future__ import annotations
 
 import math
+from dataclasses import replace
 
 import numpy as np
 import pytest
 
+from meshlure.bait.pieces import Hardware
 from meshlure.physics.broadside import crossflow_factor
 from meshlure.physics.plate import inclined_plate_cn, lip_drag_area, normal_plate_cd
+from meshlure.physics.tackle import hook_drag_area
 from meshlure.physics.wire import Lie, eye_drag_area, wire_drag_area
 
 
@@ -98,3 +101,20 @@ def test_bad_input_is_refused() -> None:
         wire_drag_area(-1, 1)
     with pytest.raises(ValueError, match="wire"):
         wire_drag_area(1, math.nan)
+
+
+def hung(item: str | None, *, hangs: bool, **wire: float | None) -> Hardware:
+    """One gram of hardware at the origin."""
+    made = Hardware("it", 1e-3, 1e-3, 1e-3, np.zeros(3), hangs, 0.0, None, item, "stated", False)
+    return replace(made, **wire)  # type: ignore[arg-type]
+
+
+def test_what_hangs_trails_and_what_is_fixed_lies_anyhow() -> None:
+    size: dict[str, float | None] = {"wire": 0.9e-3, "wire_length": 0.088}
+    assert hook_drag_area(hung("treble 6", hangs=True, **size)) == wire_drag_area(0.088, 0.9e-3, Lie.TRAILING)
+    assert hook_drag_area(hung(None, hangs=True, **size)) == wire_drag_area(0.088, 0.9e-3, Lie.TRAILING)
+    assert hook_drag_area(hung("screw eye 1.0 x 15", hangs=False, **size)) == wire_drag_area(0.088, 0.9e-3, Lie.ANYHOW)
+    ring = wire_drag_area(0.088, 0.9e-3, Lie.RING_EDGE_ON)
+    assert hook_drag_area(hung("split ring 3", hangs=True, **size)) == ring
+    assert hook_drag_area(hung("treble 6", hangs=True, drag_area=6e-5, **size)) == 6e-5
+    assert hook_drag_area(hung("barrel swivel hanger", hangs=True)) == 0.0
