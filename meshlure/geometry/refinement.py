@@ -46,6 +46,9 @@ def refined(surface: Surface, pairs: EdgePairs) -> tuple[Surface, EdgePairs]:
     A. Vlachos, J. Peters, C. Boyd and J. Mitchell (2001), Curved PN triangles, Symposium on Interactive 3D Graphics
     (from memory).
     """
+    # Far from the origin of its coordinates a face would be taken for too thin to have a normal.
+    origin = surface.bounds.mean(axis=0)
+    surface = surface.moved(shift=-origin)
     plain = facets(surface)
     skin = run_out(surface, pairs, plain, skin_normals(surface, pairs, plain))
     known = _known(skin, plain)
@@ -66,7 +69,7 @@ def refined(surface: Surface, pairs: EdgePairs) -> tuple[Surface, EdgePairs]:
     a, b, c = surface.faces.T
     ab, bc, ca = middle.reshape(-1, 3).T
     faces = np.concatenate([np.column_stack(row) for row in ((a, ab, ca), (ab, b, bc), (ca, bc, c), (ab, bc, ca))])
-    finer = Surface(np.concatenate([surface.vertices, (start + end) / 2 + shift]), faces)
+    finer = Surface(np.concatenate([surface.vertices, (start + end) / 2 + shift]) + origin, faces)
     return finer, paired(finer)
 
 

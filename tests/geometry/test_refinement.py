@@ -91,3 +91,9 @@ def test_needle_faces_move_no_corner_far() -> None:
     finer = split(mesh)
     assert np.abs(finer.bounds - mesh.bounds).max() < 1e-3
     assert solid_moments(finer).amount == pytest.approx(2 * math.pi * 20, rel=1e-3)
+
+
+def test_a_body_far_from_the_origin_is_split_alike() -> None:
+    near = shapes.ellipsoid((0.04, 0.01, 0.007), 2)
+    far = split(near.moved(shift=np.array([800.0, -600.0, 10.0])))
+    np.testing.assert_allclose(far.vertices - [800.0, -600.0, 10.0], split(near).vertices, atol=1e-9)
