@@ -305,6 +305,7 @@ def agree(one: Composition, other: Composition, turn: Floats, shift: Floats, sha
 
 
 @given(SEEDS)
+@settings(max_examples=12)
 def test_masses_and_first_moments_of_the_pieces_make_the_whole(seed: int) -> None:
     made = compose(knobbly(seed))
     assume(not any(finding.stops for finding in made.findings))
@@ -320,7 +321,7 @@ def test_masses_and_first_moments_of_the_pieces_make_the_whole(seed: int) -> Non
 
 
 @given(SEEDS)
-@settings(max_examples=8)
+@settings(max_examples=6)
 def test_results_turn_and_shift_with_the_bait(seed: int) -> None:
     turn, shift = shapes.turn(seed + 1), np.random.default_rng(seed).normal(size=3) * 0.05
     other = compose(knobbly(seed, lambda surface: surface.moved(turn, shift), turn))
@@ -328,7 +329,7 @@ def test_results_turn_and_shift_with_the_bait(seed: int) -> None:
 
 
 @given(SEEDS)
-@settings(max_examples=4)
+@settings(max_examples=3)
 def test_a_kilometre_from_the_origin(seed: int) -> None:
     # There a coordinate's last digit is 1e-13 m, and the solid library merges what is closer than 1e-9 m.
     shift = np.array([600.0, -800.0, 30.0])
@@ -361,7 +362,7 @@ def cell_baits(draw: st.DrawFn) -> list[Block]:
 
 
 @given(cell_baits())
-@settings(max_examples=80)
+@settings(max_examples=50)
 def test_any_heap_of_boxes_against_an_account_by_cells(blocks: list[Block]) -> None:
     names = [f"piece {number}" for number in range(len(blocks))]
     pieces = []
