@@ -213,8 +213,11 @@ class Submerged:
     @cached_property
     def swing_period(self) -> float:
         """Period of small swings about the hanging posture in water without resistance, s; 0 where it has none."""
+        if self.hanging() is None:
+            # Centres that meet but for rounding would swing for hours.
+            return 0.0
         weight = GRAVITY * self.mass.amount * float(np.hypot(*self.offset))
-        return _TURN * float(np.sqrt(self._matrix[2, 2] / weight)) if weight > 0 else 0.0
+        return _TURN * float(np.sqrt(self._matrix[2, 2] / weight))
 
     def drag_area(self, pitch: float, sign: float) -> float:
         """Return the drag area, m2, of motion straight up (sign 1) or down (-1) at a pitch."""
