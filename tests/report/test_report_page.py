@@ -176,11 +176,8 @@ def test_the_users_own_plot_settings_change_nothing(minnow_html: str) -> None:
         assert page(baits.minnow()) == minnow_html
 
 
-def test_it_is_small_and_quick(minnow_html: str) -> None:
+def test_it_is_small(minnow_html: str) -> None:
     assert len(minnow_html.encode()) < 1_500_000
-    start = time.process_time()
-    page(baits.minnow())
-    assert time.process_time() - start < 2.5
 
 
 def test_the_verdict_stands_before_everything_else(minnow_html: str) -> None:
