@@ -5,7 +5,6 @@ from __future__ import annotations
 import base64
 import copy
 import re
-import time
 from html.parser import HTMLParser
 from itertools import pairwise
 from typing import Any
