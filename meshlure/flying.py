@@ -12,6 +12,7 @@ from meshlure.bait.composition import Composition, compose
 from meshlure.bait.pieces import Bait
 from meshlure.bait.refusals import refuse
 from meshlure.errors import Fault, InputError
+from meshlure.files.sections.cast import CastSection
 from meshlure.files.sections.retrieve import FASTEST
 from meshlure.geometry.blocks import BlockIndex
 from meshlure.geometry.moments import Moments
@@ -24,6 +25,7 @@ from meshlure.physics.loads import Glider
 from meshlure.physics.passage import Passage, passage
 from meshlure.physics.repose import Ends
 from meshlure.physics.trajectory import Throw, launch_speed, sphere_drag_area, trajectory
+from meshlure.physics.trim import OURS, Limits
 from meshlure.results import flight as tree
 from meshlure.stock.waters import standard_air
 from meshlure.tolerances import GRAVITY
@@ -145,8 +147,16 @@ def _one(bait: Bait, composition: Composition, way: Passage, ends: Ends) -> Flow
     speed = launch(bait, mass.amount)
     wings = glider(way, composition.skin, bait.hardware, bait.frame, speed, air.density, air.viscosity)
     tie = None if bait.plan.line is None else np.array(bait.plan.line.tie)
-    around = Air(air.density, Throw(speed, cast.angle, cast.height, cast.line_pull, cast.wind), tie)
+    around = Air(air.density, Throw(speed, cast.angle, cast.height, cast.line_pull, cast.wind), tie, _limits(cast))
     return Flown(ends, fly(wings, mass, around, band(way, speed)), mass, around, wings)
+
+
+def _limits(cast: CastSection) -> Limits:
+    """Limits of the verdict as the bait file sets them, ours where it does not."""
+    return Limits(
+        steady=OURS.steady if cast.steady_within is None else cast.steady_within,
+        sways=OURS.sways if cast.sways_within is None else cast.sways_within,
+    )
 
 
 def band(way: Passage, speed: float) -> dict[str, tuple[float, float]]:
@@ -227,6 +237,7 @@ def flight(
         if "tail" in flights
         else None,
         angles=distances(main.mass.amount, found.drag_area, air),
-        change=better(found.curves, found.bearing, main.mass.amount, ahead, way.stations.length - ahead),
+        change=better(found.curves, found.bearing, main.mass.amount, ahead, way.stations.length - ahead, air.limits),
         throw=air.throw,
+        limits=air.limits,
     )

@@ -75,3 +75,12 @@ def test_a_sinker_settles_the_speed() -> None:
 def test_a_sinker_that_could_not_is_refused(sinker: Sinker, said: str) -> None:
     with pytest.raises(InputError, match=said):
         launch(thrown(speed=None, sinker=sinker, line_pull=0.03), 0.012)
+
+
+def test_the_limits_of_the_verdict_can_be_set() -> None:
+    _, composition, way = _minnow()
+    ours = flown(thrown(), composition, way)["still"].flight.bearing
+    assert ours.verdict == "tumbles"
+    assert ours.trim is not None
+    wide = flown(thrown(sways_within=ours.trim + 0.01), composition, way)["still"].flight.bearing
+    assert wide.verdict == "sways"

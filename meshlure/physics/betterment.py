@@ -6,7 +6,7 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Final
 
-from meshlure.physics.trim import VERDICTS, Bearing, MomentCurve, leading
+from meshlure.physics.trim import OURS, VERDICTS, Bearing, Limits, MomentCurve, leading
 
 _FARTHEST: Final = 0.3
 """Share of the length by which a shift is looked for."""
@@ -34,7 +34,9 @@ class Change:
     added: float | None
 
 
-def better(curves: Sequence[MomentCurve], lead: Bearing, mass: float, to_nose: float, to_tail: float) -> Change | None:
+def better(
+    curves: Sequence[MomentCurve], lead: Bearing, mass: float, to_nose: float, to_tail: float, limits: Limits = OURS
+) -> Change | None:
     """Return the least shift along the bait that flies more steadily, None where there is none or no need.
 
     Parameters
@@ -45,6 +47,7 @@ def better(curves: Sequence[MomentCurve], lead: Bearing, mass: float, to_nose: f
     mass : float, kg
     to_nose, to_tail : float, m
         From the centre of gravity to either end.
+    limits : Limits
 
     Notes
     -----
@@ -56,7 +59,7 @@ def better(curves: Sequence[MomentCurve], lead: Bearing, mass: float, to_nose: f
         return None
 
     def steadier(shift: float) -> bool:
-        return VERDICTS.index(leading([curve.moved(shift) for curve in curves]).verdict) < now
+        return VERDICTS.index(leading([curve.moved(shift) for curve in curves], limits).verdict) < now
 
     length = to_nose + to_tail
     for step in range(1, _STEPS + 1):
@@ -67,7 +70,7 @@ def better(curves: Sequence[MomentCurve], lead: Bearing, mass: float, to_nose: f
                 for _ in range(_HALVINGS):
                     middle = (near + far) / 2
                     near, far = (near, middle) if steadier(middle) else (middle, far)
-                verdict = leading([curve.moved(far) for curve in curves]).verdict
+                verdict = leading([curve.moved(far) for curve in curves], limits).verdict
                 reach = (to_nose if far > 0 else to_tail) - abs(far)
                 return Change(verdict, far, mass * abs(far) / reach if reach > 0 else None)
     return None

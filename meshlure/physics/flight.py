@@ -13,7 +13,7 @@ from meshlure.geometry.surface import Floats
 from meshlure.physics.loads import Glider
 from meshlure.physics.posture import spread_directions
 from meshlure.physics.trajectory import Throw, Trajectory, trajectory
-from meshlure.physics.trim import STEP, Bearing, MomentCurve, bearing, leading
+from meshlure.physics.trim import OURS, STEP, Bearing, Limits, MomentCurve, bearing, leading
 
 PLANES: Final = ("pitch", "yaw")
 OFF_END: Final = np.radians(15.0)
@@ -43,11 +43,14 @@ class Air:
     throw : Throw
     tie : (3,) array or None, m
         Where the line pulls; None leaves its moment out.
+    limits : Limits
+        What separates the verdicts.
     """
 
     density: float
     throw: Throw
     tie: Floats | None
+    limits: Limits = OURS
 
 
 @dataclass(frozen=True, eq=False)
@@ -147,8 +150,8 @@ def fly(
     swings, and it shows no one side to the air for long.
     """
     curves = moment_curves(glider, mass, air)
-    lead = leading(curves) if end is None else bearing(curves, end)
-    other = bearing(curves, "tail" if lead.end == "nose" else "nose")
+    lead = leading(curves, air.limits) if end is None else bearing(curves, end, air.limits)
+    other = bearing(curves, "tail" if lead.end == "nose" else "nose", air.limits)
     towards = _towards(glider, mass, air, curves, lead)
     everywhere = spread_directions(DIRECTIONS) if lead.verdict == "tumbles" else towards[None, :]
     whole = float(-np.einsum("ij,ij->i", glider.loads(everywhere).force, everywhere).mean())

@@ -20,6 +20,28 @@ SWAYS_TO: Final = np.radians(60.0)
 DISTURBED: Final = np.radians(30.0)
 """rad off the leading end: the start that a well must hold, for a bait does not leave the rod straight; our limit."""
 
+
+@dataclass(frozen=True)
+class Limits:
+    """What separates the verdicts.
+
+    Attributes
+    ----------
+    steady : float, rad
+        A stable trim this close to the leading end flies steadily.
+    sways : float, rad
+        A trim or a swing up to here sways, beyond it tumbles.
+    start : float, rad
+        Off the leading end: the start that a well must hold.
+    """
+
+    steady: float = float(STEADY_TRIM)
+    sways: float = float(SWAYS_TO)
+    start: float = float(DISTURBED)
+
+
+OURS: Final = Limits()
+
 STEP: Final = float(np.radians(1.0))
 """rad between the angles of a moment curve."""
 
@@ -169,23 +191,23 @@ class Bearing:
     swing: float
 
 
-def bearing(curves: Sequence[MomentCurve], end: str) -> Bearing:
+def bearing(curves: Sequence[MomentCurve], end: str, limits: Limits = OURS) -> Bearing:
     """Return how a bait flies with an end first, by the worse of its planes.
 
     Notes
     -----
-    steady: a stable trim within 20 degrees of the end, whose well holds a start 30 degrees off. sways: a stable trim
-    or a swing between 20 and 60 degrees. tumbles: anything else.
+    With our limits: steady, a stable trim within 20 degrees of the end, whose well holds a start 30 degrees off;
+    sways, a stable trim or a swing between 20 and 60 degrees; tumbles, anything else.
     """
     worst, trim, swing = 0, 0.0, 0.0
     trimmed = True
     for curve in curves:
         nearest = curve.nearest_trim(end)
         away = np.pi if nearest is None else abs(nearest.from_end(end))
-        far = curve.swing(end)
-        if away <= STEADY_TRIM and far <= SWAYS_TO:
+        far = curve.swing(end, limits.start)
+        if away <= limits.steady and far <= limits.sways:
             grade = 0
-        elif away <= SWAYS_TO or far <= SWAYS_TO:
+        elif away <= limits.sways or far <= limits.sways:
             grade = 1
         else:
             grade = 2
@@ -195,14 +217,14 @@ def bearing(curves: Sequence[MomentCurve], end: str) -> Bearing:
     return Bearing(end, VERDICTS[worst], trim if trimmed else None, swing)
 
 
-def leading(curves: Sequence[MomentCurve]) -> Bearing:
+def leading(curves: Sequence[MomentCurve], limits: Limits = OURS) -> Bearing:
     """Return the bearing of the end that leads: the steadier one, the deeper well where both fly alike.
 
     Notes
     -----
     Depth of a well: least rise of the work between the end and broadside, in the softer plane.
     """
-    bearings = [bearing(curves, end) for end in ("nose", "tail")]
+    bearings = [bearing(curves, end, limits) for end in ("nose", "tail")]
     grades = [VERDICTS.index(b.verdict) for b in bearings]
     if grades[0] != grades[1]:
         return bearings[int(np.argmin(grades))]

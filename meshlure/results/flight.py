@@ -13,7 +13,7 @@ from meshlure.geometry.surface import Floats
 from meshlure.physics.betterment import Change
 from meshlure.physics.flight import ANGLES, OFF_END, Flight
 from meshlure.physics.trajectory import Throw, Trajectory
-from meshlure.physics.trim import DISTURBED, STEADY_TRIM, SWAYS_TO
+from meshlure.physics.trim import Limits
 from meshlure.results.numbers import GRAM, MM, MM2, degrees, plain
 
 Tree = dict[str, Any]
@@ -34,6 +34,7 @@ def flight(
     angles: Floats,
     change: Change | None,
     throw: Throw,
+    limits: Limits,
 ) -> Tree:
     """Return the tree of a flight.
 
@@ -56,6 +57,7 @@ def flight(
         Distance over `flight.ANGLES`.
     change : Change or None
     throw : Throw
+    limits : Limits
     """
     end = main.bearing.end
     margins = {plane: _margin(mass, centre, frame, end) for plane, centre in centres.items()}
@@ -107,9 +109,9 @@ def flight(
         ],
         "launch": {"angle_deg": plain(np.degrees(ANGLES)), "distance_m": plain(angles)},
         "limits": {
-            "steady_deg": degrees(float(STEADY_TRIM)),
-            "sways_deg": degrees(float(SWAYS_TO)),
-            "start_deg": degrees(float(DISTURBED)),
+            "steady_deg": degrees(limits.steady),
+            "sways_deg": degrees(limits.sways),
+            "start_deg": degrees(limits.start),
             "pressure_deg": degrees(float(OFF_END)),
         },
     }

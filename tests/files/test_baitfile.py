@@ -417,3 +417,13 @@ def test_two_balls_sections_for_one_chamber(tmp_path: Path) -> None:
     more = '[[balls]]\nchamber = "rattle chamber"\ndiameter = "3 mm"\ncount = 1\nmaterial = "lead"\n'
     (fault,) = faults(tmp_path, WHOLE + more)
     assert fault.startswith("balls[2] 'rattle chamber'.chamber: other balls lie in this chamber already")
+
+
+def test_limits_of_a_flight_in_the_cast(tmp_path: Path) -> None:
+    text = LEAST.replace("[body]", '[cast]\nsteady_within = "15 deg"\nsways_within = "50 deg"\n[body]')
+    (tmp_path / "bait.toml").write_text(text, encoding="utf-8")
+    cast = read_baitfile(tmp_path / "bait.toml").cast
+    assert (cast.steady_within, cast.sways_within) == pytest.approx((math.radians(15), math.radians(50)))
+    (tmp_path / "bait.toml").write_text(text.replace("15 deg", "55 deg"), encoding="utf-8")
+    with pytest.raises(InputError, match="steady flight is within"):
+        read_baitfile(tmp_path / "bait.toml")

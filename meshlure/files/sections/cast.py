@@ -52,6 +52,8 @@ class CastSection:
         Positive from behind.
     assumed : tuple of str
         Keys that were not stated and stand at their defaults.
+    steady_within, sways_within : float or None, rad
+        Angles off the leading end up to which a flight counts as steady, and as swaying; None for our own limits.
     """
 
     speed: float | None
@@ -63,6 +65,8 @@ class CastSection:
     line_pull: float
     wind: float
     assumed: tuple[str, ...]
+    steady_within: float | None = None
+    sways_within: float | None = None
 
 
 def read_cast(keys: Keys) -> CastSection:
@@ -93,7 +97,18 @@ def read_cast(keys: Keys) -> CastSection:
         keys.assumed_quantity("line_pull", "force", LINE_PULL, least=0.0, most=100.0),
         keys.assumed_quantity("wind", "speed", WIND, signed=True, least=-FASTEST, most=FASTEST),
         tuple(keys.assumed),
+        keys.quantity("steady_within", "angle", positive=True, most=_RIGHT_ANGLE),
+        keys.quantity("sways_within", "angle", positive=True, most=_RIGHT_ANGLE),
     )
+    steady, sways = section.steady_within, section.sways_within
+    if steady is not None and sways is not None and steady > sways:
+        keys.fault(
+            "steady_within",
+            "a steady flight is within the limit of a swaying one",
+            f"{math.degrees(steady):.4g} degrees, and sways_within {math.degrees(sways):.4g}",
+            "no more than sways_within",
+            "make it smaller",
+        )
     keys.close()
     return section
 
