@@ -101,7 +101,7 @@ def study(bait: Bait, against: Bait | None = None) -> Study:
         views = shape.views(seen, shape.drawn_pieces(bait.pieces), frame, tip, rows)
     with clock.phase("drag"):
         way = passage(skin, bait.hardware, frame, cuts, outer)
-        speed = flying.launch(bait, mass.amount)
+        speed, pull = flying.launch(bait, mass.amount), flying.line_pull(bait, mass.amount)
         drags = _drags(bait, way, speed)
     with clock.phase("flight"):
         flight = flying.flight(
@@ -139,8 +139,8 @@ def study(bait: Bait, against: Bait | None = None) -> Study:
         "drag": passage_tree.drag(drags),
         "flight": flight,
         "sinking": sinking_tree.sinking(below, pulls),
-        **account.stated(bait, mass, held, posed.trees, speed),
-        "assumptions": account.assumptions(bait, speed),
+        **account.stated(bait, mass, held, posed.trees, speed, pull),
+        "assumptions": account.assumptions(bait, speed, pull),
         "cautions": account.cautions(bait),
         "timings_s": clock.spent,
     }

@@ -32,6 +32,9 @@ from meshlure.tolerances import GRAVITY
 
 Tree = dict[str, Any]
 
+_USUAL_PULL = 0.3
+"""Share of the weight above which a pull that nobody stated is not assumed; our choice."""
+
 _MOST_PULL = 0.9
 """Share of its weight with which the line may pull at what is thrown: with all of it, it would never come down."""
 
@@ -77,12 +80,12 @@ def launch(bait: Bait, mass: float) -> float:
         return float(np.sqrt(2 * cast.energy / (mass + cast.rod_mass)))
     sinker = cast.sinker
     assert sinker is not None
-    _check_pull(bait, sinker.mass, "the sinker")
+    pull = line_pull(bait, sinker.mass, "the sinker")
     air = standard_air()
     area = sphere_drag_area(sinker.diameter, air.viscosity)
 
     def reach(speed: float) -> float:
-        throw = Throw(speed, cast.angle, cast.height, cast.line_pull, cast.wind)
+        throw = Throw(speed, cast.angle, cast.height, pull, cast.wind)
         return trajectory(sinker.mass, area, throw, air.density, 2).distance
 
     speed = launch_speed(sinker.distance, reach, FASTEST)
@@ -99,9 +102,23 @@ def launch(bait: Bait, mass: float) -> float:
     return speed
 
 
-def _check_pull(bait: Bait, mass: float, what: str) -> None:
-    """Refuse a line that holds what is thrown up in the air."""
-    pull, weight = bait.plan.cast.line_pull, mass * GRAVITY
+def line_pull(bait: Bait, mass: float, what: str = "the bait") -> float:
+    """Return the pull of the line in the flight of something of a mass, kg, in N.
+
+    Raises
+    ------
+    InputError
+        Where a stated pull would hold up what is thrown.
+
+    Notes
+    -----
+    Where none is stated it is the usual pull, but no more than three tenths of the weight: a light bait goes on a
+    light line.
+    """
+    cast, weight = bait.plan.cast, mass * GRAVITY
+    pull = cast.line_pull
+    if "line_pull" in cast.assumed:
+        return min(pull, _USUAL_PULL * weight)
     if pull > _MOST_PULL * weight:
         raise InputError(
             Fault(
@@ -112,6 +129,7 @@ def _check_pull(bait: Bait, mass: float, what: str) -> None:
                 next_step="state what a free line drags in flight, about 0.03 N, or leave the key out",
             )
         )
+    return pull
 
 
 def _check_lands_ahead(bait: Bait, reaches: Sequence[float]) -> None:
@@ -142,12 +160,12 @@ def flown(bait: Bait, composition: Composition, way: Passage) -> dict[str, Flown
 
 def _one(bait: Bait, composition: Composition, way: Passage, ends: Ends) -> Flown:
     mass = composition.mass(ends)
-    _check_pull(bait, mass.amount, "the bait")
+    pull = line_pull(bait, mass.amount)
     air, cast = standard_air(), bait.plan.cast
     speed = launch(bait, mass.amount)
     wings = glider(way, composition.skin, bait.hardware, bait.frame, speed, air.density, air.viscosity)
     tie = None if bait.plan.line is None else np.array(bait.plan.line.tie)
-    around = Air(air.density, Throw(speed, cast.angle, cast.height, cast.line_pull, cast.wind), tie, _limits(cast))
+    around = Air(air.density, Throw(speed, cast.angle, cast.height, pull, cast.wind), tie, _limits(cast))
     return Flown(ends, fly(wings, mass, around, band(way, speed)), mass, around, wings)
 
 

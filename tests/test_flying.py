@@ -15,7 +15,7 @@ from meshlure.bait.composition import Composition, compose
 from meshlure.bait.pieces import Bait
 from meshlure.errors import InputError
 from meshlure.files.sections.cast import Sinker
-from meshlure.flying import flight, flown, launch
+from meshlure.flying import flight, flown, launch, line_pull
 from meshlure.geometry.blocks import BlockIndex
 from meshlure.geometry.stations import stations
 from meshlure.physics.areas import silhouettes
@@ -34,7 +34,8 @@ def _minnow() -> tuple[Bait, Composition, Passage]:
 
 def thrown(**cast: Any) -> Bait:
     bait = _minnow()[0]
-    return replace(bait, plan=replace(bait.plan, cast=replace(bait.plan.cast, **cast)))
+    assumed = tuple(key for key in bait.plan.cast.assumed if key not in cast)
+    return replace(bait, plan=replace(bait.plan, cast=replace(bait.plan.cast, assumed=assumed, **cast)))
 
 
 def test_a_line_that_would_hold_the_bait_up_is_refused() -> None:
@@ -84,3 +85,10 @@ def test_the_limits_of_the_verdict_can_be_set() -> None:
     assert ours.trim is not None
     wide = flown(thrown(sways_within=ours.trim + 0.01), composition, way)["still"].flight.bearing
     assert wide.verdict == "sways"
+
+
+def test_a_pull_that_nobody_stated_never_holds_a_light_bait_up() -> None:
+    bait = _minnow()[0]
+    assert "line_pull" in bait.plan.cast.assumed
+    assert line_pull(bait, 0.0119) == pytest.approx(0.03)
+    assert line_pull(bait, 0.002) == pytest.approx(0.3 * 0.002 * GRAVITY)

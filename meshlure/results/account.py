@@ -16,8 +16,8 @@ from meshlure.stock.waters import standard_air
 Tree = dict[str, Any]
 
 
-def stated(bait: Bait, mass: Moments, reserve: Reserve, postures: Sequence[Tree], speed: float) -> Tree:
-    """Return line, cast at its speed (m/s), retrieve and limits as they are taken."""
+def stated(bait: Bait, mass: Moments, reserve: Reserve, postures: Sequence[Tree], speed: float, pull: float) -> Tree:
+    """Return line, cast at its speed (m/s) with the line's pull (N), retrieve and limits as they are taken."""
     plan = bait.plan
     return {
         "line": None if plan.line is None else {"tie_mm": plain(plan.line.tie, MM)},
@@ -25,7 +25,7 @@ def stated(bait: Bait, mass: Moments, reserve: Reserve, postures: Sequence[Tree]
             "speed_m_s": speed,
             "angle_deg": degrees(plan.cast.angle),
             "height_m": plan.cast.height,
-            "line_pull_n": plan.cast.line_pull,
+            "line_pull_n": pull,
             "wind_m_s": plan.cast.wind,
             "assumed": sorted(plan.cast.assumed),
         },
@@ -80,8 +80,17 @@ def _measured(bait: Bait, mass: Moments, reserve: Reserve) -> Tree | None:
     return {"rows": rows, "water_c": weighed.water}
 
 
-def assumptions(bait: Bait, speed: float) -> list[Tree]:
-    """Return everything that the numbers rest on, what was assumed first; ``speed`` is the cast's, m/s."""
+def assumptions(bait: Bait, speed: float, pull: float) -> list[Tree]:
+    """Return everything that the numbers rest on, what was assumed first.
+
+    Parameters
+    ----------
+    bait : Bait
+    speed : float, m/s
+        Of the cast.
+    pull : float, N
+        Of the line in flight.
+    """
     rows = [_substance(bait.body.name, bait.body.substance)]
     rows += [_substance(piece.name, piece.substance) for piece in bait.pieces if piece.substance is not None]
     rows += [_substance(f"balls in {balls.chamber}", balls.substance) for balls in bait.balls]
@@ -92,7 +101,7 @@ def assumptions(bait: Bait, speed: float) -> list[Tree]:
             rows.append(_row(f"displacement of {item.name}", "none", "no material stated for it", assumed=True))
     if bait.coat is not None:
         rows.append(_substance("coat", bait.coat.substance))
-    rows += _surroundings(bait, speed)
+    rows += _surroundings(bait, speed, pull)
     for piece in bait.pieces:
         if piece.substance is None:
             what = "fills with water" if piece.flooded else "stays dry and weighs nothing"
@@ -100,7 +109,7 @@ def assumptions(bait: Bait, speed: float) -> list[Tree]:
     return sorted(rows, key=lambda row: not row["assumed"])
 
 
-def _surroundings(bait: Bait, speed: float) -> list[Tree]:
+def _surroundings(bait: Bait, speed: float, pull: float) -> list[Tree]:
     plan, water, air = bait.plan, bait.water, standard_air()
     source = "TEOS-10 at sea pressure 0" if plan.water.density is None else "stated"
     rows = [_row("density of the water", f"{water.density:.2f} kg/m3", source, assumed=False)]
@@ -117,7 +126,7 @@ def _surroundings(bait: Bait, speed: float) -> list[Tree]:
     for key, value in (
         ("angle", f"{degrees(cast.angle):.0f}°"),
         ("height", f"{cast.height:g} m"),
-        ("line_pull", f"{cast.line_pull:g} N"),
+        ("line_pull", f"{pull:.3g} N"),
     ):
         if key in cast.assumed:
             what = {

@@ -168,7 +168,7 @@ def test_nowhere_to_write_to(bench: Bench) -> None:
 
 
 def _break(monkeypatch: pytest.MonkeyPatch, error: Exception) -> None:
-    def broken(bait: object) -> object:
+    def broken(bait: object, against: object) -> object:
         raise error
 
     monkeypatch.setattr("meshlure.examine.study", broken)
