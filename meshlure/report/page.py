@@ -6,7 +6,19 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import Any
 
-from meshlure.report import airborne, attitude, charts, flight, flow, origin, substance, underwater, water, wording
+from meshlure.report import (
+    airborne,
+    attitude,
+    charts,
+    compared,
+    flight,
+    flow,
+    origin,
+    substance,
+    underwater,
+    water,
+    wording,
+)
 from meshlure.report.drawings import TITLES, Drawing, drawing
 from meshlure.report.figures import Picture, drawing_style
 from meshlure.report.layout import scale_for, scale_words
@@ -152,6 +164,7 @@ def _tables(results: Mapping[str, Any]) -> dict[str, Any]:
         "form": flow.form(results),
         "drag": flow.drag(results),
         "parts": flow.parts(results),
+        "compared": compared.values(),
         "flight": flight.facts(results),
         "flight_balls": flight.balls(results),
         "trims": flight.trims(results),
@@ -187,6 +200,7 @@ def _pictures(study: Study, results: Mapping[str, Any], shown: Subject) -> dict[
         "stations_chart": charts.stations(results["stations"]),
         "rose_charts": _present(charts.rose(results["rose"], results["frame"], plane) for plane in planes),
         "drag_charts": _present(charts.drag(results["drag"], fluid) for fluid in fluids),
+        "compared_chart": compared.chart(),
         "wind": windward(views, shown, results),
         "moment_charts": _present(airborne.moments(results["flight"], plane) for plane in ("pitch", "yaw")),
         "path_charts": [airborne.paths(results["flight"]), airborne.launch(results["flight"], results["cast"])],

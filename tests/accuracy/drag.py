@@ -6,6 +6,7 @@ python tests/accuracy/drag.py --quick    without the refits: prints the counts, 
 
 from __future__ import annotations
 
+import json
 import re
 import sys
 from collections.abc import Sequence
@@ -188,6 +189,21 @@ rows in sight; the refits show what becomes of a family that was not. Sources, c
 <!-- /drag -->"""
 
 
+def keep(found: Sequence[Compared], path: Path) -> None:
+    """Write the rows that the page of every report shows in small."""
+    rows = [
+        {
+            "body": words(c.row),
+            "layer": c.row.layer,
+            "published": c.row.cd,
+            "estimate": round(c.row.cd * c.ratios[0], 3),
+        }
+        for c in found
+    ]
+    lines = ",\n".join(json.dumps(row, ensure_ascii=False) for row in rows)
+    path.write_text(f"[\n{lines}\n]\n", encoding="utf-8")
+
+
 def main(*, quick: bool) -> None:
     """Print the counts, and unless quick write the page, the figure and the README's part."""
     found, extra = published(), further()
@@ -207,6 +223,7 @@ def main(*, quick: bool) -> None:
     )
     (HERE / "drag.md").write_text(page, encoding="utf-8")
     draw([(c.row, c.ratios) for c in found], [(c.row, c.ratios) for c in extra], HERE / "drag.svg")
+    keep(found, ROOT / "meshlure" / "report" / "compared.json")
     readme = ROOT / "README.md"
     text = readme.read_text(encoding="utf-8")
     near = counts([c.ratios[0] for c in found])[3]
