@@ -8,12 +8,12 @@ from typing import Any
 
 from meshlure.findings import Finding, Level
 from meshlure.physics.barrier import barriers
+from meshlure.physics.buoyancy import suspends_within
 from meshlure.physics.posture import attitude, coarse_potential
 from meshlure.physics.repose import Dangle, Ends, Repose, Vessel
 from meshlure.physics.righting import righting
 from meshlure.results import postures
 from meshlure.results.numbers import GRAM, MM, degrees, plain
-from meshlure.tolerances import SUSPENDS_SHARE
 
 Tree = dict[str, Any]
 
@@ -54,14 +54,14 @@ class _Setting:
         return next((r for r in self.reposes if r.rest.upright), None)
 
 
-def pose(vessel: Vessel, suspends_within: float | None = None) -> Posed:
+def pose(vessel: Vessel, stated: float | None = None) -> Posed:
     """Return every posture of a bait.
 
     Parameters
     ----------
     vessel : Vessel
-    suspends_within : float or None, kg
-        Reserve within which it suspends and so hangs as well as floats.
+    stated : float or None, kg
+        Reserve within which it suspends and so hangs as well as floats; None takes the usual one.
 
     Notes
     -----
@@ -83,7 +83,7 @@ def pose(vessel: Vessel, suspends_within: float | None = None) -> Posed:
     afloat = sorted(afloat, key=lambda r: r.rest.state.energy)
     ends = _headline_ends(afloat, hanging)
     trees = _afloat(vessel, afloat) if afloat else []
-    if not afloat or _suspends(vessel, ends, suspends_within):
+    if not afloat or _suspends(vessel, ends, stated):
         share = 1.0 / len(hanging)
         trees += [postures.dangling(d, vessel.frame, vessel.composition.mass(d.ends).amount, share) for d in hanging]
     findings += _dry(afloat, vessel)
@@ -96,10 +96,9 @@ def _headline_ends(afloat: Sequence[Repose], hanging: Sequence[Dangle]) -> Ends:
     return next((r for r in afloat if r.rest.upright), afloat[0]).ends
 
 
-def _suspends(vessel: Vessel, ends: Ends, within: float | None) -> bool:
+def _suspends(vessel: Vessel, ends: Ends, stated: float | None) -> bool:
     displaced = vessel.hull(ends).volume * vessel.water
-    limit = SUSPENDS_SHARE * displaced if within is None else within
-    return abs(displaced - vessel.composition.mass(ends).amount) <= limit
+    return abs(displaced - vessel.composition.mass(ends).amount) <= suspends_within(displaced, stated)
 
 
 def _afloat(vessel: Vessel, afloat: Sequence[Repose]) -> list[Tree]:

@@ -87,6 +87,11 @@ def behaviour(reserve: float, threshold: float) -> Behaviour:
     return Behaviour.FLOATS if reserve > 0 else Behaviour.SINKS
 
 
+def suspends_within(displaced: float, stated: float | None) -> float:
+    """Return the reserve within which a bait suspends, kg: the stated one, or 0.2% of the displaced mass, kg."""
+    return tolerances.SUSPENDS_SHARE * displaced if stated is None else stated
+
+
 def reserve(mass: float, displaced: float, water: float, threshold: float | None, doubts: Sequence[Doubt]) -> Reserve:
     """Return the reserve buoyancy of a bait.
 
@@ -101,7 +106,7 @@ def reserve(mass: float, displaced: float, water: float, threshold: float | None
     doubts : sequence of Doubt
     """
     value = displaced * water - mass
-    limit = tolerances.SUSPENDS_SHARE * displaced * water if threshold is None else threshold
+    limit = suspends_within(displaced * water, threshold)
     return Reserve(
         value, value - hypot(*(d.low for d in doubts)), value + hypot(*(d.high for d in doubts)), limit, tuple(doubts)
     )

@@ -8,12 +8,13 @@ from typing import Final
 
 import numpy as np
 
+from meshlure.physics import buoyancy
 from meshlure.physics.course import Course, course, free_fall_speed, holds, steady_motion
 from meshlure.physics.glider import glider
 from meshlure.physics.passage import LEADS, Passage
 from meshlure.physics.repose import Vessel
 from meshlure.physics.submerged import ALONG, UP, Submerged, added_mass
-from meshlure.tolerances import GRAVITY, SUSPENDS_SHARE
+from meshlure.tolerances import GRAVITY
 
 DEPTHS: Final = (1.0, 3.0)
 """m. Ways down or up that are timed."""
@@ -113,7 +114,7 @@ def sinking(body: Submerged, way: Passage, viscosity: float, suspends_within: fl
     linear modes. The balls stay where they are. Left out are lean and roll, the sway that shed vortices drive, water
     that runs in hollows, and the line.
     """
-    limit = SUSPENDS_SHARE * body.density * body.volume if suspends_within is None else suspends_within
+    limit = buoyancy.suspends_within(body.density * body.volume, suspends_within)
     hanging = body.hanging()
     pitch = 0.0 if hanging is None else hanging
     body, speed = _at_its_speed(body, way, viscosity, pitch)

@@ -6,7 +6,7 @@ from typing import Any
 
 from meshlure.bait.smooth import Deficit
 from meshlure.geometry.surface import Floats
-from meshlure.physics.buoyancy import Behaviour, Reserve, behaviour
+from meshlure.physics.buoyancy import Behaviour, Reserve, behaviour, suspends_within
 from meshlure.results.numbers import GRAM, MM, MM3, plain
 from meshlure.stock.waters import Water, table
 
@@ -91,12 +91,10 @@ def waters(mass: float, displaced: float, threshold: float | None) -> list[Tree]
     threshold : float or None, kg
         Stated one; None takes the share of the displaced mass.
     """
-    from meshlure.tolerances import SUSPENDS_SHARE
-
     rows = []
     for name, water in table():
-        limit = SUSPENDS_SHARE * displaced * water.density if threshold is None else threshold
-        left = displaced * water.density - mass
+        lifted = displaced * water.density
+        left = lifted - mass
         rows.append(
             {
                 "name": name,
@@ -104,7 +102,7 @@ def waters(mass: float, displaced: float, threshold: float | None) -> list[Tree]
                 "salinity_g_kg": water.salinity,
                 "density_kg_m3": water.density,
                 "reserve_g": left * GRAM,
-                "state": str(behaviour(left, limit)),
+                "state": str(behaviour(left, suspends_within(lifted, threshold))),
             }
         )
     return rows
