@@ -13,7 +13,7 @@ from typing import Any
 
 import numpy as np
 import pytest
-from studied import SAMPLES, sample
+from studied import SAMPLES, drawn, sample
 
 sys.path.append(str(Path(__file__).parent / "authorities"))
 
@@ -34,7 +34,7 @@ CLOSER = 0.25
 
 
 def tree(name: str) -> Tree:
-    return dict(sample(name).results)
+    return dict(drawn(name).results)
 
 
 def short(name: str) -> float:

@@ -11,6 +11,7 @@ import numpy as np
 from meshlure import tolerances
 from meshlure.bait.chambers import BallRow, ball_row
 from meshlure.bait.contact import untouched
+from meshlure.bait.gaps import with_gaps
 from meshlure.bait.meshpiece import solid_of
 from meshlure.bait.outside import outside_findings
 from meshlure.bait.overlaps import Filling, fill
@@ -132,9 +133,10 @@ def compose(bait: Bait) -> Composition:
     SolidError
         Where a cut's parts do not add up to the whole.
     """
-    body, pieces = bait.body, bait.pieces
+    body, gapped = bait.body, with_gaps(bait.body, bait.pieces)
+    pieces = gapped.pieces
     filling = fill(body, pieces)
-    findings = list(filling.findings)
+    findings = [*gapped.findings, *filling.findings]
     relations = {piece.name: [relation(shell, body.shells) for shell in piece.shells] for piece in pieces}
     findings += untouched(body, pieces, relations)
     if any(finding.stops for finding in findings):

@@ -22,6 +22,7 @@ from meshlure.files.meshes import read_meshes
 from meshlure.files.reading import MeshFile
 from meshlure.files.sections.balls import BallsSection
 from meshlure.files.sections.inserts import InsertSection
+from meshlure.files.sections.substance import Substance as Stated
 from meshlure.files.tables import entry_path
 from meshlure.findings import Finding
 from meshlure.geometry.soundness import examine
@@ -116,6 +117,7 @@ class _Lookup:
         place = f"{self._file}body.material" if plan.path is not None else "--material"
         self.body = None if stated is None else self._ask(lambda: substance(stated, place))
         self.inserts = [self._insert(number, insert) for number, insert in enumerate(plan.inserts, 1)]
+        self.glues = [self._glue(number, insert) for number, insert in enumerate(plan.inserts, 1)]
         balls = [self._ask(partial(self._balls, n, row)) for n, row in enumerate(plan.balls, 1)]
         metal = [
             self._ask(partial(hardware, row, self._file + entry_path("hardware", n, row.name)))
@@ -146,6 +148,13 @@ class _Lookup:
         if not self._file:
             where = f"--insert {insert.mesh}={stated.material}"
         return self._ask(lambda: substance(stated, where))
+
+    def _glue(self, number: int, insert: InsertSection) -> Substance | None:
+        name = insert.glue
+        if name is None:
+            return None
+        where = f"{self._file}{entry_path('insert', number, insert.name)}.glue"
+        return self._ask(lambda: substance(Stated(material=name), where))
 
     def _ask(self, question: Callable[[], T]) -> T | None:
         try:
@@ -185,7 +194,7 @@ def _pieces(plan: BaitFile, files: Mapping[str, MeshFile], made: _Lookup) -> tup
             skin_deficit=outer.skin_deficit,
         )
     ]
-    for insert, of in zip(plan.inserts, made.inserts, strict=True):
+    for insert, of, glue in zip(plan.inserts, made.inserts, made.glues, strict=True):
         own = shape(sounds[insert.name], insert.name)
         pieces.append(
             MeshPiece(
@@ -201,6 +210,7 @@ def _pieces(plan: BaitFile, files: Mapping[str, MeshFile], made: _Lookup) -> tup
                 replaces=insert.replaces,
                 lip=insert.lip,
                 fit=insert.fit,
+                glue=glue,
                 deficit=own.deficit,
                 skin_deficit=own.skin_deficit,
             )

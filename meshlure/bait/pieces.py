@@ -107,6 +107,8 @@ class MeshPiece:
         Whether it is a lip, to be counted by itself in the drag.
     fit : float, m
         Gap per side of its pocket.
+    glue : Substance or None
+        What fills that gap.
     deficit : float, m3
         Volume that its facets leave out of the smooth part, cavities left out.
     skin_deficit : float, m3
@@ -125,6 +127,7 @@ class MeshPiece:
     replaces: tuple[str, ...] = ()
     lip: bool = False
     fit: float = 0.0
+    glue: Substance | None = None
     deficit: float = 0.0
     skin_deficit: float = 0.0
 
