@@ -15,7 +15,7 @@ from meshlure.errors import InputError
 from meshlure.geometry.clearance import nearest
 from meshlure.geometry.solids import Solid
 from meshlure.geometry.surface import Surface
-from meshlure.making import variant
+from meshlure.making import written as writing
 from meshlure.making.variant import write_cuttings
 
 SAMPLES = Path(__file__).parents[2] / "samples"
@@ -141,10 +141,10 @@ def test_a_broken_promise_is_refused(tmp_path: Path, monkeypatch: pytest.MonkeyP
     def lossy(path: Path, surface: Surface) -> None:
         honest(path, surface.moved(scale=1.0001))
 
-    monkeypatch.setattr(variant, "write_stl", lossy)
+    monkeypatch.setattr(writing, "write_stl", lossy)
     with pytest.raises(InputError, match=r"body\.stl: the mesh written does not keep its promise(.|\n)*within 0\.01%"):
         write_cuttings(bait(BODY), tmp_path)
-    monkeypatch.setattr(variant, "write_stl", lambda path, s: honest(path, Surface(s.vertices, s.faces[1:])))
+    monkeypatch.setattr(writing, "write_stl", lambda path, s: honest(path, Surface(s.vertices, s.faces[1:])))
     with pytest.raises(InputError, match=r"body\.stl: the mesh written does not keep its promise(.|\n)*open"):
         write_cuttings(bait(BODY), tmp_path)
 
