@@ -10,9 +10,11 @@ from typing import Final
 from meshlure.errors import Fault, InputError
 from meshlure.files.sections.areas import AreasSection, read_areas
 from meshlure.files.sections.bait import BaitSection, read_bait
+from meshlure.files.sections.ballast import BallastSection, read_ballast
 from meshlure.files.sections.balls import BallsSection, read_balls
 from meshlure.files.sections.body import BodySection, read_body
 from meshlure.files.sections.cast import CastSection, read_cast
+from meshlure.files.sections.chamber import ChamberSection, read_chamber
 from meshlure.files.sections.coat import CoatSection, read_coat
 from meshlure.files.sections.hardware import HardwareSection, read_hardware
 from meshlure.files.sections.inserts import InsertSection, read_insert
@@ -20,6 +22,7 @@ from meshlure.files.sections.limits import LimitsSection, read_limits
 from meshlure.files.sections.line import LineSection, read_line
 from meshlure.files.sections.measured import MeasuredSection, read_measured
 from meshlure.files.sections.retrieve import RetrieveSection, read_retrieve
+from meshlure.files.sections.target import TargetSection, read_target
 from meshlure.files.sections.water import WaterSection, read_water
 from meshlure.files.tables import Tables, entry_path
 from meshlure.files.toml import read_toml
@@ -56,8 +59,8 @@ class BaitFile:
         The file; None where the bait was stated on the command line.
     bait, water, body : sections that every bait has
     inserts, balls, hardware : tuples of sections, in the file's order
-    coat, line, measured, limits : sections, None where they are not stated
-    areas, retrieve, cast : sections, at their defaults where they are not stated
+    coat, line, measured, limits, target, chamber : sections, None where they are not stated
+    areas, retrieve, cast, ballast : sections, at their defaults where they are not stated
 
     Notes
     -----
@@ -78,6 +81,9 @@ class BaitFile:
     cast: CastSection
     measured: MeasuredSection | None
     limits: LimitsSection | None
+    target: TargetSection | None
+    ballast: BallastSection
+    chamber: ChamberSection | None
 
     def meshes(self) -> tuple[MeshName, ...]:
         """Every mesh of the bait, the body first."""
@@ -156,6 +162,9 @@ def bait_of(table: Mapping[str, object], folder: Path, name: str, path: Path | N
         read_cast(tables.one("cast") or tables.none("cast")),
         tables.read("measured", read_measured),
         tables.read("limits", read_limits),
+        tables.read("target", read_target),
+        read_ballast(tables.one("ballast") or tables.none("ballast")),
+        tables.read("chamber", read_chamber),
     )
     tables.close()
     faults.extend(_same_names(result))

@@ -28,3 +28,24 @@ WIND: Final = 0.0
 
 RETRIEVE_SPEEDS: Final = (0.5, 1.0)
 """m/s. A slow and a brisk hand on a reel of 60 to 90 cm a turn: common practice, no source."""
+
+BALLAST_MATERIALS: Final = ("lead", "tungsten heavy alloy 90% W", "brass")
+"""What ballast is most often made of, the commonest first: common practice, no source."""
+
+BALLAST_COVER: Final = 1.5e-3
+"""m of body material around ballast; less shows through or breaks out: common practice, no source."""
+
+BALLAST_CLEAR: Final = 1.0e-3
+"""m between ballast and other inserts or hardware, so that what the body is cast of flows between: common practice."""
+
+CHAMBER_CLEARANCE: Final = 0.5e-3
+"""m, bore less ball. A ball runs freely with 0.3 to 0.6 mm in a smooth bore: common practice, no source."""
+
+CHAMBER_WALL: Final = 1.2e-3
+"""m beside a chamber, three lines of a 0.4 mm nozzle: common practice, no source."""
+
+CHAMBER_END_WALL: Final = 2.0e-3
+"""m at a chamber's ends, which the balls strike: common practice, no source."""
+
+CHAMBER_SLOPE: Final = math.radians(8.0)
+"""rad by which a bore falls towards the nose, so that the balls come back by themselves: common practice, no source."""

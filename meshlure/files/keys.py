@@ -3,13 +3,15 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Iterator, Mapping
-from typing import TypedDict, Unpack
+from collections.abc import Iterator, Mapping, Sequence
+from typing import TypedDict, TypeVar, Unpack
 
 from meshlure.errors import Fault, InputError
 from meshlure.files.nearness import did_you_mean, nearest
 from meshlure.findings import Point
 from meshlure.units import quantity
+
+T = TypeVar("T")
 
 _LONGEST_TEXT = 200
 _MOST_ROWS = 1000
@@ -145,15 +147,16 @@ class Keys:
             return value
         return least
 
-    def share(self, key: str) -> float:
-        """Read a number from 0 to 1, which must be stated."""
+    def share(self, key: str, inside: bool = False) -> float:
+        """Read a number from 0 to 1, which must be stated; with ``inside`` neither of the two."""
         value = self._table.get(key)
+        allowed = "above 0 and below 1" if inside else "0 to 1"
         if not self.stated(key):
             self._missing(key, "0.15")
         elif not _is_number(value):
             self._wrong(key, "a number from 0 to 1, without quotes")
-        elif not 0.0 <= float(value) <= 1.0:  # type: ignore[arg-type]
-            self.fault(key, "the share is outside its range", str(value), "0 to 1", "write 15% as 0.15")
+        elif not 0.0 <= float(value) <= 1.0 or (inside and value in {0, 1}):  # type: ignore[arg-type]
+            self.fault(key, "the share is outside its range", str(value), allowed, "write 15% as 0.15")
         else:
             return float(value)  # type: ignore[arg-type]
         return 0.0
@@ -173,10 +176,12 @@ class Keys:
     def assumed_quantity(self, key: str, kind: str, default: float, **limits: Unpack[Limits]) -> float:
         """Read a quantity in SI; the default where it is not stated, and then the key joins `assumed`."""
         value = self.quantity(key, kind, **limits)
-        if value is None:
-            self.assumed.append(key)
-            return default
-        return value
+        return self.assume(key, default) if value is None else value
+
+    def assume(self, key: str, default: T) -> T:
+        """Return the default of a key that is not stated, and put the key among `assumed`."""
+        self.assumed.append(key)
+        return default
 
     def quantities(self, key: str, kind: str, such_as: str, **limits: Unpack[Limits]) -> tuple[float, ...] | None:
         """Read the quantities of a list in SI, None where it is not stated."""
@@ -200,6 +205,61 @@ class Keys:
                 key, "the range is the wrong way round", str(self._table[key]), f"{such_as}", "put the lesser first"
             )
         return values[0], values[1]
+
+    def one_or_more(self, key: str, kind: str, such_as: str, **limits: Unpack[Limits]) -> tuple[float, ...]:
+        """Read a quantity or a list of different ones in SI, which must be stated."""
+        if not self.stated(key):
+            self._missing(key, such_as)
+            return ()
+        if not isinstance(self._table[key], list):
+            return (self._quantity(self._table[key], self.where(key), kind, limits),)
+        values = self.quantities(key, kind, such_as, **limits) or ()
+        self._told_once(key, values)
+        return values
+
+    def wholes(self, key: str, least: int, most: int) -> tuple[int, ...]:
+        """Read a whole number or a list of different ones within limits, which must be stated."""
+        if not self.stated(key):
+            self._missing(key, str(least))
+            return ()
+        value, allowed = self._table[key], f"a whole number, {least} to {most}, or a list of them"
+        rows = self._rows(key, allowed) if isinstance(value, list) else [(self.where(key), value)]
+        numbers = []
+        for where, row in rows:
+            if isinstance(row, bool) or not isinstance(row, int):
+                self._faults.append(
+                    Fault("the value is of the wrong kind", where, repr(row)[:60], allowed, "correct it")
+                )
+            elif not least <= row <= most:
+                what = "the number is outside its range"
+                self._faults.append(Fault(what, where, str(row)[:60], f"{least} to {most}", "correct it"))
+            else:
+                numbers.append(row)
+        self._told_once(key, numbers)
+        return tuple(numbers)
+
+    def choices(self, key: str, allowed: tuple[str, ...]) -> tuple[str, ...]:
+        """Read different words out of several as a list; none where it is not stated."""
+        words = self.names(key)
+        for word in words:
+            if word not in allowed:
+                known = " or ".join(repr(each) for each in allowed)
+                self.fault(key, "no such choice", repr(word), known, did_you_mean(word, allowed, f"write {known}"))
+        self._told_once(key, words)
+        return words
+
+    def tables(self, key: str, such_as: str) -> list[Keys]:
+        """Read the tables of a list, which must be stated; none after a fault."""
+        if not self.stated(key):
+            self._missing(key, such_as)
+            return []
+        found = []
+        for where, row in self._rows(key, f"a list of tables such as {such_as}"):
+            if isinstance(row, Mapping):
+                found.append(Keys(row, where, self._faults))
+            else:
+                self._faults.append(Fault("a table was expected", where, repr(row)[:60], such_as, "correct it"))
+        return found
 
     def names(self, key: str) -> tuple[str, ...]:
         """Read the texts of a list; none where it is not stated."""
@@ -271,6 +331,12 @@ class Keys:
         except InputError as error:
             self.take(error)
             return math.nan
+
+    def _told_once(self, key: str, values: Sequence[object]) -> None:
+        """Put down that a list says the same twice; stand-ins of faulty values, which are no numbers, do not count."""
+        read = [value for value in values if value == value]
+        if len(set(read)) < len(read):
+            self.fault(key, "the list says the same twice", repr(self._table[key])[:60], "each once", "remove one")
 
     def _rows(self, key: str, allowed: str) -> Iterator[tuple[str, object]]:
         """Entries of a list with their paths; none after a fault."""
