@@ -4,12 +4,12 @@ from __future__ import annotations
 
 import functools
 import math
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from types import MappingProxyType
 
 from meshlure.stock import shelf
-from meshlure.stock.materials import Material
+from meshlure.stock.materials import Material, material
 from meshlure.units import INCH, MM
 
 _TABLE = "balls.toml"
@@ -51,12 +51,53 @@ class BallSpread:
 def sizes() -> tuple[BallSize, ...]:
     """Diameters that balls are sold in, metric and inch, smallest first."""
     table = shelf.read_table(_TABLE)
-    metric = [BallSize(f"{size:g} mm", size * MM) for size in table["metric"]]
-    inch = []
-    for name in table["inch"]:
+    return _sizes(table["metric"], table["inch"])
+
+
+def _sizes(metric: Sequence[float], inch: Sequence[str]) -> tuple[BallSize, ...]:
+    found = [BallSize(f"{size:g} mm", size * MM) for size in metric]
+    for name in inch:
         top, bottom = name.split("/")
-        inch.append(BallSize(f"{name} in", int(top) / int(bottom) * INCH))
-    return tuple(sorted(metric + inch, key=lambda size: size.diameter))
+        found.append(BallSize(f"{name} in", int(top) / int(bottom) * INCH))
+    return tuple(sorted(found, key=lambda size: size.diameter))
+
+
+@functools.cache
+def _sold() -> Mapping[str, tuple[BallSize, ...]]:
+    return MappingProxyType(
+        {
+            row: _sizes(group["metric"], group.get("inch", ()))
+            for group in shelf.read_table(_TABLE)["sold"]
+            for row in group["rows"]
+        }
+    )
+
+
+def ball_sizes(name: str, where: str = "material") -> tuple[BallSize, ...]:
+    """Diameters that balls of a material are sold in, smallest first; none where it is not sold as balls.
+
+    Parameters
+    ----------
+    name : str
+        Material or alias, as `meshlure.stock.materials.material` takes it.
+    where : str
+        The key or option that the name stands at, for the message.
+
+    Raises
+    ------
+    InputError
+        The stock does not know the material.
+
+    Notes
+    -----
+    What is met in shops: common practice, no source.
+    """
+    return _sold().get(material(name, where).name, ())
+
+
+def ball_diameters(name: str, where: str = "material") -> tuple[float, ...]:
+    """Diameters, m, ascending, that balls of a material are sold in; see `ball_sizes`."""
+    return tuple(size.diameter for size in ball_sizes(name, where))
 
 
 @functools.cache

@@ -5,7 +5,8 @@ from fractions import Fraction
 
 import pytest
 
-from meshlure.stock.balls import ball_mass, sizes, spread
+from meshlure.errors import InputError
+from meshlure.stock.balls import ball_diameters, ball_mass, ball_sizes, sizes, spread
 from meshlure.stock.materials import material
 
 
@@ -63,3 +64,26 @@ def test_without_a_figure_of_the_trade_the_range_of_the_density_is_taken() -> No
     assert found.share == pytest.approx(60.0 / 2500.0, rel=1e-12)
     assert glass.name in found.source
     assert found.assumed == glass.assumed
+
+
+# Nominal diameters of balls in mm, ISO 3290-1, from memory; those that fit a bait. Inch sizes to a micron.
+NOMINAL = {2, 2.381, 2.5, 2.778, 3, 3.175, 3.5, 3.969, 4, 4.5, 4.763, 5, 5.5, 5.556, 6, 6.35, 6.5, 7, 7.144, 7.5, 7.938}
+NOMINAL |= {8, 8.5, 8.731, 9, 9.525, 10, 11, 11.113, 12, 12.7}
+
+
+@pytest.mark.parametrize(
+    "name", ["bearing steel", "stainless 420", "tungsten heavy alloy 95% W", "brass", "lead", "glass"]
+)
+def test_balls_of_a_material_are_of_nominal_diameters(name: str) -> None:
+    diameters = ball_diameters(name)
+    assert list(diameters) == sorted(set(diameters))
+    assert {round(diameter * 1e3, 3) for diameter in diameters} <= NOMINAL
+    assert set(ball_sizes(name)) <= set(sizes())
+    # 4, 5 and 6 mm are in every shop: common practice, no source.
+    assert {4.0, 5.0, 6.0} <= {round(diameter * 1e3, 6) for diameter in diameters}
+
+
+def test_only_what_is_sold_as_balls_has_diameters() -> None:
+    assert ball_diameters("balsa") == ()
+    with pytest.raises(InputError, match=r"chamber\.balls\[1\]\.material"):
+        ball_diameters("unobtainium", "chamber.balls[1].material")

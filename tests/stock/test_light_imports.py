@@ -7,8 +7,8 @@ import sys
 def test_importing_the_stock_loads_nothing_heavy() -> None:
     program = (
         "import sys\n"
-        "from meshlure.stock import balls, cautions, hardware, materials, waters\n"
-        "materials.materials(); hardware.hardware(); balls.sizes(); cautions.all_cautions()\n"
+        "from meshlure.stock import balls, cautions, hardware, materials, rods, waters\n"
+        "materials.materials(); hardware.hardware(); balls.sizes(); rods.rod_diameters('lead'); cautions.all_cautions()\n"
         "heavy = {'gsw', 'fluids', 'pint', 'numpy', 'scipy', 'trimesh'} & set(sys.modules)\n"
         "assert not heavy, heavy\n"
     )
