@@ -67,8 +67,8 @@ def test_without_a_figure_of_the_trade_the_range_of_the_density_is_taken() -> No
 
 
 # Nominal diameters of balls in mm, ISO 3290-1, from memory; those that fit a bait. Inch sizes to a micron.
-NOMINAL = {2, 2.381, 2.5, 2.778, 3, 3.175, 3.5, 3.969, 4, 4.5, 4.763, 5, 5.5, 5.556, 6, 6.35, 6.5, 7, 7.144, 7.5, 7.938}
-NOMINAL |= {8, 8.5, 8.731, 9, 9.525, 10, 11, 11.113, 12, 12.7}
+NOMINAL = {2, 2.381, 2.5, 2.778, 3, 3.175, 3.5, 3.969, 4, 4.5, 4.762, 5, 5.5, 5.556, 6, 6.35, 6.5, 7, 7.144, 7.5, 7.938}
+NOMINAL |= {8, 8.5, 8.731, 9, 9.525, 10, 11, 11.112, 12, 12.7}
 
 
 @pytest.mark.parametrize(

@@ -8,7 +8,8 @@ def test_importing_the_stock_loads_nothing_heavy() -> None:
     program = (
         "import sys\n"
         "from meshlure.stock import balls, cautions, hardware, materials, rods, waters\n"
-        "materials.materials(); hardware.hardware(); balls.sizes(); rods.rod_diameters('lead'); cautions.all_cautions()\n"
+        "materials.materials(); hardware.hardware(); balls.sizes(); cautions.all_cautions()\n"
+        "rods.rod_diameters('lead'); balls.ball_diameters('lead')\n"
         "heavy = {'gsw', 'fluids', 'pint', 'numpy', 'scipy', 'trimesh'} & set(sys.modules)\n"
         "assert not heavy, heavy\n"
     )
