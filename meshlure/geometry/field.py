@@ -8,6 +8,7 @@ from typing import Final
 
 import numpy as np
 
+from meshlure.geometry.columns import crossings
 from meshlure.geometry.surface import Bools, Floats, Ints, Surface
 
 DIAGONAL: Final = float(np.sqrt(3.0))
@@ -136,63 +137,8 @@ def _inside(surfaces: Sequence[Surface], origin: Floats, pitch: float, shape: In
     turned = shape[list(order)]
     steps = np.zeros(int(np.prod(turned)), dtype=np.int32)
     for surface in surfaces:
-        row, column, height, sign = _crossings(surface, origin, pitch, order)
-        first = np.ceil(height).astype(np.intp)
-        np.add.at(steps, (row * turned[1] + column) * turned[2] + first, sign)
+        met = crossings(surface, origin, pitch, order)
+        first = np.ceil(met.height).astype(np.intp)
+        np.add.at(steps, (met.row * turned[1] + met.column) * turned[2] + first, met.sign)
     wound = np.cumsum(steps.reshape(turned), axis=2, dtype=np.int32)
     return np.ascontiguousarray((wound > 0).transpose(np.argsort(order)))
-
-
-def _crossings(
-    surface: Surface, origin: Floats, pitch: float, order: tuple[int, int, int]
-) -> tuple[Ints, Ints, Floats, Ints]:
-    """Where columns of voxels go through faces: row, column, height in pitches, and 1 on entering, -1 on leaving.
-
-    order : the axes of rows, columns and heights, so that columns, rows, heights are right-handed.
-
-    Notes
-    -----
-    A row of columns meets a face in the stretch between two of its edges, lower end included. Where a row crosses an
-    edge is worked out from the same end whichever face asks, so that the stretches of neighbours join without gap or
-    overlap, and a column through an edge or a corner is counted as if it passed beside it.
-    """
-    rows, columns, heights = (np.ascontiguousarray((surface.vertices[:, k] - origin[k]) / pitch) for k in order)
-    # An edge is crossed by the whole rows from its lower end, rounded up, to before its upper end, rounded up.
-    first_row, first_column = np.ceil(rows).astype(np.int32), np.ceil(columns).astype(np.int32)
-    a, b, c = surface.faces.T
-    lowest, highest = _range(first_row[a], first_row[b], first_row[c])
-    left, right = _range(first_column[a], first_column[b], first_column[c])
-    some = np.flatnonzero((lowest < highest) & (left < right))
-    face, row = _spread(lowest[some], highest[some])
-    corners = surface.faces[some[face]]
-    # Of three corners one lies alone on its side of the row.
-    above = first_row[corners] > row[:, None]
-    upward = above.sum(axis=1) == 1
-    alone = np.where(upward, above.argmax(axis=1), above.argmin(axis=1))
-    each = np.arange(len(face))
-    apex, after, before = (corners[each, (alone + turn) % 3] for turn in range(3))
-    ends = []
-    for other in (after, before):
-        low, high = np.where(upward, other, apex), np.where(upward, apex, other)
-        share = (row - rows[low]) / (rows[high] - rows[low])
-        ends.append([along[low] + share * (along[high] - along[low]) for along in (columns, heights)])
-    (one, one_height), (two, two_height) = ends
-    start, stop = np.ceil(np.minimum(one, two)).astype(np.int32), np.ceil(np.maximum(one, two)).astype(np.int32)
-    meets, column = _spread(start, stop)
-    share = (column - one[meets]) / (two[meets] - one[meets])
-    height = one_height[meets] + share * (two_height[meets] - one_height[meets])
-    # Seen from above, faces that look up go round against the clock: left of the row's stretch is what goes down.
-    looks_up = (one < two) == upward
-    return row[meets], column, height, np.where(looks_up[meets], -1, 1).astype(np.int32)
-
-
-def _range(a: Ints, b: Ints, c: Ints) -> tuple[Ints, Ints]:
-    return np.minimum(np.minimum(a, b), c), np.maximum(np.maximum(a, b), c)
-
-
-def _spread(start: Ints, stop: Ints) -> tuple[Ints, Ints]:
-    """Every whole number from starts to before stops: which range it is of, and the number."""
-    counts = (stop - start).astype(np.intp)
-    of = np.repeat(np.arange(len(counts)), counts)
-    begins = np.cumsum(counts) - counts
-    return of, np.arange(len(of)) - begins[of] + start[of]
