@@ -49,3 +49,21 @@ CHAMBER_END_WALL: Final = 2.0e-3
 
 CHAMBER_SLOPE: Final = math.radians(8.0)
 """rad by which a bore falls towards the nose, so that the balls come back by themselves: common practice, no source."""
+
+MOULD_WALL: Final = 10e-3
+"""m of rubber around the part: 8 to 12 mm for small baits, 12 to 20 mm for large ones. Common practice, no source."""
+
+MOULD_BOARD: Final = 6e-3
+"""m. A printed board that stays flat and leaves room for the keys' dimples: common practice, no source."""
+
+MOULD_KEYS: Final = 4
+"""Registration keys: one near each corner of the box. Common practice, no source."""
+
+SPRUE_DIAMETER: Final = 8e-3
+"""m. Sprues of 6 to 10 mm are poured into by hand: common practice, no source."""
+
+TAB_LENGTH: Final = 12e-3
+TAB_WIDTH: Final = 8e-3
+TAB_THICKNESS: Final = 3e-3
+TAB_HOLE: Final = 3e-3
+"""m. A tab that a finger and a wire hold: common practice, no source."""

@@ -284,6 +284,21 @@ class Keys:
         x, y, z = (number * metres for number in numbers)
         return x, y, z
 
+    def listed(self, key: str) -> bool:
+        """Tell whether a key stands there with a list; nothing is checked and the key is not made known."""
+        return isinstance(self._table.get(key), list)
+
+    def place(self, key: str, words: tuple[str, ...], metres: float) -> str | Point | None:
+        """Read one word out of several or a point in m, as `point`; None where it is not stated."""
+        return self._place(self._table[key], self.where(key), words, metres) if self.stated(key) else None
+
+    def places(self, key: str, words: tuple[str, ...], metres: float) -> tuple[str | Point, ...]:
+        """Read the places of a list, each as `place`; none where it is not stated."""
+        if not self.stated(key):
+            return ()
+        rows = self._rows(key, f"a list of places: ['{words[0]}', [31.0, 0.0, -9.5]]")
+        return tuple(self._place(row, where, words, metres) for where, row in rows)
+
     def direction(self, key: str) -> Point:
         """Read a unit vector, which must be stated."""
         if not self.stated(key):
@@ -356,6 +371,17 @@ class Keys:
             return x, y, z
         self._faults.append(Fault("three finite numbers were expected", where, repr(value)[:60], allowed, "correct it"))
         return (math.nan,) * 3
+
+    def _place(self, value: object, where: str, words: tuple[str, ...], metres: float) -> str | Point:
+        known = f"{', '.join(repr(word) for word in words)}, or a point in the mesh's coordinates: [31.0, 0.0, -9.5]"
+        if isinstance(value, str):
+            word = value.strip()
+            if word not in words:
+                step = did_you_mean(word, words, "name one of them")
+                self._faults.append(Fault("no such place", where, repr(value)[:60], known, step))
+            return word
+        x, y, z = (number * metres for number in self._three(value, where, known))
+        return x, y, z
 
     def _direction(self, value: object, where: str) -> Point:
         allowed = f"one of {', '.join(AXES)}, or three numbers such as [1, 0, 0.2]"
