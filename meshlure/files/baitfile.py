@@ -21,6 +21,7 @@ from meshlure.files.sections.inserts import InsertSection, read_insert
 from meshlure.files.sections.limits import LimitsSection, read_limits
 from meshlure.files.sections.line import LineSection, read_line
 from meshlure.files.sections.measured import MeasuredSection, read_measured
+from meshlure.files.sections.mould import MouldSection, read_mould
 from meshlure.files.sections.retrieve import RetrieveSection, read_retrieve
 from meshlure.files.sections.target import TargetSection, read_target
 from meshlure.files.sections.water import WaterSection, read_water
@@ -59,7 +60,7 @@ class BaitFile:
         The file; None where the bait was stated on the command line.
     bait, water, body : sections that every bait has
     inserts, balls, hardware : tuples of sections, in the file's order
-    coat, line, measured, limits, target, chamber : sections, None where they are not stated
+    coat, line, measured, limits, target, chamber, mould : sections, None where they are not stated
     areas, retrieve, cast, ballast : sections, at their defaults where they are not stated
 
     Notes
@@ -84,6 +85,7 @@ class BaitFile:
     target: TargetSection | None
     ballast: BallastSection
     chamber: ChamberSection | None
+    mould: MouldSection | None = None
 
     def meshes(self) -> tuple[MeshName, ...]:
         """Every mesh of the bait, the body first."""
@@ -165,6 +167,7 @@ def bait_of(table: Mapping[str, object], folder: Path, name: str, path: Path | N
         tables.read("target", read_target),
         read_ballast(tables.one("ballast") or tables.none("ballast")),
         tables.read("chamber", read_chamber),
+        tables.read("mould", lambda keys: read_mould(keys, bait.metres)),
     )
     tables.close()
     faults.extend(_same_names(result))
