@@ -26,6 +26,8 @@ class Posed:
     ----------
     ends : dict
         Where the balls lie in the posture that heads the page.
+    main : Repose or Dangle
+        That posture.
     trees : list of dict
         Postures, floating ones first, the lowest energy first.
     righting : list of dict
@@ -35,6 +37,7 @@ class Posed:
     """
 
     ends: Ends
+    main: Repose | Dangle
     trees: list[Tree]
     righting: list[Tree]
     balls: list[Tree]
@@ -81,19 +84,20 @@ def pose(vessel: Vessel, stated: float | None = None) -> Posed:
     if restless:
         findings.append(_restless())
     afloat = sorted(afloat, key=lambda r: r.rest.state.energy)
-    ends = _headline_ends(afloat, hanging)
+    main = _headline(afloat, hanging)
+    ends = main.ends
     trees = _afloat(vessel, afloat) if afloat else []
     if not afloat or _suspends(vessel, ends, stated):
         share = 1.0 / len(hanging)
         trees += [postures.dangling(d, vessel.frame, vessel.composition.mass(d.ends).amount, share) for d in hanging]
     findings += _dry(afloat, vessel)
-    return Posed(ends, trees, _righting(vessel, afloat), _balls(vessel, settings, ends), tuple(findings))
+    return Posed(ends, main, trees, _righting(vessel, afloat), _balls(vessel, settings, ends), tuple(findings))
 
 
-def _headline_ends(afloat: Sequence[Repose], hanging: Sequence[Dangle]) -> Ends:
+def _headline(afloat: Sequence[Repose], hanging: Sequence[Dangle]) -> Repose | Dangle:
     if not afloat:
-        return hanging[0].ends
-    return next((r for r in afloat if r.rest.upright), afloat[0]).ends
+        return hanging[0]
+    return next((r for r in afloat if r.rest.upright), afloat[0])
 
 
 def _suspends(vessel: Vessel, ends: Ends, stated: float | None) -> bool:

@@ -61,6 +61,8 @@ class Skin:
         Outer skin, with the walls of flooded hollows turned inward.
     thickness : (m,) array, m
         Of the coat on each face.
+    own : (m,) array of bool
+        Faces of the body's own skin, which takes the coat.
     outer : Surface
         Outer skin alone, every closed-off space filled.
     outer_pairs : EdgePairs
@@ -75,6 +77,7 @@ class Skin:
 
     surface: Surface
     thickness: Floats
+    own: Bools
     outer: Surface
     outer_pairs: EdgePairs
     bare: Surface
@@ -256,7 +259,7 @@ def _crossed(body: MeshPiece, pieces: tuple[MeshPiece, ...], filling: Filling) -
 def _skin(bait: Bait, outer: _Outer, filling: Filling) -> Skin:
     coat = 0.0 if bait.coat is None else bait.coat.thickness
     thickness = np.where(outer.own, coat, 0.0)
-    surface = outer.surface
+    surface, own = outer.surface, outer.own
     wet = filling.flooded()
     if wet is not None:
         if outer.solid is not None:
@@ -264,14 +267,16 @@ def _skin(bait: Bait, outer: _Outer, filling: Filling) -> Skin:
         walls = wet.surface().turned()
         surface = _together(surface, walls)
         thickness = np.concatenate([thickness, np.zeros(len(walls.faces))])
+        own = np.concatenate([own, np.zeros(len(walls.faces), dtype=np.bool_)])
     area = np.linalg.norm(outer.surface.double_areas, axis=1) / 2
     painted = float(area[outer.own].sum())
-    return Skin(surface, thickness, outer.surface, outer.pairs, outer.bare, outer.lips, painted)
+    return Skin(surface, thickness, own, outer.surface, outer.pairs, outer.bare, outer.lips, painted)
 
 
 def _plain_skin(body: MeshPiece) -> Skin:
     surface = body.surface
-    return Skin(surface, np.zeros(len(surface.faces)), surface, body.pairs, surface, {}, surface.area)
+    every = np.ones(len(surface.faces), dtype=np.bool_)
+    return Skin(surface, np.zeros(len(surface.faces)), every, surface, body.pairs, surface, {}, surface.area)
 
 
 def _together(first: Surface, second: Surface) -> Surface:

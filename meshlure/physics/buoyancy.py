@@ -3,13 +3,22 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from enum import StrEnum
 from math import hypot
 
 from meshlure import tolerances
 from meshlure.bait.composition import Part
 from meshlure.bait.pieces import Coat, Hardware, Role
+
+
+class Cause(StrEnum):
+    """What of a bait a doubt is about."""
+
+    DENSITY = "density"
+    FACETS = "facets"
+    MASS = "mass"
+    COAT = "coat"
 
 
 class Behaviour(StrEnum):
@@ -33,11 +42,16 @@ class Doubt:
     what : str
     low, high : float, kg
         How far the reserve may lie below and above; both positive.
+    cause : Cause or None
+    pieces : tuple of str
+        Names of the pieces that it is about, all of which err together.
     """
 
     what: str
     low: float
     high: float
+    cause: Cause | None = None
+    pieces: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True)
@@ -137,19 +151,21 @@ def doubts(
     """
     found = list(_densities(parts))
     if facets:
-        found.append(Doubt("facets", abs(facets), abs(facets)))
+        found.append(Doubt("facets", abs(facets), abs(facets), Cause.FACETS))
     packets: dict[str, Doubt] = {}
     for item in hardware:
         key = item.item or item.name
-        old = packets.get(key, Doubt(f"mass of {key}", 0.0, 0.0))
+        old = packets.get(key, Doubt(f"mass of {key}", 0.0, 0.0, Cause.MASS))
         # A heavier hook of a known material displaces more too.
         wet = 1.0 if item.substance is None else 1 - water / item.substance.density
-        packets[key] = Doubt(old.what, old.low + (item.high - item.mass) * wet, old.high + (item.mass - item.low) * wet)
+        low, high = old.low + (item.high - item.mass) * wet, old.high + (item.mass - item.low) * wet
+        packets[key] = replace(old, low=low, high=high, pieces=(*old.pieces, item.name))
     found += packets.values()
     if coat is not None:
         lift = painted * (water - coat.substance.density)
         thicker, thinner = lift * COAT_SPREAD, -lift * min(COAT_SPREAD, coat.thickness)
-        found.append(Doubt("thickness of the coat", -min(thicker, thinner), max(thicker, thinner)))
+        low, high = -min(thicker, thinner), max(thicker, thinner)
+        found.append(Doubt("thickness of the coat", low, high, Cause.COAT))
     return tuple(found)
 
 
@@ -161,7 +177,8 @@ def _densities(parts: Sequence[Part]) -> Iterator[Doubt]:
         if substance is None or part.role is Role.HARDWARE or part.volume <= 0:
             continue
         key = f"density of {substance.name or part.name}"
-        old = batches.get(key, Doubt(key, 0.0, 0.0))
+        old = batches.get(key, Doubt(key, 0.0, 0.0, Cause.DENSITY))
         low = old.low + part.volume * (substance.high - substance.density)
-        batches[key] = Doubt(key, low, old.high + part.volume * (substance.density - substance.low))
+        high = old.high + part.volume * (substance.density - substance.low)
+        batches[key] = replace(old, low=low, high=high, pieces=(*old.pieces, part.name))
     yield from batches.values()
