@@ -92,16 +92,31 @@ def outline(surface: Surface, pairs: EdgePairs, axis: Floats, up: Floats | None 
     """
     n = np.asarray(axis, dtype=np.float64)
     right, upright = drawing_axes(n, up)
-    front = surface.double_areas @ n > 0
+    frame = np.column_stack([right, upright])
+    loops = [surface.vertices[ring] @ frame for ring in rims(surface, pairs, n)]
+    heights = surface.vertices @ n
+    return Outline(n, right, upright, filled(loops), float(heights.min() + heights.max()) / 2)
+
+
+def rims(surface: Surface, pairs: EdgePairs, axis: Floats) -> list[Ints]:
+    """Return the closed rings of vertices between faces turned to the eye and all others.
+
+    Parameters
+    ----------
+    surface : Surface
+        Closed and consistently wound.
+    pairs : EdgePairs
+        Its edges.
+    axis : (3,) array
+        Vector towards the eye; a face seen edge-on is not turned to it.
+    """
+    front = surface.double_areas @ axis > 0
     ahead, behind = front.take(pairs.forward_face), front.take(pairs.backward_face)
     rim = np.flatnonzero(ahead != behind)
     forward = ahead[rim]
     start = np.where(forward, pairs.start[rim], pairs.end[rim]).astype(np.intp)
     end = np.where(forward, pairs.end[rim], pairs.start[rim]).astype(np.intp)
-    frame = np.column_stack([right, upright])
-    loops = [surface.vertices[ring] @ frame for ring in _rings(start, end)]
-    heights = surface.vertices @ n
-    return Outline(n, right, upright, filled(loops), float(heights.min() + heights.max()) / 2)
+    return _rings(start, end)
 
 
 def _rings(start: Ints, end: Ints) -> list[Ints]:

@@ -113,6 +113,28 @@ class Solid:
         # A solid lying loose in a closed-off space is swallowed by the union.
         return outer[0].joined(*outer[1:])
 
+    def split(self, normal: Floats, height: float) -> tuple[Solid, Solid]:
+        """Return what lies above the plane ``normal . x = height`` (m, a unit normal) and what lies below it."""
+        above, below = self.kernel.split_by_plane(tuple(normal), height)
+        return Solid(above), Solid(below)
+
+    def level(self, height: float) -> Filled:
+        """Return the section with the plane z = ``height``, m, seen from above."""
+        # The library cuts what is a hair under the height, and keeps polygons to fewer digits than solids.
+        scale = _OUTLINE_SPAN / max(float(np.ptp(self.bounds, axis=0).max()), np.finfo(np.float64).tiny)
+        rings = self.kernel.scale((scale, scale, scale)).slice(height * scale).to_polygons()
+        return Filled(tuple(np.asarray(ring) / scale for ring in rings))
+
+    @property
+    def bounds(self) -> Floats:
+        """Least and greatest corner, (2, 3) array, m."""
+        return np.reshape(np.asarray(self.kernel.bounding_box(), dtype=np.float64), (2, 3))
+
+    @property
+    def genus(self) -> int:
+        """Handles of the skin, one for every way that a loop can be led through a solid in one piece."""
+        return int(self.kernel.genus())
+
     def gap(self, other: Solid, search: float) -> float:
         """Return the least distance to another solid, m, at most ``search``."""
         return float(self.kernel.min_gap(other.kernel, search))
