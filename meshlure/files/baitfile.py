@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
 from pathlib import Path
 from typing import Final
 
@@ -26,7 +26,7 @@ from meshlure.files.sections.retrieve import RetrieveSection, read_retrieve
 from meshlure.files.sections.target import TargetSection, read_target
 from meshlure.files.sections.water import WaterSection, read_water
 from meshlure.files.tables import Tables, entry_path
-from meshlure.files.toml import read_toml
+from meshlure.files.toml import toml_table, toml_text
 
 FORMAT: Final = 1
 _BODY: Final = "body"
@@ -63,6 +63,11 @@ class BaitFile:
     coat, line, measured, limits, target, chamber, mould : sections, None where they are not stated
     areas, retrieve, cast, ballast : sections, at their defaults where they are not stated
 
+    table : mapping
+        The sections as they were stated, units and all.
+    text : str
+        Of the file; empty where there is none.
+
     Notes
     -----
     Names of materials and of hardware are text here: whether the stock knows them is asked by who looks them up.
@@ -86,6 +91,8 @@ class BaitFile:
     ballast: BallastSection
     chamber: ChamberSection | None
     mould: MouldSection | None = None
+    table: Mapping[str, object] = field(default_factory=dict, compare=False, repr=False)
+    text: str = field(default="", compare=False, repr=False)
 
     def meshes(self) -> tuple[MeshName, ...]:
         """Every mesh of the bait, the body first."""
@@ -114,9 +121,10 @@ def read_baitfile(path: Path) -> BaitFile:
     -----
     Whether the meshes are there is found out when they are read.
     """
-    table = read_toml(path)
+    text = toml_text(path)
+    table = toml_table(text, path)
     try:
-        return bait_of(table, path.parent, path.stem, path)
+        return replace(bait_of(table, path.parent, path.stem, path), text=text)
     except InputError as error:
         told = [replace(fault, where=f"{path.name}: {fault.where}") for fault in error.faults]
         raise InputError(told) from None
@@ -168,6 +176,7 @@ def bait_of(table: Mapping[str, object], folder: Path, name: str, path: Path | N
         read_ballast(tables.one("ballast") or tables.none("ballast")),
         tables.read("chamber", read_chamber),
         tables.read("mould", lambda keys: read_mould(keys, bait.metres)),
+        table=table,
     )
     tables.close()
     faults.extend(_same_names(result))

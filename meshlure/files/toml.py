@@ -22,7 +22,18 @@ def read_toml(path: Path) -> dict[str, Any]:
     Raises
     ------
     InputError
-        The file cannot be read, is larger than a bait file can be, no text, or no TOML (with the line).
+        As `toml_text` and `toml_table`.
+    """
+    return toml_table(toml_text(path), path)
+
+
+def toml_text(path: Path) -> str:
+    """Text of a TOML file.
+
+    Raises
+    ------
+    InputError
+        The file cannot be read, is larger than a bait file can be, or no text (with the line).
     """
     data = read_source(path, "bait file")
     if len(data) > _LARGEST:
@@ -31,7 +42,7 @@ def read_toml(path: Path) -> dict[str, Any]:
             Fault("the file is too large for a bait file", str(path), found, allowed, "name the bait file")
         )
     try:
-        text = data.decode("utf-8-sig")
+        return data.decode("utf-8-sig")
     except UnicodeDecodeError as error:
         line = data.count(b"\n", 0, error.start) + 1
         step = "save it as UTF-8 text; if it is a mesh, name the bait file in its place"
@@ -44,6 +55,16 @@ def read_toml(path: Path) -> dict[str, Any]:
                 step,
             )
         ) from None
+
+
+def toml_table(text: str, path: Path) -> dict[str, Any]:
+    """Table of TOML text that was read from ``path``.
+
+    Raises
+    ------
+    InputError
+        It is no TOML (with the line).
+    """
     try:
         return tomllib.loads(text)
     except tomllib.TOMLDecodeError as error:

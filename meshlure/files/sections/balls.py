@@ -34,7 +34,7 @@ class BallsSection:
     diameter: float
     count: int
     substance: Substance
-    at: str | None
+    at: str | None = None
 
 
 def read_balls(keys: Keys, inserts: Sequence[InsertSection], filled: Sequence[str]) -> BallsSection:

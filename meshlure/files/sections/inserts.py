@@ -45,15 +45,15 @@ class InsertSection:
 
     name: str
     mesh: Path
-    substance: Substance | None
-    void: str | None
-    cavities: str
-    replaces: tuple[str, ...]
-    lip: bool
-    free: bool
-    pinned: bool
-    fit: float
-    glue: str | None
+    substance: Substance | None = None
+    void: str | None = None
+    cavities: str = "sealed"
+    replaces: tuple[str, ...] = ()
+    lip: bool = False
+    free: bool = False
+    pinned: bool = False
+    fit: float = 0.0
+    glue: str | None = None
 
 
 def read_insert(keys: Keys, folder: Path, earlier: Sequence[str], later: Sequence[str]) -> InsertSection:
