@@ -4,27 +4,30 @@ from __future__ import annotations
 
 import time
 import uuid
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 from contextlib import contextmanager
 from typing import Any
 
 from meshlure import flying
-from meshlure.bait.composition import Composition, Part, compose
-from meshlure.bait.pieces import Bait, Role
+from meshlure.bait.composition import Composition, Part, compose, weighed
+from meshlure.bait.pieces import Bait
 from meshlure.bait.refusals import refuse
 from meshlure.errors import Fault, InputError
 from meshlure.geometry.blocks import BlockIndex
 from meshlure.geometry.moments import Moments, solid_moments
 from meshlure.geometry.stations import stations
 from meshlure.physics.areas import rose, silhouettes
+from meshlure.physics.budget import budget
 from meshlure.physics.buoyancy import Reserve, doubts, reserve
 from meshlure.physics.drag import Drag
 from meshlure.physics.passage import LAYERS, LEADS, Passage, passage
-from meshlure.physics.repose import Ends, Vessel
+from meshlure.physics.repose import Repose, Vessel
 from meshlure.physics.sinking import sinking, submerged
+from meshlure.physics.stance import Stance
 from meshlure.physics.tow import tow
 from meshlure.posing import pose
 from meshlure.results import account, pieces, shape, water
+from meshlure.results import budget as budget_tree
 from meshlure.results import passage as passage_tree
 from meshlure.results import sinking as sinking_tree
 from meshlure.results.study import Study
@@ -33,7 +36,7 @@ from meshlure.version import VERSION
 
 Tree = dict[str, Any]
 
-PHASES = ("reading", "soundness", "weight", "posture", "areas", "drag", "flight", "sinking", "page")
+PHASES = ("reading", "soundness", "weight", "posture", "budget", "areas", "drag", "flight", "sinking", "page")
 
 
 class Clock:
@@ -87,7 +90,11 @@ def study(bait: Bait, against: Bait | None = None) -> Study:
     with clock.phase("weight"):
         mass = composition.mass(posed.ends)
         hull = vessel.hull(posed.ends)
-        held = _reserve(bait, composition, mass, hull.volume, posed.ends)
+        parts = weighed(composition, posed.ends)
+        held = _reserve(bait, composition, parts, mass, hull.volume)
+    with clock.phase("budget"):
+        dry = posed.main.dry if isinstance(posed.main, Repose) else ()
+        spent = budget(bait, parts, skin, held, Stance.of(vessel, posed.main), dry)
     with clock.phase("areas"):
         outer = index if skin.outer is skin.surface else BlockIndex.build(skin.outer)
         seen = silhouettes(skin.outer, skin.outer_pairs, frame, bait.axes)
@@ -126,6 +133,7 @@ def study(bait: Bait, against: Bait | None = None) -> Study:
         "weight": pieces.weight(mass, frame, tip),
         "hardware": pieces.hardware(bait),
         "buoyancy": water.buoyancy(held, bait.water, hull.volume, hull.centre, mass.amount),
+        "budget": budget_tree.budget(spent, held, bait.plan.limits, account.headline(posed.trees)["free"]),
         "smooth": water.smooth(composition.deficit, mass.amount, hull.volume, bait.water),
         "waters": water.waters(mass.amount, hull.volume, bait.plan.bait.suspends_within),
         "postures": posed.trees,
@@ -165,12 +173,7 @@ def _lips(bait: Bait, composition: Composition) -> None:
         )
 
 
-def _reserve(bait: Bait, composition: Composition, mass: Moments, displaced: float, ends: Ends) -> Reserve:
-    parts = list(composition.parts)
-    for row in composition.rows:
-        balls = row.mass(ends[row.balls.chamber])
-        volume = row.volume(ends[row.balls.chamber]).amount
-        parts.append(Part(f"balls in {row.balls.chamber}", Role.BALL, row.balls.substance, volume, balls, balls.centre))
+def _reserve(bait: Bait, composition: Composition, parts: Sequence[Part], mass: Moments, displaced: float) -> Reserve:
     density = bait.water.density
     facets = composition.deficit.reserve(density)
     doubted = doubts(parts, facets, bait.hardware, bait.coat, composition.skin.painted, density)

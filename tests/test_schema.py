@@ -140,6 +140,8 @@ NULLS = {
     "$.flight.balls", "$.flight.better", "$.flight.better.added_g",
     "$.sinking.seconds_to_1m", "$.sinking.seconds_to_3m",
     "$.sinking.starts[].seconds_to_1m", "$.sinking.starts[].seconds_to_3m",
+    "$.budget.rows[].nose_up_deg", "$.budget.rows[].lean_deg", "$.budget.monte_carlo.nose_up_deg",
+    "$.budget.monte_carlo.lean_deg", "$.budget.monte_carlo.limits[].share", "$.budget.monte_carlo.pass_share",
     "$.line", "$.limits[].value", "$.limits[].met", "$.measured", "$.measured.water_c",
 }  # fmt: skip
 

@@ -169,6 +169,16 @@ def compose(bait: Bait) -> Composition:
     return Composition(tuple(parts), rows, skin, short, tuple(findings + tight))
 
 
+def weighed(composition: Composition, ends: Mapping[str, str]) -> tuple[Part, ...]:
+    """Return everything that weighs, the balls of each chamber at the given end as parts of their own."""
+    parts = list(composition.parts)
+    for row in composition.rows:
+        end, made_of = ends[row.balls.chamber], row.balls.substance
+        volume, mass = row.volume(end), row.mass(end)
+        parts.append(Part(f"balls in {row.balls.chamber}", Role.BALL, made_of, volume.amount, mass, mass.centre))
+    return tuple(parts)
+
+
 def inserts_left(bait: Bait) -> dict[str, Solid]:
     """Return by insert name the solid that is left to it once later pieces have taken their space."""
     return fill(bait.body, bait.pieces).solids

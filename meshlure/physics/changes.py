@@ -7,7 +7,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from meshlure.geometry.surface import Floats
+from meshlure.geometry.surface import Bools, Floats, Ints
 
 NOTHING = np.zeros(4)
 
@@ -48,9 +48,9 @@ class Changes:
     def __len__(self) -> int:
         return len(self.scale)
 
-    def __getitem__(self, rows: object) -> Changes:
-        kept = np.atleast_1d(np.arange(len(self))[rows])  # type: ignore[index]
-        return Changes(self.mass[kept], self.volume[kept], self.wet[kept], self.scale[kept], self.water[kept])
+    def taken(self, rows: Bools | Ints | slice) -> Changes:
+        """Return some of the rows."""
+        return Changes(self.mass[rows], self.volume[rows], self.wet[rows], self.scale[rows], self.water[rows])
 
     @classmethod
     def joined(cls, parts: Sequence[Changes]) -> Changes:

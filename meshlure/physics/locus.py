@@ -8,7 +8,7 @@ import numpy as np
 
 from meshlure.geometry.surface import Bools, Floats
 from meshlure.physics.immersion import Hull
-from meshlure.physics.potential import tangents
+from meshlure.physics.potential import Potential, tangents
 
 _STEPS = 40
 
@@ -150,6 +150,11 @@ class Locus:
         """Return the up-directions at (n, 3) places, (n, 3) array."""
         return turned(self.up, places[:, :2])[0]
 
+    def descended(self, gravity: Floats, volume: float) -> Floats:
+        """Return the place of rest, (3,) array, that a descent on the full mesh reaches from the middle."""
+        state = Potential(self.hull, gravity, volume, _STILL).descended(self.up, 0.2)
+        return np.append(turns_to(self.up, state.up), volume / self.volume - 1)
+
     def looked(self, places: Floats, gravity: Floats, scale: Floats) -> tuple[Locus, float]:
         """Return the locus with more looks, and the farthest that the places of rest were off before, rad.
 
@@ -176,6 +181,14 @@ class Locus:
             worst = max(worst, float(np.linalg.norm(ways.T @ slope[0] / np.maximum(np.abs(heights), 1e-9))))
             more.append(look)
         return Locus(self.hull, self.up, self.volume, (*self.looks, *more), scale), worst
+
+
+def turns_to(up: Floats, direction: Floats) -> Floats:
+    """Return the turns, (2,) array, rad, that lead from ``up`` to a direction."""
+    flat = tangents(up).T @ direction
+    length = float(np.linalg.norm(flat))
+    angle = float(np.arctan2(length, up @ direction))
+    return np.asarray(flat * (angle / length)) if length > 0 else np.zeros(2)
 
 
 def _look(hull: Hull, up: Floats, volume: float, place: Floats, near: Look | None) -> Look:

@@ -8,7 +8,7 @@ import numpy as np
 
 from meshlure import tolerances
 from meshlure.bait.pieces import Frame
-from meshlure.geometry.surface import Floats
+from meshlure.geometry.surface import Bools, Floats
 from meshlure.physics.changes import Changes
 from meshlure.physics.immersion import Hull
 from meshlure.physics.locus import Locus
@@ -21,6 +21,9 @@ ROUNDS = 3
 
 ENOUGH = float(np.radians(0.1))
 """rad. Places of rest that were off by less than this need no further look."""
+
+_DESCENTS = 2
+"""Changes whose place of rest the locus does not find and that are put to rest on the full mesh, a round."""
 
 _CANDIDATES = 400
 """Draws among which the places to look at are chosen."""
@@ -104,7 +107,7 @@ class Stance:
         found = self._hanging(changes)
         if self.locus is not None:
             afloat = np.flatnonzero(self.reserve(changes) > 0)
-            places, held = self._settled(changes[afloat])
+            places, held = self._settled(changes.taken(afloat))
             found[afloat] = np.where(held[:, None], self.locus.ups(places), np.nan)
         return found
 
@@ -120,23 +123,22 @@ class Stance:
         """
         if self.locus is None:
             return self
-        asked = Changes.joined([changes, draws[slice(0, _CANDIDATES)]])
-        asked = asked[self.reserve(asked) > 0]
-        known = self
-        for _ in range(ROUNDS):
-            assert known.locus is not None
-            places, held = known._settled(asked)
-            where = places[held]
-            if not len(where):
-                break
+        asked = Changes.joined([changes, draws.taken(slice(0, _CANDIDATES))])
+        gravity, volume = self._sought(asked)
+        fits = (self.reserve(asked) > 0) & self._fits(volume)
+        gravity, volume = gravity[fits], volume[fits]
+        locus, miss = self.locus, self.miss
+        for _ in range(ROUNDS if len(volume) else 0):
+            places, held = locus.rests(gravity, volume)
+            for lost in np.flatnonzero(~held)[:_DESCENTS]:
+                places[lost], held[lost] = locus.descended(gravity[lost], float(volume[lost])), True
+            where, pull = places[held], gravity[held]
             scale = np.maximum(where.std(axis=0), 1e-6)
-            chosen = _farthest(where / scale, np.array([look.place for look in known.locus.looks]) / scale)
-            gravity, _ = known._sought(asked)
-            locus, miss = known.locus.looked(where[chosen], gravity[held][chosen], scale)
-            known = replace(known, locus=locus, miss=miss)
+            chosen = _farthest(where / scale, np.array([look.place for look in locus.looks]) / scale)
+            locus, miss = locus.looked(where[chosen], pull[chosen], scale)
             if miss < ENOUGH:
                 break
-        return known
+        return replace(self, locus=locus, miss=miss)
 
     def angles(self, ups: Floats) -> tuple[Floats, Floats]:
         """Return nose_up and lean of up-directions, two (n,) arrays, rad; nan where they have no meaning."""
@@ -165,12 +167,24 @@ class Stance:
         lifted = weight / changes.water[:, None] * shrunk - (self.wet_points + changes.wet) * shrunk
         return lifted[:, 1:] / lifted[:, :1], lifted[:, 0]
 
-    def _settled(self, changes: Changes) -> tuple[Floats, Floats]:
+    def _fits(self, volume: Floats) -> Bools:
+        """Whether the skin can displace what is asked of it; with a hook above the water not all that floats does."""
+        assert self.locus is not None
+        return np.asarray((volume > 0) & (volume < self.locus.capacity))
+
+    def descended(self, change: Changes) -> Floats:
+        """Return the up-direction after one change by a descent on the full mesh, (3,) array; nan where it cannot."""
+        gravity, volume = self._sought(change)
+        if self.locus is None or not self._fits(volume)[0]:
+            return np.full(3, np.nan)
+        place = self.locus.descended(gravity[0], float(volume[0]))
+        return np.asarray(self.locus.ups(place[None])[0])
+
+    def _settled(self, changes: Changes) -> tuple[Floats, Bools]:
         assert self.locus is not None
         gravity, volume = self._sought(changes)
         places, held = np.zeros((len(changes), 3)), np.zeros(len(changes), dtype=np.bool_)
-        # With a hook above the water the skin may have to displace more than it has, though the whole bait floats.
-        fits = np.flatnonzero((volume > 0) & (volume < self.locus.capacity))
+        fits = np.flatnonzero(self._fits(volume))
         places[fits], held[fits] = self.locus.rests(gravity[fits], volume[fits])
         return places, held
 
@@ -183,5 +197,3 @@ def _farthest(points: Floats, known: Floats) -> list[int]:
         chosen.append(int(apart.argmax()))
         apart = np.minimum(apart, np.linalg.norm(points - points[chosen[-1]], axis=1))
     return chosen
-
-
