@@ -6,6 +6,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from meshlure.geometry.stretches import stretches
 from meshlure.geometry.surface import Floats, Ints, Surface
 
 
@@ -47,39 +48,21 @@ def crossings(surface: Surface, origin: Floats, pitch: float, order: tuple[int, 
 
     Notes
     -----
-    A row of columns meets a face in the stretch between two of its edges, lower end included. Where a row crosses an
-    edge is worked out from the same end whichever face asks, so that the stretches of neighbours join without gap or
-    overlap, and a column through an edge or a corner is counted as if it passed beside it.
+    A row of columns meets a face in the stretch between two of its edges, lower end included; see `stretches`.
     """
-    rows, columns, heights = (np.ascontiguousarray((surface.vertices[:, k] - origin[k]) / pitch) for k in order)
+    scaled = np.column_stack([(surface.vertices[:, axis] - origin[axis]) / pitch for axis in order])
     # An edge is crossed by the whole rows from its lower end, rounded up, to before its upper end, rounded up.
-    first_row, first_column = np.ceil(rows).astype(np.int32), np.ceil(columns).astype(np.int32)
+    first_row, first_column = (np.ceil(scaled[:, k]).astype(np.intp) for k in range(2))
     a, b, c = surface.faces.T
     lowest, highest = _range(first_row[a], first_row[b], first_row[c])
     left, right = _range(first_column[a], first_column[b], first_column[c])
     some = np.flatnonzero((lowest < highest) & (left < right))
     face, row = _spread(lowest[some], highest[some])
-    corners = surface.faces[some[face]]
-    # Of three corners one lies alone on its side of the row.
-    above = first_row[corners] > row[:, None]
-    upward = above.sum(axis=1) == 1
-    alone = np.where(upward, above.argmax(axis=1), above.argmin(axis=1))
-    each = np.arange(len(face))
-    apex, after, before = (corners[each, (alone + turn) % 3] for turn in range(3))
-    ends = []
-    for other in (after, before):
-        low, high = np.where(upward, other, apex), np.where(upward, apex, other)
-        share = (row - rows[low]) / (rows[high] - rows[low])
-        ends.append([along[low] + share * (along[high] - along[low]) for along in (columns, heights)])
-    (one, one_height), (two, two_height) = ends
-    start, stop = np.ceil(np.minimum(one, two)).astype(np.int32), np.ceil(np.maximum(one, two)).astype(np.int32)
-    meets, column = _spread(start, stop)
-    share = (column - one[meets]) / (two[meets] - one[meets])
-    height = one_height[meets] + share * (two_height[meets] - one_height[meets])
-    # Seen from above, faces that look up go round against the clock: left of the row's stretch is what goes down.
-    looks_up = (one < two) == upward
-    sign = np.where(looks_up[meets], -1, 1).astype(np.int32)
-    return Crossings(row[meets], column, height, sign, some[face[meets]])
+    met = stretches(scaled[surface.faces[some[face]]], row.astype(np.float64))
+    start, stop = (np.ceil(end).astype(np.intp) for end in (met.start, met.stop))
+    which, column = _spread(start, stop)
+    sign = np.where(met.up[which], -1, 1)
+    return Crossings(row[which], column, met.heights(which, column), sign, some[face[which]])
 
 
 def _range(a: Ints, b: Ints, c: Ints) -> tuple[Ints, Ints]:
