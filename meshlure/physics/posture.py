@@ -106,7 +106,7 @@ def resting(hull: Hull, surface: Surface, centre: Floats, volume: float, back: F
             shares.append(hit / STARTS)
         else:
             shares[known] += hit / STARTS
-    first = full.descended(rough.descended(back, 0.2).up, 0.1)
+    first = _landed(full, rough, back)
     upright = among(full, first, settled, _SAME)
     if upright is None:
         settled.append(first)
@@ -114,6 +114,18 @@ def resting(hull: Hull, surface: Surface, centre: Floats, volume: float, back: F
         upright = len(settled) - 1
     rests = [Rest(s, share, k == upright) for k, (s, share) in enumerate(zip(settled, shares, strict=True))]
     return tuple(sorted(rests, key=lambda rest: rest.state.energy))
+
+
+def landed(hull: Hull, surface: Surface, centre: Floats, volume: float, back: Floats) -> State:
+    """Return the posture that a floating bait comes to rest in from back up, as after a good landing.
+
+    Takes what `resting` takes.
+    """
+    return _landed(Potential(hull, centre, volume), coarse_potential(hull, surface, centre, volume), back)
+
+
+def _landed(full: Potential, rough: Potential, back: Floats) -> State:
+    return full.descended(rough.descended(back, 0.2).up, 0.1)
 
 
 def coarse_potential(hull: Hull, surface: Surface, centre: Floats, volume: float) -> Potential:

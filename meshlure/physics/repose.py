@@ -14,7 +14,7 @@ from meshlure.bait.pieces import Frame, Hardware
 from meshlure.geometry.blocks import BlockIndex
 from meshlure.geometry.surface import Floats
 from meshlure.physics.immersion import Hull
-from meshlure.physics.posture import Hanging, Rest, hanging, resting
+from meshlure.physics.posture import Hanging, Rest, hanging, landed, resting
 from meshlure.physics.potential import Potential
 
 Ends = dict[str, str]
@@ -119,7 +119,7 @@ class Vessel:
     def reposes(self, ends: Ends) -> tuple[Repose, ...]:
         """Return every resting posture with the balls at given ends, the lowest energy first; none where it sinks."""
         potential = self.potential(ends)
-        if potential.volume >= potential.hull.volume or potential.volume <= potential.hull.point_volume:
+        if not self._floats(potential):
             return ()
         rests = resting(
             potential.hull, self.composition.skin.surface, potential.centre, potential.volume, self.frame.back
@@ -133,6 +133,26 @@ class Vessel:
             else:
                 found[twin] = _both(found[twin], dried)
         return tuple(sorted(found, key=lambda repose: repose.rest.state.energy))
+
+    def reposed(self, ends: Ends, up: Floats) -> Repose | None:
+        """Return the one resting posture that a descent from an up-direction reaches; None where it does not float."""
+        potential = self.potential(ends)
+        if not self._floats(potential):
+            return None
+        return self._dried(ends, potential, Rest(potential.descended(up, 0.1), 1.0, upright=False))
+
+    def landed(self, ends: Ends) -> Repose | None:
+        """Return the posture that it comes to rest in from back up; None where it does not float."""
+        potential = self.potential(ends)
+        if not self._floats(potential):
+            return None
+        skin = self.composition.skin.surface
+        state = landed(potential.hull, skin, potential.centre, potential.volume, self.frame.back)
+        return self._dried(ends, potential, Rest(state, 1.0, upright=True))
+
+    @staticmethod
+    def _floats(potential: Potential) -> bool:
+        return potential.hull.point_volume < potential.volume < potential.hull.volume
 
     def dangle(self, ends: Ends) -> Dangle:
         """Return how the bait hangs under water with the balls at given ends."""
