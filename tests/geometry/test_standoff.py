@@ -109,9 +109,9 @@ def test_a_mesh_within_the_round_skin() -> None:
 
 
 def test_a_triangle_whose_corner_is_nearest_to_the_skin_round_it() -> None:
-    # From over its middle the distance seems the same all over; it falls to R - hypot(0.2, 0.5) at the last corner.
-    plate = Boxes.of(Surface(np.array([[0.2, -0.25, -0.3], [0.2, -0.25, 0.3], [0.2, 0.5, 0]]), np.array([[0, 1, 2]])))
-    exact = 1 - np.hypot(0.2, 0.5)
+    # From over its middle the distance seems the same all over; it falls to R - hypot(0.7, 0.5) at the last corner.
+    plate = Boxes.of(Surface(np.array([[0.7, -0.25, -0.3], [0.7, -0.25, 0.3], [0.7, 0.5, 0]]), np.array([[0, 1, 2]])))
+    exact = 1 - np.hypot(0.7, 0.5)
     assert within(ball_standoff(plate, np.zeros(3), 1.0), exact)
     assert within(cylinder_standoff(plate, Cylinder(np.zeros(3), Z, 4.0, 1.0)), exact)
 
