@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import copy
 import re
-import tomllib
 from collections.abc import Mapping, MutableMapping
 from dataclasses import dataclass
 from typing import Any, Final, Protocol
@@ -88,11 +87,11 @@ class Blocks:
     Raises
     ------
     ValueError
-        A section stands in no block of its own: it is written as a key, a part of it stands apart, or a line of a text
-        of several lines reads like a header.
+        A part of a section stands apart from it, or a line of a text of several lines reads like a header.
 
     Notes
     -----
+    What stands above the first header is kept as it is: sections that are written there, as keys, are not found.
     Comments right above a header go with its section; those that a blank line parts from it stay. Comments beside a
     value stay when the value is set.
     """
@@ -159,9 +158,6 @@ def _split(text: str) -> tuple[str, list[_Block], str]:
         if line is not None and header is not None:
             name, lines = header["name"], [line]
         lead = after
-    as_keys = [key for key, value in tomllib.loads(top).items() if isinstance(value, dict | list)]
-    if as_keys:
-        raise ValueError(f"written as keys: {', '.join(as_keys)}")
     return top, blocks, lead
 
 

@@ -102,7 +102,8 @@ def test_ballast_and_a_chamber_in_the_place_of_others(tmp_path: Path) -> None:
     assert "# 0.8 mm wire, feet cast in" in text
     # What was said of the old density is not true of the new one.
     assert "unfilled casting resin" not in text
-    assert text.index("[[insert]]") < text.index('"ballast 1"') < text.index('"chamber"') < text.index("[[balls]]")
+    at = [text.index(words) for words in ("[[insert]]", '"ballast 1"', '"chamber"', "[[hardware]]")]
+    assert at == sorted(at)
     # A variant of the variant says once where it comes from.
     again = write_baitfile(tmp_path / "again.toml", made, Changes(meshes(made)))
     assert again.text.startswith("# Written by meshlure from variant.toml.")
@@ -167,6 +168,9 @@ def test_comments_go_with_what_they_stand_above(tmp_path: Path) -> None:
     assert bait.inserts == ()
     assert "# Weights, all of them weighed.\n" in text
     assert text.endswith("# the end\n")
+    more = '\n\n# Lip, of sheet.\n\n# sawn\n[[insert]]\nname = "lip"\nmesh = "lip.stl"\ndensity = "1 g/cm3"\n'
+    _, text = written(tmp_path, f"{PLAIN}{more}", Changes(files | {"nose weight": "n.stl"}, dropped=("lip",)))
+    assert text.endswith("# the end\n\n# Lip, of sheet.\n")
 
 
 def test_only_some_of_what_is_replaced_is_dropped(tmp_path: Path) -> None:
@@ -250,6 +254,7 @@ body.mesh = "body.stl"
 body.density = "0.7 g/cm3"
 insert = [{ name = "slug", mesh = "slug.stl", material = "lead" }]
 """
+ABOVE = PLAIN[: PLAIN.index("# Weights")].replace("\n", f"\n{INLINE.splitlines()[-1]}\n", 1)
 QUOTED = PLAIN.replace("[body]", '["body"]')
 APART = f"{PLAIN}\n[body.printed]\ninfill = 0.2\nwall = '1 mm'\ndensity = '1 g/cm3'\n".replace('material = "balsa"', "")
 
@@ -258,6 +263,7 @@ APART = f"{PLAIN}\n[body.printed]\ninfill = 0.2\nwall = '1 mm'\ndensity = '1 g/c
     ("text", "files"),
     [
         (INLINE, {"slug": "s.stl"}),
+        (ABOVE, {"slug": "s.stl"}),
         (QUOTED, {"nose weight": "n.stl", "belly weight": "b.stl"}),
         (APART, {"nose weight": "n.stl", "belly weight": "b.stl"}),
     ],
@@ -268,10 +274,11 @@ def test_what_cannot_be_changed_in_its_place_is_written_anew_and_said(
     source, path = tmp_path / "source.toml", tmp_path / "out.toml"
     source.write_text(text, encoding="utf-8")
     plan = read_baitfile(source)
-    new = InsertSection("ballast", Path("ballast.stl"), Substance("lead"))
-    write_baitfile(path, plan, Changes(files | {"body": "b.stl"}, inserts=(new,)))
+    write_baitfile(path, plan, Changes(files | {"body": "b.stl"}, name="made"))
     bait = read_baitfile(path)
-    assert [each.name for each in bait.inserts] == [*files, "ballast"]
+    assert [(each.name, each.mesh) for each in bait.inserts] == [
+        (name, tmp_path / file) for name, file in files.items()
+    ]
     assert (bait.body.substance, bait.body.printed) == (plan.body.substance, plan.body.printed)
     assert bait.hardware == plan.hardware
     assert path.read_text(encoding="utf-8").startswith(
