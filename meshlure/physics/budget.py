@@ -101,10 +101,10 @@ def budget(bait: Bait, parts: Sequence[Part], skin: Skin, held: Reserve, stance:
     Notes
     -----
     The reserve answers to everything exactly, in proportion. The posture is solved anew after every change, the hull's
-    buoyancy taken from cuts of the full mesh round the posture (`Locus`); ``stance.miss`` says how far the farthest
-    were off before the last cuts were added, so the angles told are nearer. Left out: the doubts do not know of each
-    other, balls stay at their ends, hooks stay wet or dry, and a bait that hangs is taken to hang still where a change
-    would lift it to the surface.
+    buoyancy taken from cuts of the full mesh round the posture (`Locus`), or where that does not reach by a descent on
+    the full mesh; ``stance.miss`` says how far some copies were off. Left out: the doubts do not know of each other,
+    balls stay at their ends, hooks stay wet or dry, and a bait that hangs is taken to hang still where a change would
+    lift it to the surface.
     """
     up = None if stance.locus is None else stance.locus.up
     layer = layers(skin, bait.frame.side, up, stance.height)

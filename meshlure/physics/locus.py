@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import cached_property
 
 import numpy as np
 
@@ -23,6 +24,9 @@ _FARTHEST = 1.2
 
 _CLOSE = 1e-7
 """Share of the volume that may be missing where the hull is looked at."""
+
+
+_PAIRS = ((0, 0), (0, 1), (0, 2), (1, 1), (1, 2), (2, 2))
 
 
 @dataclass(frozen=True, eq=False)
@@ -69,8 +73,9 @@ class Locus:
     A body floats at rest where the slope of n.(G - B(n, V)) along the sphere of up-directions n vanishes. B and its
     derivatives are found exactly by cutting the full mesh in some places: by the up-direction they are minus the
     waterplane's second moments over the volume (Dupin), by the volume the way from B to the waterplane's centroid over
-    the volume. Elsewhere B is the mean of what each of these places tells to first order, weighted by the fourth power
-    of its nearness (Shepard's method with linear nodal functions), so that value and slope are exact in each.
+    the volume. Elsewhere B is the mean of what each of these places tells, weighted by the sixth power of its nearness
+    (Shepard's method): its value and slopes, and a curvature common to all that is fitted to how the slopes differ.
+    Value and slopes are exact in each place.
 
     References
     ----------
@@ -95,17 +100,48 @@ class Locus:
         """Volume, m3, at which the skin is wholly under water."""
         return self.hull.volume
 
+    @cached_property
+    def _curvature(self) -> Floats:
+        """Second derivatives of the centre by the scaled places, (3, 3, 3) array, m: centre's axis, place, place."""
+        curvature = np.zeros((3, 3, 3))
+        if len(self.looks) <= 3:
+            return curvature
+        places = np.array([look.place for look in self.looks]) / self.scale
+        slopes = np.array([look.slopes * self.scale for look in self.looks])
+        apart = places - places.mean(axis=0)
+        rows = np.zeros((len(places), 3, 3 + len(_PAIRS)))
+        for axis in range(3):
+            rows[:, axis, axis] = 1.0
+        for number, (i, j) in enumerate(_PAIRS, 3):
+            rows[:, i, number] += apart[:, j]
+            if i != j:
+                rows[:, j, number] += apart[:, i]
+        wanted = slopes.transpose(0, 2, 1).reshape(-1, 3)
+        # Where the places lie in a row, what they do not tell of the curvature is left at none.
+        found = np.linalg.lstsq(rows.reshape(len(wanted), -1), wanted, rcond=1e-6)[0]
+        for number, (i, j) in enumerate(_PAIRS, 3):
+            curvature[:, i, j] = curvature[:, j, i] = found[number]
+        return curvature
+
+    @cached_property
+    def _nodes(self) -> tuple[Floats, Floats, Floats]:
+        """Scaled places, (k, 3), and what each tells beside the curvature: value at the middle, (k, 3), slopes."""
+        places = np.array([look.place for look in self.looks]) / self.scale
+        slopes = np.array([look.slopes * self.scale for look in self.looks])
+        slopes = slopes - np.einsum("cij,kj->kci", self._curvature, places)
+        centres = np.array([look.centre for look in self.looks]) - _bent(self._curvature, places)
+        return places, centres - np.einsum("kij,kj->ki", slopes, places), slopes.reshape(-1, 9)
+
     def centres(self, places: Floats) -> tuple[Floats, Floats]:
         """Return the centres of buoyancy at (n, 3) places, (n, 3) array, m, and their slopes, (n, 3, 3) array."""
-        known = np.array([look.place for look in self.looks])
-        slopes = np.array([look.slopes for look in self.looks])
-        a, b = places / self.scale, known / self.scale
-        apart = np.maximum((a**2).sum(axis=1)[:, None] - 2 * a @ b.T + (b**2).sum(axis=1), 1e-8)
-        weight = apart**-2
+        known, values, slopes = self._nodes
+        at = places / self.scale
+        apart = np.maximum((at**2).sum(axis=1)[:, None] - 2 * at @ known.T + (known**2).sum(axis=1), 1e-8)
+        weight = apart**-3
         weight /= weight.sum(axis=1)[:, None]
-        offset = np.array([look.centre for look in self.looks]) - np.einsum("kij,kj->ki", slopes, known)
-        mean = (weight @ slopes.reshape(len(known), 9)).reshape(-1, 3, 3)
-        return weight @ offset + np.einsum("nij,nj->ni", mean, places), mean
+        mean = (weight @ slopes).reshape(-1, 3, 3)
+        centre = weight @ values + np.einsum("nij,nj->ni", mean, at) + _bent(self._curvature, at)
+        return centre, (mean + np.einsum("cij,nj->nci", self._curvature, at)) / self.scale
 
     def rests(self, gravity: Floats, volume: Floats) -> tuple[Floats, Bools]:
         """Return where bodies of this skin come to rest that differ in weight.
@@ -181,6 +217,10 @@ class Locus:
             worst = max(worst, float(np.linalg.norm(ways.T @ slope[0] / np.maximum(np.abs(heights), 1e-9))))
             more.append(look)
         return Locus(self.hull, self.up, self.volume, (*self.looks, *more), scale), worst
+
+
+def _bent(curvature: Floats, places: Floats) -> Floats:
+    return np.asarray(np.einsum("cij,ni,nj->nc", curvature, places, places) / 2)
 
 
 def turns_to(up: Floats, direction: Floats) -> Floats:

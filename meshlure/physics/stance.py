@@ -25,6 +25,9 @@ ENOUGH = float(np.radians(0.1))
 _DESCENTS = 2
 """Changes whose place of rest the locus does not find and that are put to rest on the full mesh, a round."""
 
+_CHECKED = 4
+"""Copies whose place of rest is checked in the end."""
+
 _CANDIDATES = 400
 """Draws among which the places to look at are chosen."""
 
@@ -50,7 +53,7 @@ class Stance:
     height : float or None, m
         Of the water's surface afloat.
     miss : float, rad
-        By how much the farthest places of rest were off before the hull was last looked at.
+        By how much the farthest off of some copies was, checked by cutting the hull where it rests.
     """
 
     mass: Floats
@@ -127,7 +130,7 @@ class Stance:
         gravity, volume = self._sought(asked)
         fits = (self.reserve(asked) > 0) & self._fits(volume)
         gravity, volume = gravity[fits], volume[fits]
-        locus, miss = self.locus, self.miss
+        locus = self.locus
         for _ in range(ROUNDS if len(volume) else 0):
             places, held = locus.rests(gravity, volume)
             for lost in np.flatnonzero(~held)[:_DESCENTS]:
@@ -135,9 +138,12 @@ class Stance:
             where, pull = places[held], gravity[held]
             scale = np.maximum(where.std(axis=0), 1e-6)
             chosen = _farthest(where / scale, np.array([look.place for look in locus.looks]) / scale)
-            locus, miss = locus.looked(where[chosen], pull[chosen], scale)
-            if miss < ENOUGH:
+            locus, off = locus.looked(where[chosen], pull[chosen], scale)
+            if off < ENOUGH:
                 break
+        places, held = locus.rests(gravity, volume)
+        checked = np.flatnonzero(held)[-_CHECKED:]
+        _, miss = locus.looked(places[checked], gravity[checked], locus.scale)
         return replace(self, locus=locus, miss=miss)
 
     def angles(self, ups: Floats) -> tuple[Floats, Floats]:
