@@ -10,6 +10,7 @@ from meshlure.files.stl import write_stl
 from meshlure.geometry.moments import solid_moments
 from meshlure.geometry.solids import Solid
 from meshlure.geometry.soundness import examine
+from meshlure.geometry.surface import Surface
 
 AGREES = 1e-4
 """Share of the volume promised within which what was written must come back."""
@@ -23,8 +24,8 @@ def write_solid(
     solid: Solid,
     path: Path,
     next_step: str = "move the insert's skin a little off the body's, or draw the pocket in CAD",
-) -> None:
-    """Write a solid as STL in mm and check the file.
+) -> Surface:
+    """Write a solid as STL in mm, check the file and return what it says.
 
     Parameters
     ----------
@@ -33,6 +34,11 @@ def write_solid(
         In a folder that exists.
     next_step : str
         What to do where it cannot be written so that it keeps its shape.
+
+    Returns
+    -------
+    Surface
+        As read back, m.
 
     Raises
     ------
@@ -57,7 +63,7 @@ def write_solid(
             continue
         volume = solid_moments(came_back.surface).amount
         if abs(volume - promised) <= AGREES * promised:
-            return
+            return came_back.surface
         trouble = f"{volume * 1e9:.6g} mm3"
     raise InputError(
         Fault(
