@@ -1,0 +1,110 @@
+"""Whether the mould would part more easily along a pull that leans from the one asked for."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import Final
+
+import numpy as np
+
+from meshlure.geometry.surface import Floats, Surface
+from meshlure.making.mould.shadow import ALIKE, Shadow
+
+CONE: Final = np.radians(15.0)
+"""rad. Half-angle of the cone of pulls about the one asked for that are tried."""
+
+_RINGS: Final = 5
+_TURNS: Final = 6
+_WAYS: Final = 9
+_PHASE: Final = 2.399963
+"""rad. The golden angle."""
+_FINEST: Final = np.radians(0.1)
+_NOTHING: Final = 1e-6
+"""Share of the volume below which nothing is left to be gained."""
+
+_COLUMNS: Final = 140
+"""Columns along the solid's greatest extent in the search."""
+
+
+@dataclass(frozen=True, eq=False)
+class Pull:
+    """A pull with its best parting height.
+
+    Attributes
+    ----------
+    direction : (3,) array
+        Unit vector, in the coordinates of the solid.
+    height : float, m
+        Of the parting plane along it.
+    trapped : float, m3
+        What the two halves hold, by columns `pitch` apart.
+    pitch : float, m
+    """
+
+    direction: Floats
+    height: float
+    trapped: float
+    pitch: float
+
+
+def best_pull(solid: Surface, volume: float, cone: float = CONE) -> Pull:
+    """Return the pull within a cone about z that traps least, each at its best parting height.
+
+    Parameters
+    ----------
+    solid : Surface
+        On the bench.
+    volume : float, m3
+        It encloses.
+    cone : float, rad
+
+    Notes
+    -----
+    Pulls on rings about z, then a walk from the best of them in steps that are halved where none leads on. z itself is
+    kept where nothing beats it by more than `shadow.ALIKE` of the volume.
+    """
+    reach = float(np.ptp(solid.bounds, axis=0).max())
+
+    def ask(direction: Floats) -> Pull:
+        turned = solid.moved(rotation=_frame(direction))
+        shadow = Shadow.of(turned, reach / _COLUMNS)
+        height = shadow.best_height(float(turned.bounds[:, 2].mean()), volume)
+        return Pull(direction, height, shadow.trapped(height), shadow.pitch)
+
+    up = np.array([0.0, 0.0, 1.0])
+    asked = ask(up)
+    if asked.trapped <= ALIKE * volume:
+        return asked
+    best = asked
+    for ring in range(1, _RINGS + 1):
+        for step in range(_TURNS * ring):
+            best = _lesser(best, ask(_leant(up, cone * ring / _RINGS, 2 * np.pi * step / (_TURNS * ring))))
+    tilt, phase = cone / _RINGS / 2, 0.0
+    while tilt >= _FINEST and best.trapped > _NOTHING * volume:
+        found = best
+        # Another phase every time: what traps has creases, and a walk along one of them needs its direction.
+        phase += _PHASE
+        for step in range(_WAYS):
+            leant = _leant(best.direction, tilt, phase + 2 * np.pi * step / _WAYS)
+            if leant[2] >= np.cos(cone) - 1e-9:
+                found = _lesser(found, ask(leant))
+        tilt *= 0.5 if found is best else 1.2
+        best = found
+    return asked if asked.trapped - best.trapped <= ALIKE * volume else best
+
+
+def _lesser(one: Pull, other: Pull) -> Pull:
+    return other if other.trapped < one.trapped else one
+
+
+def _frame(direction: Floats) -> Floats:
+    """Rows: x and y square to a direction, and the direction."""
+    x = np.array([1.0, 0.0, 0.0]) - direction[0] * direction
+    x = x / np.linalg.norm(x)
+    return np.stack([x, np.cross(direction, x), direction])
+
+
+def _leant(direction: Floats, tilt: float, turn: float) -> Floats:
+    """Return a direction leant by an angle towards another angle round it."""
+    x, y, z = _frame(direction)
+    return np.asarray(np.cos(tilt) * z + np.sin(tilt) * (np.cos(turn) * x + np.sin(turn) * y))
