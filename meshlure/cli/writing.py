@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable, Sequence
 from dataclasses import replace
 from pathlib import Path
 from time import perf_counter
@@ -26,12 +27,33 @@ def write(found: Study, out: Path, *, page: bool, variant: Bait | None) -> Study
     variant : Bait or None
         Of which the cut body and inserts are written.
     """
-    with staged(out) as folder:
-        names: list[str] = []
-        if variant is not None:
-            from meshlure.making.variant import write_cuttings
 
-            names += write_cuttings(variant, folder)
+    def make(folder: Path) -> tuple[Study, Sequence[str]]:
+        if variant is None:
+            return found, ()
+        from meshlure.making.variant import write_cuttings
+
+        return found, write_cuttings(variant, folder)
+
+    return write_made(out, page=page, make=make)
+
+
+def write_made(out: Path, *, page: bool, make: Callable[[Path], tuple[Study, Sequence[str]]]) -> Study:
+    """Write what a command makes, with results.json and the page; return the study with all names in it.
+
+    Parameters
+    ----------
+    out : Path
+        The output folder.
+    page : bool
+        Whether to draw the page.
+    make : callable
+        Writes its files into the folder that it is given, and returns the study with their names. Whatever it raises
+        leaves the output folder as it was.
+    """
+    with staged(out) as folder:
+        found, made = make(folder)
+        names = list(made)
         results = dict(found.results)
         if page:
             from meshlure.report.page import page as draw

@@ -156,6 +156,7 @@ def _row(what: str, value: str, source: str, assumed: bool) -> Tree:
 def cautions(bait: Bait) -> list[Tree]:
     """Return the reminders that the bait's materials, hooks and balls call for."""
     substances = [bait.body.substance, *(piece.substance for piece in bait.pieces)]
+    substances += [piece.glue for piece in bait.pieces]
     substances += [balls.substance for balls in bait.balls]
     substances += [item.substance for item in bait.hardware]
     if bait.coat is not None:

@@ -1,0 +1,89 @@
+"""`meshlure balance`: the ballast for a target, placed, cut and written."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from pathlib import Path
+from typing import Annotated, Any, Final
+
+import typer
+
+from meshlure.cli.terminal import answer, hand_on
+from meshlure.errors import Fault, InputError
+
+SHORT: Final = "Find the ballast that makes a bait rest as wanted, and write the meshes."
+
+HELP: Final = """Find the ballast that makes a bait rest as wanted, and write the meshes to make it.
+
+The bait file's [target] says how the bait is to rest, its [ballast] what may be used and where:
+
+\b
+  meshlure balance samples/minnow/minnow.toml --out out/balanced
+
+Inserts marked free = true are replaced. Without a search, ballast goes exactly where you say:
+
+\b
+  meshlure balance bait.toml --ballast "lead rod 5 mm x 18 mm at 41,0,-6" --out out/balanced
+
+Exit code: 0 the target is met, 1 it cannot be met (the nearest is written), 2 the input cannot be used.
+"""
+
+
+def balance(
+    bait: Annotated[Path, typer.Argument(metavar="BAIT.toml", help="Bait file.")],
+    out: Annotated[
+        Path | None,
+        typer.Option("--out", metavar="DIR", help="Folder to write; absent, empty, or from an earlier run."),
+    ] = None,
+    take: Annotated[int, typer.Option("--take", metavar="N", help="Which of the ways to write; 1 is the best.")] = 1,
+    ballast: Annotated[
+        str | None,
+        typer.Option("--ballast", metavar="WORDS", help="No search: what lies where, its middle in CAD coordinates."),
+    ] = None,
+    halves: Annotated[
+        bool, typer.Option("--halves", help="Also write the body's left and right halves, with holes for pins.")
+    ] = False,
+    no_page: Annotated[bool, typer.Option("--no-page", help="Write results.json, but no report.html.")] = False,
+    json: Annotated[bool, typer.Option("--json", help="Print the results; --out may then be left out.")] = False,
+    debug: Annotated[bool, typer.Option("--debug", help="On a fault of ours, print where it happened.")] = False,
+) -> None:
+    """Balance a bait."""
+    del debug  # read by the entry, which every command shares
+    if out is None and not json:
+        raise InputError(
+            Fault("there is nowhere to write to", "--out", "nothing", "a folder", "add --out DIR, or --json")
+        )
+    if halves and out is None:
+        raise InputError(
+            Fault("--halves writes meshes and needs a folder", "--out", "nothing", "a folder", "add --out DIR")
+        )
+    if take != 1 and ballast is not None:
+        raise InputError(
+            Fault("--take chooses among ways found; --ballast states one", "--take", str(take), "", "leave one out")
+        )
+    if out is not None:
+        from meshlure.files.folder import check_folder
+
+        check_folder(out)
+    from meshlure.bait.loading import read_bait
+    from meshlure.balancing import finding
+
+    read = read_bait(bait)
+    found = finding.balance(read, take) if ballast is None else finding.place(read, ballast)
+    account: Mapping[str, Any] = found.account
+    if out is None:
+        import json as text
+
+        hand_on(text.dumps({"balance": account}, indent=1, allow_nan=False, ensure_ascii=False) + "\n")
+    else:
+        from meshlure.cli.writing import write_made
+
+        written = write_made(out, page=not no_page, make=lambda folder: found.make(folder, out, halves))
+        if json:
+            hand_on(written.to_json())
+        else:
+            from meshlure.cli.ways import balance_lines
+
+            answer(*balance_lines(written.results, out))
+    if not found.reachable:
+        raise typer.Exit(1)
