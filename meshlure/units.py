@@ -101,6 +101,15 @@ _KINDS: Final[Mapping[str, _Kind]] = MappingProxyType(
             1e-2,
             only=frozenset({"percent", "permille"}),
         ),
+        "share": _Kind(
+            "a share",
+            "dimensionless",
+            ("%", "permille"),
+            ("%", "permille"),
+            "%",
+            1e-2,
+            only=frozenset({"percent", "permille"}),
+        ),
         "force": _Kind("a force", "N", ("N", "mN", "gf", "lbf"), ("N", "gf"), "N"),
         "energy": _Kind("an energy", "J", ("J", "mJ", "N m", "ft lbf"), ("J", "ft lbf"), "J"),
         "area": _Kind("an area", "m**2", ("mm2", "cm2", "m2", "in2"), ("mm2", "cm2"), "mm2", MM2),
@@ -179,7 +188,7 @@ def quantity(
         bare number with the two readings that it could have.
     kind : str
         length (m), mass (kg), density (kg/m3), speed (m/s), angle (rad), temperature (degC), salinity (g/kg),
-        shrinkage (a share of the length), force (N), energy (J) or area (m2).
+        shrinkage (a share of the length), share (of one), force (N), energy (J) or area (m2).
     where : str
         The key or option that the text stands at, for the message.
     positive : bool

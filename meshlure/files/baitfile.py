@@ -22,6 +22,7 @@ from meshlure.files.sections.limits import LimitsSection, read_limits
 from meshlure.files.sections.line import LineSection, read_line
 from meshlure.files.sections.measured import MeasuredSection, read_measured
 from meshlure.files.sections.mould import MouldSection, read_mould
+from meshlure.files.sections.pour import PourSection, read_pour
 from meshlure.files.sections.retrieve import RetrieveSection, read_retrieve
 from meshlure.files.sections.target import TargetSection, read_target
 from meshlure.files.sections.water import WaterSection, read_water
@@ -61,7 +62,7 @@ class BaitFile:
     bait, water, body : sections that every bait has
     inserts, balls, hardware : tuples of sections, in the file's order
     coat, line, measured, limits, target, chamber, mould : sections, None where they are not stated
-    areas, retrieve, cast, ballast : sections, at their defaults where they are not stated
+    areas, retrieve, cast, ballast, pour : sections, at their defaults where they are not stated
 
     table : mapping
         The sections as they were stated, units and all.
@@ -90,7 +91,8 @@ class BaitFile:
     target: TargetSection | None
     ballast: BallastSection
     chamber: ChamberSection | None
-    mould: MouldSection | None = None
+    mould: MouldSection | None
+    pour: PourSection
     table: Mapping[str, object] = field(default_factory=dict, compare=False, repr=False)
     text: str = field(default="", compare=False, repr=False)
 
@@ -176,6 +178,7 @@ def bait_of(table: Mapping[str, object], folder: Path, name: str, path: Path | N
         read_ballast(tables.one("ballast") or tables.none("ballast")),
         tables.read("chamber", read_chamber),
         tables.read("mould", lambda keys: read_mould(keys, bait.metres)),
+        read_pour(tables.one("pour") or tables.none("pour")),
         table=table,
     )
     tables.close()

@@ -67,3 +67,31 @@ TAB_WIDTH: Final = 8e-3
 TAB_THICKNESS: Final = 3e-3
 TAB_HOLE: Final = 3e-3
 """m. A tab that a finger and a wire hold: common practice, no source."""
+
+POUR_RESIN: Final = "polyurethane casting resin unfilled"
+POUR_BALLOONS: Final = "glass microballoons true"
+"""What a light casting is most often mixed from: common practice, no source."""
+
+POUR_RATIO: Final = (1.0, 1.0)
+POUR_BY: Final = "weight"
+"""Parts A and B of a casting resin. Many are one to one, others are not: the tin says. Common practice, no source."""
+
+POUR_WASTE: Final = 0.10
+"""Share that stays in cup, sprue and vents: common practice, no source."""
+
+POUR_PACKING: Final = 0.6
+"""Share of a tapped cup of balloons that is balloons, the rest air between them: datasheets of the class, from memory.
+Random close packing of equal spheres is 0.64."""
+
+POUR_THIN: Final = 0.40
+"""Volume share of balloons up to which a thin polyurethane still pours: common practice, no source."""
+
+POUR_STIFF: Final = 0.50
+"""Volume share of balloons beyond which nothing is poured or spooned without holes: common practice, no source."""
+
+PRINT_SOLID: Final = 0.96
+PRINT_SOLID_RANGE: Final = (0.93, 0.99)
+"""Share of its filament's density that a print reaches where it is solid, and its range: common practice, no source."""
+
+SCALE_STEP: Final = 0.01e-3
+"""kg. A pocket scale's: common practice, no source."""

@@ -190,6 +190,19 @@ class Keys:
         rows = self._rows(key, f"a list such as {such_as}")
         return tuple(self._quantity(row, where, kind, limits) for where, row in rows)
 
+    def numbers(self, key: str, such_as: str) -> tuple[float, ...] | None:
+        """Read the plain numbers of a list, None where it is not stated."""
+        if not self.stated(key):
+            return None
+        found = []
+        for where, row in self._rows(key, f"a list of numbers such as {such_as}"):
+            if _is_number(row) and math.isfinite(float(row)):  # type: ignore[arg-type]
+                found.append(float(row))  # type: ignore[arg-type]
+            else:
+                self._faults.append(Fault("a number was expected", where, repr(row)[:60], such_as, "correct it"))
+                found.append(math.nan)
+        return tuple(found) or None
+
     def pair(self, key: str, kind: str, such_as: str, **limits: Unpack[Limits]) -> tuple[float, float] | None:
         """Read the least and greatest value allowed, in SI, None where it is not stated."""
         values = self.quantities(key, kind, such_as, **limits)

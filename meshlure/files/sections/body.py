@@ -23,11 +23,15 @@ class Printed:
         Thickness of the wall, measured inwards from the skin.
     infill : float
         Share of the inside that is solid, 0 to 1.
+    solid : float or None
+        Share of its filament's density that the print reaches where it is solid; None where it was not stated. A
+        stated density is taken to be that of the solid print.
     """
 
     substance: Substance
     wall: float
     infill: float
+    solid: float | None = None
 
 
 @dataclass(frozen=True)
@@ -65,10 +69,16 @@ def read_body(keys: Keys, folder: Path) -> BodySection:
 
 
 def _read_printed(keys: Keys) -> Printed:
-    printed = Printed(
-        read_substance(keys) or Substance(),
-        keys.asked_quantity("wall", "length", "1.2 mm", positive=True, most=0.1),
-        keys.share("infill"),
-    )
+    substance = read_substance(keys) or Substance()
+    wall = keys.asked_quantity("wall", "length", "1.2 mm", positive=True, most=0.1)
+    infill = keys.share("infill")
+    before = keys.faults
+    solid = keys.share("solid") if keys.stated("solid") else None
+    if solid == 0.0 and keys.faults == before:
+        keys.fault("solid", "a solid print weighs something", "0", "above 0 and up to 1", "write 96% as 0.96")
+    if solid is not None and substance.density is not None:
+        what = "a stated density is that of the solid print already"
+        keys.fault("solid", what, f"{solid:g}", "only beside material", "remove solid, or name the material")
+    printed = Printed(substance, wall, infill, solid)
     keys.close()
     return printed
