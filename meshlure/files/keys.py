@@ -147,15 +147,15 @@ class Keys:
             return value
         return least
 
-    def share(self, key: str, inside: bool = False) -> float:
-        """Read a number from 0 to 1, which must be stated; with ``inside`` neither of the two."""
+    def share(self, key: str, inside: bool = False, positive: bool = False) -> float:
+        """Read a number from 0 to 1, which must be stated; with ``inside`` neither of them, with ``positive`` not 0."""
         value = self._table.get(key)
-        allowed = "above 0 and below 1" if inside else "0 to 1"
+        allowed = "above 0 and below 1" if inside else "above 0 and up to 1" if positive else "0 to 1"
         if not self.stated(key):
             self._missing(key, "0.15")
         elif not _is_number(value):
             self._wrong(key, "a number from 0 to 1, without quotes")
-        elif not 0.0 <= float(value) <= 1.0 or (inside and value in {0, 1}):  # type: ignore[arg-type]
+        elif not 0.0 <= float(value) <= 1.0 or (inside and value in {0, 1}) or (positive and value == 0):  # type: ignore[arg-type]
             self.fault(key, "the share is outside its range", str(value), allowed, "write 15% as 0.15")
         else:
             return float(value)  # type: ignore[arg-type]

@@ -72,10 +72,7 @@ def _read_printed(keys: Keys) -> Printed:
     substance = read_substance(keys) or Substance()
     wall = keys.asked_quantity("wall", "length", "1.2 mm", positive=True, most=0.1)
     infill = keys.share("infill")
-    before = keys.faults
-    solid = keys.share("solid") if keys.stated("solid") else None
-    if solid == 0.0 and keys.faults == before:
-        keys.fault("solid", "a solid print weighs something", "0", "above 0 and up to 1", "write 96% as 0.96")
+    solid = keys.share("solid", positive=True) if keys.stated("solid") else None
     if solid is not None and substance.density is not None:
         what = "a stated density is that of the solid print already"
         keys.fault("solid", what, f"{solid:g}", "only beside material", "remove solid, or name the material")
