@@ -32,7 +32,7 @@ def test_a_mix_in_si() -> None:
         CAST
         + """[pour]
 resin = "epoxy casting resin"
-balloons = "phenolic microballoons"
+balloons = "0.13 g/cm3"
 ratio = [100, 43]
 by = "volume"
 densities = ["1.13 g/cm3", "950 kg/m3"]
@@ -42,7 +42,8 @@ packing = "62 %"
 mass = "1/2 oz"
 """
     ).pour
-    assert (pour.resin, pour.balloons) == ("epoxy casting resin", "phenolic microballoons")
+    assert (pour.resin.material, pour.resin.density) == ("epoxy casting resin", None)
+    assert (pour.balloons.material, pour.balloons.density) == (None, pytest.approx(130.0))
     assert pour.ratio == (100.0, 43.0)
     assert pour.by == "volume"
     assert pour.densities == pytest.approx((1130.0, 950.0))
@@ -94,6 +95,9 @@ FAULTS = [
     ('[pour]\nby = "volume"\ndensities = ["1.1 g/cm3"]', r"pour.densities: there are two parts.*found: 1"),
     ('[pour]\nwaste = "-1 %"', r"pour.waste: .*-1 %"),
     ("[pour]\nwaste = 0.1", r"pour.waste: the number has no unit.*'0.1 %'"),
+    ('[pour]\nresin = "1.05"', r"pour.resin: the number has no unit.*'1.05 g/cm3'"),
+    ('[pour]\nballoons = "-150 kg/m3"', r"pour.balloons: .*above zero"),
+    ("[pour]\nresin = 3", r"pour.resin: .*wrong kind"),
     ("[pour]\nbaits = 0", r"pour.baits: .*range.*found: 0"),
     ('[pour]\npacking = "80 %"', r"pour.packing: .*80 %.*from 30 % up to 75 %"),
     ('[pour]\nmass = "0 g"', r"pour.mass: .*above zero"),

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+import re
 from dataclasses import dataclass
 from typing import Final
 
@@ -15,6 +16,7 @@ from meshlure.files.defaults import (
     POUR_WASTE,
 )
 from meshlure.files.keys import Keys
+from meshlure.files.sections.substance import Substance
 
 MOST_BAITS: Final = 10_000
 MOST_WASTE: Final = 5.0
@@ -23,6 +25,7 @@ PACKINGS: Final = (0.3, 0.75)
 """Loosely heaped fine powder, and the densest packing of equal spheres, 0.74."""
 LARGEST_RATIO: Final = 1000.0
 MEASURES: Final = ("weight", "volume")
+_NUMBER: Final = re.compile(r"[+\-\N{MINUS SIGN}]?\.?\d")
 
 
 @dataclass(frozen=True)
@@ -31,8 +34,8 @@ class PourSection:
 
     Attributes
     ----------
-    resin, balloons : str
-        Names as they were written; whether the stock knows them is not asked here.
+    resin, balloons : Substance
+        A material by its name, which the stock may not know, or a density: of the cured resin, of the single balloons.
     ratio : (float, float)
         Parts A and B of the resin.
     by : str
@@ -51,8 +54,8 @@ class PourSection:
         Keys that were not stated and stand at their defaults.
     """
 
-    resin: str
-    balloons: str
+    resin: Substance
+    balloons: Substance
     ratio: tuple[float, float]
     by: str
     densities: tuple[float, float] | None
@@ -65,8 +68,8 @@ class PourSection:
 
 def read_pour(keys: Keys) -> PourSection:
     """Read [pour]; an empty one is one bait of the usual mix."""
-    resin = keys.text("resin") or keys.assume("resin", POUR_RESIN)
-    balloons = keys.text("balloons") or keys.assume("balloons", POUR_BALLOONS)
+    resin = _substance(keys, "resin") or keys.assume("resin", Substance(material=POUR_RESIN))
+    balloons = _substance(keys, "balloons") or keys.assume("balloons", Substance(material=POUR_BALLOONS))
     ratio = _ratio(keys) or keys.assume("ratio", POUR_RATIO)
     by = keys.choice("by", MEASURES) or POUR_BY
     densities = _densities(keys)
@@ -81,6 +84,14 @@ def read_pour(keys: Keys) -> PourSection:
     mass = keys.quantity("mass", "mass", positive=True)
     keys.close()
     return PourSection(resin, balloons, ratio, by, densities, waste, baits, packing, mass, tuple(keys.assumed))
+
+
+def _substance(keys: Keys, key: str) -> Substance | None:
+    """A material's name, or a density where the text begins with a number."""
+    if _NUMBER.match(keys.peek(key)):
+        return Substance(density=keys.quantity(key, "density"))
+    name = keys.text(key)
+    return None if name is None else Substance(material=name)
 
 
 def _ratio(keys: Keys) -> tuple[float, float] | None:
