@@ -118,6 +118,10 @@ class Solid:
         above, below = self.kernel.split_by_plane(tuple(normal), height)
         return Solid(above), Solid(below)
 
+    def shifted(self, shift: Floats) -> Solid:
+        """Return the solid moved by (3,) m."""
+        return Solid(self.kernel.translate(tuple(float(way) for way in shift)))
+
     def level(self, height: float) -> Filled:
         """Return the section with the plane z = ``height``, m, seen from above."""
         # The library cuts what is a hair under the height, and keeps polygons to fewer digits than solids.

@@ -139,7 +139,7 @@ def _shares(corners: Floats, normals: Floats, rows: Floats, over: Floats, hair: 
     share, lifted = np.zeros(len(corners)), np.zeros(len(corners))
     for count in np.unique(rows):
         some = np.flatnonzero(rows == count)
-        weights = _lattice(int(count))
+        weights = lattice(int(count))
         points = np.einsum("pk,fkx->fpx", weights, corners[some])
         # Off the face, so that a wall stands beside what rises from it and not in it.
         off = points + hair * normals[some, None]
@@ -149,8 +149,19 @@ def _shares(corners: Floats, normals: Floats, rows: Floats, over: Floats, hair: 
     return share, lifted
 
 
-def _lattice(rows: int) -> Floats:
-    """Barycentric coordinates of the middles of the rows**2 equal triangles that a triangle is cut into."""
+def lattice(rows: int) -> Floats:
+    """Return places in a triangle: the middles of the equal triangles that it is cut into.
+
+    Parameters
+    ----------
+    rows : int
+        1 or more.
+
+    Returns
+    -------
+    (rows**2, 3) array
+        Barycentric coordinates.
+    """
     i, j = np.meshgrid(np.arange(rows), np.arange(rows), indexing="ij")
     upright = np.column_stack([i[i + j < rows], j[i + j < rows]]) + 1 / 3
     turned = np.column_stack([i[i + j < rows - 1], j[i + j < rows - 1]]) + 2 / 3

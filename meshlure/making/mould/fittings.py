@@ -66,6 +66,11 @@ class Fitting:
     shape: Solid
     drawn: Solid
 
+    @property
+    def makes(self) -> bool:
+        """Whether it shows on the plug: as a seat, a slot or an open hollow."""
+        return self.holding in {Holding.SEAT, Holding.SLOT, Holding.OPEN}
+
 
 def fittings(bait: Bait, bench: Bench, body: Solid) -> list[Fitting]:
     """Return every insert and void of a bait as it meets the mould.

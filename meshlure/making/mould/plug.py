@@ -2,8 +2,10 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
+
+import numpy as np
 
 from meshlure.bait.meshpiece import solid_of
 from meshlure.bait.pieces import Bait
@@ -39,6 +41,16 @@ class Plug:
     whole: Solid
     resin: float
     fittings: tuple[Fitting, ...]
+
+    def lowered(self, height: float) -> Plug:
+        """Return the plug with the parting plane moved up by ``height``, m: all comes to lie lower on the bench."""
+        shift = np.array([0.0, 0.0, -height])
+        held = tuple(
+            replace(fitting, shape=fitting.shape.shifted(shift), drawn=fitting.drawn.shifted(shift))
+            for fitting in self.fittings
+        )
+        body, form, whole = (solid.shifted(shift) for solid in (self.body, self.form, self.whole))
+        return Plug(self.bench.at(height), body, form, whole, self.resin, held)
 
     def standing(self, body: Solid) -> Solid:
         """Return the whole as it would be with another body: slots cut out, seats joined to it."""

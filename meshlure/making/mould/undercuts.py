@@ -7,20 +7,26 @@ from typing import Final
 
 import numpy as np
 
-from meshlure.geometry.samples import spread
 from meshlure.geometry.surface import Floats, Ints, Surface
 from meshlure.geometry.topology import paired
 from meshlure.making.mould.cover import covered
-from meshlure.making.mould.draft import Draft
-
-SHALLOW: Final = 0.02e-3
-"""m. What reaches under by less is rounding, or a facet across the parting line."""
+from meshlure.making.mould.draft import Draft, lattice
+from meshlure.making.mould.shadow import Shadow
 
 MOST: Final = 12
 """Undercuts that are told, the deepest first."""
 
-_POINTS: Final = 3000
-"""Places at most, under and along the rims, between which distances are taken."""
+COLUMNS: Final = 500
+"""Columns along the half's greatest extent; what reaches under by less than their pitch is not told."""
+
+_PLACES: Final = 6000
+"""Places under at most that are asked how far they lie under."""
+
+_EDGES: Final = 3000
+"""Places along the edges that the rubber must come round."""
+
+_LEVELS: Final = 16
+_MOST_ROWS: Final = 40
 
 
 @dataclass(frozen=True, eq=False)
@@ -32,9 +38,9 @@ class Undercut:
     area : float, m2
         Of its hidden faces, which hang together.
     depth : float, m
-        How far its deepest place lies, square to the pull, behind the nearest edge that the rubber must come round.
+        How far its deepest place lies, square to the pull, from the nearest place that the pull leaves open.
     at : (3,) array, m
-        That place, in the coordinates of its half.
+        That deepest place, in the coordinates of its half.
     """
 
     area: float
@@ -54,26 +60,25 @@ def undercuts(surface: Surface, found: Draft) -> list[Undercut]:
 
     Notes
     -----
-    The edges that the rubber must come round are those between faces that look to the pull and faces that do not,
-    where nothing stands above them; for a place under them only those at its own height or higher count.
+    A place is open at a height where nothing of the half stands higher. The distance is taken to the edges between
+    faces that look to the pull and faces that fall away beyond, which is exact for the mesh, and to the columns of a
+    grid that are open at the place's height, which is never too short; the lesser counts.
     """
     under = np.flatnonzero(found.hidden > 0.5)
     if not len(under):
         return []
-    corners = found.corners[under]
-    label = _together(corners)
-    rim = _rim(surface, found)
-    if not len(rim):
-        return []
+    corners, label = found.corners[under], _together(found.corners[under])
+    places, owner = _places(corners, found.area[under])
+    shadow = Shadow.of(surface, float(np.ptp(surface.bounds, axis=0).max()) / COLUMNS)
+    depth = np.minimum(_behind_edges(places, _edges(surface, found)), _from_open(places, shadow))
     area = np.bincount(label, found.area[under])
-    made = []
-    for number in np.argsort(-area)[: 4 * MOST]:
-        places = _spread(corners[label == number])
-        depth = _behind(places, rim)
-        deepest = int(depth.argmax())
-        if depth[deepest] >= SHALLOW:
-            made.append(Undercut(float(area[number]), float(depth[deepest]), places[deepest]))
-    return sorted(made, key=lambda one: -one.depth)[:MOST]
+    of = label[owner]
+    # The deepest place of every part: the last one once sorted by part and depth.
+    order = np.lexsort((depth, of))
+    last = order[np.flatnonzero(np.diff(of[order], append=-1))]
+    told = last[depth[last] >= shadow.pitch]
+    told = told[np.argsort(-depth[told], kind="stable")][:MOST]
+    return [Undercut(float(area[of[k]]), float(depth[k]), places[k]) for k in told]
 
 
 def _together(corners: Floats) -> Ints:
@@ -91,7 +96,22 @@ def _together(corners: Floats) -> Ints:
     return np.asarray(label, dtype=np.intp)
 
 
-def _rim(surface: Surface, found: Draft) -> Floats:
+def _places(corners: Floats, area: Floats) -> tuple[Floats, Ints]:
+    """Places all over triangles, their corners among them, (n, 3) array, m; and the triangle of each."""
+    spacing = float(np.sqrt(area.sum() / _PLACES))
+    rows = np.clip(np.ceil(np.sqrt(area) / spacing), 1, _MOST_ROWS) if spacing else np.ones(len(area))
+    found, owner = [corners.reshape(-1, 3)], [np.repeat(np.arange(len(corners)), 3)]
+    for count in np.unique(rows):
+        some = np.flatnonzero(rows == count)
+        inner = np.einsum("pk,fkx->fpx", lattice(int(count)), corners[some])
+        found.append(inner.reshape(-1, 3))
+        owner.append(np.repeat(some, inner.shape[1]))
+    places, owners = np.concatenate(found), np.concatenate(owner)
+    step = max(1, len(places) // (2 * _PLACES))
+    return places[::step], owners[::step]
+
+
+def _edges(surface: Surface, found: Draft) -> Floats:
     """Places along the edges above the plane that the rubber must come round, (n, 3) array, m."""
     pairs = paired(surface)
     normals = surface.double_areas
@@ -103,38 +123,50 @@ def _rim(surface: Surface, found: Draft) -> Floats:
     other = np.where(ahead[edge], pairs.backward_face[edge], pairs.forward_face[edge])
     start, end = surface.vertices[pairs.start[edge]], surface.vertices[pairs.end[edge]]
     beyond = surface.corners[other].sum(axis=1) - 3 * start
-    falls = np.einsum("ij,ij->i", beyond, normals[one]) <= 0
-    start, end = start[falls], end[falls]
+    kept = (np.einsum("ij,ij->i", beyond, normals[one]) <= 0) & (np.maximum(start[:, 2], end[:, 2]) >= 0)
+    start, end = start[kept], end[kept]
     length = np.sqrt(((end - start) ** 2).sum(axis=1))
-    step = float(length.sum()) / _POINTS
+    step = float(length.sum()) / _EDGES
     count = np.maximum(np.ceil(length / step).astype(np.intp), 1) if step else np.ones(len(start), dtype=np.intp)
     each = np.repeat(np.arange(len(start)), count)
     share = (np.arange(len(each)) - np.repeat(np.cumsum(count) - count, count)) / count[each]
     places = start[each] + share[:, None] * (end - start)[each]
-    places = _thinned(places[places[:, 2] >= 0], 2 * _POINTS)
+    places = places[places[:, 2] >= 0][:: max(1, len(places) // _EDGES)]
     hair = 1e-5 * float(np.ptp(surface.bounds, axis=0).max())
     return places[~covered(places, found.corners[found.away], hair)]
 
 
-def _spread(corners: Floats) -> Floats:
-    """Places all over triangles, their corners among them, (n, 3) array, m."""
-    double = np.cross(corners[:, 1] - corners[:, 0], corners[:, 2] - corners[:, 0])
-    spacing = np.sqrt(np.sqrt((double**2).sum(axis=1)).sum() / _POINTS)
-    shape = Surface(corners.reshape(-1, 3), np.arange(3 * len(corners)).reshape(-1, 3))
-    return _thinned(np.unique(spread(shape, float(spacing)), axis=0), _POINTS) if spacing else corners[0]
-
-
-def _behind(places: Floats, rim: Floats) -> Floats:
-    """Distance square to the pull from each place to the nearest rim at its height or above, m; 0 without one."""
-    hair = 1e-6 * float(np.ptp(rim, axis=0).max())
-    least = np.empty(len(places))
+def _behind_edges(places: Floats, edges: Floats) -> Floats:
+    """Distance square to the pull from each place to the nearest edge at its height or above, m; infinite without."""
+    least = np.full(len(places), np.inf)
+    if not len(edges):
+        return least
+    hair = 1e-6 * float(np.ptp(edges, axis=0).max())
     for at in range(0, len(places), 256):
         some = places[at : at + 256]
-        apart = ((some[:, None, :2] - rim[None, :, :2]) ** 2).sum(axis=-1)
-        least[at : at + 256] = np.where(rim[:, 2] >= some[:, None, 2] - hair, apart, np.inf).min(axis=1)
-    return np.asarray(np.sqrt(np.where(np.isfinite(least), least, 0.0)))
+        apart = ((some[:, None, :2] - edges[None, :, :2]) ** 2).sum(axis=-1)
+        least[at : at + 256] = np.where(edges[:, 2] >= some[:, None, 2] - hair, apart, np.inf).min(axis=1)
+    return np.asarray(np.sqrt(least))
 
 
-def _thinned(points: Floats, most: int) -> Floats:
-    """Every so many-th of points, so that about ``most`` are left."""
-    return points[:: max(1, -(-len(points) // most))]
+def _from_open(places: Floats, shadow: Shadow) -> Floats:
+    """Distance square to the pull from each place to the nearest column that is open at its height, m."""
+    from scipy.ndimage import distance_transform_edt
+
+    top = np.full(shadow.shape[0] * shadow.shape[1], -np.inf)
+    top[shadow.cell] = shadow.top
+    top = top.reshape(shadow.shape)
+    cells = shadow.cells_of(places[:, :2])
+    centres = shadow.origin + cells * shadow.pitch
+    aside = np.linalg.norm(places[:, :2] - centres, axis=1)
+    levels = np.unique(np.quantile(places[:, 2], np.linspace(0.0, 1.0, _LEVELS)))
+    level = np.clip(np.searchsorted(levels, places[:, 2], side="right") - 1, 0, len(levels) - 1)
+    hair = 1e-3 * shadow.pitch
+    found = np.empty(len(places))
+    for number, height in enumerate(levels):
+        some = level == number
+        if some.any():
+            # A level's lowest height leaves the fewest columns open.
+            away = np.asarray(distance_transform_edt(top > height + hair, sampling=shadow.pitch))
+            found[some] = away[cells[some, 0], cells[some, 1]] + aside[some]
+    return found

@@ -53,7 +53,15 @@ class Vents:
     findings: tuple[Finding, ...]
 
 
-def lay_vents(floor: Floor, section: MouldSection, box: Box, sprue: Runner, where: str) -> Vents:
+def high_points(floor: Floor, sprue: Runner) -> list[Peak]:
+    """Return the high points of the cavity that its sprue does not empty itself, the sprue pointing up."""
+    up = np.append(sprue.direction, 0.0)
+    near = max(sprue.diameter, OFF_PLANE)
+    found = peaks(floor.plug.form.surface(), up, PROMINENT)
+    return [peak for peak in found if float(np.linalg.norm(peak.at - np.append(sprue.at, 0.0))) > near]
+
+
+def lay_vents(floor: Floor, section: MouldSection, box: Box, sprue: Runner, high: Sequence[Peak], where: str) -> Vents:
     """Return the vents to the edges of a box.
 
     Parameters
@@ -63,6 +71,8 @@ def lay_vents(floor: Floor, section: MouldSection, box: Box, sprue: Runner, wher
     box : Box
     sprue : Runner
         It points up while the mould is poured.
+    high : sequence of Peak
+        From `high_points`.
     where : str
         The section's name in messages.
 
@@ -72,18 +82,14 @@ def lay_vents(floor: Floor, section: MouldSection, box: Box, sprue: Runner, wher
         Where a place that the bait file names is not in the parting plane.
     """
     if isinstance(section.vents, str):
-        return _found(floor, box, sprue)
+        return _found(floor, box, sprue, high)
     return _named(floor, section.vents, box, sprue, where)
 
 
-def _found(floor: Floor, box: Box, sprue: Runner) -> Vents:
-    """Vents at every high point of the cavity that the sprue does not empty itself."""
-    up = np.append(sprue.direction, 0.0)
+def _found(floor: Floor, box: Box, sprue: Runner, high: Sequence[Peak]) -> Vents:
     made: list[Runner] = []
     findings = []
-    for peak in peaks(floor.plug.form.surface(), up, PROMINENT):
-        if float(np.linalg.norm(peak.at - np.append(sprue.at, 0.0))) <= max(sprue.diameter, OFF_PLANE):
-            continue
+    for peak in high:
         at = floor.contour.nearest(peak.at[:2])
         if float(np.linalg.norm(peak.at - np.append(at, 0.0))) > OFF_PLANE:
             findings.append(_out_of_reach(floor, peak))
