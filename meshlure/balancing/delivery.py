@@ -99,6 +99,8 @@ class Balance:
             dropped=tuple(piece.name for piece in self.ground.freed),
             further=tuple(further),
             body_density=self.density,
+            # Weighed on the bait as it was.
+            without=("measured",) if self.bait.plan.measured is not None else (),
         )
         names = write_variant(folder, "balanced", self.bait, variant)
         tell("reading back")

@@ -16,7 +16,7 @@ from meshlure.making.balance.aim import Aim, aim
 from meshlure.making.balance.density import Dense, density_for
 from meshlure.making.balance.ground import Ground
 from meshlure.making.balance.hindrance import hindrances
-from meshlure.making.balance.outcome import outcome, sinking_speed
+from meshlure.making.balance.outcome import outcome, reserve_for_speed, sinking_speed
 from meshlure.making.balance.ranking import Ranked, ranked
 from meshlure.making.balance.room import Room
 from meshlure.making.balance.search import REACHED_ANGLE, REACHED_RESERVE, Option, Search
@@ -168,13 +168,16 @@ def _searched(ground: Ground, goal: Aim, bait: Bait, tell: Tell) -> tuple[Aim, S
     section = bait.plan.ballast
     room = Room(ground, section.cover, section.keep_clear, section.between)
     way: Passage | None = None
+    if goal.sink is not None:
+        way = Flights(ground, bait).way
+        goal = goal.with_reserve(reserve_for_speed(ground, goal, way))
     for _ in range(_SINK_ROUNDS):
         search = Search.of(ground, goal, section, room)
         search.run(tell)
         rows = ranked(search)
         if goal.sink is None or not rows:
             break
-        way = way or Flights(ground, bait).way
+        assert way is not None
         speed = _speed(ground, way, rows[0].option, goal)
         assert speed is not None
         if speed <= 0 or abs(speed / goal.sink - 1) <= _SINK_CLOSE:
@@ -226,7 +229,10 @@ def _by_density(bait: Bait, target: TargetSection, tell: Tell) -> Balance:
     if found is None:
         misses.append(f"even a body without weight would leave the bait {-dense.density * 1e-3:.3g} g/cm3 too heavy")
     else:
-        off = found.off(goal)
+        off = tuple(
+            0.0 if name in goal.assumed else angle
+            for name, angle in zip(("nose_up", "lean"), found.off(goal), strict=True)
+        )
         if max(map(abs, off)) > REACHED_ANGLE:
             nose_up, lean = (degrees(angle) for angle in off)
             misses.append(

@@ -24,7 +24,8 @@ def balance_lines(results: Tree, out: Path) -> tuple[str, ...]:
         lines += [f"           {row['words']}" for row in [*dense["mixes"], *dense["stock"]]]
     if account["replaced"]:
         lines.append(f"  replaced {', '.join(account['replaced'])}")
-    lines.append(f"  reached  {'yes' if account['reachable'] else 'no'}")
+    if wanted is not None:
+        lines.append(f"  reached  {'yes' if account['reachable'] else 'no'}")
     lines += [f"           {words}" for words in account["in_the_way"]]
     lines.append(f"  verdict  {results['buoyancy']['verdict']}")
     lines += [f"  posture  {posture['words']}" for posture in results["postures"][:1]]
@@ -70,7 +71,7 @@ def _cells(number: int, row: Tree, taken: bool) -> tuple[str, ...]:
         f"{row['material']} {row['shape']} {size} mm",
         f"{row['mass_g']:.2f}",
         f"{row['from_nose_mm']:.1f}",
-        ", ".join(f"{value:.2f}" for value in row["at_mm"]),
+        ", ".join(f"{value + 0.0:.2f}".replace("-0.00", "0.00") for value in row["at_mm"]),
         f"{row['reserve_g']:+.2f}",
         "none" if row["nose_up_deg"] is None else f"{row['nose_up_deg']:+.1f}",
         "none" if row["lean_deg"] is None else f"{row['lean_deg']:+.1f}",

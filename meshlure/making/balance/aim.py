@@ -72,6 +72,11 @@ def aim(ground: Ground, target: TargetSection) -> Aim:
         reserve = target.reserve
     elif target.submerged is not None:
         reserve = (1 - target.submerged) * displaced
+    elif target.behaviour is None and target.sink is None:
+        # Only a posture is asked for: the reserve stays what it is.
+        now = Ground.of(ground.bait_as_stated, keep=True)
+        ends = now.ends(up)
+        reserve = now.vessel.hull(ends).volume * now.vessel.water - now.mass(ends).amount
     else:
         # A sinking bait's reserve is found by its speed; until then a hundredth of what it displaces.
         reserve = 0.0 if target.sink is None else -0.01 * displaced

@@ -28,6 +28,8 @@ class Ground:
     ----------
     bait : Bait
         Without the inserts that are free.
+    bait_as_stated : Bait
+        With them.
     freed : tuple of MeshPiece
         Those.
     composition : Composition
@@ -37,6 +39,7 @@ class Ground:
     """
 
     bait: Bait
+    bait_as_stated: Bait
     freed: tuple[MeshPiece, ...]
     composition: Composition
     vessel: Vessel
@@ -83,7 +86,7 @@ class Ground:
         index = BlockIndex.build(composition.skin.surface, composition.skin.thickness)
         vessel = Vessel(composition, index, bait.hardware, bait.frame, bait.water.density)
         tip = float((bait.body.surface.vertices @ bait.frame.nose).max())
-        return cls(left, freed, composition, vessel, tip)
+        return cls(left, bait, freed, composition, vessel, tip)
 
     @property
     def frame(self) -> Frame:

@@ -26,6 +26,11 @@ PIN_WALL: Final = 1.0e-3
 """m. Least wall left round a pin's hole; ours."""
 PINS: Final = 3
 _VOXELS: Final = 200_000
+_STEP: Final = 0.5e-3
+"""m. Between places that are tried for a pin."""
+_WITHIN: Final = 0.12
+"""Share of the body's length by which a pin may stray from its place."""
+_TRIED: Final = 16
 _LOST: Final = 1e-7
 """Share of the body that the two halves and the holes may miss together."""
 
@@ -112,34 +117,36 @@ def _block(start: Floats, frame: Frame, reach: float) -> Surface:
 
 def _pins(skin: Surface, frame: Frame, plane: float, others: Sequence[Surface]) -> list[Cylinder]:
     """Pins spread along the body, as thick as there is room for."""
-    turn = np.stack([frame.nose, frame.back, frame.side])
-    turned = skin.moved(rotation=turn)
-    depths = Field.of(turned, pitch_for(turned, _VOXELS))
-    walls = [Boxes.of(skin), *(Boxes.of(other) for other in others)]
-    along = turned.bounds[:, 0]
+    turn = np.stack([frame.nose, frame.side, frame.back])
+    walls = Boxes.of(_together([skin, *others]))
+    low, high = skin.moved(rotation=turn).bounds
+    depths = Field.of(skin.moved(rotation=turn), pitch_for(skin, _VOXELS))
+    nose, back = (np.arange(low[axis], high[axis], _STEP) for axis in (0, 2))
+    grid = np.stack(np.meshgrid(nose, [plane], back, indexing="ij"), axis=-1).reshape(-1, 3)
+    grid = grid[depths.at(grid) > 0]
+    wide = walls.nearest(grid @ turn).distance
     for diameter in PIN_DIAMETERS:
         found = []
         for share in np.linspace(0.2, 0.8, PINS):
-            pin = _pin(depths, walls, turn, plane, diameter, along[0] + share * (along[1] - along[0]))
-            if pin is not None:
-                found.append(pin)
+            centre = low[0] + share * (high[0] - low[0])
+            near = np.abs(grid[:, 0] - centre) <= _WITHIN * (high[0] - low[0])
+            pin = _pin(grid[near][np.argsort(-wide[near])] @ turn, walls, turn[1], diameter)
+            found += [] if pin is None else [pin]
         if len(found) >= 2:
             return found
     return found
 
 
-def _pin(
-    depths: Field, walls: Sequence[Boxes], turn: Floats, plane: float, diameter: float, along: float
-) -> Cylinder | None:
-    """The pin with most wall near a place along the body, None where none has enough."""
-    reach = np.linspace(-0.1, 0.1, 21) * depths.values.shape[0] * depths.pitch
-    height = depths.origin[1] + depths.pitch * np.arange(depths.values.shape[1])
-    grid = np.stack(np.meshgrid(along + reach, height, [plane], indexing="ij"), axis=-1).reshape(-1, 3)
-    depth = depths.at(grid)
-    for place in grid[np.argsort(-depth)[:8]]:
-        pin = Cylinder(place @ turn, turn[2], 2 * PIN_DEPTH, diameter / 2)
-        if depths.at(place[None])[0] <= 0:
-            return None
-        if min(cylinder_standoff(boxes, pin).distance for boxes in walls) >= PIN_WALL:
+def _pin(places: Floats, walls: Boxes, across: Floats, diameter: float) -> Cylinder | None:
+    """The pin at the first of some places that leaves wall enough all round, None where none does."""
+    for place in places[:: max(1, len(places) // _TRIED)][:_TRIED]:
+        pin = Cylinder(place, across, 2 * PIN_DEPTH, diameter / 2)
+        if cylinder_standoff(walls, pin, 2e-5).distance >= PIN_WALL:
             return pin
     return None
+
+
+def _together(surfaces: Sequence[Surface]) -> Surface:
+    starts = np.cumsum([0, *(len(surface.vertices) for surface in surfaces)])
+    faces = [surface.faces + start for surface, start in zip(surfaces, starts, strict=False)]
+    return Surface(np.concatenate([surface.vertices for surface in surfaces]), np.concatenate(faces))

@@ -2,17 +2,26 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
+from meshlure.bait.composition import Part
+from meshlure.bait.pieces import Role
+from meshlure.geometry.moments import NOTHING, Moments
 from meshlure.geometry.surface import Floats
+from meshlure.making.altered import altered
 from meshlure.making.balance.aim import Aim
+from meshlure.making.balance.ground import Ground
 from meshlure.physics.passage import Passage
 from meshlure.physics.posture import Attitude, attitude, horizontal, nose_is_vertical
 from meshlure.physics.repose import Ends, Vessel
 from meshlure.physics.sinking import sinking, submerged
 
+_BELOW = 2e-3
+"""m. Of the centre of gravity below that of buoyancy in a bait that sinks, to begin with."""
+_SPEED_ROUNDS = 6
+_SPEED_CLOSE = 0.02
 _TILT_MEETS = np.cos(np.radians(1.0))
 """Two postures closer than this are one."""
 
@@ -91,3 +100,28 @@ def lands_upright(vessel: Vessel, found: Outcome, goal: Aim) -> bool:
 def sinking_speed(vessel: Vessel, ends: Ends, way: Passage, viscosity: float) -> float:
     """Return how fast a bait sinks, m/s; negative where it rises."""
     return sinking(submerged(vessel, ends, way, viscosity), way, viscosity).speed
+
+
+def reserve_for_speed(ground: Ground, goal: Aim, way: Passage) -> float:
+    """Return about the reserve with which a bait sinks at the speed of an aim, kg, whatever makes it so heavy.
+
+    Notes
+    -----
+    The mass is taken as lying straight below the centre of buoyancy, as far as ballast low in a body brings it; drag
+    that grows with the square of the speed gives the next guess.
+    """
+    assert goal.sink is not None
+    ends = ground.ends(goal.up)
+    hull, base = ground.vessel.hull(ends), ground.mass(ends)
+    displaced = hull.volume * ground.vessel.water
+    reserve = goal.reserve
+    for _ in range(_SPEED_ROUNDS):
+        mass = displaced - reserve
+        wanted = Moments(mass, mass * (hull.centre - _BELOW * goal.up), base.second)
+        part = Part("ballast", Role.INSERT, None, 0.0, wanted - base, hull.centre)
+        vessel = replace(ground.vessel, composition=altered(ground.composition, NOTHING, [part]))
+        speed = sinking_speed(vessel, ends, way, ground.bait.water.viscosity)
+        if speed <= 0 or abs(speed / goal.sink - 1) <= _SPEED_CLOSE:
+            break
+        reserve *= (goal.sink / speed) ** 2
+    return reserve

@@ -34,6 +34,12 @@ hundredth."""
 _CLOSE: Final = 0.1e-3
 """m. Steps along a rod's axis."""
 
+_SHELL: Final = 0.35e-3
+"""m. Steps over a rod's surface; halfway between two points it comes nearer by a hundredth of a millimetre."""
+
+_NEXT_SLICE: Final = 1e3
+"""m. A slice of the grid counts as so far from the next that distances stay within it."""
+
 _SURE: Final = 0.05e-3
 """m. Held back for both, so that what seems to have room has it."""
 
@@ -107,8 +113,8 @@ class Room:
             return apart
         within = depths.places(depths.inside) @ self.turn
         far = np.asarray(self._other_points.query(within)[0])
-        for surface in self.ground.neighbours:
-            far[Field.of(surface, pitch_for(surface, _VOXELS)).at(within) > 0] = 0.0
+        for field in self._other_fields:
+            far[field.at(within) > 0] = 0.0
         apart[depths.inside] = far
         return apart
 
@@ -117,6 +123,25 @@ class Room:
         slack = self.depths.pitch / 2
         wide = self.depths.values >= radius + self.cover - slack
         return np.asarray(wide & (self._apart >= radius + self.keep_clear - slack))
+
+    def _discs(self, radius: float, along: int) -> Bools:
+        """Voxels about which a disc of a radius, square to an axis of the grid, keeps its distances."""
+        return np.asarray(self._widths(along) >= radius - self.depths.pitch / 2)
+
+    def _widths(self, along: int) -> Floats:
+        """Radius of the largest disc about every voxel that keeps its distances, m."""
+        from scipy.ndimage import distance_transform_edt
+
+        if along not in self._known_widths:
+            slack, pitch = self.depths.pitch / 2, self.depths.pitch
+            sure = (self.depths.values >= self.cover - slack) & (self._apart >= self.keep_clear - slack)
+            sampling = np.where(np.arange(3) == along, _NEXT_SLICE, pitch)
+            self._known_widths[along] = np.asarray(distance_transform_edt(sure, sampling=sampling)) - pitch / 2
+        return self._known_widths[along]
+
+    @cached_property
+    def _known_widths(self) -> dict[int, Floats]:
+        return {}
 
     def _bored(self, radius: float) -> Bools:
         """Voxels from which a hole of a radius straight down to the belly stays clear of all else."""
@@ -128,12 +153,11 @@ class Room:
 
         Notes
         -----
-        Taken as balls along its axis, which is exact but for the flat ends of a rod in a taper: those have a little
-        more room than is said here. The grid errs by half a voxel either way.
+        A rod is a stack of discs, a row of balls one of balls. The grid errs by half a voxel either way.
         """
         kind, along = ballast.kind, 2 if ballast.kind.pocket == FROM_BELLY else 0
         radius = kind.diameter / 2 + kind.fit
-        free = self._roomy(radius)
+        free = self._roomy(radius) if kind.shape == BALL else self._discs(radius, along)
         if kind.pocket == FROM_BELLY:
             free &= self._bored(radius)
         if kind.shape == BALL:
@@ -172,27 +196,44 @@ class Room:
 
         Notes
         -----
-        Every place of a rod is within its radius of its axis, so that the axis' distance less the radius is never too
-        much; but for the flat ends in a taper it is what is left. Points stand for the skins; a twentieth of a
-        millimetre is held back for that.
+        Points stand for the skins, and others for the ballast where its axis alone does not settle it: every place of a
+        rod is within its radius of its axis. A twentieth of a millimetre is held back for that.
         """
         along = np.array([float(ballast.middle @ self.ground.frame.nose)])
         kind = ballast.kind
         reach = (kind.diameter if kind.pocket == FROM_BELLY else ballast.length) / 2 + kind.fit
         if not self._allowed(along, reach).all():
             return False
-        axis = np.concatenate([_axis(piece) for piece in ballast.room()])
-        radius = kind.diameter / 2 + kind.fit + _SURE
-        others = self._other_points
-        return _clear(self._skin_points, axis, radius + self.cover) and (
-            others is None or _clear(others, axis, radius + self.keep_clear)
+        pieces = ballast.room()
+        if not self._within(np.concatenate([_axis(piece) for piece in pieces])):
+            return False
+        return self._keeps(self._skin_points, pieces, self.cover) and (
+            self._other_points is None or self._keeps(self._other_points, pieces, self.keep_clear)
         )
+
+    def _within(self, points: Floats) -> bool:
+        """Whether points lie in the body and in no other piece, by the grids: distances alone do not tell the side."""
+        deep = self.depths.at(points @ self.turn.T).min() > 0
+        return bool(deep and all(field.at(points).max() < 0 for field in self._other_fields))
+
+    @cached_property
+    def _other_fields(self) -> tuple[Field, ...]:
+        return tuple(Field.of(surface, pitch_for(surface, _VOXELS)) for surface in self.ground.neighbours)
+
+    @staticmethod
+    def _keeps(tree: cKDTree[None], pieces: Sequence[Solid], distance: float) -> bool:
+        for piece in pieces:
+            if _clear(tree, _axis(piece), piece.radius + distance + _SURE):
+                continue
+            if not isinstance(piece, Cylinder) or not _clear(tree, _shell(piece), distance + _SURE):
+                return False
+        return True
 
     def longest(self, ballast: Ballast) -> float:
         """Return the length of the longest rod of a kind that has room anywhere, m, by the grid; 0 where none has."""
         kind, along = ballast.kind, 2 if ballast.kind.pocket == FROM_BELLY else 0
         radius = kind.diameter / 2 + kind.fit
-        free = self._roomy(radius)
+        free = self._discs(radius, along)
         if kind.pocket == FROM_BELLY:
             free &= self._bored(radius)
         elif self.between is not None:
@@ -230,6 +271,18 @@ def _axis(piece: Solid) -> Floats:
         return piece.middle[None]
     count = int(np.ceil(piece.length / _CLOSE)) + 1
     return np.asarray(piece.middle + np.linspace(-0.5, 0.5, count)[:, None] * piece.length * piece.axis)
+
+
+def _shell(piece: Cylinder) -> Floats:
+    """Points all over a cylinder's surface, (n, 3) array, m."""
+    around = 2 * np.pi * np.arange(n := max(12, int(2 * np.pi * piece.radius / _SHELL))) / n
+    circle = np.column_stack([np.cos(around), np.sin(around)]) @ piece.across
+    heights = np.linspace(-0.5, 0.5, max(2, int(piece.length / _SHELL) + 1)) * piece.length
+    side = (heights[:, None, None] * piece.axis + piece.radius * circle).reshape(-1, 3)
+    rings = np.linspace(0.0, piece.radius, max(2, int(piece.radius / _SHELL)))[:-1]
+    ends = (rings[:, None, None] * circle).reshape(-1, 3)
+    half = piece.length / 2 * piece.axis
+    return np.asarray(piece.middle + np.concatenate([side, ends + half, ends - half]))
 
 
 def _clear(tree: cKDTree[None], points: Floats, distance: float) -> bool:

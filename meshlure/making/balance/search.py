@@ -34,6 +34,8 @@ _LIFT: Final = 0.25e-3
 _TRIED: Final = 12
 """Places tried exactly before a kind is given up."""
 _HALVINGS: Final = 6
+_SHORTER: Final = (0.99, 0.93, 0.85)
+"""Shares of the longest rod by the grid that are tried where that is all there is room for."""
 _HALF_DIAGONAL: Final = float(np.sqrt(3) / 2)
 _ALIKE: Final = float(np.radians(0.05))
 """rad. Places whose postures differ by less are alike."""
@@ -111,6 +113,12 @@ class Search:
                 option = self._settled(kind, net)
                 if option is not None:
                     self.options.append(option)
+        if not self.options:
+            # Nothing has the mass that is wanted: what comes nearest is the most that has room.
+            for kind, longest in self.cramped.items():
+                option = self._shortened(kind, longest)
+                if option is not None:
+                    self.options.append(option)
 
     def _kinds(self, metal: Substance, net: float) -> Iterator[Kind]:
         glue = self._glue()
@@ -135,8 +143,7 @@ class Search:
 
     def _settled(self, kind: Kind, net: float) -> Option | None:
         """The best place for one kind, None where it has none."""
-        frame, body = self.ground.frame, self.ground.body_density
-        axis = frame.back if kind.pocket == FROM_BELLY else frame.nose
+        body, axis = self.ground.body_density, self._axis(kind)
         if kind.shape == ROD:
             length = kind.length_for(net, body)
             if length < max(_SHORTEST, _FLATTEST * kind.diameter):
@@ -152,6 +159,23 @@ class Search:
             return None
         placed = self._place(ballast, net, places)
         return None if placed is None else Option(placed, self.outcome_of(placed))
+
+    def _shortened(self, kind: Kind, longest: float) -> Option | None:
+        """The longest rod of a kind that has room, in its best place."""
+        for share in _SHORTER:
+            length = share * longest
+            net = kind.net(length, self.ground.body_density) if length > 0 else 0.0
+            if length < max(_SHORTEST, _FLATTEST * kind.diameter) or net <= 0:
+                return None
+            ballast = Ballast(kind, length, np.zeros(3), self._axis(kind))
+            places = self.room.places(ballast)
+            placed = self._place(ballast, net, places) if len(places) else None
+            if placed is not None:
+                return Option(placed, self.outcome_of(placed))
+        return None
+
+    def _axis(self, kind: Kind) -> Floats:
+        return self.ground.frame.back if kind.pocket == FROM_BELLY else self.ground.frame.nose
 
     def outcome_of(self, ballast: Ballast) -> Outcome:
         """Return how the bait behaves with ballast in a place."""
