@@ -147,6 +147,7 @@ def study(bait: Bait, against: Bait | None = None) -> Study:
         "drag": passage_tree.drag(drags),
         "flight": flight,
         "sinking": sinking_tree.sinking(below, pulls),
+        "pour": None,
         **account.stated(bait, mass, held, posed.trees, speed, pull),
         "assumptions": account.assumptions(bait, speed, pull),
         "cautions": account.cautions(bait),

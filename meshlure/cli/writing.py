@@ -66,3 +66,18 @@ def write_made(out: Path, *, page: bool, make: Callable[[Path], tuple[Study, Seq
         found = replace(found, results=results)
         (folder / RESULTS).write_text(found.to_json(), encoding="utf-8")
     return found
+
+
+BENCH = "bench.html"
+
+
+def write_bench(found: Study, out: Path) -> Study:
+    """Write results.json and the bench sheet of a study with a pour; return the study with their names in it."""
+
+    def make(folder: Path) -> tuple[Study, Sequence[str]]:
+        from meshlure.report.bench import bench
+
+        (folder / BENCH).write_text(bench(found), encoding="utf-8", errors="backslashreplace")
+        return found, (BENCH,)
+
+    return write_made(out, page=False, make=make)

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Collection, Sequence
 from math import degrees
 from typing import Any
 
@@ -153,8 +153,8 @@ def _row(what: str, value: str, source: str, assumed: bool) -> Tree:
     return {"what": what, "value": value, "source": source, "assumed": assumed}
 
 
-def cautions(bait: Bait) -> list[Tree]:
-    """Return the reminders that the bait's materials, hooks and balls call for."""
+def cautions(bait: Bait, more: Collection[str] = ()) -> list[Tree]:
+    """Return the reminders that the bait's materials, hooks and balls call for, and those of further triggers."""
     substances = [bait.body.substance, *(piece.substance for piece in bait.pieces)]
     substances += [piece.glue for piece in bait.pieces]
     substances += [balls.substance for balls in bait.balls]
@@ -165,4 +165,5 @@ def cautions(bait: Bait) -> list[Tree]:
     triggers |= {trigger for item in bait.hardware for trigger in item.triggers}
     if bait.balls:
         triggers.add("small parts")
+    triggers |= set(more)
     return [{"trigger": caution.trigger, "text": caution.text} for caution in kept_cautions(triggers)]
