@@ -36,7 +36,7 @@ from meshlure.version import VERSION
 
 Tree = dict[str, Any]
 
-PHASES = ("reading", "soundness", "weight", "posture", "budget", "areas", "drag", "flight", "sinking", "page")
+PHASES = ("reading", "soundness", "weight", "posture", "budget", "areas", "drag", "flight", "sinking", "page", "mould")
 
 
 class Clock:
@@ -151,6 +151,7 @@ def study(bait: Bait, against: Bait | None = None) -> Study:
         **account.stated(bait, mass, held, posed.trees, speed, pull),
         "assumptions": account.assumptions(bait, speed, pull),
         "cautions": account.cautions(bait),
+        "mould": None,
         "timings_s": clock.spent,
     }
     return Study(tree, views)

@@ -142,6 +142,8 @@ NULLS = {
     "$.sinking.starts[].seconds_to_1m", "$.sinking.starts[].seconds_to_3m",
     "$.budget.rows[].nose_up_deg", "$.budget.rows[].lean_deg", "$.budget.monte_carlo.nose_up_deg",
     "$.budget.monte_carlo.lean_deg", "$.budget.monte_carlo.limits[].share", "$.budget.monte_carlo.pass_share",
+    "$.mould", "$.mould.undercut_at_mm", "$.mould.undercuts[].piece", "$.mould.sprue", "$.mould.box_mm",
+    "$.mould.keys[].gap_mm", "$.mould.pieces[].file",
     "$.line", "$.limits[].value", "$.limits[].met", "$.measured", "$.measured.water_c",
 }  # fmt: skip
 

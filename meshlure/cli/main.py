@@ -10,7 +10,7 @@ from typing import Final, NoReturn
 
 import typer
 
-from meshlure.cli import balance, pour, report
+from meshlure.cli import balance, mould, pour, report
 from meshlure.cli.terminal import answer, harmless, tell
 from meshlure.errors import Fault, InputError
 from meshlure.version import VERSION
@@ -37,6 +37,7 @@ app = typer.Typer(
 )
 app.command("report", help=report.HELP, short_help=report.SHORT)(report.report)
 app.command("balance", help=balance.HELP, short_help=balance.SHORT)(balance.balance)
+app.command("mould", help=mould.HELP, short_help=mould.SHORT)(mould.mould)
 app.command("pour", help=pour.HELP, short_help=pour.SHORT)(pour.pour)
 
 

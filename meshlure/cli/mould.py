@@ -1,0 +1,82 @@
+"""`meshlure mould`: from a bait file to the boards that silicone is poured over."""
+
+from __future__ import annotations
+
+from pathlib import Path
+from typing import Annotated, Final
+
+import typer
+
+from meshlure.cli.terminal import answer, hand_on
+from meshlure.errors import Fault, InputError
+
+SHORT: Final = "Make the boards to mould a bait from, and study how it parts."
+
+HELP: Final = """Make the boards to mould a bait from, and study how it parts.
+
+Each of two boards carries half of the scaled body standing proud, with sprue, vents and keys, for silicone to be
+poured over. The bait file's [mould] says how; without one, common practice is taken:
+
+\b
+  meshlure mould samples/stick/stick.toml --out out/mould
+
+Or only the scaled master, with a tab to hang it by:
+
+\b
+  meshlure mould samples/stick/stick.toml --master --tab --out out/master
+
+Exit code: 0 done, 1 done but a fault was found, 2 the input cannot be used, 3 a fault of ours.
+"""
+
+
+def mould(
+    bait: Annotated[Path, typer.Argument(metavar="BAIT.toml", help="Bait file.")],
+    out: Annotated[
+        Path | None,
+        typer.Option("--out", metavar="DIR", help="Folder to write; absent, empty, or from an earlier run."),
+    ] = None,
+    one_piece: Annotated[
+        bool, typer.Option("--one-piece", help="A single open mould, for a part with a flat back.")
+    ] = False,
+    master: Annotated[bool, typer.Option("--master", help="Only the scaled master, no boards.")] = False,
+    tab: Annotated[bool, typer.Option("--tab", help="With --master: add a tab with a hole to hang it by.")] = False,
+    no_page: Annotated[bool, typer.Option("--no-page", help="Write results.json, but no report.html.")] = False,
+    json: Annotated[bool, typer.Option("--json", help="Print results.json; --out may then be left out.")] = False,
+    debug: Annotated[bool, typer.Option("--debug", help="On a fault of ours, print where it happened.")] = False,
+) -> None:
+    """Make a mould."""
+    del debug  # read by the entry, which every command shares
+    if out is None and not json:
+        raise InputError(
+            Fault("there is nowhere to write to", "--out", "nothing", "a folder", "add --out DIR, or --json")
+        )
+    if one_piece and master:
+        raise InputError(
+            Fault("only one of these can be made", "mould", "--one-piece, --master", "one of them", "leave one out")
+        )
+    if tab and not master:
+        raise InputError(Fault("a tab belongs to a master", "--tab", "no --master", "--master --tab", "add --master"))
+    if out is not None:
+        from meshlure.files.folder import check_folder
+
+        check_folder(out)
+    from meshlure.bait.loading import read_bait
+    from meshlure.making.mould.design import Kind
+    from meshlure.moulding import mould as design
+    from meshlure.moulding import write
+
+    kind = Kind.ONE_PIECE if one_piece else Kind.MASTER if master else Kind.HALVES
+    made = design(read_bait(bait), kind, tab)
+    found = made.study
+    if out is not None:
+        from meshlure.cli.writing import write_made
+
+        found = write_made(out, page=not no_page, make=lambda folder: write(made, folder))
+    if json:
+        hand_on(found.to_json())
+    else:
+        from meshlure.cli.castings import mould_lines
+
+        answer(*mould_lines(found.results, out))
+    if any(finding["level"] == "fault" for finding in found.results["findings"]):
+        raise typer.Exit(1)
