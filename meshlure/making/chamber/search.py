@@ -1,0 +1,114 @@
+"""Every bore worth to be offered for what a maker asks."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from typing import Final
+
+from meshlure.making.chamber.bore import Bore, measured, shortened
+from meshlure.making.chamber.fit import bores
+from meshlure.making.chamber.grid import Grid
+from meshlure.making.chamber.line import Rules
+from meshlure.making.chamber.needs import Choice, Needs
+from meshlure.making.chamber.opening import Opening, at_end, from_belly
+from meshlure.making.chamber.option import Option
+from meshlure.making.chamber.site import Site
+
+ENOUGH: Final = 5
+"""Ways to offer at least, where there are as many: with fewer choices of balls more places are looked for."""
+
+_MOST_PLACES = 3
+
+_WORTH = 0.25
+"""Of the way in the longest bore, what a shorter one must leave to be offered; ours."""
+
+_CLOSE = 0.25e-3
+"""m to which the length of a shorter bore is found."""
+
+_OPENS = {"nose": 1, "tail": -1}
+
+Tell = Callable[[str], None]
+
+
+def rules(asked: Needs, ball: float) -> Rules:
+    """Return the distances that a bore for a ball of a diameter, m, must keep."""
+    opens = _OPENS.get(asked.open_to, 0)
+    return Rules(asked.cut(ball) / 2, asked.wall, asked.end_wall, asked.clear, opens)
+
+
+def options(site: Site, asked: Needs, grid: Grid, tell: Tell = lambda _: None) -> list[Option]:
+    """Return the longest bores for all balls to choose from, by diameter.
+
+    Parameters
+    ----------
+    site : Site
+    asked : Needs
+    grid : Grid
+    tell : callable
+        Told each diameter.
+    """
+    diameters = sorted({choice.diameter for choice in asked.choices}, reverse=True)
+    places = min(_MOST_PLACES, -(-ENOUGH // len(asked.choices)))
+    found = []
+    for diameter in diameters:
+        tell(f"bores for balls of {diameter * 1e3:g} mm")
+        choices = [choice for choice in asked.choices if choice.diameter == diameter]
+        least = min(asked.shortest(choice) for choice in choices)
+        for bore in bores(site, grid, rules(asked, diameter), least, places):
+            found += [
+                option
+                for choice in choices
+                if bore.length >= asked.shortest(choice) and (option := made(site, asked, choice, bore)) is not None
+            ]
+    return found
+
+
+def made(site: Site, asked: Needs, choice: Choice, bore: Bore) -> Option | None:
+    """Return a bore with its balls and its opening; None where it cannot be opened as asked."""
+    opening: Opening | None = None
+    if asked.open_to == "belly":
+        opening = from_belly(site, bore, asked.end_wall, asked.clear)
+        if opening is None:
+            return None
+    elif asked.open_to in _OPENS:
+        opening = at_end(site, bore, asked.open_to)
+    return Option(choice, bore, asked.lining, opening)
+
+
+def shorter(site: Site, asked: Needs, option: Option, holds: Callable[[Option], bool]) -> Option | None:
+    """Return the longest of an option's shorter bores for which something holds; None where it does for none.
+
+    Parameters
+    ----------
+    site : Site
+    asked : Needs
+    option : Option
+        For which it does not hold.
+    holds : callable
+        Asked of an option; holds the more likely the shorter the bore.
+
+    Notes
+    -----
+    A bore in which the balls have less than a quarter of their way is of no use, and not looked at. The end that the
+    bore is drilled from stays where it is, else the tail's, so that the balls lie as far aft in flight. The length is
+    found to a quarter of a millimetre.
+    """
+    low, high = max(asked.shortest(option.choice), option.choice.row + _WORTH * option.travel), option.bore.length
+    best = _cut_back(site, asked, option, low)
+    if low >= high or best is None or not holds(best):
+        return None
+    while high - low > _CLOSE:
+        middle = (low + high) / 2
+        tried = _cut_back(site, asked, option, middle)
+        if tried is not None and holds(tried):
+            best, low = tried, middle
+        else:
+            high = middle
+    return best
+
+
+def _cut_back(site: Site, asked: Needs, option: Option, length: float) -> Option | None:
+    """An option with its bore shortened to a length."""
+    less = option.bore.length - length
+    nose, tail = (0.0, less) if asked.open_to == "nose" else (less, 0.0)
+    return made(site, asked, option.choice, measured(site, shortened(option.bore.cut, nose, tail)))
