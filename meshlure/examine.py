@@ -8,6 +8,8 @@ from collections.abc import Iterator, Sequence
 from contextlib import contextmanager
 from typing import Any
 
+import numpy as np
+
 from meshlure import flying
 from meshlure.bait.composition import Composition, Part, compose, weighed
 from meshlure.bait.pieces import Bait
@@ -30,9 +32,11 @@ from meshlure.results import account, pieces, shape, water
 from meshlure.results import budget as budget_tree
 from meshlure.results import passage as passage_tree
 from meshlure.results import sinking as sinking_tree
+from meshlure.results.changes import changes
 from meshlure.results.study import Study
 from meshlure.stock.waters import standard_air
 from meshlure.version import VERSION
+from meshlure.weighing import weigh
 
 Tree = dict[str, Any]
 
@@ -93,8 +97,10 @@ def study(bait: Bait, against: Bait | None = None) -> Study:
         parts = weighed(composition, posed.ends)
         held = _reserve(bait, composition, parts, mass, hull.volume)
     with clock.phase("budget"):
+        main = posed.main
+        up = main.rest.state.up if isinstance(main, Repose) else main.hang.up
         dry = posed.main.dry if isinstance(posed.main, Repose) else ()
-        spent = budget(bait, parts, skin, held, Stance.of(vessel, posed.main), dry)
+        spent = budget(bait, parts, skin, held, Stance.of(vessel, posed.main), dry, composition.core)
     with clock.phase("areas"):
         outer = index if skin.outer is skin.surface else BlockIndex.build(skin.outer)
         seen = silhouettes(skin.outer, skin.outer_pairs, frame, bait.axes)
@@ -106,6 +112,8 @@ def study(bait: Bait, against: Bait | None = None) -> Study:
             for r in composition.rows
         ]
         views = shape.views(seen, shape.drawn_pieces(bait.pieces), frame, tip, rows)
+    with clock.phase("measured"):
+        copy, odd = weigh(bait, vessel, posed, held, tip)
     with clock.phase("drag"):
         way = passage(skin, bait.hardware, frame, cuts, outer)
         speed, pull = flying.launch(bait, mass.amount), flying.line_pull(bait, mass.amount)
@@ -118,6 +126,7 @@ def study(bait: Bait, against: Bait | None = None) -> Study:
         viscosity = bait.water.viscosity
         below = sinking(submerged(vessel, posed.ends, way, viscosity), way, viscosity, bait.plan.bait.suspends_within)
         pulls = tow(way, bait.plan.retrieve.speeds, bait.water.density, viscosity)
+    nearer = changes(bait.plan, vessel, posed.ends, up, float(np.ptp(bait.body.surface.vertices @ frame.nose)), tip)
     tree: Tree = {
         "format": 1,
         "run": uuid.uuid4().hex,
@@ -126,7 +135,7 @@ def study(bait: Bait, against: Bait | None = None) -> Study:
         "inputs": pieces.inputs(bait),
         "files": [],
         "frame": pieces.frame(frame),
-        "findings": pieces.findings([*bait.findings, *composition.findings, *posed.findings]),
+        "findings": pieces.findings([*bait.findings, *composition.findings, *posed.findings, *odd]),
         "size": pieces.size(bait.body.surface, frame),
         "facets": pieces.facets((bait.body, *bait.pieces), _mesh_volumes(bait)),
         "pieces": pieces.pieces(composition, posed.ends),
@@ -137,6 +146,7 @@ def study(bait: Bait, against: Bait | None = None) -> Study:
         "smooth": water.smooth(composition.deficit, mass.amount, hull.volume, bait.water),
         "waters": water.waters(mass.amount, hull.volume, bait.plan.bait.suspends_within),
         "postures": posed.trees,
+        "changes": nearer,
         "righting": posed.righting,
         "balls": [row | {"reserve_g": held.reserve * 1e3} for row in posed.balls],
         "areas": shape.areas(seen),
@@ -148,9 +158,11 @@ def study(bait: Bait, against: Bait | None = None) -> Study:
         "flight": flight,
         "sinking": sinking_tree.sinking(below, pulls),
         "pour": None,
-        **account.stated(bait, mass, held, posed.trees, speed, pull),
+        "measured": copy,
+        **account.stated(bait, held, posed.trees, speed, pull),
         "assumptions": account.assumptions(bait, speed, pull),
         "cautions": account.cautions(bait),
+        "balance": None,
         "mould": None,
         "timings_s": clock.spent,
     }

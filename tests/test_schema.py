@@ -144,6 +144,12 @@ NULLS = {
     "$.budget.monte_carlo.lean_deg", "$.budget.monte_carlo.limits[].share", "$.budget.monte_carlo.pass_share",
     "$.mould", "$.mould.undercut_at_mm", "$.mould.undercuts[].piece", "$.mould.sprue", "$.mould.box_mm",
     "$.mould.keys[].gap_mm", "$.mould.pieces[].file",
+    "$.changes[].piece", "$.changes[].by_mm", "$.changes[].mass_g", "$.changes[].from_nose_mm", "$.changes[].reserve_g",
+    "$.balance", "$.balance.target", "$.balance.target.sink_m_s", "$.balance.options[].length_mm",
+    "$.balance.options[].spacing_mm", "$.balance.options[].glue", "$.balance.options[].nose_up_deg",
+    "$.balance.options[].lean_deg", "$.balance.options[].clear_mm", "$.balance.options[].score",
+    "$.balance.options[].sink_m_s", "$.balance.options[].flight.trim_deg", "$.balance.taken", "$.balance.body_density",
+    "$.balance.body_density.nose_up_deg", "$.balance.body_density.lean_deg",
     "$.line", "$.limits[].value", "$.limits[].met", "$.measured", "$.measured.water_c",
 }  # fmt: skip
 
