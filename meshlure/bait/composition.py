@@ -16,13 +16,14 @@ from meshlure.bait.meshpiece import solid_of
 from meshlure.bait.outside import outside_findings
 from meshlure.bait.overlaps import Filling, fill
 from meshlure.bait.pieces import Bait, MeshPiece, Role, Substance
+from meshlure.bait.printed import Core, as_printed, core_left, print_findings, substance_of
 from meshlure.bait.relations import Relation, relation
 from meshlure.bait.smooth import Deficit, coarse, deficit
 from meshlure.errors import Fault, InputError
 from meshlure.findings import Finding, Level
 from meshlure.geometry.moments import NOTHING, Moments, point_moments, skin_moments, solid_moments
 from meshlure.geometry.solids import Solid, SolidError, new_tag
-from meshlure.geometry.surface import Bools, Floats, Surface
+from meshlure.geometry.surface import Bools, Floats, Surface, together
 from meshlure.geometry.topology import EdgePairs, paired
 
 _BOOKS = 1e-9
@@ -98,6 +99,8 @@ class Composition:
     deficit : Deficit
         What the facets leave out.
     findings : tuple of Finding
+    core : Core or None
+        What lies within the wall of a printed body.
     """
 
     parts: tuple[Part, ...]
@@ -105,6 +108,7 @@ class Composition:
     skin: Skin
     deficit: Deficit
     findings: tuple[Finding, ...]
+    core: Core | None = None
 
     @cached_property
     def still_mass(self) -> Moments:
@@ -158,7 +162,10 @@ def compose(bait: Bait) -> Composition:
     skin = _skin(bait, outer, filling)
     short = deficit(body, pieces, filling, skin.surface, left)
     findings += coarse(body, bait.water.density)
-    parts = [_part(body, material), *_filling_parts(pieces, filling)]
+    core = None if body.printed is None else core_left(body.printed, filling.everything())
+    if core is not None:
+        findings += print_findings(body, core, bait.water.density)
+    parts = [_body_part(body, material, core), *_filling_parts(pieces, filling)]
     parts += [
         Part(h.name, Role.HARDWARE, h.substance, h.volume, point_moments(h.mass, h.at), h.at) for h in bait.hardware
     ]
@@ -166,7 +173,7 @@ def compose(bait: Bait) -> Composition:
         volume, substance = skin_moments(skin.surface, skin.thickness), bait.coat.substance
         parts.append(Part("coat", Role.COAT, substance, volume.amount, _weighed(volume, substance), volume.centre))
     rows, tight = _rows(bait, filling)
-    return Composition(tuple(parts), rows, skin, short, tuple(findings + tight))
+    return Composition(tuple(parts), rows, skin, short, tuple(findings + tight), core)
 
 
 def weighed(composition: Composition, ends: Mapping[str, str]) -> tuple[Part, ...]:
@@ -177,6 +184,11 @@ def weighed(composition: Composition, ends: Mapping[str, str]) -> tuple[Part, ..
         volume, mass = row.volume(end), row.mass(end)
         parts.append(Part(f"balls in {row.balls.chamber}", Role.BALL, made_of, volume.amount, mass, mass.centre))
     return tuple(parts)
+
+
+def room_taken(bait: Bait) -> Solid | None:
+    """Return the joined room of everything that lies in or on the body, None where there is nothing."""
+    return fill(bait.body, with_gaps(bait.body, bait.pieces).pieces).everything()
 
 
 def inserts_left(bait: Bait) -> dict[str, Solid]:
@@ -275,7 +287,7 @@ def _skin(bait: Bait, outer: _Outer, filling: Filling) -> Skin:
         if outer.solid is not None:
             wet = wet.met(outer.solid)
         walls = wet.surface().turned()
-        surface = _together(surface, walls)
+        surface = together(surface, walls)
         thickness = np.concatenate([thickness, np.zeros(len(walls.faces))])
         own = np.concatenate([own, np.zeros(len(walls.faces), dtype=np.bool_)])
     area = np.linalg.norm(outer.surface.double_areas, axis=1) / 2
@@ -289,15 +301,19 @@ def _plain_skin(body: MeshPiece) -> Skin:
     return Skin(surface, np.zeros(len(surface.faces)), every, surface, body.pairs, surface, {}, surface.area)
 
 
-def _together(first: Surface, second: Surface) -> Surface:
-    faces = np.concatenate([first.faces, second.faces + len(first.vertices)])
-    return Surface(np.concatenate([first.vertices, second.vertices]), faces)
-
-
 def _part(piece: MeshPiece, volume: Moments) -> Part:
     return Part(
         piece.name, piece.role, piece.substance, volume.amount, _weighed(volume, piece.substance), volume.centre
     )
+
+
+def _body_part(body: MeshPiece, volume: Moments, core: Core | None) -> Part:
+    """The body's own material; that of a printed one is wall and infill, each where it lies."""
+    if core is None or body.printed is None:
+        return _part(body, volume)
+    mass = as_printed(volume, core.volume, body.printed)
+    substance = substance_of(body.printed, mass.amount, volume.amount)
+    return Part(body.name, body.role, substance, volume.amount, mass, volume.centre)
 
 
 def _filling_parts(pieces: tuple[MeshPiece, ...], filling: Filling) -> list[Part]:

@@ -14,6 +14,7 @@ import numpy as np
 from meshlure.bait.extent import check_reach, size_findings
 from meshlure.bait.meshpiece import shape
 from meshlure.bait.pieces import Bait, Balls, Coat, Frame, MeshPiece, Role, Substance
+from meshlure.bait.printed import as_drawn, printed, solid_print
 from meshlure.bait.refusals import refuse
 from meshlure.bait.substances import hardware, substance
 from meshlure.errors import Fault, InputError
@@ -104,16 +105,13 @@ class _Lookup:
     def __init__(self, plan: BaitFile) -> None:
         self._faults: list[Fault] = []
         self._file = f"{plan.path.name}: " if plan.path is not None else ""
-        if plan.body.printed is not None:
-            self._faults.append(
-                Fault(
-                    what="the weight of a printed wall with infill is not computed",
-                    where=f"{self._file}body.printed",
-                    allowed="density or material",
-                    next_step="weigh the print and state density = its mass over the body's volume, both in one unit",
-                )
-            )
         stated = plan.body.substance
+        made = plan.body.printed
+        self.solid = (
+            None
+            if made is None
+            else self._ask(lambda: solid_print(substance(made.substance, f"{self._file}body.printed.material"), made))
+        )
         place = f"{self._file}body.material" if plan.path is not None else "--material"
         self.body = None if stated is None else self._ask(lambda: substance(stated, place))
         self.inserts = [self._insert(number, insert) for number, insert in enumerate(plan.inserts, 1)]
@@ -180,6 +178,10 @@ def _pieces(plan: BaitFile, files: Mapping[str, MeshFile], made: _Lookup) -> tup
     refuse(findings, {name: str(file.path) for name, file in files.items()})
     body_name, *_ = files
     outer = shape(sounds[body_name], body_name)
+    made_of, how = made.body, None
+    if plan.body.printed is not None and made.solid is not None:
+        how = printed(made.solid, plan.body.printed, outer.outer, outer.cavities)
+        made_of = as_drawn(how, outer.outer, outer.cavities)
     pieces = [
         MeshPiece(
             name=body_name,
@@ -189,9 +191,10 @@ def _pieces(plan: BaitFile, files: Mapping[str, MeshFile], made: _Lookup) -> tup
             shells=outer.shells,
             cavities=outer.cavities,
             cavities_flooded=plan.body.cavities == "flooded",
-            substance=made.body,
+            substance=made_of,
             deficit=outer.deficit,
             skin_deficit=outer.skin_deficit,
+            printed=how,
         )
     ]
     for insert, of, glue in zip(plan.inserts, made.inserts, made.glues, strict=True):

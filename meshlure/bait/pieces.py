@@ -79,6 +79,28 @@ class Frame:
 
 
 @dataclass(frozen=True, eq=False)
+class Print:
+    """How a body is printed.
+
+    Attributes
+    ----------
+    solid : Substance
+        Of the print where it is solid.
+    wall : float, m
+        Thickness of the wall, measured square to the skin.
+    infill : float
+        Share of what lies deeper that is solid.
+    core : tuple of Surface
+        What lies deeper, as drawn: without regard to inserts; empty where the walls meet.
+    """
+
+    solid: Substance
+    wall: float
+    infill: float
+    core: tuple[Surface, ...]
+
+
+@dataclass(frozen=True, eq=False)
 class MeshPiece:
     """A piece given by a mesh: the body, an insert or a void.
 
@@ -113,6 +135,8 @@ class MeshPiece:
         Volume that its facets leave out of the smooth part, cavities left out.
     skin_deficit : float, m3
         What the facets of its outward skin alone leave out.
+    printed : Print or None
+        How it is printed; its substance is then that of wall and infill together, as drawn.
     """
 
     name: str
@@ -130,6 +154,7 @@ class MeshPiece:
     glue: Substance | None = None
     deficit: float = 0.0
     skin_deficit: float = 0.0
+    printed: Print | None = None
 
 
 @dataclass(frozen=True, eq=False)

@@ -13,7 +13,7 @@ def pour_lines(results: Tree, out: Path | None) -> tuple[str, ...]:
     """Return the mix, the cups, the bait with it and with batches off, or the print's table, a line a thing."""
     pour = results["pour"]
     lines = [str(results["name"])]
-    lines += _cast(pour) if pour["print"] is None else _print(pour["print"])
+    lines += _cast(pour) if pour["print"] is None else _print(pour)
     lines += [f"  {f['level']}: {f['message']}; {f['advice']}" for f in results["findings"] if f["level"] == "fault"]
     lines += [f"  warning: {f['message']}" for f in results["findings"] if f["code"] == "stiff-mix"]
     assumed = [row["what"] for row in pour["assumptions"] if row["assumed"]]
@@ -31,22 +31,39 @@ def _cast(pour: Tree) -> list[str]:
     low, high = mix["density_low_g_cm3"], mix["density_high_g_cm3"]
     a, b = cups["ratio"]
     ratio = f"{a:g}:{b:g} by {cups['by']}"
+    of = f"{cups['baits']} bait{'' if cups['baits'] == 1 else 's'} of {cups['body_mm3'] / 1000:.2f} cm3"
+    parts = f"part A {cups['part_a_g']:.2f} g, part B {cups['part_b_g']:.2f} g"
     return [
         f"  mix      {mix['resin']['name']} with {mix['balloons']['name']}: {made}, {mix['flow']}",
-        f"           {mix['density_g_cm3']:.3f} g/cm3 cured ({low:.3f} to {high:.3f}); {mix['cups']:.2f} tapped cups of "
-        "balloons to a cup of resin",
-        f"  cups     for {cups['baits']} bait{'' if cups['baits'] == 1 else 's'} of {cups['body_mm3'] / 1000:.2f} cm3 and "
-        f"{cups['waste_share']:.0%} waste, {ratio}:",
-        f"           part A {cups['part_a_g']:.2f} g, part B {cups['part_b_g']:.2f} g, balloons {cups['balloons_g']:.2f} g "
-        f"({cups['balloons_ml']:.1f} ml tapped)",
+        f"           {mix['density_g_cm3']:.3f} g/cm3 cured ({low:.3f} to {high:.3f}), "
+        f"{mix['cups']:.2f} tapped cups of balloons to a cup of resin",
+        f"  cups     for {of} and {cups['waste_share']:.0%} waste, {ratio}:",
+        f"           {parts}, balloons {cups['balloons_g']:.2f} g ({cups['balloons_ml']:.1f} ml tapped)",
         f"  casting  {bait['bare_g']:.2f} g with its inserts, before coat and hooks",
         f"  bait     {outcome_words(bait)}",
         *(f"  {row['off_share']:+.0%} off  {outcome_words(row)}" for row in pour["off"]),
     ]
 
 
-def _print(found: Tree) -> list[str]:
-    raise NotImplementedError
+def _print(pour: Tree) -> list[str]:
+    found, bait = pour["print"], pour["bait"]
+    head = "  ".join(f"{100 * infill:5.0f} %" for infill in found["infills"])
+    asked = found["target_g"] is not None
+    lines = [
+        f"  print    {found['material']['name']}, wall {found['wall_mm']:.4g} mm, infill {found['infill_share']:.0%}: "
+        f"{found['shell_mm3'] / 1000:.2f} cm3 of wall, {found['core_mm3'] / 1000:.2f} cm3 within it",
+        f"  bait     {outcome_words(bait)}",
+        *(f"  {row['off_share']:+.0%} off  {outcome_words(row)}" for row in pour["off"]),
+        f"  flooded  {outcome_words(found['flooded'])}: {found['flooded_water_g']:.2f} g of water in the infill",
+        f"  walls    mass of the whole bait, g, by infill{'; last, the infill that makes ' if asked else ''}"
+        + (f"{found['target_g']:.2f} g" if asked else ""),
+        f"           wall mm  lines  {head}",
+    ]
+    for row in found["rows"]:
+        masses = "  ".join(f"{mass:7.2f}" for mass in row["bait_g"])
+        wanted = "out of reach" if row["infill_share"] is None else f"{row['infill_share']:.1%}"
+        lines.append(f"           {row['wall_mm']:7.2f}  {row['lines']:5.1f}  {masses}{f'  {wanted}' if asked else ''}")
+    return lines
 
 
 def outcome_words(row: Tree) -> str:

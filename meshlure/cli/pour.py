@@ -18,7 +18,8 @@ SHORT: Final = "Resin, balloons and grams for a casting; walls and infill for a 
 
 HELP: Final = """Resin, balloons and grams for a casting; walls and infill for a print.
 
-How many balloons give the body its density, what goes into the cups for some baits, how the bait lies if a batch is 3% off:
+How many balloons give the body its density, what goes into the cups for some baits, how the bait lies if a batch is
+3% off:
 
 \b
   meshlure pour samples/minnow/minnow.toml --baits 6 --out out/pour
@@ -67,7 +68,7 @@ def pour(
 
         check_folder(out)
     from meshlure.bait.loading import load
-    from meshlure.pouring import pour as worked_out
+    from meshlure.pouring.study import pour as worked_out
 
     found = worked_out(load(plan))
     if out is not None:

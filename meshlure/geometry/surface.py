@@ -88,3 +88,10 @@ class Surface:
         if shift is not None:
             vertices = vertices + np.asarray(shift, dtype=np.float64)
         return Surface(vertices, self.faces)
+
+
+def together(*surfaces: Surface) -> Surface:
+    """Return several surfaces as one; none of their vertices are welded."""
+    shift = np.cumsum([0, *(len(surface.vertices) for surface in surfaces)])
+    faces = [surface.faces + start for surface, start in zip(surfaces, shift, strict=False)]
+    return Surface(np.concatenate([surface.vertices for surface in surfaces]), np.concatenate(faces))

@@ -9,6 +9,7 @@ import numpy as np
 
 from meshlure.bait.composition import Part, Skin
 from meshlure.bait.pieces import Bait
+from meshlure.bait.printed import Core
 from meshlure.geometry.surface import Floats
 from meshlure.physics.buoyancy import Reserve
 from meshlure.physics.changes import Changes
@@ -82,7 +83,15 @@ class Budget:
     stance: Stance
 
 
-def budget(bait: Bait, parts: Sequence[Part], skin: Skin, held: Reserve, stance: Stance, dry: Sequence[str]) -> Budget:
+def budget(
+    bait: Bait,
+    parts: Sequence[Part],
+    skin: Skin,
+    held: Reserve,
+    stance: Stance,
+    dry: Sequence[str] = (),
+    core: Core | None = None,
+) -> Budget:
     """Return the error budget of a bait.
 
     Parameters
@@ -97,6 +106,8 @@ def budget(bait: Bait, parts: Sequence[Part], skin: Skin, held: Reserve, stance:
         In the posture that the bait is known by.
     dry : sequence of str
         Names of hardware that is out of the water in it.
+    core : Core or None
+        Of a printed body.
 
     Notes
     -----
@@ -108,7 +119,7 @@ def budget(bait: Bait, parts: Sequence[Part], skin: Skin, held: Reserve, stance:
     """
     up = None if stance.locus is None else stance.locus.up
     layer = layers(skin, bait.frame.side, up, stance.height)
-    asked = whatifs(bait, parts, layer, dry)
+    asked = whatifs(bait, parts, layer, dry, core)
     doubted = doubtful(bait, parts, held.doubts, layer, stance.water, dry)
     lot = drawn(doubted, stance.water)
     ends = [change for one in doubted for change in (one.under, one.over)]

@@ -9,8 +9,9 @@ from typing import Final
 import numpy as np
 
 from meshlure.bait.composition import Part
-from meshlure.bait.pieces import Bait, Hardware, Role
-from meshlure.geometry.moments import Moments
+from meshlure.bait.pieces import Bait, Hardware, Print, Role
+from meshlure.bait.printed import Core
+from meshlure.geometry.moments import Moments, solid_moments
 from meshlure.geometry.surface import Floats
 from meshlure.physics.buoyancy import COAT_SPREAD
 from meshlure.physics.changes import Changes, load, moved
@@ -61,7 +62,9 @@ def net_mass(part: Part, body: Part) -> float:
     return part.mass.amount - density * part.volume
 
 
-def whatifs(bait: Bait, parts: Sequence[Part], skin: Layers, dry: Sequence[str] = ()) -> tuple[Whatif, ...]:
+def whatifs(
+    bait: Bait, parts: Sequence[Part], skin: Layers, dry: Sequence[str] = (), core: Core | None = None
+) -> tuple[Whatif, ...]:
     """Return what could be otherwise about a bait.
 
     Parameters
@@ -73,6 +76,8 @@ def whatifs(bait: Bait, parts: Sequence[Part], skin: Layers, dry: Sequence[str] 
         Of a layer on the body.
     dry : sequence of str
         Names of hardware that is out of the water at rest.
+    core : Core or None
+        Of a printed body.
     """
     body = next(part for part in parts if part.role is Role.BODY)
     at = bait.water.density
@@ -82,6 +87,7 @@ def whatifs(bait: Bait, parts: Sequence[Part], skin: Layers, dry: Sequence[str] 
         *_waters(bait),
         *_coat(bait, skin, at),
         *_densities(body, at),
+        *_flooded(core, at),
         *_ballast(bait, parts, body, at),
         *_flanks(bait, body, skin, at),
         *_bubble(bait, dry, at),
@@ -98,13 +104,26 @@ def _grown(bait: Bait, parts: Sequence[Part], body: Part, skin: Layers, at: floa
         # The skin that the coat lies on grows by the square of the scale.
         mass = mass + four(coat.mass) * (k**2 - 1)
         volume, wet = (layer * bait.coat.thickness * (k**2 - k**3) for layer in (skin.whole, skin.wet))
+    if bait.body.printed is not None:
+        mass = mass - _thinner(bait.body.printed, k)
     grown = "size of body and seats, inserts and hooks as they are"
     yield Whatif(grown, "+1 %", still, Changes.one(at, mass, volume, wet, k))
     yield Whatif("the same, at the mass as it is", "+1 %", still, Changes.one(at, np.zeros(4), volume, wet, k))
     density = 0.0 if body.substance is None else body.substance.density
+    if bait.body.printed is not None:
+        density = bait.body.printed.solid.density
     layer, under = skin.whole * _SKIN, skin.wet * _SKIN
     yield Whatif("skin of the body's material", "+0.1 mm", still, Changes.one(at, layer * density, layer, under))
     yield Whatif("the same, at the mass as it is", "+0.1 mm", still, Changes.one(at, np.zeros(4), layer, under))
+
+
+def _thinner(made: Print, scale: float) -> Floats:
+    """What a printed body's wall, which stays as thick, weighs less than a wall that grows with the body."""
+    lost = np.zeros(4)
+    for part in made.core:
+        strip = part.area * made.wall * (scale - 1) * made.solid.density * (1 - made.infill)
+        lost = lost + load(strip, solid_moments(part).centre)
+    return lost
 
 
 def _hooks(bait: Bait, dry: Sequence[str], at: float) -> Iterator[Whatif]:
@@ -163,6 +182,11 @@ def _densities(body: Part, at: float) -> Iterator[Whatif]:
         if share:
             after = Changes.one(at, four(body.mass) * share)
             yield Whatif("density of the body", f"{share * 100:+.1f} %", Changes.one(at), after)
+
+
+def _flooded(core: Core | None, at: float) -> Iterator[Whatif]:
+    if core is not None and core.air.amount > 0:
+        yield Whatif("the infill full of water", "all of it", Changes.one(at), Changes.one(at, four(core.air) * at))
 
 
 def _ballast(bait: Bait, parts: Sequence[Part], body: Part, at: float) -> Iterator[Whatif]:

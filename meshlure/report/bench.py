@@ -144,4 +144,6 @@ def _outcome(name: str, row: Tree) -> tuple[str, ...]:
 def assumed(pour: Tree) -> Table | None:
     """Return what the sheet rests on that nobody stated."""
     rows = [(row["what"], row["value"], row["source"]) for row in pour["assumptions"] if row["assumed"]]
-    return table("Measure these; a weighed trial casting replaces most of them", ("what", "value", "from"), rows, (0, 1, 2))
+    return table(
+        "Measure these; a weighed trial casting replaces most of them", ("what", "value", "from"), rows, (0, 1, 2)
+    )

@@ -7,7 +7,6 @@ from math import degrees
 from typing import Any
 
 from meshlure.bait.pieces import Bait, Substance
-from meshlure.geometry.moments import Moments
 from meshlure.physics.buoyancy import Reserve
 from meshlure.results.numbers import GRAM, MM, plain
 from meshlure.stock.cautions import cautions as kept_cautions
@@ -16,7 +15,7 @@ from meshlure.stock.waters import standard_air
 Tree = dict[str, Any]
 
 
-def stated(bait: Bait, mass: Moments, reserve: Reserve, postures: Sequence[Tree], speed: float, pull: float) -> Tree:
+def stated(bait: Bait, reserve: Reserve, postures: Sequence[Tree], speed: float, pull: float) -> Tree:
     """Return line, cast at its speed (m/s) with the line's pull (N), retrieve and limits as they are taken."""
     plan = bait.plan
     return {
@@ -31,7 +30,6 @@ def stated(bait: Bait, mass: Moments, reserve: Reserve, postures: Sequence[Tree]
         },
         "retrieve": {"speeds_m_s": list(plan.retrieve.speeds), "assumed": list(plan.retrieve.assumed)},
         "limits": _limits(bait, reserve, postures),
-        "measured": _measured(bait, mass, reserve),
     }
 
 
@@ -56,28 +54,6 @@ def headline(postures: Sequence[Tree]) -> Tree:
     """Return the posture that heads the page: upright afloat, else the first."""
     afloat = [posture for posture in postures if posture["kind"] == "floating" and posture["upright"]]
     return (afloat or list(postures))[0]
-
-
-def _measured(bait: Bait, mass: Moments, reserve: Reserve) -> Tree | None:
-    """Weighings beside what was predicted; None without any."""
-    weighed = bait.plan.measured
-    if weighed is None:
-        return None
-    rows = []
-    for what, value, predicted in (
-        ("dry, g", weighed.dry, mass.amount),
-        ("in water, g", weighed.in_water, -reserve.reserve),
-    ):
-        if value is not None:
-            rows.append(
-                {
-                    "what": what,
-                    "weighed": value * GRAM,
-                    "predicted": predicted * GRAM,
-                    "difference": (value - predicted) * GRAM,
-                }
-            )
-    return {"rows": rows, "water_c": weighed.water}
 
 
 def assumptions(bait: Bait, speed: float, pull: float) -> list[Tree]:

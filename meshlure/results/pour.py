@@ -9,6 +9,7 @@ from typing import Any, Protocol
 from meshlure.bait.composition import Part
 from meshlure.bait.pieces import Bait, Role, Substance
 from meshlure.files.defaults import POUR_STIFF, POUR_THIN
+from meshlure.files.sections.pour import PourSection
 from meshlure.findings import Finding
 from meshlure.making.mix import Batch, Mix
 from meshlure.physics.buoyancy import behaviour
@@ -23,11 +24,19 @@ _ML = 1e6
 
 
 class Got(Protocol):
-    """A bait with its body of some density; see `meshlure.pouring.Outcome`."""
+    """A bait with its body of some density; see `meshlure.pouring.bench.Outcome`."""
+
+    @property
+    def off(self) -> float:
+        """Share by which the body's density is off."""
 
     @property
     def density(self) -> float:
         """Of the body, kg/m3."""
+
+    @property
+    def bare(self) -> float:
+        """Body with all that lies in it, kg."""
 
     @property
     def mass(self) -> float:
@@ -49,67 +58,56 @@ def with_pour(results: Mapping[str, Any], pour: Tree, findings: Sequence[Finding
     return {**results, "pour": pour, "findings": told, "cautions": list(cautions)}
 
 
+def wanted(how: str, density: float, reached: bool) -> Tree:
+    """Return what was asked for: a density of the body, kg/m3, below 0 where it can be none."""
+    return {"by": how, "density_g_cm3": density / 1e3 if density > 0 else None, "reached": reached and density > 0}
+
+
 def cast(
     *,
-    bait: Bait,
-    body: Part,
-    wanted: float,
-    how: str,
+    stated: PourSection,
+    volume: float,
+    wanted: Tree,
     mix: Mix,
-    reached: bool,
     names: tuple[Substance, Substance],
     spread: tuple[float, float],
     batch: Batch,
-    got: Got,
-    off: Sequence[tuple[float, Got]],
-    shares: Sequence[tuple[Mix, Got]],
-    parts: Sequence[Part],
-    threshold: float,
+    got: Tree,
+    off: Sequence[Tree],
+    shares: Sequence[tuple[Mix, Tree]],
 ) -> Tree:
     """Return the tree of a casting.
 
     Parameters
     ----------
-    bait : Bait
-    body : Part
-    wanted : float, kg/m3
-    how : str
-        What asked for that density: "density", "mass" or "reserve".
+    stated : PourSection
+    volume : float, m3
+        Of mix that one bait takes.
+    wanted : dict
     mix : Mix
         That is poured, the nearest where the wanted one is out of reach.
-    reached : bool
     names : (Substance, Substance)
         Resin and balloons.
     spread : (float, float), kg/m3
         How light and how heavy the same mix may come out.
     batch : Batch
-    got : Got
+    got : dict
         The bait with it.
-    off : sequence of (float, Got)
-        With batches so far off.
-    shares : sequence of (Mix, Got)
+    off : sequence of dict
+        With batches that stray.
+    shares : sequence of (Mix, dict)
         With other mixes.
-    parts : sequence of Part
-        Everything that weighs.
-    threshold : float, g
-        Within which it suspends.
     """
-    stated = bait.plan.pour
-    resin, balloons = names
-    bare = [part for part in parts if part.role in (Role.INSERT, Role.VOID, Role.BALL)]
     return {
-        "wanted": {"by": how, "density_g_cm3": wanted / 1e3 if wanted > 0 else None, "reached": reached},
+        "wanted": wanted,
         "mix": {
-            "resin": _named(resin),
-            "balloons": _named(balloons),
-            "share": mix.share,
-            "mass_share": mix.mass_share,
-            "cups": mix.cups,
+            "resin": named(names[0]),
+            "balloons": named(names[1]),
+            **_mix(mix),
             "packing": mix.packing,
             "density_g_cm3": mix.density / 1e3,
             "density_low_g_cm3": spread[0] / 1e3,
             "density_high_g_cm3": spread[1] / 1e3,
-            "flow": mix.flow,
             "pours_to_share": POUR_THIN,
             "stiff_to_share": POUR_STIFF,
         },
@@ -118,7 +116,7 @@ def cast(
             "waste_share": stated.waste,
             "ratio": list(stated.ratio),
             "by": stated.by,
-            "body_mm3": body.volume * MM3,
+            "body_mm3": volume * MM3,
             "volume_ml": batch.volume * _ML,
             "part_a_g": batch.part_a * GRAM,
             "part_b_g": batch.part_b * GRAM,
@@ -129,35 +127,26 @@ def cast(
             "balloons_ml": batch.balloons_bulk * _ML,
             "mass_g": batch.mass * GRAM,
         },
-        "bait": outcome(got, threshold) | {"bare_g": bare_mass(body.volume * got.density, bare)},
-        "off": [{"off_share": share, **outcome(one, threshold)} for share, one in off],
-        "shares": [
-            {
-                "share": one.share,
-                "mass_share": one.mass_share,
-                "cups": one.cups,
-                "flow": one.flow,
-                **outcome(with_it, threshold),
-            }
-            for one, with_it in shares
-        ],
+        "bait": got,
+        "off": list(off),
+        "shares": [{**_mix(one), "outcome": with_it} for one, with_it in shares],
         "print": None,
-        "inserts": inserts(bait, parts),
-        "assumptions": _assumed(bait, names),
+        "assumptions": _assumed(stated, names),
     }
 
 
-def bare_mass(body: float, parts: Sequence[Part]) -> float:
-    """Return what a casting weighs before coat and hooks, g: its body, kg, with all that lies in it."""
-    return (body + sum(part.mass.amount for part in parts)) * GRAM
+def _mix(mix: Mix) -> Tree:
+    return {"share": mix.share, "mass_share": mix.mass_share, "cups": mix.cups, "flow": mix.flow}
 
 
 def outcome(found: Got, threshold: float) -> Tree:
     """Return what a bait is with its body of some density; the threshold in g."""
     angles = found.attitude
     return {
+        "off_share": found.off,
         "density_g_cm3": found.density / 1e3,
         "mass_g": found.mass * GRAM,
+        "bare_g": found.bare * GRAM,
         "reserve_g": found.reserve * GRAM,
         "state": str(behaviour(found.reserve * GRAM, threshold)),
         "nose_up_deg": None if angles is None else in_degrees(angles.nose_up) + 0.0,
@@ -183,7 +172,8 @@ def inserts(bait: Bait, parts: Sequence[Part]) -> list[Tree]:
     ]
 
 
-def _named(of: Substance) -> Tree:
+def named(of: Substance) -> Tree:
+    """Return a material with its range."""
     return {
         "name": of.name or f"{of.density / 1e3:g} g/cm3",
         "density_g_cm3": of.density / 1e3,
@@ -192,29 +182,28 @@ def _named(of: Substance) -> Tree:
     }
 
 
-def _assumed(bait: Bait, names: tuple[Substance, Substance]) -> list[Tree]:
+def _assumed(stated: PourSection, names: tuple[Substance, Substance]) -> list[Tree]:
     """Everything that a mix rests on, what was assumed first."""
-    stated = bait.plan.pour
     resin, balloons = names
     usual = "common practice, no source"
     rows = [
-        _row("density of the cured resin", _span(resin), resin.source, resin.assumed),
-        _row("density of the single balloons", _span(balloons), balloons.source, balloons.assumed),
-        _row(
+        assumption("density of the cured resin", span(resin), resin.source, resin.assumed),
+        assumption("density of the single balloons", span(balloons), balloons.source, balloons.assumed),
+        assumption(
             "share of a tapped cup of balloons that is balloons",
             f"{stated.packing:.0%}",
             "datasheets of the class, from memory" if "packing" in stated.assumed else "stated",
             "packing" in stated.assumed,
         ),
-        _row("most balloons that a thin resin pours with", f"{POUR_THIN:.0%} of the volume", usual, True),
-        _row("most balloons that fill a mould", f"{POUR_STIFF:.0%} of the volume", usual, True),
-        _row(
+        assumption("most balloons that a thin resin pours with", f"{POUR_THIN:.0%} of the volume", usual, True),
+        assumption("most balloons that fill a mould", f"{POUR_STIFF:.0%} of the volume", usual, True),
+        assumption(
             "ratio of parts A and B",
             f"{stated.ratio[0]:g} : {stated.ratio[1]:g} by {stated.by}",
             f"{usual}: the tin says" if "ratio" in stated.assumed else "stated",
             "ratio" in stated.assumed,
         ),
-        _row(
+        assumption(
             "waste in cup, sprue and vents",
             f"{stated.waste:.0%}",
             usual if "waste" in stated.assumed else "stated",
@@ -222,14 +211,16 @@ def _assumed(bait: Bait, names: tuple[Substance, Substance]) -> list[Tree]:
         ),
     ]
     if "densities" in stated.assumed:
-        rows.append(_row("densities of parts A and B", "both as the cured resin", usual, True))
-    return sorted(rows, key=lambda row: not row["assumed"])
+        rows.append(assumption("densities of parts A and B", "both as the cured resin", usual, True))
+    return sorted(rows, key=lambda entry: not entry["assumed"])
 
 
-def _span(of: Substance) -> str:
+def span(of: Substance) -> str:
+    """Return a material with its density and range in words."""
     name = "" if of.name is None else f"{of.name}, "
     return f"{name}{of.density / 1e3:.4g} g/cm3 ({of.low / 1e3:.4g} to {of.high / 1e3:.4g})"
 
 
-def _row(what: str, value: str, source: str, assumed: bool) -> Tree:
+def assumption(what: str, value: str, source: str, assumed: bool) -> Tree:
+    """Return one entry of what a pour rests on."""
     return {"what": what, "value": value, "source": source, "assumed": assumed}
