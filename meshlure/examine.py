@@ -40,7 +40,20 @@ from meshlure.weighing import weigh
 
 Tree = dict[str, Any]
 
-PHASES = ("reading", "soundness", "weight", "posture", "budget", "areas", "drag", "flight", "sinking", "page", "mould")
+PHASES = (
+    "reading",
+    "soundness",
+    "weight",
+    "posture",
+    "budget",
+    "areas",
+    "measured",
+    "drag",
+    "flight",
+    "sinking",
+    "page",
+    "mould",
+)
 
 
 class Clock:
