@@ -226,11 +226,16 @@ def assumptions(made: Mould, rubber: Material) -> list[Tree]:
         "vents": ("vents", "at every high point of the cavity", usual),
         "board": ("boards of the mould", f"{section.board * MM:g} mm", usual),
     }
+    left_out = {"sprue", "vents", "keys"} if made.sprue is None else set()
+    if made.halves is None:
+        left_out |= {"wall", "board"}
     rows = [
         {"what": what, "value": value, "source": source, "assumed": True}
         for key, (what, value, source) in told.items()
-        if key in section.assumed and not (key in {"sprue", "vents", "keys"} and made.sprue is None)
+        if key in section.assumed and key not in left_out
     ]
+    if made.halves is None:
+        return rows
     low, high = rubber.low / 1e3, rubber.high / 1e3
     value = f"{rubber.name}, {rubber.density / 1e3:.4g} g/cm3 ({low:.4g} to {high:.4g})"
     rows.append({"what": "density of the mould", "value": value, "source": rubber.source, "assumed": rubber.assumed})

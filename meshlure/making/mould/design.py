@@ -40,6 +40,9 @@ _COLUMNS: Final = 500
 _WIDENED: Final = np.arange(0.0, 25e-3, 2e-3)
 """m by which the box is widened, the first that leaves room for the keys."""
 
+_FOR_CORNERS: Final = 4
+"""Widenings that are tried for keys near the corners, before keys elsewhere are."""
+
 LEAST_BOARD: Final = 3e-3
 """m. A thinner board has no depth for keys."""
 
@@ -128,7 +131,7 @@ def design(bait: Bait, section: MouldSection, kind: Kind, tab: bool, where: str,
         middle = float(made.body.bounds[:, 2].mean())
         made = made.lowered(shadow.best_height(middle, made.whole.volume))
     progress("studying how it parts")
-    findings = [*bench.scale.findings(), *_hollow_findings(bait, made)]
+    findings = [*bench.scale.findings(), *_hollow_findings(bait, made), *_loose_findings(made)]
     if kind is Kind.ONE_PIECE:
         study = pull_study(made.lowered(LEVEL), section.draft_least, HALVES[:1], lean=False)
     else:
@@ -218,13 +221,14 @@ def _laid_out(made: Plug, bait: Bait, section: MouldSection, where: str) -> _Lai
     """Runners and keys in the smallest box that has room for them."""
     floor = Floor.of(made, bait.frame)
     high = None
-    for widened in _WIDENED:
+    for spread, widened in [(True, more) for more in _WIDENED[:_FOR_CORNERS]] + [(False, more) for more in _WIDENED]:
         box = Box.round_about(made.whole.bounds, section.wall, float(widened))
         spot, sprue, said = lay_sprue(floor, section, box, where)
         high = high_points(floor, sprue) if high is None else high
         vents = lay_vents(floor, section, box, sprue, high, where)
         pins = lay_pins(floor, box, (sprue, *vents.runners))
-        keys = lay_keys(floor, box, (sprue, *vents.runners, *pins.runners), section.keys, section.board)
+        runners = (sprue, *vents.runners, *pins.runners)
+        keys = lay_keys(floor, box, runners, section.keys, section.board, spread)
         if keys is not None:
             more = [_widened(float(widened), section)] if widened else []
             findings = (*said, *vents.findings, *pins.findings, *more)
@@ -285,6 +289,21 @@ def _hollow_findings(bait: Bait, made: Plug) -> list[Finding]:
             )
         )
     return found
+
+
+def _loose_findings(made: Plug) -> list[Finding]:
+    """Tell of what lies inside without anything of the mould that holds it."""
+    return [
+        Finding(
+            code="mould-loose",
+            level=Level.NOTE,
+            piece=fitting.piece.name,
+            message=f"'{fitting.piece.name}' lies inside, and nothing of the mould holds it in its place",
+            advice="pinned = true gives it seats for pins; or it hangs on a wire, or is cast into a second pour",
+        )
+        for fitting in made.fittings
+        if fitting.holding is Holding.EMBEDDED
+    ]
 
 
 def _loop_findings(pieces: Sequence[Printed], made: Plug, halves: Halves) -> list[Finding]:

@@ -41,6 +41,9 @@ _APART: Final = 2e-3
 _STEP: Final = 1e-3
 """m between the places that are tried."""
 
+_CORNER: Final = 0.25
+"""Share of the box's sides by which a key may stand off its corner."""
+
 _LOPSIDED: Final = 0.6
 """Diameters by which some key must miss every other, once the box is turned round by half a turn."""
 
@@ -75,7 +78,9 @@ class Keys:
         return Solid.of(turned(profile, np.append(self.places[number], 0.0), np.array([0.0, 0.0, 1.0])))
 
 
-def lay_keys(floor: Floor, box: Box, runners: tuple[Runner, ...], count: int, board: float) -> Keys | None:
+def lay_keys(
+    floor: Floor, box: Box, runners: tuple[Runner, ...], count: int, board: float, spread: bool
+) -> Keys | None:
     """Return the keys in a box; None where there is no room for so many.
 
     Parameters
@@ -87,6 +92,8 @@ def lay_keys(floor: Floor, box: Box, runners: tuple[Runner, ...], count: int, bo
     count : int
     board : float, m
         Thickness of a board, which the dimples must not break through.
+    spread : bool
+        Whether the first four must stand near the corners, as they should to hold the halves straight.
 
     Notes
     -----
@@ -100,20 +107,21 @@ def lay_keys(floor: Floor, box: Box, runners: tuple[Runner, ...], count: int, bo
     free = floor.ground.away(places)
     for runner in runners:
         line = runner.line(0.0, _STEP / 2)
-        apart = np.linalg.norm(places[:, None] - line[None], axis=-1).min(axis=1)
-        free = np.minimum(free, apart - max(radius for _, radius in runner.profile))
+        way = np.linspace(0.0, runner.length, len(line))
+        radius = np.interp(way, *np.array(runner.profile).T)
+        free = np.minimum(free, (np.linalg.norm(places[:, None] - line[None], axis=-1) - radius).min(axis=1))
     edge = np.minimum(places - box.low, box.high - places).min(axis=1)
     for diameter in DIAMETERS:
         height = min(HEIGHT_SHARE * diameter, board - BOTTOM + CLEARANCE)
         for rubber in FROM_CAVITY:
             room = (free >= diameter / 2 + rubber) & (edge >= diameter / 2 + FROM_EDGE)
-            chosen = _chosen(places, room, box, count, diameter)
+            chosen = _chosen(places, room, box, count, diameter, spread)
             if chosen is not None:
                 return Keys(chosen, diameter, height)
     return None
 
 
-def _chosen(places: Floats, room: Bools, box: Box, count: int, diameter: float) -> Floats | None:
+def _chosen(places: Floats, room: Bools, box: Box, count: int, diameter: float, spread: bool) -> Floats | None:
     some = places[room]
     found: list[Floats] = []
 
@@ -122,6 +130,8 @@ def _chosen(places: Floats, room: Bools, box: Box, count: int, diameter: float) 
         for other in found:
             apart = np.minimum(apart, np.linalg.norm(some - other, axis=1))
         good = apart >= diameter + _APART
+        if target is not None and spread:
+            good &= (np.abs(some - target) <= _CORNER * box.size).all(axis=1)
         if not good.any():
             return False
         score = apart if target is None else -np.linalg.norm(some - target, axis=1)
@@ -138,8 +148,8 @@ def _chosen(places: Floats, room: Bools, box: Box, count: int, diameter: float) 
     chosen = np.array(found)
     if _lopsided(chosen, box, diameter):
         return chosen
-    # The last one is moved to where the pattern is told from its half-turned self.
-    for candidate in some:
+    # The last one is moved as little as tells the pattern from its half-turned self.
+    for candidate in some[np.linalg.norm(some - chosen[-1], axis=1).argsort(kind="stable")]:
         trial = np.vstack([chosen[:-1], candidate])
         apart = np.linalg.norm(chosen[:-1] - candidate, axis=1)
         if (apart >= diameter + _APART).all() and _lopsided(trial, box, diameter):

@@ -70,7 +70,10 @@ def undercuts(surface: Surface, found: Draft) -> list[Undercut]:
     corners, label = found.corners[under], _together(found.corners[under])
     places, owner = _places(corners, found.area[under])
     shadow = Shadow.of(surface, float(np.ptp(surface.bounds, axis=0).max()) / COLUMNS)
-    depth = np.minimum(_behind_edges(places, _edges(surface, found)), _from_open(places, shadow))
+    depth = _from_open(places, shadow)
+    deep = np.flatnonzero(depth >= shadow.pitch)
+    if len(deep):
+        depth[deep] = np.minimum(depth[deep], _behind_edges(places[deep], _edges(surface, found)))
     area = np.bincount(label, found.area[under])
     of = label[owner]
     # The deepest place of every part: the last one once sorted by part and depth.
