@@ -150,6 +150,11 @@ NULLS = {
     "$.balance.options[].lean_deg", "$.balance.options[].clear_mm", "$.balance.options[].score",
     "$.balance.options[].sink_m_s", "$.balance.options[].flight.trim_deg", "$.balance.taken", "$.balance.body_density",
     "$.balance.body_density.nose_up_deg", "$.balance.body_density.lean_deg",
+    "$.measured.displaced", "$.measured.body", "$.measured.coat",
+    "$.measured.explanations[].left_dry_g", "$.measured.explanations[].left_reserve_g",
+    "$.pour", "$.pour.mix", "$.pour.batch", "$.pour.shares", "$.pour.print", "$.pour.inserts[].material",
+    "$.pour.wanted.density_g_cm3", "$.pour.print.target_g", "$.pour.print.rows[].infill_share",
+    "#outcome.nose_up_deg", "#outcome.lean_deg",
     "$.line", "$.limits[].value", "$.limits[].met", "$.measured", "$.measured.water_c",
 }  # fmt: skip
 
