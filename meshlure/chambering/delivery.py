@@ -131,7 +131,7 @@ class Chambered:
             lining = self.taken.option.lining
             assert lining is not None
             section = InsertSection(names["tube"], Path(), substance=Stated(material=lining.substance.name))
-            rows.append(NewInsert(section, made.tube.surface()))
+            rows.append(NewInsert(section, made.tube))
         rows.append(NewInsert(InsertSection(names[CHAMBER], Path(), void="sealed"), made.hollow, made=False))
         if made.plug is not None:
             over = () if made.tube is None else (names["tube"],)

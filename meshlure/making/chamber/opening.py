@@ -8,12 +8,12 @@ from typing import Final
 import numpy as np
 
 from meshlure.geometry.cylinder import Cylinder
-from meshlure.geometry.shapes import rod
 from meshlure.geometry.shells import winding_number
 from meshlure.geometry.solids import Solid
 from meshlure.geometry.standoff import cylinder_standoff
 from meshlure.geometry.surface import Floats
 from meshlure.making.chamber.ahead import ahead
+from meshlure.making.chamber.barrel import barrel
 from meshlure.making.chamber.bore import Bore, nearest_other
 from meshlure.making.chamber.site import Site
 
@@ -101,31 +101,19 @@ def hole(whole: Solid, bore: Cylinder, opening: Opening) -> tuple[Solid, Solid]:
     before. The plug is what it takes from the body, a hundredth of a millimetre larger all round, flush with the skin.
     """
     drill = opening.drill
-    first = _first(whole.met(Solid.of(rod(drill))), drill)
+    first = _first(whole.met(Solid.of(barrel(drill))), drill)
     out = float(((first.surface().vertices - drill.middle) @ drill.axis).max()) + drill.length / 2 + _BEYOND / 20
     way = _stretch(drill, 0.0, min(out, drill.length))
     if opening.side != "belly":
-        # One prism for both, whose facets run on from the bore into the hole.
-        both = _spanned(bore, way)
-        plug = whole.met(Solid.of(rod(replace(_laid(way, bore), radius=way.radius + TIGHT))))
-        return Solid.of(rod(both)), _first(plug, drill)
+        behind, before = (0.0, way.length) if opening.side == "nose" else (way.length, 0.0)
+        plug = whole.met(Solid.of(barrel(replace(way, radius=way.radius + TIGHT))))
+        return Solid.of(barrel(bore, behind, before)), _first(plug, drill)
     # Where the hole's side comes out of the bore's the plug would end in a knife's edge thinner than it is larger.
     edge = float(np.sqrt(4 * TIGHT * drill.radius))
     below = replace(_stretch(way, edge, way.length), radius=way.radius + TIGHT)
-    room = Solid.of(rod(bore))
-    plug = whole.met(Solid.of(rod(below))).less(room)
-    return room.joined(Solid.of(rod(way))), max(plug.parts(), key=lambda part: part.volume)
-
-
-def _laid(way: Cylinder, bore: Cylinder) -> Cylinder:
-    """A cylinder along the bore with the bore's axis, so that its facets stand as the bore's do."""
-    return replace(way, axis=bore.axis)
-
-
-def _spanned(bore: Cylinder, way: Cylinder) -> Cylinder:
-    """The bore lengthened by a way that begins at one of its ends."""
-    towards = 1.0 if float(way.axis @ bore.axis) > 0 else -1.0
-    return replace(bore, middle=bore.middle + towards * way.length / 2 * bore.axis, length=bore.length + way.length)
+    room = Solid.of(barrel(bore))
+    plug = whole.met(Solid.of(barrel(below))).less(room)
+    return room.joined(Solid.of(barrel(way))), max(plug.parts(), key=lambda part: part.volume)
 
 
 def _drill(site: Site, start: Floats, outward: Floats, radius: float) -> Cylinder:

@@ -13,9 +13,9 @@ from meshlure.bait.pieces import Balls, Role
 from meshlure.geometry.blocks import BlockIndex
 from meshlure.geometry.cylinder import Cylinder
 from meshlure.geometry.moments import Moments
-from meshlure.geometry.shapes import rod
 from meshlure.geometry.surface import Floats, Surface
 from meshlure.making.altered import altered
+from meshlure.making.chamber.barrel import barrel
 from meshlure.making.chamber.bore import Bore
 from meshlure.making.chamber.needs import Choice, Lining
 from meshlure.making.chamber.opening import Opening
@@ -92,7 +92,7 @@ class Option:
         """
         dry = self.composed(site)
         skin = dry.skin
-        wall = rod(self.hollow).turned()
+        wall = barrel(self.hollow).turned()
         surface = _together(skin.surface, wall)
         thickness = np.concatenate([skin.thickness, np.zeros(len(wall.faces))])
         rows = (*dry.rows[:-1], replace(dry.rows[-1], flooded=True))

@@ -10,9 +10,10 @@ import numpy as np
 from meshlure.bait.chambers import ENDS
 from meshlure.bait.meshpiece import solid_of
 from meshlure.bait.pieces import Bait
-from meshlure.geometry.shapes import ball, rod
+from meshlure.geometry.shapes import ball
 from meshlure.geometry.solids import Solid
 from meshlure.geometry.surface import Surface
+from meshlure.making.chamber.barrel import barrel, pace, sleeve
 from meshlure.making.chamber.opening import hole
 from meshlure.making.chamber.option import Option
 
@@ -27,14 +28,15 @@ class Pieces:
         With bore and opening cut.
     hollow : Surface
         What the balls run in.
-    tube, plug : Solid or None
+    tube : Surface or None
+    plug : Solid or None
     balls : mapping of Surface
         All balls at either end.
     """
 
     body: Solid
     hollow: Surface
-    tube: Solid | None
+    tube: Surface | None
     plug: Solid | None
     balls: Mapping[str, Surface]
 
@@ -44,12 +46,13 @@ def pieces(bait: Bait, option: Option) -> Pieces:
     whole = solid_of(bait.body.surface, bait.body.name)
     cut = option.bore.cut
     if option.opening is None:
-        taken, plug = Solid.of(rod(cut)), None
+        taken, plug = Solid.of(barrel(cut)), None
     else:
         taken, plug = hole(whole, cut, option.opening)
     body = whole.less(*(Solid.of(cavity) for cavity in bait.body.cavities), taken)
-    tube = None if option.lining is None else Solid.of(rod(cut)).less(Solid.of(rod(option.hollow)))
-    return Pieces(body, rod(option.hollow), tube, plug, {end: _balls(option, end) for end in ENDS})
+    apart, hollow = pace(cut.radius), option.hollow
+    tube = None if option.lining is None else sleeve(cut, hollow.radius, apart)
+    return Pieces(body, barrel(hollow, apart=apart), tube, plug, {end: _balls(option, end) for end in ENDS})
 
 
 def _balls(option: Option, end: str) -> Surface:
