@@ -34,6 +34,10 @@ FREEBOARD: Final = 2e-3
 UP: Final = np.array([0.0, 0.0, 1.0])
 
 
+FRAME: Final = "frame"
+"""Name of the walls of the box."""
+
+
 @dataclass(frozen=True, eq=False)
 class Printed:
     """One piece to print, lying on the printer's bed.
@@ -153,7 +157,7 @@ class Halves:
         outer = Solid.of(block((*(low - FRAME_WALL), 0.0), (*(high + FRAME_WALL), height)))
         inner = Solid.of(block((*low, -GROOVE), (*high, height + GROOVE)))
         shift = np.array([0.0, 0.0, self.groove])
-        return Printed("frame", outer.less(inner), np.eye(3), shift)
+        return Printed(FRAME, outer.less(inner), np.eye(3), shift)
 
 
 def beside(pieces: Sequence[tuple[str, Surface]], gap: float = 10e-3) -> list[tuple[str, Surface]]:

@@ -149,6 +149,8 @@ def _chosen(places: Floats, room: Bools, box: Box, count: int, diameter: float, 
     if _lopsided(chosen, box, diameter):
         return chosen
     # The last one is moved as little as tells the pattern from its half-turned self.
+    if spread and count <= len(corners):
+        some = some[(np.abs(some - corners[count - 1]) <= _CORNER * box.size).all(axis=1)]
     for candidate in some[np.linalg.norm(some - chosen[-1], axis=1).argsort(kind="stable")]:
         trial = np.vstack([chosen[:-1], candidate])
         apart = np.linalg.norm(chosen[:-1] - candidate, axis=1)
