@@ -63,7 +63,7 @@ class Skin:
     thickness : (m,) array, m
         Of the coat on each face.
     own : (m,) array of bool
-        Faces of the body's own skin, which takes the coat.
+        Faces of the body's own skin, and of pieces coated like it, which take the coat.
     outer : Surface
         Outer skin alone, every closed-off space filled.
     outer_pairs : EdgePairs
@@ -266,11 +266,12 @@ def _crossed(body: MeshPiece, pieces: tuple[MeshPiece, ...], filling: Filling) -
     bare = walls.joined(*others).filled() if lips else outer
     findings = outside_findings(body, pieces, filling, whole, outer)
     surface = outer.surface()
+    painted = [tag, *(n for piece in pieces if piece.coated for n in np.unique(filling.solids[piece.name].sources()))]
     beyond = {name: filling.solids[name].less(whole) for name in lips}
     skin = _Outer(
         surface,
         paired(surface),
-        outer.sources() == tag,
+        np.isin(outer.sources(), painted),
         bare.surface() if lips else surface,
         {name: solid.surface() for name, solid in beyond.items() if not solid.empty},
         outer,

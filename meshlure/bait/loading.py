@@ -212,6 +212,7 @@ def _pieces(plan: BaitFile, files: Mapping[str, MeshFile], made: _Lookup) -> tup
                 flooded=insert.void == "flooded",
                 replaces=insert.replaces,
                 lip=insert.lip,
+                coated=insert.coated,
                 fit=insert.fit,
                 glue=glue,
                 deficit=own.deficit,

@@ -93,7 +93,7 @@ def _sits_outside(piece: MeshPiece, drawn: float, beyond: Solid) -> Finding:
     where = middle(beyond)
     return Finding(
         code="sits-outside",
-        level=Level.NOTE if piece.lip else Level.WARNING,
+        level=Level.NOTE if piece.lip or piece.coated else Level.WARNING,
         piece=piece.name,
         message=f"all {volume_text(drawn)} of '{piece.name}' lie outside the body's material, in an open "
         f"pocket drawn into it or on its skin, about {place_text(where)}; what is not closed off displaces water",

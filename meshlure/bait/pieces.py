@@ -127,6 +127,8 @@ class MeshPiece:
         Names of earlier inserts whose space this one takes.
     lip : bool
         Whether it is a lip, to be counted by itself in the drag.
+    coated : bool
+        Whether the coat goes over it where it shows.
     fit : float, m
         Gap per side of its pocket.
     glue : Substance or None
@@ -150,6 +152,7 @@ class MeshPiece:
     flooded: bool = False
     replaces: tuple[str, ...] = ()
     lip: bool = False
+    coated: bool = False
     fit: float = 0.0
     glue: Substance | None = None
     deficit: float = 0.0

@@ -216,7 +216,7 @@ def _insert(insert: InsertSection) -> dict[str, object]:
     table |= _substance(insert.substance)
     table |= {"cavities": insert.cavities} if insert.cavities != "sealed" else {}
     table |= {"replaces": list(insert.replaces)} if insert.replaces else {}
-    table |= {key: True for key in ("lip", "free", "pinned") if getattr(insert, key)}
+    table |= {key: True for key in ("lip", "free", "pinned", "coated") if getattr(insert, key)}
     table |= {"fit": _written(insert.fit, MM, "mm")} if insert.fit else {}
     return table | ({"glue": insert.glue} if insert.glue is not None else {})
 

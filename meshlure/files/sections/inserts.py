@@ -41,6 +41,8 @@ class InsertSection:
         Gap on every side between it and its pocket.
     glue : str or None
         Material that fills the gap; None leaves sealed air there.
+    coated : bool
+        The coat goes over it where it shows, as over the body: a plug, set in before painting.
     """
 
     name: str
@@ -54,6 +56,7 @@ class InsertSection:
     pinned: bool = False
     fit: float = 0.0
     glue: str | None = None
+    coated: bool = False
 
 
 def read_insert(keys: Keys, folder: Path, earlier: Sequence[str], later: Sequence[str]) -> InsertSection:
@@ -83,6 +86,7 @@ def read_insert(keys: Keys, folder: Path, earlier: Sequence[str], later: Sequenc
         keys.flag("pinned"),
         fit or 0.0,
         keys.text("glue"),
+        keys.flag("coated"),
     )
     _check_replaced(keys, section, earlier, later)
     if section.glue is not None and fit in {None, 0.0}:
@@ -94,6 +98,8 @@ def read_insert(keys: Keys, folder: Path, earlier: Sequence[str], later: Sequenc
         )
     if void is not None and section.lip:
         keys.fault("lip", "a hollow space is no lip", f"void = {void!r}", next_step="remove one of the two keys")
+    if void is not None and section.coated:
+        keys.fault("coated", "a hollow space is not coated", f"void = {void!r}", next_step="remove one of the two keys")
     keys.close()
     return section
 
