@@ -135,7 +135,8 @@ class Chambered:
         rows.append(NewInsert(InsertSection(names[CHAMBER], Path(), void="sealed"), made.hollow, made=False))
         if made.plug is not None:
             over = () if made.tube is None else (names["tube"],)
-            section = InsertSection(names["plug-1"], Path(), substance=self.bait.plan.body.substance, replaces=over)
+            substance = self.bait.plan.body.substance
+            section = InsertSection(names["plug-1"], Path(), substance=substance, replaces=over, coated=True)
             rows.append(NewInsert(section, made.plug.surface()))
         return tuple(rows)
 

@@ -13,7 +13,7 @@ from meshlure.bait.pieces import Balls, Role
 from meshlure.geometry.blocks import BlockIndex
 from meshlure.geometry.cylinder import Cylinder
 from meshlure.geometry.moments import Moments
-from meshlure.geometry.surface import Floats, Surface
+from meshlure.geometry.surface import Floats, together
 from meshlure.making.altered import altered
 from meshlure.making.chamber.barrel import barrel
 from meshlure.making.chamber.bore import Bore
@@ -93,10 +93,11 @@ class Option:
         dry = self.composed(site)
         skin = dry.skin
         wall = barrel(self.hollow).turned()
-        surface = _together(skin.surface, wall)
+        surface = together(skin.surface, wall)
         thickness = np.concatenate([skin.thickness, np.zeros(len(wall.faces))])
+        own = np.concatenate([skin.own, np.zeros(len(wall.faces), dtype=np.bool_)])
         rows = (*dry.rows[:-1], replace(dry.rows[-1], flooded=True))
-        wet = replace(dry, rows=rows, skin=replace(skin, surface=surface, thickness=thickness))
+        wet = replace(dry, rows=rows, skin=replace(skin, surface=surface, thickness=thickness, own=own))
         return replace(site.vessel, composition=wet, index=BlockIndex.build(surface, thickness))
 
     def shift(self, site: Site) -> Floats:
@@ -107,8 +108,3 @@ class Option:
     def chambers(self, site: Site) -> tuple[str, ...]:
         """Return the names of all chambers."""
         return (*(row.balls.chamber for row in site.composition.rows), CHAMBER)
-
-
-def _together(one: Surface, other: Surface) -> Surface:
-    faces = np.concatenate([one.faces, other.faces + len(one.vertices)])
-    return Surface(np.concatenate([one.vertices, other.vertices]), faces)

@@ -1,0 +1,85 @@
+"""The chambers that were found, and a hollow body, as lines for the terminal."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+from pathlib import Path
+from typing import Any
+
+Tree = Mapping[str, Any]
+
+
+def chamber_lines(results: Tree, out: Path) -> tuple[str, ...]:
+    """Return the ways, what stood in the way and what was written, a line a thing."""
+    account = results["chamber"]
+    lines = [str(results["name"])]
+    if account["options"]:
+        lines += [f"  {line}" for line in _table(account["options"], account["taken"])]
+        lines += [f"  {line}" for line in _taken(account["options"][account["taken"] - 1])]
+    if account["replaced"]:
+        lines.append(f"  replaced {', '.join(account['replaced'])}")
+    lines.append(f"  fits     {'yes' if account['reachable'] else 'no'}")
+    lines += [f"           {words}" for words in account["in_the_way"]]
+    lines.append(f"  verdict  {results['buoyancy']['verdict']}")
+    lines.append(f"  written  {', '.join(['results.json', *results['files']])} in {out}")
+    return tuple(lines)
+
+
+def hollow_lines(results: Tree, out: Path) -> tuple[str, ...]:
+    """Return what the shell holds and weighs, a line a thing."""
+    account = results["hollow"]
+    return (
+        str(results["name"]),
+        f"  shell    {account['shell_mm3']:.0f} of {account['whole_mm3']:.0f} mm3, {account['shell_g']:.2f} g; "
+        f"{account['inside_mm3']:.0f} mm3 hollow",
+        f"  reserve  {account['reserve_sealed_g']:+.2f} g sealed, {account['reserve_flooded_g']:+.2f} g flooded",
+        f"  hollow   {account['words']}",
+        f"  verdict  {results['buoyancy']['verdict']}",
+        f"  written  {', '.join(['results.json', *results['files']])} in {out}",
+    )
+
+
+def _taken(row: Tree) -> list[str]:
+    """What the way that is written does, in words."""
+    lines = []
+    for end in ("nose", "tail"):
+        rest, flight = row["postures"][end], row["flight"][end]
+        lies = "any way" if rest["nose_up_deg"] is None else f"nose up {rest['nose_up_deg']:+.1f} deg"
+        falls = (
+            "" if rest["bore_slope_deg"] is None else f", the bore falls {rest['bore_slope_deg']:+.1f} deg to the nose"
+        )
+        lines.append(
+            f"at {end}  rests {lies}{falls}; flies {flight['leads']} first, {flight['verdict']}, "
+            f"{flight['distance_m']:.1f} m"
+        )
+    back = "come back to the nose by themselves" if row["postures"]["tail"]["returns"] else "stay at the tail at rest"
+    lines.append(f"balls    {back}")
+    flooded = row["flooded"]
+    lines.append(f"flooded  {flooded['state']}, reserve {flooded['reserve_g']:+.2f} g")
+    return lines
+
+
+def _table(rows: Sequence[Tree], taken: int) -> list[str]:
+    """One line a way, columns aligned."""
+    head = ("", "balls", "bore mm", "from nose mm", "travel mm", "shift mm", "turns", "wall mm", "ends mm", "reserve g")
+    head = (*head, "kind", "score")
+    cells = [head, *(_cells(number, row, number == taken) for number, row in enumerate(rows, 1))]
+    widths = [max(len(line[column]) for line in cells) for column in range(len(head))]
+    return ["  ".join(cell.ljust(width) for cell, width in zip(line, widths, strict=True)).rstrip() for line in cells]
+
+
+def _cells(number: int, row: Tree, taken: bool) -> tuple[str, ...]:
+    return (
+        f"{number}{'>' if taken else ''}",
+        f"{row['count']} x {row['ball_mm']:.4g} mm {row['material']}, {row['balls_g']:.2f} g",
+        f"{row['bore_mm']:.4g} x {row['length_mm']:.1f}",
+        " to ".join(f"{value:.1f}" for value in row["from_nose_mm"]),
+        f"{row['travel_mm']:.1f}",
+        f"{row['shift_mm']:.2f}",
+        f"{row['posture_change_deg']:.1f} deg",
+        f"{row['wall_mm']:.2f}",
+        f"{row['end_wall_mm']:.2f}",
+        f"{row['reserve_g']:+.2f}",
+        row["kind"],
+        f"{row['score']:.2f}",
+    )

@@ -1,0 +1,107 @@
+"""`meshlure chamber`: where a chamber for balls fits, what it does, and the meshes to make it; or a hollow body."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Mapping
+from pathlib import Path
+from typing import TYPE_CHECKING, Annotated, Any, Final, Protocol
+
+import typer
+
+from meshlure.cli.terminal import answer, hand_on, tell
+from meshlure.errors import Fault, InputError
+
+if TYPE_CHECKING:
+    from meshlure.bait.pieces import Bait
+    from meshlure.results.study import Study
+
+SHORT: Final = "Find where a chamber for balls fits, and write the meshes; or make the body hollow."
+
+HELP: Final = """Find where a chamber for balls fits and what it does, and write the meshes to make it.
+
+The bait file's [chamber] says which balls may run in it, how thick its walls must be and how it is opened:
+
+\b
+  meshlure chamber samples/lipless/lipless.toml --out out/chambered
+
+Every way is shown with what it shifts, how the bait rests and flies with the balls at either end, and what it does when
+the chamber fills with water. A void marked free = true and the balls in it are replaced. With --hollow the body itself
+becomes a shell, closed or drained:
+
+\b
+  meshlure chamber samples/minnow/minnow.toml --hollow "wall 1.6 mm" --out out/hollow
+  meshlure chamber samples/minnow/minnow.toml --hollow "wall 1.6 mm, drain 3 mm at 30,0,-9" --out out/hollow
+
+Exit code: 0 done, 1 no bore fits (what nearly does is told), 2 the input cannot be used.
+"""
+
+
+class _Found(Protocol):
+    @property
+    def account(self) -> Mapping[str, Any]: ...
+    @property
+    def reachable(self) -> bool: ...
+    def make(self, folder: Path, out: Path, tell: Callable[[str], None] = ...) -> tuple[Study, list[str]]: ...
+
+
+def chamber(
+    bait: Annotated[Path, typer.Argument(metavar="BAIT.toml", help="Bait file.")],
+    out: Annotated[
+        Path | None,
+        typer.Option("--out", metavar="DIR", help="Folder to write; absent, empty, or from an earlier run."),
+    ] = None,
+    take: Annotated[int, typer.Option("--take", metavar="N", help="Which of the ways to write; 1 is the best.")] = 1,
+    hollow: Annotated[
+        str | None,
+        typer.Option("--hollow", metavar="WORDS", help='No chamber: the body as a shell, "wall 1.6 mm".'),
+    ] = None,
+    no_page: Annotated[bool, typer.Option("--no-page", help="Write results.json, but no report.html.")] = False,
+    json: Annotated[bool, typer.Option("--json", help="Print the results; --out may then be left out.")] = False,
+    debug: Annotated[bool, typer.Option("--debug", help="On a fault of ours, print where it happened.")] = False,
+) -> None:
+    """Chamber or hollow a bait."""
+    del debug  # read by the entry, which every command shares
+    if out is None and not json:
+        raise InputError(
+            Fault("there is nowhere to write to", "--out", "nothing", "a folder", "add --out DIR, or --json")
+        )
+    if take != 1 and hollow is not None:
+        raise InputError(
+            Fault("--take chooses among bores; --hollow cuts none", "--take", str(take), "", "leave one out")
+        )
+    if out is not None:
+        from meshlure.files.folder import check_folder
+
+        check_folder(out)
+    from meshlure.bait.loading import read_bait
+
+    found = _found(read_bait(bait), take, hollow)
+    key = "chamber" if hollow is None else "hollow"
+    if out is None:
+        import json as text
+
+        hand_on(text.dumps({key: found.account}, indent=1, allow_nan=False, ensure_ascii=False) + "\n")
+    else:
+        from meshlure.cli.writing import write_made
+
+        written = write_made(out, page=not no_page, make=lambda folder: found.make(folder, out))
+        if json:
+            hand_on(written.to_json())
+        else:
+            from meshlure.cli.bores import chamber_lines, hollow_lines
+
+            answer(*(chamber_lines if hollow is None else hollow_lines)(written.results, out))
+    if not found.reachable:
+        if out is None:
+            tell("no bore fits")
+        raise typer.Exit(1)
+
+
+def _found(bait: Bait, take: int, hollow: str | None) -> _Found:
+    if hollow is not None:
+        from meshlure.chambering.hollowing import hollowed
+
+        return hollowed(bait, hollow)
+    from meshlure.chambering import finding
+
+    return finding.chamber(bait, take)
