@@ -11,13 +11,14 @@ from meshlure.bait.pieces import Bait
 from meshlure.examine import study
 from meshlure.files.sections.mould import MouldSection
 from meshlure.files.threemf import write_3mf
-from meshlure.making.mould.boards import beside
+from meshlure.making.mould.boards import FRAME, beside
 from meshlure.making.mould.check import Checked, check
 from meshlure.making.mould.design import Kind, Mould, Progress, design, resin_outside
 from meshlure.making.mould.draftmap import DraftMap, draft_map
 from meshlure.making.written import file_name, write_solid
 from meshlure.results import mould as tree
 from meshlure.results import pieces
+from meshlure.results.pictures import half_maps, reliefs
 from meshlure.results.study import Study
 from meshlure.stock.cautions import cautions
 from meshlure.stock.materials import Material, material
@@ -101,7 +102,8 @@ def mould(bait: Bait, kind: Kind = Kind.HALVES, tab: bool = False, progress: Pro
     whole = Moulded(bait, found, made, maps, quantities, rubber)
     results = _results(whole, None, {})
     results["timings_s"] = results["timings_s"] | {"mould": time.perf_counter() - start}
-    return replace(whole, study=replace(found, results=results))
+    shown = reliefs([(piece.name, piece.solid.surface()) for piece in made.pieces if piece.name != FRAME])
+    return replace(whole, study=replace(found, results=results, maps=half_maps(maps), reliefs=shown))
 
 
 def write(made: Moulded, folder: Path, progress: Progress = lambda _: None) -> tuple[Study, list[str]]:
