@@ -244,5 +244,5 @@ def _relief(one: Relief) -> Picture:
     width, height = np.array(heights.shape) * one.pitch
     scale = min(1.0, 110.0 / float(max(width, height)))
     uri = "data:image/png;base64," + base64.b64encode(paper.getvalue()).decode("ascii")
-    words = f"{one.name} seen from above: {width:.0f} by {height:.0f} mm, {span:.1f} mm from its lowest place to its highest."
+    words = f"{one.name} seen from above: {width:.0f} by {height:.0f} mm, {span:.1f} mm from lowest to highest."
     return Picture(uri, words, float(width * scale), float(height * scale))
