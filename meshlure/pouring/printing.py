@@ -6,10 +6,15 @@ from collections.abc import Sequence
 from dataclasses import replace
 from typing import Any, Final
 
+import numpy as np
+from scipy.interpolate import CubicHermiteSpline
+
 from meshlure.bait.composition import room_taken
 from meshlure.bait.pieces import Print
 from meshlure.bait.printed import Core, core_left, printed
 from meshlure.findings import Finding, Level
+from meshlure.geometry.clusters import coarse, matched
+from meshlure.geometry.moments import solid_moments
 from meshlure.pouring.bench import Bench, Outcome
 from meshlure.results import pour as tree
 from meshlure.results import prints
@@ -21,6 +26,9 @@ LINE: Final = 0.45e-3
 
 LINES: Final = (2, 3, 4, 5, 6)
 """Lines that a wall is tried with: three or four for a tight one, common practice, no source."""
+
+COPY: Final = 2500
+"""Triangles of the coarse copy on which the thickest wall is set off."""
 
 INFILLS: Final = (0.1, 0.15, 0.2, 0.3, 0.5, 1.0)
 
@@ -49,7 +57,8 @@ def printing(
     assert core is not None
     asked = how != "density"
     walls = sorted({made.wall, *(LINE * count for count in LINES)})
-    rows = [_row(bench, wall, wanted if asked else None) for wall in walls]
+    cores = _cores(bench, walls)
+    rows = [_row(bench, wall, within, wanted if asked else None) for wall, within in zip(walls, cores, strict=True)]
     reached = not asked or any(row["infill_share"] is not None for row in rows)
     outcomes = [bench.with_body(bench.density, share) for share in (0.0, *off)]
     drowned = _flooded(bench, core)
@@ -76,11 +85,10 @@ def printing(
     }, _judged(bench, wanted, reached)
 
 
-def _row(bench: Bench, wall: float, wanted: float | None) -> Tree:
+def _row(bench: Bench, wall: float, core: float, wanted: float | None) -> Tree:
     """One wall: its volumes, the bait with each infill, and the infill that makes a density of the body, kg/m3."""
-    made = _with_wall(bench, wall)
-    core = core_left(made, room_taken(bench.bait)).volume.amount
-    solid, volume = made.solid.density, bench.body.volume
+    assert bench.bait.body.printed is not None
+    solid, volume = bench.bait.body.printed.solid.density, bench.body.volume
     shell = volume - core
     bodies = [solid * (shell + infill * core) for infill in INFILLS]
     share = None
@@ -98,12 +106,54 @@ def _row(bench: Bench, wall: float, wanted: float | None) -> Tree:
     )
 
 
-def _with_wall(bench: Bench, wall: float) -> Print:
+def _cores(bench: Bench, walls: Sequence[float]) -> list[float]:
+    """Volume within each wall, inserts and hollows left out, m3.
+
+    Notes
+    -----
+    What lies deeper than a wall is set off truly for the wall stated, and on a coarse copy for the thickest one; at no
+    wall it is the whole. Between them it is the cubic that has there these values and, for slopes, minus the areas of
+    what is left: exact where the skin is convex and the wall thinner than it curves (Steiner's formula), or flat.
+    """
+    body, composition = bench.bait.body, bench.vessel.composition
+    made, core = body.printed, composition.core
+    assert made is not None
+    assert core is not None
+    taken = room_taken(bench.bait)
+    thick = _thickest(bench, max(walls))
+    if not thick.core:
+        # A bait that the thickest wall fills is small: every wall is set off on its own.
+        return [
+            core.volume.amount if wall == made.wall else core_left(_thickest(bench, wall), taken).volume.amount
+            for wall in walls
+        ]
+    whole = solid_moments(body.surface).amount - sum(solid_moments(cavity).amount for cavity in body.cavities)
+    area = body.surface.area + sum(cavity.area for cavity in body.cavities)
+    known = {0.0: (whole, area, bench.body.volume), made.wall: (*_drawn(made), core.volume.amount)}
+    known[thick.wall] = (*_drawn(thick), core_left(thick, taken).volume.amount)
+    ends = sorted(known)
+    drawn = CubicHermiteSpline(ends, [known[t][0] for t in ends], [-known[t][1] for t in ends])
+    # What inserts take from it changes little, and is drawn as a line between.
+    lost = np.interp(walls, ends, [known[t][0] - known[t][2] for t in ends])
+    return [float(max(volume, 0.0)) for volume in drawn(np.array(walls)) - lost]
+
+
+def _drawn(made: Print) -> tuple[float, float]:
+    """Volume and area of a core as drawn, m3 and m2."""
+    return sum(solid_moments(part).amount for part in made.core), sum(part.area for part in made.core)
+
+
+def _thickest(bench: Bench, wall: float) -> Print:
+    """The body with another wall, set off on a coarse copy of it."""
     body, stated = bench.bait.body, bench.bait.plan.body.printed
     made = body.printed
     assert made is not None
     assert stated is not None
-    return made if wall == made.wall else printed(made.solid, replace(stated, wall=wall), body.surface, body.cavities)
+    if wall == made.wall:
+        return made
+    whole = solid_moments(body.surface)
+    copy = matched(coarse(body.surface, COPY), whole.amount, whole.centre)
+    return printed(made.solid, replace(stated, wall=wall), copy, body.cavities)
 
 
 def _flooded(bench: Bench, core: Core) -> Outcome:

@@ -50,10 +50,11 @@ def bench(study: Study) -> str:
         "cautions": results["cautions"],
         "findings": told,
     }
-    return templates.get_template("bench.html").render(**common, **_cast(pour))
+    own = _cast(pour) if pour["print"] is None else _print(pour)
+    return templates.get_template("bench.html").render(**common, **own)
 
 
-_TOLD = ("mix-out-of-reach", "mass-out-of-reach", "stiff-mix")
+_TOLD = ("mix-out-of-reach", "mass-out-of-reach", "stiff-mix", "printed-solid", "printed-leaks")
 
 
 def _cast(pour: Tree) -> dict[str, Any]:
@@ -69,6 +70,39 @@ def _cast(pour: Tree) -> dict[str, Any]:
         "bare": f"A casting with its inserts, before coat and hooks: {grams(pour['bait']['bare_g'])}. Weigh the first "
         "one; what it is off by is best put down to the mix.",
     }
+
+
+def _print(pour: Tree) -> dict[str, Any]:
+    found = pour["print"]
+    wall, infill = significant(found["wall_mm"], 3), percent(found["infill_share"])
+    return {
+        "title": "Bench sheet, print",
+        "subtitle": f"wall {wall} mm, infill {infill}",
+        "heading": "Wall and infill",
+        "sentence": f"{found['material']['name']}, {fixed(found['solid_g_cm3'], 3)} g/cm³ where it is solid: "
+        f"{fixed(found['shell_mm3'] / 1000, 2)} cm³ of wall, {fixed(found['core_mm3'] / 1000, 2)} cm³ within it.",
+        "cups": None,
+        "walls": walls_table(pour),
+        "bare": f"A print with its inserts, before coat and hooks: {grams(pour['bait']['bare_g'])}. Weigh the first "
+        "one, dry and after a night under water: what it gains has leaked in.",
+    }
+
+
+def walls_table(pour: Tree) -> Table | None:
+    """Return the mass of the whole bait by wall and infill, and the infill that makes the mass wanted."""
+    found = pour["print"]
+    asked = found["target_g"] is not None
+    rows = []
+    for row in found["rows"]:
+        cells = [significant(row["wall_mm"], 3), fixed(row["lines"], 1), *(fixed(mass, 2) for mass in row["bait_g"])]
+        if asked:
+            cells.append(DASH if row["infill_share"] is None else fixed(100 * row["infill_share"], 1) + " %")
+        rows.append(cells)
+    head = ["wall, mm", "lines", *(f"{fixed(100 * share, 0)} %" for share in found["infills"])]
+    if asked:
+        head.append(f"for {grams(found['target_g'])}")
+    line = fixed(found["line_mm"], 2)
+    return table(f"Mass of the whole bait, g, by wall and infill; lines of {line} mm", head, rows, ())
 
 
 def mix_words(pour: Tree) -> str:
@@ -123,8 +157,10 @@ def inserts(pour: Tree) -> Table | None:
 
 def outcomes(pour: Tree) -> Table | None:
     """Return the whole bait with this batch and with batches off."""
-    rows = [_outcome("as mixed", pour["bait"])] if pour["bait"] is not None else []
+    rows = [_outcome("as made", pour["bait"])] if pour["bait"] is not None else []
     rows += [_outcome(f"{fixed(100 * row['off_share'], 0, signed=True)} %", row) for row in pour["off"]]
+    if pour["print"] is not None:
+        rows.append(_outcome("infill full of water", pour["print"]["flooded"]))
     head = ("body's density", "g/cm³", "g, ready to fish", "reserve, g", "it", "nose up", "lean")
     return table("The whole bait, with batches 3 % lighter and denser beside", head, rows, (0, 4))
 

@@ -92,6 +92,7 @@ def assumed(made: Print, stated: Printed | None, line: float) -> list[Tree]:
         assumption("density of the solid print", span(made.solid), made.solid.source, made.solid.assumed),
         assumption("width of a printed line", f"{line * MM:.2f} mm", f"{usual}, for a nozzle of 0.4 mm", True),
         assumption("walls round pockets and chambers", "none but the body's own", "not counted", True),
+        assumption("walls other than the one stated", "between known ones by a cubic", "computed", False),
         assumption("top and bottom layers", "as thick as the wall, square to the skin", "not told apart", True),
     ]
     if stated is not None and stated.solid is None and stated.substance.density is None:
