@@ -73,14 +73,7 @@ class Field:
         """
         from scipy.ndimage import distance_transform_edt
 
-        some = (surfaces,) if isinstance(surfaces, Surface) else tuple(surfaces)
-        bounds = np.stack([surface.bounds for surface in some])
-        low, high = bounds[:, 0].min(axis=0), bounds[:, 1].max(axis=0)
-        if not (pitch > 0 and float(np.prod((high - low) / pitch + _BORDER)) < _MOST):
-            raise ValueError(f"a pitch of {pitch} m suits no body that reaches from {low} to {high} m")
-        shape = np.ceil((high - low) / pitch).astype(np.intp) + _BORDER
-        origin = (low + high) / 2 - (shape - 1) * (pitch / 2)
-        inside = _inside(some, origin, pitch, shape)
+        origin, inside = filled(surfaces, pitch)
         if not inside.any():
             return cls(origin, float(pitch), np.full(inside.shape, -pitch / 2))
         values = np.asarray(distance_transform_edt(inside, sampling=pitch))
@@ -127,6 +120,18 @@ def pitch_for(surface: Surface, voxels: float) -> float:
     """Return the pitch, m, at which a surface's bounds hold about so many voxels."""
     size = surface.bounds[1] - surface.bounds[0]
     return float((np.prod(size) / voxels) ** (1 / 3))
+
+
+def filled(surfaces: Surface | Sequence[Surface], pitch: float) -> tuple[Floats, Bools]:
+    """Return the middle of the first voxel, (3,) m, and which voxels lie inside, (i, j, k) array; as `Field.of`."""
+    some = (surfaces,) if isinstance(surfaces, Surface) else tuple(surfaces)
+    bounds = np.stack([surface.bounds for surface in some])
+    low, high = bounds[:, 0].min(axis=0), bounds[:, 1].max(axis=0)
+    if not (pitch > 0 and float(np.prod((high - low) / pitch + _BORDER)) < _MOST):
+        raise ValueError(f"a pitch of {pitch} m suits no body that reaches from {low} to {high} m")
+    shape = np.ceil((high - low) / pitch).astype(np.intp) + _BORDER
+    origin = (low + high) / 2 - (shape - 1) * (pitch / 2)
+    return origin, _inside(some, origin, pitch, shape)
 
 
 def _inside(surfaces: Sequence[Surface], origin: Floats, pitch: float, shape: Ints) -> Bools:

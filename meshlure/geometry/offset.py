@@ -1,4 +1,4 @@
-"""A surface moved outward: every face by at least a distance, so that a part fits its pocket with a gap."""
+"""A surface moved face by face; outward, so that a part fits its pocket with a gap."""
 
 from __future__ import annotations
 
@@ -27,27 +27,45 @@ def grown(surface: Surface, distance: float) -> Surface:
 
     Notes
     -----
+    Edges stay mitred where `mitred` can; where it cannot, or the skin would cross itself, the Minkowski sum with a ball
+    is taken on a copy simplified to a tenth of the distance, which is slower and leaves a gap up to a fifth wider.
+    """
+    if distance == 0:
+        return surface
+    moved = mitred(surface, distance)
+    if moved is not None:
+        crossed = self_crossings(moved, 0.0)
+        if crossed is not None and not len(crossed):
+            return moved
+    slack = distance / 10
+    return Solid.of(surface).simplified(slack).grown(distance + slack, 8).surface()
+
+
+def mitred(surface: Surface, distance: float) -> Surface | None:
+    """Return a closed surface with every face moved by at least a distance, edges mitred; None where it cannot be.
+
+    Parameters
+    ----------
+    surface : Surface
+        Closed, outward.
+    distance : float, m
+        Outward; inward where negative.
+
+    Returns
+    -------
+    Surface or None
+        Of the same faces, not asked whether they turn over or cross. None where a corner would move more than about
+        three times the distance.
+
+    Notes
+    -----
     Each vertex moves along the angle-weighted mean of its faces' normals, so far that it clears every one of them by
-    the distance: faces move in parallel, edges stay mitred, a box grows to a box. Where that would make the skin cross
-    itself or a corner stick out more than about three times the distance, the Minkowski sum with a ball is taken on a
-    copy simplified to a tenth of the distance, which is slower and leaves a gap up to a fifth wider.
+    the distance: faces move in parallel, a box grows to a box.
 
     References
     ----------
     G. Thuermer and C. A. Wuethrich (1998), Computing vertex normals from polygonal facets, J. Graphics Tools 3(1).
     """
-    if distance == 0:
-        return surface
-    mitred = _mitred(surface, distance)
-    if mitred is not None:
-        crossed = self_crossings(mitred, 0.0)
-        if crossed is not None and not len(crossed):
-            return mitred
-    slack = distance / 10
-    return Solid.of(surface).simplified(slack).grown(distance + slack, 8).surface()
-
-
-def _mitred(surface: Surface, distance: float) -> Surface | None:
     normals = surface.double_areas
     length = np.linalg.norm(normals, axis=1)
     unit = normals / np.where(length > 0, length, 1.0)[:, None]
