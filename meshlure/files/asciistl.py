@@ -2,17 +2,25 @@
 
 from __future__ import annotations
 
-import io
 import re
+from array import array
+from typing import Final
 
 import numpy as np
 
 from meshlure.errors import Fault, InputError
-from meshlure.files.triangles import Triangles, in_metres
-from meshlure.findings import Finding, Level
+from meshlure.files.several import several
+from meshlure.files.triangles import Part, Triangles, in_metres
+from meshlure.geometry.surface import Floats
 
-_FACET_LINE = re.compile(rb"^[ \t]*(?:end)?facet\b", re.MULTILINE | re.IGNORECASE)
-_FACET = ("outer loop", "vertex", "vertex", "vertex", "endloop", "endfacet")
+_CORNER: Final = rb"\s+vertex\s+([^\s_]+)\s+([^\s_]+)\s+([^\s_]+)"
+_FACET: Final = re.compile(
+    rb"\s*facet\s+normal\s+\S+\s+\S+\s+\S+\s+outer\s+loop" + 3 * _CORNER + rb"\s+endloop\s+endfacet(?=\s|\Z)",
+    re.IGNORECASE,
+)
+_END: Final = re.compile(rb"\s*end[ \t]*solid\b[^\n]*(?:\n|\Z)", re.IGNORECASE)
+_BEGIN: Final = re.compile(rb"\s*solid\b([^\n]*)(?:\n|\Z)", re.IGNORECASE)
+_LINES = ("outer loop", "vertex", "vertex", "vertex", "endloop", "endfacet")
 
 
 def read_ascii(data: bytes, metres: float, where: str) -> Triangles:
@@ -35,26 +43,15 @@ def read_ascii(data: bytes, metres: float, where: str) -> Triangles:
     Notes
     -----
     The solids of a file are one mesh here; more than one is said in a note. Corners are rounded to 32-bit numbers, as
-    in a binary STL, so that corners written with differing digits are equal where those are.
+    in a binary STL, so that corners written with differing digits are equal where those are. What stands for a normal
+    is passed over.
     """
-    from stl import Mode
-    from stl.mesh import Mesh
-
-    # numpy-stl takes what follows the last endsolid for one more solid, and knows no line ends but these.
-    text = data.replace(b"\r\n", b"\n").replace(b"\r", b"\n").strip() + b"\n"
-    try:
-        solids = [
-            solid.vectors
-            for solid in Mesh.from_multi_file(where, calculate_normals=False, fh=io.BytesIO(text), mode=Mode.ASCII)
-        ]
-    except (RuntimeError, ValueError, AssertionError) as error:
-        raise InputError(_fault(data, where) or _unread(where, str(error))) from error
-    count = sum(map(len, solids))
-    # An endsolid inside a facet ends numpy-stl's reading without a word, and drops that facet.
-    lines = len(_FACET_LINE.findall(text))
-    if 2 * count != lines:
-        raise InputError(_fault(data, where) or _unread(where, f"{count} faces in {lines} lines of facets"))
-    if count == 0:
+    text = data.replace(b"\r\n", b"\n").replace(b"\r", b"\n")
+    found = _solids(text)
+    if found is None:
+        raise InputError(_fault(data, where) or _unread(where, "lines that do not follow each other as they should"))
+    exact, parts = found
+    if not len(exact):
         raise InputError(
             Fault(
                 "the STL holds no faces",
@@ -63,13 +60,34 @@ def read_ascii(data: bytes, metres: float, where: str) -> Triangles:
                 next_step="export the part again, with its solid selected",
             )
         )
-    findings: tuple[Finding, ...] = ()
-    if len(solids) > 1:
-        sizes = ", ".join(f"{len(solid):,}" for solid in solids)
-        message = f"The file holds {len(solids)} solids ({sizes} faces); they were read as one mesh."
-        advice = "Export pieces of different density as files of their own."
-        findings = (Finding("several-solids", Level.NOTE, message, count=len(solids), advice=advice),)
-    return Triangles(in_metres(np.concatenate(solids), metres, where), findings)
+    in_metres(exact, metres, where)  # before the rounding, which makes large numbers infinite
+    corners = in_metres(exact.astype(np.float32), metres, where)
+    return Triangles(corners, several(parts, "solids"), tuple(parts) if len(parts) > 1 else ())
+
+
+def _solids(text: bytes) -> tuple[Floats, list[Part]] | None:
+    """Corners of all solids, (m, 3, 3), and the solids; None where something stands in a wrong place."""
+    corners = array("d")
+    parts: list[Part] = []
+    at, end = 0, len(text.rstrip())
+    while at < end:
+        begin = _BEGIN.match(text, at)
+        if begin is None:
+            return None
+        at, before = begin.end(), len(corners)
+        while facet := _FACET.match(text, at):
+            try:
+                corners.extend(map(float, facet.groups()))
+            except ValueError:
+                return None
+            at = facet.end()
+        stop = _END.match(text, at)
+        if stop is None:
+            return None
+        at = stop.end()
+        name = begin[1].strip().decode("utf-8", "replace")
+        parts.append(Part(name, (len(corners) - before) // 9))
+    return np.array(corners, dtype=np.float64).reshape(-1, 3, 3), parts
 
 
 def _unread(where: str, reason: str) -> Fault:
@@ -92,7 +110,9 @@ def _fault(data: bytes, where: str) -> Fault | None:
             continue
         keyword, numbers = wanted.split(), 3 if wanted in {"facet normal", "vertex"} else 0
         rest = words[len(keyword) :]
-        if words[: len(keyword)] != keyword or (numbers and not _numbers(rest, numbers)):
+        # A normal may be anything: exporters write there what a division by nothing gave them.
+        holds = len(rest) == numbers if wanted == "facet normal" else not numbers or _numbers(rest, numbers)
+        if words[: len(keyword)] != keyword or not holds:
             shown = f"'{line[:60]}'"
             return Fault(
                 "a line of the ASCII STL is not what the format wants there",
@@ -105,7 +125,7 @@ def _fault(data: bytes, where: str) -> Fault | None:
             )
         expected = expected[1:] or ("facet normal",)
         if wanted == "facet normal":
-            expected = (*_FACET, "facet normal")
+            expected = (*_LINES, "facet normal")
         elif wanted == "solid":
             expected = ("facet normal",)
     if expected[0] != "solid":
@@ -121,6 +141,6 @@ def _fault(data: bytes, where: str) -> Fault | None:
 
 def _numbers(words: list[str], count: int) -> bool:
     try:
-        return len([float(word) for word in words]) == count
+        return len([float(word) for word in words if "_" not in word]) == count
     except ValueError:
         return False

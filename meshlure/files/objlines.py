@@ -10,6 +10,7 @@ import numpy as np
 
 from meshlure.errors import Fault, InputError
 from meshlure.files.polygons import Polygons
+from meshlure.files.rows import number_of
 from meshlure.findings import Finding, Level
 from meshlure.geometry.surface import Floats, Ints
 
@@ -17,6 +18,9 @@ from meshlure.geometry.surface import Floats, Ints
 _JOINT: Final = b"\v"
 _VERTEX: Final = re.compile(rb"^[ \t]*v[ \t\v]([^\n#]*)", re.MULTILINE)
 _FACE: Final = re.compile(rb"^[ \t]*f[ \t\v]([^\n#]*)", re.MULTILINE)
+
+_OBJECT: Final = re.compile(rb"^[ \t]*o[ \t\v]([^\n#]*)", re.MULTILINE)
+_GROUP: Final = re.compile(rb"^[ \t]*g[ \t\v]([^\n#]*)", re.MULTILINE)
 
 _PASSED = b"v|vn|vt|vp|f|l|p|o|g|s|mg|usemtl|mtllib|usemap|maplib|lod|bevel|c_interp|d_interp|shadow_obj|trace_obj"
 _FREE_FORM = b"cstype|curv|curv2|surf|bsp|bzp|cdc|cdp|res"
@@ -123,7 +127,7 @@ class ObjLines:
             # Colours and weights after the three numbers have no part in the shape.
             rows = [b" ".join(row.split()[:3]) for row in rows]
         try:
-            numbers = list(map(float, b" ".join(rows).split()))
+            numbers = list(map(number_of, b" ".join(rows).split()))
         except ValueError:
             wrong = next(number for number, row in enumerate(rows) if not all(map(_number, row.split())))
             allowed = "three numbers with a decimal point"
@@ -154,7 +158,7 @@ class ObjLines:
             raise InputError(self._unreadable("a face", self._faces.match(number), "three corners or more"))
         words = b" ".join(rows).split()
         try:
-            indices = np.array([int(word.partition(b"/")[0]) for word in words], dtype=np.intp)
+            indices = np.array([_whole(word.partition(b"/")[0]) for word in words], dtype=np.intp)
         except (ValueError, OverflowError):
             wrong = next(number for number, row in enumerate(rows) if not all(map(_index, row.split())))
             allowed = "vertex numbers such as 3, 3/1, 3//2 or -1"
@@ -172,6 +176,21 @@ class ObjLines:
         if broken.any():
             raise InputError(self._broken(np.unique(owners[broken]), vertices, corners[broken]))
         return Polygons(corners, counts)
+
+    def parts(self) -> tuple[tuple[str, int], ...]:
+        """Objects, or groups where there are fewer than two objects, in the file's order: name and count of faces."""
+        for pattern in (_OBJECT, _GROUP):
+            named = _Statements(pattern, self._text)
+            if len(named.rows) < 2:
+                continue
+            # A statement names the faces after it; those before the first have no name.
+            begins = np.searchsorted(self._faces.starts(), named.starts())
+            counts = np.diff(np.concatenate(([0], begins, [len(self._faces.rows)]))).tolist()
+            names = ["", *(row.strip().decode("utf-8", "replace") for row in named.rows)]
+            runs = [(name, count) for name, count in zip(names, counts, strict=True) if count]
+            if len(runs) > 1:
+                return tuple(runs)
+        return ()
 
     def line(self, face: int) -> int:
         """Line of a face, both counted as people count: the line from 1, the face from 0 as arrays do."""
@@ -232,14 +251,20 @@ def _shown(text: bytes) -> str:
 
 def _number(word: bytes) -> bool:
     try:
-        float(word)
+        number_of(word)
     except ValueError:
         return False
     return True
 
 
+def _whole(word: bytes) -> int:
+    if b"_" in word:  # which Python would pass over
+        raise ValueError(word)
+    return int(word)
+
+
 def _index(word: bytes) -> bool:
     try:
-        return abs(int(word.partition(b"/")[0])) < 2**62
+        return abs(_whole(word.partition(b"/")[0])) < 2**62
     except ValueError:
         return False

@@ -21,6 +21,9 @@ _POINTLESS: Final = 1e-12
 
 _SAME_AREA: Final = 1e-6
 
+_TURNS: Final = 2_000_000
+"""Triangles looked at, all in all, while a polygon's needles are turned: some seconds."""
+
 
 @dataclass(frozen=True, eq=False)
 class Polygons:
@@ -46,6 +49,8 @@ class Cut:
     ----------
     faces : (m, 3) array of vertex indices
         In the polygons' order, turning the same way as they.
+    owners : (m,) array of polygon numbers
+        Of which polygon each triangle is a piece, ascending.
     bent : (b,) array of polygon numbers
         Polygons that are not flat: another program may cut them along another diagonal.
     bend : float, unit of the vertices
@@ -55,6 +60,7 @@ class Cut:
     """
 
     faces: Ints
+    owners: Ints
     bent: Ints
     bend: float
     crossing: Ints
@@ -77,7 +83,8 @@ def cut(vertices: Floats, polygons: Polygons) -> Cut:
     -----
     A polygon's plane goes through the mean of its corners, along the normal of Newell's sums (sum over the edges of
     p x q, which is twice the area whatever the shape). A polygon that turns left at every corner, once round, is fanned
-    from its first corner. Any other is cut by ears in its plane, and the triangles held against it: n - 2 of them, none
+    from its first corner. A quadrangle that does not is cut along the diagonal that leaves both halves as they turn,
+    where there is one. Any other is cut by ears in its plane, and the triangles held against it: n - 2 of them, none
     turned over, together of the polygon's area. Corners on a straight edge are kept, for a neighbour may end there.
     """
     starts = np.cumsum(polygons.counts) - polygons.counts
@@ -99,17 +106,26 @@ def cut(vertices: Floats, polygons: Polygons) -> Cut:
         bent.append(numbers[off])
         bend = max(bend, float(shape.bend[off].max(initial=0.0)))
         fanned = shape.convex | ~shape.spread
+        if count == 4:
+            halves, halved = _halves(vertices[corners], shape.normal)
+            halved &= ~fanned
+            faces.append(np.take_along_axis(corners[halved], halves[halved].reshape(-1, 6), axis=1).reshape(-1, 3))
+            owners.append(np.repeat(numbers[halved], 2))
+        else:
+            halved = np.zeros_like(fanned)
         faces.append(corners[fanned][:, fans].reshape(-1, 3))
         owners.append(np.repeat(numbers[fanned], count - 2))
-        for row in np.flatnonzero(~fanned):
+        for row in np.flatnonzero(~(fanned | halved)):
             ears, whole = _ears(vertices[corners[row]], shape.normal[row])
             faces.append(corners[row][ears])
             owners.append(np.full(len(ears), numbers[row]))
             if not whole:
                 crossing.append(int(numbers[row]))
-    order = np.argsort(np.concatenate(owners), kind="stable")
+    owner = np.concatenate(owners)
+    order = np.argsort(owner, kind="stable")
     return Cut(
         np.concatenate(faces)[order],
+        owner[order],
         np.sort(np.concatenate([np.empty(0, dtype=np.intp), *bent])),
         bend,
         np.array(sorted(crossing), dtype=np.intp),
@@ -149,6 +165,20 @@ class _Shape:
         self.convex = ~empty & strict.all(axis=1) & (np.abs(angles - 2 * np.pi) < 1.0)
 
 
+def _halves(corners: Floats, normal: Floats) -> tuple[Ints, NDArray[np.bool_]]:
+    """Two triangles (k, 2, 3) of each quadrangle, along the better diagonal, and whether neither is turned over.
+
+    A quadrangle with one corner that points inwards or is straight has one such diagonal; one that crosses itself none.
+    """
+    ways = np.array([[[0, 1, 2], [0, 2, 3]], [[0, 1, 3], [1, 2, 3]]])
+    a, b, c = (corners[:, ways[..., corner]] for corner in range(3))
+    heights = np.einsum("kwtj,kj->kwt", np.cross(b - a, c - a), normal)
+    least = heights.min(axis=2)
+    best = least.argmax(axis=1)
+    size = np.linalg.norm(np.ptp(corners, axis=1), axis=1)
+    return ways[best], least.max(axis=1) > _STRAIGHT * size**2
+
+
 def _ears(corners: Floats, normal: Floats) -> tuple[Ints, bool]:
     """Triangles (m, 3) of one polygon by ear cutting, and whether they cover it as it is drawn."""
     # Imported here: only a file with concave polygons needs them.
@@ -176,8 +206,9 @@ def _without_needles(ears: Ints, flat: Floats) -> Ints:
     """
     ears = ears.copy()
     least = _STRAIGHT * float(np.linalg.norm(np.ptp(flat, axis=0)))
-    # Every turn settles a needle or moves two of them apart; an outline that crosses itself may keep some.
-    for _ in range(4 * len(ears)):
+    # Every turn settles a needle or moves two of them apart; an outline that crosses itself may keep some, and one of
+    # very many corners is not worth the time: needles do no harm.
+    for _ in range(min(4 * len(ears), _TURNS // max(len(ears), 1))):
         sides = np.linalg.norm(flat[np.roll(ears, -1, axis=1)] - flat[ears], axis=2)
         longest = sides.argmax(axis=1)
         needles = 2 * _signed_areas(flat[ears]) <= least * sides.max(axis=1)

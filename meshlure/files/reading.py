@@ -10,20 +10,52 @@ from pathlib import Path
 from types import MappingProxyType
 from typing import Final
 
+import numpy as np
+
 from meshlure.errors import Fault, InputError
+from meshlure.files.formats import ELSEWHERE, FORMATS, Format
+from meshlure.files.glb import read_glb
 from meshlure.files.nearness import did_you_mean
 from meshlure.files.obj import read_obj
-from meshlure.files.source import read_source
+from meshlure.files.off import read_off
+from meshlure.files.ply import read_ply
+from meshlure.files.source import LARGEST, read_source
+from meshlure.files.step import read_step
 from meshlure.files.stl import read_stl
-from meshlure.files.triangles import Triangles
+from meshlure.files.threemfreading import read_3mf
+from meshlure.files.triangles import Part, Triangles
 from meshlure.findings import Finding, Level
-from meshlure.geometry.surface import Surface
-from meshlure.geometry.welding import weld
+from meshlure.geometry.surface import Ints, Surface
+from meshlure.geometry.welding import Welded, weld
 from meshlure.units import length_unit
 
+_SMALLEST: Final = 1e-9
+"""m. What is nowhere larger than this is no part, and its areas and volumes would drown in rounding."""
+
 _READERS: Final[Mapping[str, Callable[[bytes, float, str], Triangles]]] = MappingProxyType(
-    {".stl": read_stl, ".obj": read_obj}
+    {"STL": read_stl, "OBJ": read_obj, "PLY": read_ply, "OFF": read_off}
 )
+
+_UNPACKERS: Final[Mapping[str, Callable[[bytes, str, int], Triangles]]] = MappingProxyType(
+    {"3MF": read_3mf, "GLB": read_glb, "STEP": read_step}
+)
+"""Of files that say their unit, and from which more can come than they are long."""
+
+
+@dataclass(frozen=True, eq=False)
+class NamedFaces:
+    """Faces that the file keeps together.
+
+    Attributes
+    ----------
+    name : str
+        As the file says it; empty where it has none.
+    faces : (m,) array
+        Their numbers in the surface.
+    """
+
+    name: str
+    faces: Ints
 
 
 @dataclass(frozen=True, eq=False)
@@ -39,11 +71,19 @@ class MeshFile:
     triangles : int
         Count in the file, polygons as the triangles they were cut into; collapsed ones are counted here.
     unit : str
-        mm, cm, m or in: what the file's numbers were taken for.
+        mm, cm, m, in, ft or um: what the file's numbers were taken for.
     surface : Surface
         Welded on exact equality, m.
     findings : tuple of Finding
         What was odd in the file and yet readable. Whether the mesh is sound is not asked here.
+    format : str
+        STL, OBJ, 3MF, PLY, OFF, GLB or STEP.
+    size : int
+        Bytes of the file.
+    parts : tuple of NamedFaces
+        In the file's order; empty where the file does not part its faces.
+    exact_volume : float or None
+        m3. Of the solid that the triangles were made from, where the file holds one.
     """
 
     path: Path
@@ -52,26 +92,35 @@ class MeshFile:
     unit: str
     surface: Surface
     findings: tuple[Finding, ...] = ()
+    format: str = "STL"
+    size: int = 0
+    parts: tuple[NamedFaces, ...] = ()
+    exact_volume: float | None = None
 
 
-def read_mesh(path: Path, unit: str, piece: str | None = None, where: str = "") -> MeshFile:
-    """Welded surface, m, of an STL or OBJ file.
+def read_mesh(
+    path: Path, unit: str | None, piece: str | None = None, where: str = "", largest: int = LARGEST
+) -> MeshFile:
+    """Welded surface, m, of a mesh file.
 
     Parameters
     ----------
     path : Path
         Its suffix says the format, in capitals or not.
-    unit : str
-        mm, cm, m or in. A mesh file does not say its unit, and it is not guessed.
+    unit : str or None
+        mm, cm, m or in. It is not guessed: None only does where the format says its unit, which is then believed
+        whatever is stated here.
     piece : str or None
         Name that the findings carry.
     where : str
         Where the file was named, for the messages: "bait.toml: body.mesh".
+    largest : int
+        Bytes beyond which a file is not read, nor unpacked.
 
     Raises
     ------
     InputError
-        The file cannot be read as such a mesh; see `read_source`, `read_stl` and `read_obj`.
+        The file cannot be read as such a mesh; see `read_source` and the formats' readers.
 
     Notes
     -----
@@ -79,31 +128,94 @@ def read_mesh(path: Path, unit: str, piece: str | None = None, where: str = "") 
     poles, and left in they would make a closed mesh read as an open one.
     """
     place = f"{where}: {path}" if where else str(path)
-    metres = length_unit(unit, place)
-    suffix = path.suffix.lower()
-    if suffix not in _READERS and not path.is_dir():
-        allowed = " or ".join(_READERS)
-        advice = (
-            did_you_mean(suffix, _READERS, "export the part as binary STL")
-            if suffix
-            else "name the mesh with its suffix"
+    metres = None if unit is None else length_unit(unit, place)
+    form = _format(path, place)
+    if metres is None and form is not None and not form.says_unit:
+        raise InputError(
+            Fault(
+                f"a file of the format {form.name} does not say its unit",
+                place,
+                "none stated",
+                "mm, cm, m or in",
+                "state it as the mesh was exported, with --unit mm for instance",
+            )
         )
-        raise InputError(Fault("a mesh in this format is not read", place, repr(suffix or path.name), allowed, advice))
-    data = read_source(path, "mesh", where)
-    loose = _READERS[suffix](data, metres, place)
+    data = read_source(path, "mesh", where, largest)
+    # A folder has no suffix that means something, and read_source has refused it.
+    assert form is not None
+    loose = _read(form, data, 1.0 if metres is None else metres, place, largest)
     welded = weld(loose.corners)
+    _check_size(welded, loose, place)
     findings = list(loose.findings)
+    if loose.unit and unit is not None and loose.unit != unit:
+        message = f"The file says that its unit is {loose.unit}; that was believed, not the {unit} stated beside it."
+        findings.append(Finding("unit-of-file", Level.NOTE, message))
     if welded.collapsed:
         message = f"Left out: {welded.collapsed} of {len(loose.corners)} triangles, with corners at one point."
         findings.append(Finding("collapsed-triangles", Level.NOTE, message, count=welded.collapsed))
-    if not len(welded.surface.faces):
-        raise InputError(
-            Fault(
-                "no triangle of the mesh has three corners apart",
-                place,
-                f"{len(loose.corners)} triangles, all of them collapsed",
-                next_step="check the scale of the export: small parts in large units may be rounded to one point",
-            )
-        )
     named = tuple(dataclasses.replace(finding, piece=piece) for finding in findings)
-    return MeshFile(path, hashlib.sha256(data).hexdigest(), len(loose.corners), unit, welded.surface, named)
+    return MeshFile(
+        path=path,
+        sha256=hashlib.sha256(data).hexdigest(),
+        triangles=len(loose.corners),
+        unit=loose.unit or unit or "",
+        surface=welded.surface,
+        findings=named,
+        format=form.name,
+        size=len(data),
+        parts=_parts(loose.parts, welded.kept),
+        exact_volume=loose.exact_volume,
+    )
+
+
+def _format(path: Path, place: str) -> Format | None:
+    """Format by the suffix; None for a folder of any name, which has a message of its own."""
+    suffix = path.suffix.lower()
+    try:
+        folder = path.is_dir()
+    except ValueError:  # a NUL character in the name
+        folder = False
+    if suffix in FORMATS or folder:
+        return FORMATS.get(suffix)
+    near = did_you_mean(suffix, FORMATS, "export the part as 3MF or binary STL")
+    advice = ELSEWHERE.get(suffix, near) if suffix else "name the mesh with its suffix"
+    allowed = f"{', '.join(list(FORMATS)[:-1])} or {list(FORMATS)[-1]}"
+    raise InputError(Fault("a mesh in this format is not read", place, repr(suffix or path.name), allowed, advice))
+
+
+def _read(form: Format, data: bytes, metres: float, place: str, largest: int) -> Triangles:
+    if form.name in _UNPACKERS:
+        return _UNPACKERS[form.name](data, place, largest)
+    return _READERS[form.name](data, metres, place)
+
+
+def _check_size(welded: Welded, loose: Triangles, place: str) -> None:
+    """Refuse what has no extent.
+
+    Raises
+    ------
+    InputError
+    """
+    if not len(welded.surface.faces):
+        found = f"{len(loose.corners)} triangles, all of them collapsed"
+        what = "no triangle of the mesh has three corners apart"
+    else:
+        reach = float(np.ptp(welded.surface.bounds, axis=0).max())
+        if reach >= _SMALLEST:
+            return
+        found, what = f"{reach:.3g} m", "the whole mesh is smaller than a millionth of a millimetre"
+    step = "check the scale of the export: small parts in large units may be rounded to one point"
+    raise InputError(Fault(what, place, found, next_step=step))
+
+
+def _parts(parts: tuple[Part, ...], kept: Ints | None) -> tuple[NamedFaces, ...]:
+    """Parts by the faces that are left of them."""
+    stops = np.cumsum([part.triangles for part in parts], dtype=np.intp)
+    if kept is not None:
+        stops = np.searchsorted(kept, stops)
+    starts = np.concatenate(([0], stops[:-1])) if len(stops) else stops
+    return tuple(
+        NamedFaces(part.name, np.arange(start, stop))
+        for part, start, stop in zip(parts, starts.tolist(), stops.tolist(), strict=True)
+        if stop > start
+    )

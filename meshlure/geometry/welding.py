@@ -16,7 +16,7 @@ _AT_ONCE = 16384
 _SALTS = tuple(np.uint64(k) for k in (0x0, 0xD1B54A32D192ED03, 0x8CB92BA72F3D8DD7))
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class Welded:
     """A surface made of loose triangles.
 
@@ -25,10 +25,13 @@ class Welded:
     surface : Surface
     collapsed : int
         Faces left out because two of their corners are the same point.
+    kept : (k,) array or None
+        Which triangles, ascending, are the surface's faces; None where all are.
     """
 
     surface: Surface
     collapsed: int
+    kept: Ints | None = None
 
 
 def weld(corners: Floats) -> Welded:
@@ -73,7 +76,7 @@ def weld(corners: Floats) -> Welded:
     collapsed = len(faces) - int(np.count_nonzero(whole))
     if collapsed:
         vertices, faces = _used(vertices, faces[whole])
-    return Welded(Surface(vertices, faces), collapsed)
+    return Welded(Surface(vertices, faces), collapsed, np.flatnonzero(whole) if collapsed else None)
 
 
 def _used(vertices: Floats, faces: Ints) -> tuple[Floats, Ints]:

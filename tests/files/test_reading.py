@@ -42,8 +42,9 @@ def test_suffix_in_capitals(body: Path) -> None:
 @pytest.mark.parametrize(
     ("name", "said"),
     [
-        ("body.step", "format is not read.*'.step'.*allowed: .stl or .obj.*did you mean '.stl'"),
-        ("body.3mf", "format is not read.*'.3mf'"),
+        ("body.stll", "format is not read.*'.stll'.*allowed: .stl, .obj, .3mf, .*did you mean '.stl'"),
+        ("body.gltf", "format is not read.*'.gltf'.*export it as GLB"),
+        ("body.zip", "format is not read.*'.zip'.*unpack it"),
         ("body", "format is not read.*'body'.*with its suffix"),
         ("boddy.stl", "is not there.*did you mean 'body.stl'"),
         ("Body.obj", "is not there.*did you mean 'body.stl'"),
@@ -70,10 +71,10 @@ def test_unit_unknown(body: Path) -> None:
 def test_not_allowed_to_be_read(body: Path, monkeypatch: pytest.MonkeyPatch) -> None:
     if os.geteuid() == 0:  # the rights of a file do not bind root
 
-        def refuse(_: Path) -> bytes:
+        def refuse(_: Path, mode: str) -> None:
             raise PermissionError(13, "Permission denied", str(body))
 
-        monkeypatch.setattr(Path, "read_bytes", refuse)
+        monkeypatch.setattr(Path, "open", refuse)
     else:
         body.chmod(0)
     with pytest.raises(InputError, match=r"(?s)body\.stl: the mesh may not be read.*right to read"):
