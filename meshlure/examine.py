@@ -33,6 +33,7 @@ from meshlure.results import budget as budget_tree
 from meshlure.results import passage as passage_tree
 from meshlure.results import sinking as sinking_tree
 from meshlure.results.changes import changes
+from meshlure.results.scene import scene
 from meshlure.results.study import Study
 from meshlure.stock.waters import standard_air
 from meshlure.version import VERSION
@@ -179,7 +180,7 @@ def study(bait: Bait, against: Bait | None = None) -> Study:
         "mould": None,
         "timings_s": clock.spent,
     }
-    return Study(tree, views)
+    return Study(tree, views, scene=scene(bait, composition.rows, posed.ends, account.headline(posed.trees)))
 
 
 def _lips(bait: Bait, composition: Composition) -> None:

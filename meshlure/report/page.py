@@ -25,6 +25,7 @@ from meshlure.report.layout import scale_for, scale_words
 from meshlure.report.pen import swatches
 from meshlure.report.resting import resting
 from meshlure.report.subject import Subject, main_posture, readable, subject, touchy
+from meshlure.report.view import turning
 from meshlure.report.windward import windward
 from meshlure.results import Study
 
@@ -96,6 +97,7 @@ def page(study: Study) -> str:
         help_words=flight.help_words(results["flight"]),
         timings=origin.timings(results),
         tables=_tables(results),
+        turning=turning(study.scene, results, shown),
         w=wording,
         **pictures,
     )

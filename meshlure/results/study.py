@@ -59,6 +59,35 @@ class View:
 
 
 @dataclass(frozen=True, eq=False)
+class ScenePiece:
+    """One piece's mesh, to be looked at: vertices (n, 3), mm, in mesh coordinates; faces (m, 3)."""
+
+    name: str
+    role: str
+    vertices: Floats
+    faces: NDArray[np.intp]
+
+
+@dataclass(frozen=True, eq=False)
+class Scene:
+    """The bait's pieces in the posture that heads the page.
+
+    Attributes
+    ----------
+    pieces : tuple of ScenePiece
+        The body first, then inserts and hollows in the bait file's order, then the balls where they lie.
+    up : (3,) array or None
+        The water's upward normal in mesh coordinates; None where no attitude is its own.
+    waterline_mm : float or None
+        Height of the surface along ``up``; None under water.
+    """
+
+    pieces: tuple[ScenePiece, ...]
+    up: Floats | None
+    waterline_mm: float | None
+
+
+@dataclass(frozen=True, eq=False)
 class Study:
     """Everything one examination of a bait found.
 
@@ -68,10 +97,13 @@ class Study:
         The tree of results.json: mm, g, degrees at its keys' word; published as a JSON Schema in the package.
     views : tuple of View
         side, top and front, for drawing.
+    scene : Scene or None
+        The meshes to look at from all sides; None where there is none to show.
     """
 
     results: Mapping[str, Any]
     views: tuple[View, ...] = ()
+    scene: Scene | None = None
 
     def to_json(self) -> str:
         """Return results.json as text; raises ValueError if a number in it is not finite."""
