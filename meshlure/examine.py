@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import time
 import uuid
-from collections.abc import Iterator, Sequence
+from collections.abc import Callable, Iterator, Mapping, Sequence
 from contextlib import contextmanager
 from typing import Any
 
@@ -57,15 +57,29 @@ PHASES = (
 )
 
 
-class Clock:
-    """Seconds spent by phase."""
+TOLD: Mapping[str, str] = {
+    "weight": "weighing",
+    "posture": "finding postures",
+    "budget": "adding up doubts",
+    "areas": "measuring areas",
+    "drag": "estimating drag",
+    "flight": "flying it",
+    "sinking": "sinking it",
+}
+"""What a caller is told as a phase begins."""
 
-    def __init__(self, spent: dict[str, float]) -> None:
+
+class Clock:
+    """Seconds spent by phase, each told as it begins."""
+
+    def __init__(self, spent: dict[str, float], tell: Callable[[str], None]) -> None:
         self.spent = dict.fromkeys(PHASES, 0.0) | spent
+        self._tell = tell
 
     @contextmanager
     def phase(self, name: str) -> Iterator[None]:
         """Add the time of a block to a phase."""
+        self._tell(TOLD.get(name, name))
         start = time.perf_counter()
         try:
             yield
@@ -73,7 +87,7 @@ class Clock:
             self.spent[name] += time.perf_counter() - start
 
 
-def study(bait: Bait, against: Bait | None = None) -> Study:
+def study(bait: Bait, against: Bait | None = None, tell: Callable[[str], None] = lambda _: None) -> Study:
     """Return everything that one examination of a bait finds.
 
     Parameters
@@ -82,6 +96,8 @@ def study(bait: Bait, against: Bait | None = None) -> Study:
         From `read_bait`.
     against : Bait, optional
         Another one, whose flight the distance is held against.
+    tell : callable
+        Told each phase in a word or two as it begins.
 
     Returns
     -------
@@ -93,7 +109,7 @@ def study(bait: Bait, against: Bait | None = None) -> Study:
     InputError
         Where a mass or a volume is left undefined: every fault that leaves it so.
     """
-    clock = Clock(bait.timings)
+    clock = Clock(bait.timings, tell)
     frame = bait.frame
     with clock.phase("weight"):
         composition = compose(bait)

@@ -4,15 +4,14 @@ from __future__ import annotations
 
 import sys
 import traceback
-from dataclasses import astuple
-from pathlib import Path
-from typing import Final, NoReturn
+from typing import Any, Final, NoReturn
 
 import typer
 
-from meshlure.cli import balance, mould, pour, report
-from meshlure.cli.terminal import answer, harmless, tell
-from meshlure.errors import Fault, InputError
+from meshlure.cli.commands import JOBS
+from meshlure.cli.terminal import answer, complain, hush, tell
+from meshlure.cli.usage import Commands, UsageError, misread, shared
+from meshlure.errors import InputError
 from meshlure.version import VERSION
 
 DONE: Final = 0
@@ -24,21 +23,26 @@ INTERRUPTED: Final = 130
 
 HELP: Final = """Weighs, floats, measures and cuts hard fishing baits from their meshes.
 
-Start with: meshlure report --help
+A report on a sample, to see what it is about:
+
+\b
+  meshlure report samples/minnow/minnow.toml --out out
 """
 
 app = typer.Typer(
     name="meshlure",
+    cls=Commands,
     help=HELP,
-    add_completion=False,
+    epilog="meshlure COMMAND --help has examples of each.",
+    subcommand_metavar="COMMAND ...",
     no_args_is_help=True,
     rich_markup_mode=None,
     pretty_exceptions_enable=False,
 )
-app.command("report", help=report.HELP, short_help=report.SHORT)(report.report)
-app.command("balance", help=balance.HELP, short_help=balance.SHORT)(balance.balance)
-app.command("mould", help=mould.HELP, short_help=mould.SHORT)(mould.mould)
-app.command("pour", help=pour.HELP, short_help=pour.SHORT)(pour.pour)
+for job, modules in JOBS.items():
+    for module in modules:
+        name = module.__name__.rpartition(".")[2]
+        app.command(name, help=module.HELP, short_help=module.SHORT, rich_help_panel=job)(shared(getattr(module, name)))
 
 
 def _version(asked: bool) -> None:
@@ -63,45 +67,33 @@ def main() -> NoReturn:
     -----
     Exit codes: 0 done, 1 done but the answer is no, 2 bad input or usage, 3 our own fault, 130 stopped by Ctrl-C.
     """
+    hush(False)
     try:
-        _check_command(sys.argv[1:])
-        app()
-    except SystemExit as ended:
-        if ended.code == INTERRUPTED:
-            tell("stopped; nothing half-written was left behind")
-        raise
+        code = app(prog_name="meshlure", standalone_mode=False) or DONE
     except InputError as error:
-        _refuse(error)
-        sys.exit(BAD_INPUT)
+        complain(error.faults)
+        code = BAD_INPUT
+    except UsageError as error:
+        code = _usage(error)
+    except (typer.Abort, KeyboardInterrupt):
+        code = INTERRUPTED
     except MemoryError:
         tell("meshlure cannot go on: this needs more memory than the computer gives. Export coarser meshes.")
-        sys.exit(BAD_INPUT)
+        code = BAD_INPUT
     except Exception as error:
         _apologize(error)
-        sys.exit(OUR_FAULT)
-    sys.exit(DONE)
+        code = OUR_FAULT
+    if code == INTERRUPTED:
+        tell("stopped; nothing half-written was left behind")
+    sys.exit(code)
 
 
-def _check_command(words: list[str]) -> None:
-    """Refuse a file in the command's place with the words that would have worked."""
-    if words and Path(words[0]).suffix.casefold() in report.SUFFIXES:
-        raise InputError(
-            Fault(
-                what="a command comes first",
-                where="meshlure",
-                found=words[0],
-                allowed="report",
-                next_step=f"write meshlure report {words[0]} ...",
-            )
-        )
-
-
-def _refuse(error: InputError) -> None:
-    count = len(error.faults)
-    tell("meshlure cannot go on:" if count == 1 else f"meshlure cannot go on, for {count} reasons:")
-    for fault in error.faults:
-        plain = Fault(*map(harmless, astuple(fault)))
-        tell(*f"- {plain}".splitlines())
+def _usage(error: Any) -> int:
+    if type(error).__name__ == "NoArgsIsHelpError":
+        typer.echo(error.format_message(), err=True)
+    else:
+        complain([misread(error, sys.argv[1:])])
+    return BAD_INPUT
 
 
 def _apologize(error: Exception) -> None:

@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING, Annotated, Final
 
 import typer
 
+from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer, hand_on
 from meshlure.errors import Fault, InputError
 
@@ -110,13 +111,16 @@ def report(
     from meshlure.bait.loading import load
     from meshlure.examine import study
 
-    read = load(plan)
-    other = None if against is None else load(_plan(against, {}, []))
-    found = study(read, other)
-    if out is not None:
-        from meshlure.cli.writing import write
+    with phases() as said:
+        said("reading the meshes")
+        read = load(plan)
+        other = None if against is None else load(_plan(against, {}, []))
+        found = study(read, other, said)
+        if out is not None:
+            from meshlure.cli.writing import write
 
-        found = write(found, out, page=not no_page, variant=read if cut else None)
+            said("writing the page" if not no_page else "writing")
+            found = write(found, out, page=not no_page, variant=read if cut else None)
     if json:
         hand_on(found.to_json())
     else:

@@ -13,6 +13,7 @@ import pytest
 import typer
 from command_bench import Bench
 
+from meshlure.cli.commands import JOBS
 from meshlure.cli.main import app
 
 SAMPLES = Path(__file__).parents[2] / "samples"
@@ -30,14 +31,16 @@ def test_every_option_is_described(bench: Bench, command: str, parameter: Any) -
     shown = " ".join(bench.run(*command.split(), "--help").out.split())
     assert " ".join(parameter.help.split()) in shown
     for name in parameter.opts if parameter.param_type_name == "option" else []:
-        assert re.search(rf"{name} ", shown)
+        assert re.search(rf"{name}[ ,]", shown)
 
 
 def test_every_command_is_listed_with_what_it_does(bench: Bench) -> None:
     ran = bench.run("--help")
     assert (ran.code, ran.err) == (0, "")
-    listed = re.findall(r"^  (\w+)  (.*\w.*)$", ran.out.partition("Commands:")[2], re.MULTILINE)
+    listed = re.findall(r"^  (\w+)  (.*\w.*)$", ran.out.partition("Options:")[0], re.MULTILINE)
     assert [name for name, _ in listed] == list(COMMAND.commands)
+    jobs = re.findall(r"^(\w.*):$", ran.out.partition("Options:")[0], re.MULTILINE)
+    assert jobs == list(JOBS)
     assert not any(words.endswith("...") for _, words in listed)
 
 

@@ -1,0 +1,146 @@
+"""Tables for the terminal: fitted to its width there, plain columns where the output goes elsewhere."""
+
+from __future__ import annotations
+
+import io
+from collections.abc import Sequence
+from dataclasses import dataclass, field
+from typing import Final
+
+from meshlure.cli.terminal import shown
+
+_GAP: Final = 2
+"""Blanks between columns."""
+_WORDS: Final = 16
+"""Columns of the terminal that a column of words is left at least."""
+
+
+@dataclass(frozen=True)
+class Column:
+    """One column.
+
+    Attributes
+    ----------
+    head : str
+    number : bool
+        Whether it is set to the right.
+    words : bool
+        Whether its cells may be broken over lines where the terminal is narrow.
+    """
+
+    head: str
+    number: bool = False
+    words: bool = False
+
+
+@dataclass(frozen=True)
+class Table:
+    """Rows under heads.
+
+    Attributes
+    ----------
+    columns : sequence of Column
+    rows : sequence of sequence of str
+        A cell for each column.
+    strong : frozenset of int
+        Rows that are set off in colour; what sets them off must stand in their words too.
+    """
+
+    columns: Sequence[Column]
+    rows: Sequence[Sequence[str]]
+    strong: frozenset[int] = field(default_factory=frozenset)
+
+    def lines(self, wide: int | None, encoding: str, colour: bool) -> list[str]:
+        """Return the table's lines, without the blanks at their ends.
+
+        Parameters
+        ----------
+        wide : int or None
+            Columns of the terminal; None leaves every row on one line.
+        encoding : str
+            Of the stream that they go to.
+        colour : bool
+            Whether the stream can be coloured.
+        """
+        rows = [[shown(cell, encoding) for cell in row] for row in self.rows]
+        heads = [shown(column.head, encoding) for column in self.columns]
+        if wide is None:
+            return self._plain(heads, rows)
+        if self._least(heads, rows) > wide:
+            return self._records(heads, rows)
+        return self._fitted(heads, rows, wide, _can_draw(encoding), colour)
+
+    def _plain(self, heads: list[str], rows: list[list[str]]) -> list[str]:
+        sizes = [max(map(len, cells)) for cells in zip(heads, *rows, strict=True)]
+        return [
+            (" " * _GAP)
+            .join(
+                cell.rjust(size) if column.number else cell.ljust(size)
+                for cell, size, column in zip(row, sizes, self.columns, strict=True)
+            )
+            .rstrip()
+            for row in (heads, *rows)
+        ]
+
+    def _least(self, heads: list[str], rows: list[list[str]]) -> int:
+        """How wide a terminal must be for the columns to stand side by side."""
+        sizes = [max(map(len, cells)) for cells in zip(heads, *rows, strict=True)]
+        held = [min(size, _WORDS) if c.words else size for size, c in zip(sizes, self.columns, strict=True)]
+        return sum(held) + _GAP * (len(held) - 1)
+
+    def _records(self, heads: list[str], rows: list[list[str]]) -> list[str]:
+        """Every row as a block of its own, a line a cell, where the columns have no room."""
+        size = max(map(len, heads))
+        lines = []
+        for first, *rest in rows:
+            lines.append(first)
+            lines += [f"  {head.ljust(size)}  {cell}" for head, cell in zip(heads[1:], rest, strict=True) if cell]
+        return lines
+
+    def _fitted(self, heads: list[str], rows: list[list[str]], wide: int, ruled: bool, colour: bool) -> list[str]:
+        from rich import box
+        from rich.console import Console
+        from rich.table import Table as Rich
+        from rich.text import Text
+
+        made = Rich(
+            box=box.SIMPLE_HEAD if ruled else None,
+            show_edge=False,
+            pad_edge=False,
+            padding=(0, _GAP - ruled, 0, 0),  # the rule takes a blank of its own
+            header_style="bold" if colour else "",
+        )
+        for head, column in zip(heads, self.columns, strict=True):
+            made.add_column(
+                Text(head),
+                justify="right" if column.number else "left",
+                no_wrap=not column.words,
+                overflow="fold",
+                vertical="top",
+            )
+        for number, row in enumerate(rows):
+            style = "bold" if colour and number in self.strong else None
+            made.add_row(*(Text(cell) for cell in row), style=style)
+        paper = io.StringIO()
+        console = Console(
+            file=paper,
+            width=wide,
+            force_terminal=colour,
+            color_system="standard" if colour else None,
+            no_color=not colour,
+            legacy_windows=False,
+            highlight=False,
+            emoji=False,
+            markup=False,
+        )
+        console.print(made)
+        return [line.rstrip() for line in paper.getvalue().splitlines()]
+
+
+def _can_draw(encoding: str) -> bool:
+    """Tell whether an encoding has the line that is drawn under the heads."""
+    try:
+        "─".encode(encoding)
+    except (UnicodeEncodeError, LookupError):
+        return False
+    return True
