@@ -69,9 +69,10 @@ def bait(
     back: Any = "+z",
     cavities: str = "sealed",
     within: float | None = None,
+    printed: Table | None = None,
     **sections: Any,
 ) -> Bait:
-    """A bait of a body, m, of a density in g/cm3, in water of kg/m3; further sections as a bait file has them."""
+    """A bait of a body, m, of a density in g/cm3 or printed, in water of kg/m3; further sections as in a bait file."""
     head: Table = {"name": "bench bait", "length_unit": "mm", "nose": nose, "back": back, "size_checked": True}
     if within is not None:
         head["suspends_within"] = f"{within!r} g"
@@ -79,7 +80,7 @@ def bait(
         "format": 1,
         "bait": head,
         "water": {"density": f"{water!r} kg/m3"},
-        "body": {"mesh": "body.stl", "density": f"{density!r} g/cm3", "cavities": cavities},
+        "body": {"mesh": "body.stl", **_made_of(density, printed), "cavities": cavities},
         "insert": [{"name": piece.name, "mesh": f"{piece.name}.stl", **piece.keys} for piece in inserts],
         **sections,
     }
@@ -89,6 +90,10 @@ def bait(
         for name, surface in surfaces.items()
     }
     return assemble(bait_of(table, Path(), "bench bait"), files)
+
+
+def _made_of(density: float, printed: Table | None) -> Table:
+    return {"density": f"{density!r} g/cm3"} if printed is None else {"printed": printed}
 
 
 def codes(findings: Sequence[Finding]) -> set[str]:

@@ -2,20 +2,16 @@
 
 from __future__ import annotations
 
-from pathlib import Path
 from typing import Any
 
 import numpy as np
 import pytest
 import shapes
-from workbench import Insert, codes, insert, only, void
+from workbench import Insert, bait, codes, insert, only, void
 
 from meshlure.bait.composition import Part, compose
-from meshlure.bait.loading import assemble
 from meshlure.bait.pieces import Bait, Role
 from meshlure.errors import InputError
-from meshlure.files.baitfile import bait_of
-from meshlure.files.reading import MeshFile
 from meshlure.geometry.surface import Surface
 
 SOLID = 1200.0
@@ -24,20 +20,11 @@ BOX = (0.06, 0.02, 0.03)
 
 def printed(body: Surface, *inserts: Insert, wall: float = 1.2e-3, infill: float = 0.15, **keys: Any) -> Bait:
     """A bait printed of a stated density of 1.2 g/cm3, or of what the keys say."""
-    how: dict[str, Any] = {"wall": f"{wall * 1e3!r} mm", "infill": infill, **(keys or {"density": "1.2 g/cm3"})}
-    table = {
-        "format": 1,
-        "bait": {"name": "print", "length_unit": "mm", "nose": "-x", "back": "+z", "size_checked": True},
-        "water": {"density": "1000 kg/m3"},
-        "body": {"mesh": "body.stl", "printed": how},
-        "insert": [{"name": piece.name, "mesh": f"{piece.name}.stl", **piece.keys} for piece in inserts],
-    }
-    surfaces = {"body": body, **{piece.name: piece.surface for piece in inserts}}
-    files = {
-        name: MeshFile(Path(f"{name}.stl"), "0" * 64, len(surface.faces), "mm", surface)
-        for name, surface in surfaces.items()
-    }
-    return assemble(bait_of(table, Path(), "print"), files)
+    return bait(body, *inserts, printed=made(wall, infill, **keys))
+
+
+def made(wall: float = 1.2e-3, infill: float = 0.15, **keys: Any) -> dict[str, Any]:
+    return {"wall": f"{wall * 1e3!r} mm", "infill": infill, **(keys or {"density": "1.2 g/cm3"})}
 
 
 def body_of(one: Bait) -> Part:
