@@ -30,7 +30,7 @@ STEADY: Final = radians(2.0)
 MOST_OFFERED: Final = 8
 """Ways that are flown, flooded and told."""
 
-_SHORTENED: Final = 3
+_SHORTENED: Final = 2
 """Of the best ways, for how many a shorter bore is looked for that does better."""
 
 _KINDS: Final[Mapping[str, Callable[[Trial], bool]]] = MappingProxyType(
@@ -90,14 +90,14 @@ def _shorter(site: Site, asked: Needs, trials: list[Trial]) -> list[tuple[Trial,
         for row in ranked(trials, asked)[:_SHORTENED]:
             if holds(row.trial):
                 continue
-            less = shorter(site, asked, row.trial.option, _asked_of(site, holds))
+            less = shorter(site, asked, row.trial.option, _asked_of(site, row.trial, holds))
             if less is not None:
-                found.append((rested(site, less), kind))
+                found.append((rested(site, less, row.trial), kind))
     return found
 
 
-def _asked_of(site: Site, holds: Callable[[Trial], bool]) -> Callable[[Option], bool]:
-    return lambda option: holds(rested(site, option))
+def _asked_of(site: Site, near: Trial, holds: Callable[[Trial], bool]) -> Callable[[Option], bool]:
+    return lambda option: holds(rested(site, option, near))
 
 
 def _limits(asked: Needs, option: Option) -> list[str]:

@@ -40,7 +40,7 @@ def told(site: Site, row: Ranked, kind: str, slope: float, tip: float) -> Tree:
         "posture_change_deg": degrees(trial.change),
         "flight": _flight(flown(site, trial.option)),
         "reserve_g": trial.reserve * GRAM,
-        "flooded": _leak(leaked(site, trial.option)),
+        "flooded": _leak(leaked(site, trial)),
         "score": row.score,
     }
     return tree.option(trial.option, frame.nose, tip, extra)

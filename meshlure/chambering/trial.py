@@ -94,10 +94,18 @@ class Trial:
         return self.rested["tail"].returns
 
 
-def rested(site: Site, option: Option) -> Trial:
-    """Return how the bait rests with a chamber's balls at either end."""
+def rested(site: Site, option: Option, near: Trial | None = None) -> Trial:
+    """Return how the bait rests with a chamber's balls at either end.
+
+    Parameters
+    ----------
+    site : Site
+    option : Option
+    near : Trial, optional
+        Of a chamber much like it, from whose postures the search starts; by default from the back up.
+    """
     vessel = option.vessel(site)
-    found = {end: _rest(site, vessel, option, _ends(site, end)) for end in ENDS}
+    found = {end: _rest(site, vessel, option, _ends(site, end), near and near.rested[end].up) for end in ENDS}
     ends = _ends(site, "nose")
     mass = vessel.composition.mass(ends).amount
     reserve = vessel.hull(ends).volume * vessel.water - mass
@@ -109,10 +117,11 @@ def flown(site: Site, option: Option) -> dict[str, Flown]:
     return flying.flown(site.bait, option.composed(site), site.passage)
 
 
-def leaked(site: Site, option: Option) -> Leak:
-    """Return what the bait does once its chamber is full of water."""
+def leaked(site: Site, trial: Trial) -> Leak:
+    """Return what a bait that was tried does once its chamber is full of water."""
+    option = trial.option
     vessel = option.flooded(site)
-    tried = {end: _rest(site, vessel, option, _ends(site, end)) for end in ENDS}
+    tried = {end: _rest(site, vessel, option, _ends(site, end), trial.rested[end].up) for end in ENDS}
     # Both ends may hold, or none: then the nose, to which the bore was sloped.
     end = "tail" if not tried["nose"].returns and not tried["tail"].returns else "nose"
     ends = _ends(site, end)
@@ -131,8 +140,8 @@ def _ends(site: Site, end: str) -> Ends:
     return others | {CHAMBER: end}
 
 
-def _rest(site: Site, vessel: Vessel, option: Option, ends: Ends) -> Rested:
-    repose = vessel.reposed(ends, site.bait.frame.back)
+def _rest(site: Site, vessel: Vessel, option: Option, ends: Ends, start: Floats | None) -> Rested:
+    repose = vessel.reposed(ends, site.bait.frame.back if start is None else start)
     up = vessel.dangle(ends).hang.up if repose is None else repose.rest.state.up
     if up is None:
         return Rested(None, None, None)

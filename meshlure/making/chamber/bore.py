@@ -32,6 +32,8 @@ class Bore:
         Least distance to anything else in the body; infinite where there is nothing.
     nearest : str or None
         What that is.
+    nearest_at : (3,) array, m
+        Where on it; the bore's middle where there is nothing.
     """
 
     cut: Cylinder
@@ -40,6 +42,7 @@ class Bore:
     ends: tuple[float, float]
     clear: float
     nearest: str | None
+    nearest_at: Floats
 
     @property
     def length(self) -> float:
@@ -66,8 +69,8 @@ def measured(site: Site, cut: Cylinder) -> Bore:
     """Return a bore with its distances to the skin and to all else, found exactly."""
     side = side_standoff(site.boxes, cut)
     nose, tail = (ahead(site.boxes, cut, end).distance for end in (0, 1))
-    clear, nearest = nearest_other(site, cut)
-    return Bore(cut, side.distance, side.place, (nose, tail), clear, nearest)
+    near = nearest_other(site, cut)
+    return Bore(cut, side.distance, side.place, (nose, tail), near.distance, near.name, near.at)
 
 
 def shortened(cut: Cylinder, nose: float, tail: float) -> Cylinder:
@@ -76,24 +79,42 @@ def shortened(cut: Cylinder, nose: float, tail: float) -> Cylinder:
     return replace(cut, middle=middle, length=cut.length - nose - tail)
 
 
-def nearest_other(site: Site, cylinder: Cylinder) -> tuple[float, str | None]:
-    """Return the least distance of a cylinder to anything in the body, m, infinite where there is nothing; and what."""
-    least, which = np.inf, None
+@dataclass(frozen=True, eq=False)
+class Neighbour:
+    """What lies nearest to a cylinder.
+
+    Attributes
+    ----------
+    distance : float, m
+        Infinite where there is nothing.
+    name : str or None
+    at : (3,) array, m
+        Where on it.
+    """
+
+    distance: float
+    name: str | None
+    at: Floats
+
+
+def nearest_other(site: Site, cylinder: Cylinder) -> Neighbour:
+    """Return which of the other pieces and the hardware lies nearest to a cylinder's skin."""
+    best = Neighbour(np.inf, None, cylinder.middle)
     for item in site.bait.hardware:
         found = _from_point(item.at, cylinder)
-        if found < least:
-            least, which = found, f"'{item.name}'"
+        if found < best.distance:
+            best = Neighbour(found, f"'{item.name}'", item.at)
     half = np.abs(cylinder.axis) * cylinder.length / 2 + cylinder.radius
     for name, boxes in site.others:
         # By the boxes round both it cannot be nearer than this.
         low, high = boxes.low.min(axis=0), boxes.high.max(axis=0)
         gaps = np.maximum(np.maximum(low - (cylinder.middle + half), (cylinder.middle - half) - high), 0.0)
-        if float(np.linalg.norm(gaps)) >= least:
+        if float(np.linalg.norm(gaps)) >= best.distance:
             continue
-        found = cylinder_standoff(boxes, cylinder).distance
-        if found < least:
-            least, which = found, name
-    return least, which
+        standoff = cylinder_standoff(boxes, cylinder)
+        if standoff.distance < best.distance:
+            best = Neighbour(standoff.distance, name, standoff.place)
+    return best
 
 
 def distances(site: Site, cylinders: Sequence[Cylinder]) -> list[tuple[str, float]]:

@@ -38,7 +38,13 @@ _FINEST = 4e-6
 _CLOSE = 4e-6
 """m by which every distance is made greater than asked for: what the points still miss."""
 
-_ROUNDS = 4
+_GAIN = 4.0
+"""By how much a bore is shortened at first for what it is too near: right where the skin slopes by 15 degrees."""
+
+_LEAST_GAIN = 0.2
+"""Least share of what was missing that a step is taken to have gained."""
+
+_ROUNDS = 5
 _TRIMS = 8
 
 _WAYS = np.array([[0, 1], [0, -1], [1, 0], [-1, 0], [1, 1], [1, -1], [-1, 1], [-1, -1]], dtype=np.float64)
@@ -74,11 +80,19 @@ def bores(site: Site, grid: Grid, rules: Rules, least: float, most: int = 1) -> 
     """
     looks = [look for look in grid.looks(rules) if look.length > 0.7 * least]
     found: list[Bore] = []
-    for _ in range(most):
-        bore = _best(site, rules, [look for look in looks if not _taken(look, site, rules, found)])
-        if bore is None or bore.length < least:
+    for _ in range(2 * most):
+        bore = _best(site, rules, looks)
+        if bore is None:
+            # What the grid promised does not hold.
+            looks = looks[_STARTS:]
+            continue
+        if bore.length < least:
             break
-        found.append(bore)
+        if not any(_meet(site, rules, bore, other) for other in found):
+            found.append(bore)
+        if len(found) == most:
+            break
+        looks = [look for look in looks if not _covers(site, rules, bore, look.place, look.start, look.end)]
     return found
 
 
@@ -144,10 +158,13 @@ def _settled(site: Site, rules: Rules, cloud: Cloud, trial: _Trial, *, free: boo
     """The bore of a line, moved and shortened until its exact distances are what was asked for."""
     asked = replace(rules, wall=rules.wall + _CLOSE, end_wall=rules.end_wall + _CLOSE, clear=rules.clear + _CLOSE)
     trial = _moved(cloud, asked, trial, _ROOM / 2, _ROOM / 16, free=free)
-    for _ in range(_ROUNDS):
+    for rounds in range(_ROUNDS):
         if trial.run.length <= 0:
             return None
+        before = trial
         trial = _moved(cloud.joined(_closer(site, rules, trial)), asked, trial, _ROOM / 16, _FINEST, free=free)
+        if rounds < _ROUNDS - 2 and _far(before, trial) > _ROOM / 8:
+            continue  # its ends have left what was looked at closely
         bore = _trimmed(site, rules, trial)
         if isinstance(bore, Bore):
             return bore
@@ -156,15 +173,22 @@ def _settled(site: Site, rules: Rules, cloud: Cloud, trial: _Trial, *, free: boo
     return None
 
 
+def _far(before: _Trial, after: _Trial) -> float:
+    """By how much the farther end of a line's stretch has moved, m; nothing where nothing is left of it."""
+    if after.run.length <= 0:
+        return 0.0
+    ends = (after.run.start - before.run.start, after.run.end - before.run.end)
+    return max(float(np.hypot(end, np.linalg.norm(after.place - before.place))) for end in ends)
+
+
 def _closer(site: Site, rules: Rules, trial: _Trial) -> Cloud:
     """Points so close together round both ends of a line's stretch that what they leave unseen does not count."""
-    reach = rules.reach - rules.radius + _ROOM / 4
-    ends = [np.array([along, *trial.place]) for along in (trial.run.start, trial.run.end)]
-    skin, others = (
-        np.concatenate([faces.points(end, rules.radius, reach, site.spacing / 4) for end in ends])
-        for faces in (site.skin_faces, site.other_faces)
-    )
-    return Cloud(skin, others)
+    beyond, spacing = rules.reach - rules.radius + _ROOM / 4, site.spacing / 4
+    tail, nose = (np.array([along, *trial.place]) for along in (trial.run.start, trial.run.end))
+    skin = [site.skin_faces.points(end, end, rules.radius, beyond, spacing) for end in (tail, nose)]
+    # A wire may run beside the bore all along.
+    others = site.other_faces.points(tail, nose, rules.radius, rules.clear + _ROOM / 4, spacing)
+    return Cloud(np.concatenate(skin), others)
 
 
 def _trimmed(site: Site, rules: Rules, trial: _Trial) -> Bore | tuple[float, float]:
@@ -173,30 +197,35 @@ def _trimmed(site: Site, rules: Rules, trial: _Trial) -> Bore | tuple[float, flo
         return 0.0, 0.0
     ends = site.axes.mesh(np.array([[trial.run.start, *trial.place], [trial.run.end, *trial.place]]))
     cut = Cylinder(ends.mean(axis=0), site.axes.along, trial.run.length, rules.radius)
+    lacks, gain, missed = (0.0, 0.0), _GAIN, np.inf
     for _ in range(_TRIMS):
         bore = measured(site, cut)
-        thin, near = rules.wall - bore.wall, rules.clear - bore.clear
-        along = float((bore.wall_at - cut.middle) @ cut.axis)
-        if max(thin, near) > 0 and abs(along) < cut.length / 2 - rules.wall / 2:
-            return max(thin, 0.0), max(near, 0.0)
         nose, tail = (max(rules.end_wall - end, 0.0) for end in bore.ends)
-        # Shortening gains about a third of itself where the skin slopes by 20 degrees; the next round gains the rest.
-        short = 3 * max(thin, near, 0.0)
-        nose, tail = (max(nose, short), tail) if along > 0 else (nose, max(tail, short))
+        lacks = max(rules.wall - bore.wall, 0.0), max(rules.clear - bore.clear, 0.0)
+        for lack, at, keeps in zip(lacks, (bore.wall_at, bore.nearest_at), (rules.wall, rules.clear), strict=True):
+            along = float((at - cut.middle) @ cut.axis)
+            if lack > 0 and abs(along) < cut.length / 2 - keeps / 2:
+                return lacks
+            less = gain * (lack + _CLOSE / 2) if lack > 0 else 0.0
+            nose, tail = (max(nose, less), tail) if along > 0 else (nose, max(tail, less))
         if max(nose, tail) <= 0:
             return bore
         if nose + tail >= cut.length:
             break
+        # By what the last step gained the next is made to gain the rest.
+        gain *= 1 / max(1 - max(lacks) / missed, _LEAST_GAIN) if missed < np.inf and max(lacks) > 0 else 1.0
+        missed = max(lacks) if max(lacks) > 0 else np.inf
         cut = shortened(cut, nose, tail)
-    return max(thin, 0.0), max(near, 0.0)
+    return lacks
 
 
-def _taken(look: Look, site: Site, rules: Rules, found: list[Bore]) -> bool:
-    """Whether a line's stretch shares room with a bore found before."""
-    for bore in found:
-        low, high = sorted(site.axes.local(np.stack([bore.nose_end, bore.tail_end]))[:, 0])
-        place = site.axes.local(bore.cut.middle[None])[0, 1:]
-        apart = float(np.hypot(*(look.place - place)))
-        if apart < 2 * rules.radius + rules.clear and look.start < high + rules.clear and look.end > low - rules.clear:
-            return True
-    return False
+def _covers(site: Site, rules: Rules, bore: Bore, place: Floats, start: float, end: float) -> bool:
+    """Whether a stretch of a line shares room with a bore."""
+    low, high = sorted(site.axes.local(np.stack([bore.nose_end, bore.tail_end]))[:, 0])
+    apart = float(np.hypot(*(place - site.axes.local(bore.cut.middle[None])[0, 1:])))
+    return apart < 2 * rules.radius + rules.clear and start < high + rules.clear and end > low - rules.clear
+
+
+def _meet(site: Site, rules: Rules, one: Bore, other: Bore) -> bool:
+    tail, nose = site.axes.local(np.stack([one.tail_end, one.nose_end]))
+    return _covers(site, rules, other, tail[1:], float(tail[0]), float(nose[0]))

@@ -78,7 +78,7 @@ def from_belly(site: Site, bore: Bore, wall: float, clear: float) -> Opening | N
             if not _hidden(site, below):
                 continue
             plug = wall + ahead(site.boxes, below, 0).distance
-            if nearest_other(site, _stretch(drill, 0.0, min(plug + 2 * radius, drill.length)))[0] >= clear:
+            if nearest_other(site, _stretch(drill, 0.0, min(plug + 2 * radius, drill.length))).distance >= clear:
                 found.append(Opening("belly", drill, plug))
         if found:
             return min(found, key=lambda opening: opening.plug)

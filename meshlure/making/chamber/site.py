@@ -74,43 +74,43 @@ class Faces:
         middle = corners.mean(axis=1)
         return cls(corners, middle, np.sqrt(((corners - middle[:, None]) ** 2).sum(axis=2).max(axis=1, initial=0.0)))
 
-    def points(self, end: Floats, radius: float, reach: float, spacing: float) -> Floats:
-        """Return points on the faces near a disc across the bore, (n, 3) array, m.
+    def points(self, start: Floats, end: Floats, radius: float, reach: float, spacing: float) -> Floats:
+        """Return points on the faces near a stretch of a bore, (n, 3) array, m.
 
         Parameters
         ----------
-        end : (3,) array, m
-            Its centre.
+        start, end : (3,) arrays, m
+            Centres of its discs, tail first; the same twice for one disc.
         radius, reach : float, m
             Its own, and the distance from it within which points are wanted.
         spacing : float, m
             No place of the faces within reach is farther than this from a point.
         """
-        corners = self.corners[_off(self.middle, end, radius) <= self.radius + reach]
+        corners = self.corners[_off(self.middle, start, end, radius) <= self.radius + reach]
         found = [corners.reshape(-1, 3)]
         while len(corners):
             sides = np.linalg.norm(np.roll(corners, -1, axis=1) - corners, axis=2)
             longest = sides.argmax(axis=1)
             row = np.arange(len(corners))
-            start, end_, other = (corners[row, (longest + step) % 3] for step in range(3))
-            middle = (start + end_) / 2
+            first, second, other = (corners[row, (longest + step) % 3] for step in range(3))
+            middle = (first + second) / 2
             # A face's longest side is wider than any way in it: beyond that from the disc none of it is near.
             wide = sides.max(axis=1)
-            kept = (wide > spacing) & (_off(middle, end, radius) <= reach + wide)
+            kept = (wide > spacing) & (_off(middle, start, end, radius) <= reach + wide)
             found.append(middle[kept])
-            start, end_, other, middle = start[kept], end_[kept], other[kept], middle[kept]
+            first, second, other, middle = first[kept], second[kept], other[kept], middle[kept]
             corners = np.concatenate(
-                [np.stack([start, middle, other], axis=1), np.stack([middle, end_, other], axis=1)]
+                [np.stack([first, middle, other], axis=1), np.stack([middle, second, other], axis=1)]
             )
         points = np.concatenate(found)
-        return np.asarray(points[_off(points, end, radius) <= reach])
+        return np.asarray(points[_off(points, start, end, radius) <= reach])
 
 
-def _off(points: Floats, centre: Floats, radius: float) -> Floats:
-    """Distances of points from a disc across the bore."""
-    apart = points - centre
-    beside = np.maximum(np.hypot(apart[:, 1], apart[:, 2]) - radius, 0.0)
-    return np.asarray(np.hypot(apart[:, 0], beside))
+def _off(points: Floats, start: Floats, end: Floats, radius: float) -> Floats:
+    """Distances of points from a stretch of a bore, 0 within."""
+    beyond = np.maximum(np.maximum(start[0] - points[:, 0], points[:, 0] - end[0]), 0.0)
+    beside = np.maximum(np.hypot(points[:, 1] - start[1], points[:, 2] - start[2]) - radius, 0.0)
+    return np.asarray(np.hypot(beyond, beside))
 
 
 @dataclass(frozen=True, eq=False)
