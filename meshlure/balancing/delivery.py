@@ -16,14 +16,15 @@ from meshlure.errors import Fault, InputError
 from meshlure.examine import study
 from meshlure.files.sections.inserts import InsertSection
 from meshlure.files.sections.substance import Substance as Stated
-from meshlure.making.balance.ballast import Ballast
+from meshlure.geometry.moments import solid_moments
+from meshlure.geometry.surface import Surface
+from meshlure.making.balance.ballast import UNCUT, Ballast
 from meshlure.making.balance.cut import Cut, cut
 from meshlure.making.balance.ground import Ground
 from meshlure.making.balance.halves import halves
 from meshlure.making.balance.outcome import Outcome
 from meshlure.making.variantfile import NewInsert, Variant, write_variant
 from meshlure.results import balance as tree
-from meshlure.results.account import headline
 from meshlure.results.study import Study
 
 Tree = dict[str, Any]
@@ -33,6 +34,8 @@ KEPT_RESERVE: Final = 0.02e-3
 """kg. What was written must have the reserve promised within this."""
 KEPT_ANGLE: Final = 0.2
 """degrees. What was written must rest as promised within this."""
+KEPT_VOLUME: Final = 1e-4
+"""Share within which the body read back must have its volume."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -46,11 +49,12 @@ class Balance:
     ground : Ground
     taken : Ballast or None
         To be written; None where only the body's density changes, or no ballast can help.
-    outcome : Outcome or None
+    outcome : Outcome
         Promised.
     density : float or None, kg/m3
         Of the body, where that was solved for.
-    reachable : bool
+    met : bool
+        Whether what is to be written meets the target.
     account : dict
         For results.json.
     """
@@ -58,9 +62,9 @@ class Balance:
     bait: Bait
     ground: Ground
     taken: Ballast | None
-    outcome: Outcome | None
+    outcome: Outcome
     density: float | None
-    reachable: bool
+    met: bool
     account: Tree
 
     def make(
@@ -85,13 +89,13 @@ class Balance:
             Where a mesh does not come back as promised, or the bait read back does not keep its reserve and posture.
         """
         tell("cutting")
-        made = cut(self.ground.bait, self.taken)
-        further: list[tuple[str, Any]] = []
+        made = cut(self.ground, self.taken)
+        further: list[tuple[str, Surface]] = []
         account = dict(self.account)
         if parted:
-            found = halves(made.body, self.ground.frame, self._neighbours())
-            further = [("body left", found.left.surface()), ("body right", found.right.surface())]
-            account["pins"] = [tree.pin(p.middle, p.axis, 2 * p.radius, p.length) for p in found.pins]
+            two = halves(made.body, self.ground.frame, self._in_the_way())
+            further = [("body left", two.left.surface()), ("body right", two.right.surface())]
+            account["pins"] = [tree.pin(p.middle, p.axis, 2 * p.radius, p.length) for p in two.pins]
         variant = Variant(
             name=f"{self.bait.name}, balanced",
             body=made.body,
@@ -104,15 +108,17 @@ class Balance:
         )
         names = write_variant(folder, "balanced", self.bait, variant)
         tell("reading back")
-        found_again = study(read_bait(folder / "balanced.toml"))
-        self._check(found_again)
-        results = dict(found_again.results)
+        again = read_bait(folder / "balanced.toml")
+        found = study(again)
+        self._check(found, again, made)
+        results = dict(found.results)
         results["inputs"] = [row | {"file": str(out / Path(row["file"]).name)} for row in results["inputs"]]
         results["balance"] = account
-        return replace(found_again, results=results), names
+        return replace(found, results=results), names
 
-    def _neighbours(self) -> list[Any]:
-        return [piece.surface for piece in self.ground.bait.pieces]
+    def _in_the_way(self) -> list[Surface]:
+        """What pins must leave alone: the other pieces, and the ballast where no pocket is cut for it."""
+        return [*self.ground.neighbours, *(self.taken.rooms() if self.taken is not None else ())]
 
     def _inserts(self, made: Cut) -> tuple[NewInsert, ...]:
         ballast = self.taken
@@ -137,29 +143,49 @@ class Balance:
             for number, surface in enumerate(made.ballast, 1)
         ]
         if made.plug is not None:
-            body = self.bait.plan.body
-            substance = replace(body.substance) if body.substance is not None else None
-            name = _free_name("plug", 1, taken)
-            rows.append(NewInsert(replace(_section(name, None), substance=substance), made.plug.surface()))
+            section = replace(_section(_free_name("plug", 1, taken), None), coated=True)
+            rows.append(NewInsert(replace(section, substance=self.bait.plan.body.substance), made.plug.surface()))
         return tuple(rows)
 
-    def _check(self, found: Study) -> None:
+    def _check(self, found: Study, again: Bait, made: Cut) -> None:
         """Refuse what was written where it does not keep its promise."""
-        promised = self.outcome
-        if promised is None:
-            return
         faults = []
+        promised = self.outcome
         reserve = found.results["buoyancy"]["reserve_g"] * 1e-3
         if abs(reserve - promised.reserve) > KEPT_RESERVE:
-            faults.append(_broken("reserve", f"{reserve * 1e3:.3f} g", f"{promised.reserve * 1e3:.3f} g within 0.02"))
-        posture = headline(found.results["postures"])
-        up = posture["up"]
-        if promised.up is not None and up is not None:
-            off = degrees(float(np.arccos(np.clip(promised.up @ np.array(up), -1.0, 1.0))))
-            if off > KEPT_ANGLE:
-                faults.append(_broken("posture", f"{off:.2f} degrees off", "within 0.2 degrees"))
+            kept = f"{promised.reserve * 1e3:.3f} g within {KEPT_RESERVE * 1e3:g}"
+            faults.append(_broken("reserve", f"{reserve * 1e3:.3f} g", kept))
+        volume, whole = self._volume(made), _material(again)
+        if abs(whole - volume) > KEPT_VOLUME * volume:
+            faults.append(
+                _broken("volume of the body", f"{whole * 1e9:.6g} mm3", f"{volume * 1e9:.6g} mm3 within 0.01%")
+            )
+        off = self._off(found)
+        if off > KEPT_ANGLE:
+            faults.append(_broken("posture", f"{off:.2f} degrees off", f"within {KEPT_ANGLE:g} degrees"))
         if faults:
             raise InputError(faults)
+
+    def _volume(self, made: Cut) -> float:
+        """Volume of body material promised, m3: what was drawn less the true room, whatever its mesh is."""
+        volume = _material(self.bait)
+        if self.taken is None or self.taken.kind.pocket == UNCUT:
+            return volume
+        return volume - self.taken.taken().amount - (0.0 if made.plug is None else made.plug.volume)
+
+    def _off(self, found: Study) -> float:
+        """By how many degrees the nearest posture differs from the one promised."""
+        up = self.outcome.up
+        ups = [np.array(posture["up"]) for posture in found.results["postures"] if posture["up"] is not None]
+        if up is None:
+            return 180.0 if ups else 0.0
+        # Of postures that mirror each other the bait may come to rest in either.
+        return min((degrees(float(np.arccos(np.clip(up @ other, -1.0, 1.0)))) for other in ups), default=180.0)
+
+
+def _material(bait: Bait) -> float:
+    """Volume of a body less its cavities, m3."""
+    return solid_moments(bait.body.surface).amount - sum(solid_moments(hollow).amount for hollow in bait.body.cavities)
 
 
 def _broken(what: str, found: str, allowed: str) -> Fault:
@@ -184,16 +210,4 @@ def _free_name(word: str, number: int, taken: set[str]) -> str:
 
 def _section(name: str, material: str | None, replaces: tuple[str, ...] = ()) -> InsertSection:
     substance = None if material is None else Stated(material=material)
-    return InsertSection(
-        name,
-        Path("x.stl"),
-        substance,
-        None,
-        "sealed",
-        replaces,
-        lip=False,
-        free=False,
-        pinned=False,
-        fit=0.0,
-        glue=None,
-    )
+    return InsertSection(name, Path(), substance, replaces=replaces)

@@ -7,22 +7,21 @@ from math import degrees
 from typing import Any, Final
 
 from meshlure.bait.pieces import Bait
+from meshlure.balancing import reached
 from meshlure.balancing.delivery import Balance
 from meshlure.balancing.flights import Flights
 from meshlure.errors import Fault, InputError
 from meshlure.files.sections.target import TargetSection
-from meshlure.geometry.surface import Floats
 from meshlure.making.balance.aim import Aim, aim
+from meshlure.making.balance.asked import asked, placed
 from meshlure.making.balance.density import Dense, density_for
 from meshlure.making.balance.ground import Ground
 from meshlure.making.balance.hindrance import hindrances
 from meshlure.making.balance.outcome import outcome, reserve_for_speed, sinking_speed
 from meshlure.making.balance.ranking import Ranked, ranked
-from meshlure.making.balance.room import Room
-from meshlure.making.balance.search import REACHED_ANGLE, REACHED_RESERVE, Option, Search
+from meshlure.making.balance.room import Left, Room
+from meshlure.making.balance.search import REACHED_ANGLE, Option, Search
 from meshlure.making.balance.stated import stated_ballast
-from meshlure.physics.passage import Passage
-from meshlure.physics.repose import Vessel
 from meshlure.results import balance as tree
 
 Tree = dict[str, Any]
@@ -54,16 +53,21 @@ def balance(bait: Bait, take: int = 1, tell: Tell = lambda _: None) -> Balance:
     """
     target = _target(bait)
     if target.vary == "body density":
+        if take != 1:
+            raise InputError(Fault("there is one density only", "--take", str(take), "1", "leave it out"))
         return _by_density(bait, target, tell)
+    wanted = asked(bait)
     tell("what stays")
     ground = Ground.of(bait)
     goal = aim(ground, target)
-    goal, search, rows = _searched(ground, goal, bait, tell)
+    flights = Flights(ground)
+    search, rows, speeds = _searched(Search.of(ground, goal, wanted, Room.of(ground, wanted.stated)), flights, tell)
+    goal = search.goal
+    if not 1 <= take <= max(len(rows), 1):
+        raise InputError(
+            Fault("there is no such way to take", "--take", str(take), f"1 to {max(len(rows), 1)}", "choose one")
+        )
     tell("flight")
-    flights = Flights(ground, bait)
-    if rows and not 1 <= take <= len(rows):
-        raise InputError(Fault("there is no such way to take", "--take", str(take), f"1 to {len(rows)}", "choose one"))
-    speeds = [_speed(ground, flights.way, row.option, goal) for row in rows]
     trees = [
         tree.option(
             ground,
@@ -73,26 +77,26 @@ def balance(bait: Bait, take: int = 1, tell: Tell = lambda _: None) -> Balance:
         )
         for row, speed in zip(rows, speeds, strict=True)
     ]
-    reachable = bool(rows) and any(_meets(row.option, goal, speed) for row, speed in zip(rows, speeds, strict=True))
-    hindered = () if reachable else hindrances(search, rows)
+    met = [_meets(row.option, goal, speed) for row, speed in zip(rows, speeds, strict=True)]
+    hindered = [] if any(met) else list(hindrances(search, rows))
+    if rows and not any(met) and not hindered:
+        hindered.append(f"way 1 {_misses(rows[0].option, goal, speeds[0])}")
+    if any(met) and not met[take - 1]:
+        words = _misses(rows[take - 1].option, goal, speeds[take - 1])
+        hindered.append(f"way {take}, which is written, {words}; way 1 meets it")
     account = tree.balance(
         _wanted(ground, goal, target),
         trees,
         take if rows else None,
-        reachable,
+        any(met),
         hindered,
         [piece.name for piece in ground.freed],
     )
-    chosen = rows[take - 1].option if rows else None
-    return Balance(
-        bait,
-        ground,
-        None if chosen is None else chosen.ballast,
-        None if chosen is None else chosen.outcome,
-        None,
-        reachable,
-        account,
-    )
+    if not rows:
+        bare = outcome(ground.vessel, goal, ground.ends(goal.up))
+        return Balance(bait, ground, None, bare, None, False, account)
+    chosen = rows[take - 1].option
+    return Balance(bait, ground, chosen.ballast, chosen.outcome, None, met[take - 1], account)
 
 
 def place(bait: Bait, text: str, tell: Tell = lambda _: None) -> Balance:
@@ -105,56 +109,63 @@ def place(bait: Bait, text: str, tell: Tell = lambda _: None) -> Balance:
     """
     tell("what stays")
     ground = Ground.of(bait)
-    section = bait.plan.ballast
-    ballast = stated_ballast(text, ground, section)
+    ballast = stated_ballast(text, ground)
     vessel = ground.with_ballast(ballast)
     target = bait.plan.target
     goal = None if target is None or target.vary != "ballast" else aim(ground, target)
-    level = Aim(bait.frame.back, 1.0 if _floats(vessel, bait.frame.back, ground) else -1.0, None, 0.0, 0.0, ())
-    found = outcome(vessel, level, ground.ends(bait.frame.back))
-    option = Option(ballast, found, upright=True)
+    back = bait.frame.back
+    landed = vessel.landed(ground.ends(back))
+    up = back if landed is None else landed.rest.state.up
+    option = Option(ballast, outcome(vessel, Aim(up, 0.0, None, 0.0, 0.0, ()), ground.ends(up)))
     tell("flight")
-    flights = Flights(ground, bait)
-    room = Room(ground, section.cover, section.keep_clear, section.between)
-    left = room.left(ballast)
-    row = tree.option(ground, option, left, {"score": None, "sink_m_s": None, **flights.of(vessel)})
-    reachable = goal is None or option.reaches(goal)
-    near = []
+    flights = Flights(ground)
+    left = Room.of(ground, bait.plan.ballast).left(ballast)
+    speed = None if goal is None else _speed(ground, flights, option, goal)
+    row = tree.option(ground, option, left, {"score": None, "sink_m_s": speed, **flights.of(vessel)})
+    met = goal is None or _meets(option, goal, speed)
+    near = _nearness(bait, left)
+    if goal is not None and not met:
+        near.append(f"it {_misses(option, goal, speed)}")
+    account = tree.balance(
+        None if goal is None or target is None else _wanted(ground, goal, target),
+        [row],
+        1,
+        met,
+        near,
+        [piece.name for piece in ground.freed],
+    )
+    return Balance(bait, ground, ballast, option.outcome, None, met, account)
+
+
+def _nearness(bait: Bait, left: Left) -> list[str]:
+    """What of [ballast] a stated place does not keep to."""
+    section, near = bait.plan.ballast, []
     if left.cover < section.cover:
         near.append(f"{left.cover * 1e3:.2f} mm of cover are left, {section.cover * 1e3:.2f} mm are asked for")
     if left.clear < section.keep_clear:
         near.append(
             f"it lies {left.clear * 1e3:.2f} mm from the next piece, {section.keep_clear * 1e3:.2f} mm are asked for"
         )
-    if goal is not None and not reachable:
-        nose_up, lean = (degrees(angle) for angle in found.off(goal))
-        more = (found.reserve - goal.reserve) * 1e3
-        near.append(
-            f"it misses the target by {more:+.2f} g of reserve, {nose_up:+.1f} degrees of nose up, {lean:+.1f} of lean"
-        )
-    account = tree.balance(
-        None if goal is None or target is None else _wanted(ground, goal, target),
-        [row],
-        1,
-        reachable,
-        near,
-        [piece.name for piece in ground.freed],
-    )
-    return Balance(bait, ground, ballast, found, None, reachable, account)
+    return near
 
 
-def _floats(vessel: Vessel, up: Floats, ground: Ground) -> bool:
-    ends = ground.ends(up)
-    return vessel.hull(ends).volume * vessel.water > vessel.composition.mass(ends).amount
+def _misses(option: Option, goal: Aim, speed: float | None = None) -> str:
+    """By how much a way misses a target, in words."""
+    nose_up, lean = (degrees(angle) for angle in option.outcome.off(goal))
+    more = (option.outcome.reserve - goal.reserve) * 1e3
+    by = f"{more:+z.2f} g of reserve"
+    if goal.sink is not None and speed is not None:
+        by = f"{(speed - goal.sink) * 100:+z.1f} cm/s"
+    words = f"misses the target by {by}, {nose_up:+z.1f} degrees of nose up and {lean:+z.1f} of lean"
+    return words if option.upright else f"{words}, and comes to rest on another side from back up"
 
 
 def _target(bait: Bait) -> TargetSection:
     if bait.plan.target is None:
-        where = "" if bait.plan.path is None else bait.plan.path.name
         raise InputError(
             Fault(
                 "nothing says how the bait is to rest",
-                where,
+                "" if bait.plan.path is None else bait.plan.path.name,
                 "no [target]",
                 "a section such as\n  [target]\n  behaviour = 'floats'\n  reserve = '1.2 g'\n  nose_up = '-5 deg'",
                 "add it to the bait file, or place ballast with --ballast",
@@ -163,35 +174,31 @@ def _target(bait: Bait) -> TargetSection:
     return bait.plan.target
 
 
-def _searched(ground: Ground, goal: Aim, bait: Bait, tell: Tell) -> tuple[Aim, Search, tuple[Ranked, ...]]:
-    """The search, repeated until the reserve gives the speed of sinking that was asked for."""
-    section = bait.plan.ballast
-    room = Room(ground, section.cover, section.keep_clear, section.between)
-    way: Passage | None = None
-    if goal.sink is not None:
-        way = Flights(ground, bait).way
-        goal = goal.with_reserve(reserve_for_speed(ground, goal, way))
-    for _ in range(_SINK_ROUNDS):
-        search = Search.of(ground, goal, section, room)
+def _searched(search: Search, flights: Flights, tell: Tell) -> tuple[Search, tuple[Ranked, ...], list[float | None]]:
+    """The search, repeated until the reserve gives the speed of sinking that was asked for, and the ways' speeds."""
+    ground, goal, sink = search.ground, search.goal, search.goal.sink
+    if sink is None:
         search.run(tell)
         rows = ranked(search)
-        if goal.sink is None or not rows:
-            break
-        assert way is not None
-        speed = _speed(ground, way, rows[0].option, goal)
-        assert speed is not None
-        if speed <= 0 or abs(speed / goal.sink - 1) <= _SINK_CLOSE:
+        return search, rows, [None] * len(rows)
+    goal = goal.with_reserve(reserve_for_speed(ground, goal, flights.way))
+    for _ in range(_SINK_ROUNDS):
+        search = Search.of(ground, goal, search.asked, search.room)
+        search.run(tell)
+        rows = ranked(search)
+        speed = _speed(ground, flights, rows[0].option, goal) if rows else None
+        if speed is None or speed <= 0 or abs(speed / sink - 1) <= _SINK_CLOSE:
             break
         # Drag grows with the square of the speed.
-        goal = goal.with_reserve(rows[0].option.outcome.reserve * (goal.sink / speed) ** 2)
-    return goal, search, rows
+        goal = goal.with_reserve(rows[0].option.outcome.reserve * (sink / speed) ** 2)
+    return search, rows, [_speed(ground, flights, row.option, goal) for row in rows]
 
 
-def _speed(ground: Ground, way: Passage, option: Option, goal: Aim) -> float | None:
+def _speed(ground: Ground, flights: Flights, option: Option, goal: Aim) -> float | None:
     if goal.sink is None:
         return None
     vessel = ground.with_ballast(option.ballast)
-    return sinking_speed(vessel, option.outcome.ends, way, ground.bait.water.viscosity)
+    return sinking_speed(vessel, option.outcome.ends, flights.way, ground.bait.water.viscosity)
 
 
 def _meets(option: Option, goal: Aim, speed: float | None) -> bool:
@@ -210,51 +217,59 @@ def _wanted(ground: Ground, goal: Aim, target: TargetSection) -> Tree:
 def _by_density(bait: Bait, target: TargetSection, tell: Tell) -> Balance:
     """The body's density for the ballast as it stands."""
     tell("density")
-    ground = Ground.of(bait, keep=True)
-    goal = aim(ground, target)
-    if goal.sink is not None:
+    if target.sink is not None:
         raise InputError(
             Fault(
                 "a speed of sinking is settled by ballast, not by the body's density",
-                "target.sink",
+                placed(bait, "target.sink"),
                 "vary = 'body density'",
                 "reserve or submerged",
                 "state the reserve, or leave vary out",
             )
         )
+    ground = Ground.of(bait, keep=True)
+    goal = aim(ground, target)
     dense = density_for(ground, goal)
-    mixes, stock = _reached_by(dense)
     found = dense.outcome
-    misses = []
-    if found is None:
-        misses.append(f"even a body without weight would leave the bait {-dense.density * 1e-3:.3g} g/cm3 too heavy")
-    else:
-        off = tuple(
-            0.0 if name in goal.assumed else angle
-            for name, angle in zip(("nose_up", "lean"), found.off(goal), strict=True)
-        )
-        if max(map(abs, off)) > REACHED_ANGLE:
-            nose_up, lean = (degrees(angle) for angle in off)
-            misses.append(
-                f"with that body the posture misses by {nose_up:+.1f} degrees of nose up and {lean:+.1f} of lean: only "
-                "ballast that moves can mend it"
-            )
-        if not mixes and not stock:
-            misses.append("no resin mix and no material in stock has that density")
-    reachable = found is not None and not misses and abs(found.reserve - goal.reserve) <= REACHED_RESERVE
-    assert ground.bait.body.substance is not None
+    mixes = [] if found is None else reached.mixes(dense.density, bait.plan.pour)
+    stock = [] if found is None else reached.stock(dense.density)
+    misses = _density_misses(ground, goal, dense, bool(mixes or stock))
+    met = found is not None and not misses
     account = tree.balance(
         _wanted(ground, goal, target),
         [],
         None,
-        reachable,
+        met,
         misses,
         [],
-        tree.density(dense, ground.bait.body.substance.density, mixes, stock),
+        tree.density(dense, ground.body_density, mixes, stock),
     )
-    density = dense.density if found is not None else None
-    return Balance(bait, ground, None, found, density, reachable, account)
+    if found is None:
+        found = outcome(ground.vessel, goal, ground.ends(goal.up))
+        return Balance(bait, ground, None, found, None, False, account)
+    return Balance(bait, ground, None, found, dense.density, met, account)
 
 
-def _reached_by(dense: Dense) -> tuple[list[Tree], list[Tree]]:
-    return [], []
+def _density_misses(ground: Ground, goal: Aim, dense: Dense, reached_by: bool) -> list[str]:
+    found = dense.outcome
+    body = ground.composition.parts[0]
+    if found is None:
+        others = (ground.mass(ground.ends(goal.up)).amount - body.mass.amount) * 1e3
+        whole = others + dense.density * body.volume * 1e3
+        return [
+            f"what is not body weighs {others:.2f} g already, and {whole:.2f} g are wanted of the whole bait: it takes "
+            "lighter hooks or less ballast"
+        ]
+    misses = []
+    off = tuple(
+        0.0 if name in goal.assumed else angle for name, angle in zip(("nose_up", "lean"), found.off(goal), strict=True)
+    )
+    if max(map(abs, off)) > REACHED_ANGLE:
+        nose_up, lean = (degrees(angle) for angle in off)
+        misses.append(
+            f"with that body the posture misses by {nose_up:+z.1f} degrees of nose up and {lean:+z.1f} of lean: only "
+            "ballast that moves can mend it"
+        )
+    if not reached_by:
+        misses.append("no mix of resin and balloons and no material in stock has that density")
+    return misses

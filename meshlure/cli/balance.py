@@ -85,5 +85,5 @@ def balance(
             from meshlure.cli.ways import balance_lines
 
             answer(*balance_lines(written.results, out))
-    if not found.reachable:
+    if not found.met:
         raise typer.Exit(1)

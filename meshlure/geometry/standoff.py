@@ -74,6 +74,55 @@ def cylinder_standoff(boxes: Boxes, cylinder: Cylinder, tolerance: float = TOLER
     return found
 
 
+def solid_standoff(boxes: Boxes, cylinder: Cylinder, tolerance: float = TOLERANCE) -> Standoff:
+    """Return the least distance between a mesh and a solid cylinder; 0 where some of the mesh lies in it.
+
+    Parameters
+    ----------
+    boxes : Boxes
+    cylinder : Cylinder
+    tolerance : float, m
+
+    Notes
+    -----
+    As `cylinder_standoff`; the distance from a convex solid is convex, so that tangents bound it everywhere.
+    """
+    return _least(boxes, _Within(cylinder), tolerance)
+
+
+def clears(boxes: Boxes, cylinder: Cylinder, distance: float, tolerance: float = TOLERANCE) -> bool:
+    """Tell whether no place of a mesh is nearer to a solid cylinder than a distance, m.
+
+    Parameters
+    ----------
+    boxes : Boxes
+    cylinder : Cylinder
+    distance : float, m
+    tolerance : float, m
+        Positive; what is nearer by less than this may pass.
+
+    Notes
+    -----
+    As `solid_standoff`, but quicker: it ends with the first place that is too near.
+    """
+    skin, bar = _Within(cylinder), distance - tolerance
+    middle, reach = (boxes.low + boxes.high) / 2, _length(boxes.high - boxes.low) / 2
+    kept = _length(middle - skin.nearest(middle)) - reach < bar
+    middle, reach = boxes.middle[kept].reshape(-1, 3), boxes.radius[kept].reshape(-1)
+    triangles = boxes.corners[kept].reshape(-1, 3, 3)[_length(middle - skin.nearest(middle)) - reach < bar]
+    while len(triangles):
+        middle = triangles.mean(axis=1)
+        away = middle - skin.nearest(middle)
+        apart = _length(away)
+        if (apart < bar).any():
+            return False
+        toward = triangles - middle[:, None]
+        gradient = away / apart[:, None]
+        low = apart + np.einsum("nki,ni->nk", toward, gradient).min(axis=1)
+        triangles = _halved(_halved(triangles[low < bar]))
+    return True
+
+
 def side_standoff(boxes: Boxes, cylinder: Cylinder, tolerance: float = TOLERANCE) -> Standoff:
     """Return the least distance between a mesh and a cylinder's side without its ends; as `cylinder_standoff`."""
     return _least(boxes, _Tube(cylinder), tolerance)
@@ -146,6 +195,30 @@ class _Tube:
         height = off @ self.cylinder.axis
         out = off - height[:, None] * self.cylinder.axis
         return height, out, _length(out)
+
+
+@dataclass(frozen=True, eq=False)
+class _Within:
+    """A solid cylinder: what lies in it is its own nearest place."""
+
+    cylinder: Cylinder
+
+    def nearest(self, points: Floats) -> Floats:
+        off = points - self.cylinder.middle
+        height = off @ self.cylinder.axis
+        out = off - height[:, None] * self.cylinder.axis
+        away, half = _length(out), self.cylinder.length / 2
+        held = np.minimum(self.cylinder.radius / np.where(away > 0, away, 1.0), 1.0)
+        within = (held == 1.0) & (np.abs(height) <= half)
+        near = self.cylinder.middle + np.clip(height, -half, half)[:, None] * self.cylinder.axis + held[:, None] * out
+        return np.asarray(np.where(within[:, None], points, near))
+
+    def sag(self, points: Floats, reach: Floats) -> Floats:
+        return np.zeros(len(points))
+
+    def meeting(self, start: Floats, way: Floats) -> Floats:
+        # Halving comes upon what is within by itself.
+        return np.full((2, len(start)), np.nan)
 
 
 @dataclass(frozen=True, eq=False)

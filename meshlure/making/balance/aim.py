@@ -10,6 +10,7 @@ import numpy as np
 from meshlure.errors import Fault, InputError
 from meshlure.files.sections.target import TargetSection
 from meshlure.geometry.surface import Floats
+from meshlure.making.balance.asked import placed
 from meshlure.making.balance.ground import Ground
 from meshlure.physics.buoyancy import Behaviour, behaviour, suspends_within
 from meshlure.physics.immersion import Hull
@@ -18,6 +19,12 @@ from meshlure.tolerances import NEUTRAL_HEIGHT
 
 _SAME_DRY = 6
 """Rounds after which the hooks that leave the water must have settled."""
+
+_RANGES = {
+    Behaviour.FLOATS: "a reserve of more than",
+    Behaviour.SUSPENDS: "a reserve within",
+    Behaviour.SINKS: "a reserve below minus",
+}
 
 
 @dataclass(frozen=True, eq=False)
@@ -60,8 +67,10 @@ def aim(ground: Ground, target: TargetSection) -> Aim:
     Raises
     ------
     InputError
-        Where the reserve asked for is none of the behaviour asked for, or more than the bait displaces.
+        Where the reserve asked for is none of the behaviour asked for, or more than the bait displaces, or nothing says
+        what the ballast may weigh.
     """
+    stated_as = placed(ground.bait, f"target.{'reserve' if target.submerged is None else 'submerged'}")
     frame = ground.frame
     nose_up, lean = target.nose_up or 0.0, target.lean or 0.0
     across = np.cos(lean) * frame.back + np.sin(lean) * frame.side
@@ -74,9 +83,18 @@ def aim(ground: Ground, target: TargetSection) -> Aim:
         reserve = (1 - target.submerged) * displaced
     elif target.behaviour is None and target.sink is None:
         # Only a posture is asked for: the reserve stays what it is.
-        now = Ground.of(ground.bait_as_stated, keep=True)
-        ends = now.ends(up)
-        reserve = now.vessel.hull(ends).volume * now.vessel.water - now.mass(ends).amount
+        if not ground.freed and target.vary == "ballast":
+            raise InputError(
+                Fault(
+                    "nothing says what the ballast may weigh",
+                    placed(ground.bait, "target"),
+                    "a posture alone, and no insert that may move",
+                    "reserve or submerged, or an insert with free = true, whose place the ballast takes",
+                    "add reserve = '1.2 g', or free = true beside the ballast that is there",
+                )
+            )
+        ends = ground.ends(up)
+        reserve = displaced - ground.stated.composition.mass(ends).amount
     else:
         # A sinking bait's reserve is found by its speed; until then a hundredth of what it displaces.
         reserve = 0.0 if target.sink is None else -0.01 * displaced
@@ -84,7 +102,7 @@ def aim(ground: Ground, target: TargetSection) -> Aim:
         raise InputError(
             Fault(
                 "the reserve asked for is more than the whole bait displaces",
-                "target.reserve",
+                stated_as,
                 f"{reserve * 1e3:.4g} g",
                 f"less than {displaced * 1e3:.4g} g",
                 "ask for less",
@@ -96,9 +114,9 @@ def aim(ground: Ground, target: TargetSection) -> Aim:
         raise InputError(
             Fault(
                 f"with that reserve the bait {found.value}",
-                "target.reserve",
+                stated_as,
                 f"behaviour {wanted!r}, reserve {reserve * 1e3:.3g} g",
-                f"a bait of this size suspends within {threshold * 1e3:.2g} g of none",
+                f"{_RANGES[Behaviour(wanted)]} {threshold * 1e3:.2g} g; within that of none it suspends",
                 "change behaviour or reserve, or state [bait] suspends_within",
             )
         )

@@ -139,6 +139,21 @@ class Ballast:
             return (Cylinder(self.middle, self.axis, self.length + 2 * fit, self.kind.diameter / 2 + fit),)
         return tuple(_grown(piece, fit) for piece in self.pieces())
 
+    def drill(self, lowest: float) -> Cylinder | None:
+        """Return the hole through which it is put in, from its room down to a height along its axis, m; None in others.
+
+        Raises
+        ------
+        ValueError
+            Where its room does not end above that height.
+        """
+        if self.kind.pocket != FROM_BELLY:
+            return None
+        (room,) = self.room()
+        assert isinstance(room, Cylinder)
+        length = float(room.ends[1] @ self.axis) - lowest
+        return Cylinder(room.ends[1] - length / 2 * self.axis, self.axis, length, room.radius)
+
     def volume(self) -> Moments:
         """Return the ballast's own volume, m3, with its moments."""
         return _sum(self.pieces())

@@ -5,16 +5,13 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 from meshlure.bait.meshpiece import solid_of
-from meshlure.bait.pieces import Bait
 from meshlure.errors import Fault, InputError
 from meshlure.geometry.cylinder import Cylinder
 from meshlure.geometry.shapes import rod
 from meshlure.geometry.solids import Solid
 from meshlure.geometry.surface import Surface
-from meshlure.making.balance.ballast import FROM_BELLY, UNCUT, Ballast
-
-_BEYOND = 1e-3
-"""m. How far a drill's way reaches beyond the body."""
+from meshlure.making.balance.ballast import UNCUT, Ballast
+from meshlure.making.balance.ground import Ground
 
 
 @dataclass(frozen=True, eq=False)
@@ -35,43 +32,46 @@ class Cut:
     plug: Solid | None
 
 
-def cut(bait: Bait, ballast: Ballast | None) -> Cut:
+def cut(ground: Ground, ballast: Ballast | None) -> Cut:
     """Return the meshes for ballast in its place; without any, the body as it is drawn.
 
     Raises
     ------
     InputError
-        Where a hole from the belly meets no skin below the ballast.
+        Where the hole from the belly goes through the skin more than once.
     """
-    whole = solid_of(bait.body.surface, bait.body.name)
-    cavities = [Solid.of(cavity) for cavity in bait.body.cavities]
-    body = whole.less(*cavities) if cavities else whole
-    if ballast is None:
-        return Cut(body, (), None)
-    if ballast.kind.pocket == UNCUT:
-        return Cut(body, ballast.surfaces(), None)
-    rooms = [Solid.of(surface) for surface in ballast.rooms()]
-    if ballast.kind.pocket != FROM_BELLY:
-        return Cut(body.less(*rooms), ballast.surfaces(), None)
-    drill = _drilled(bait, ballast)
-    plug = whole.met(drill)
-    if plug.empty:
-        raise InputError(
-            Fault("the hole from the belly meets no skin", "ballast.pocket", "", "", "choose pocket = 'embedded'")
-        )
-    return Cut(body.less(*rooms, drill), ballast.surfaces(), plug)
+    body = ground.bait.body
+    whole = solid_of(body.surface, body.name)
+    taken = [Solid.of(cavity) for cavity in body.cavities]
+    plug = None
+    if ballast is not None and ballast.kind.pocket != UNCUT:
+        hole = ballast.drill(ground.lowest)
+        if hole is None:
+            taken += [Solid.of(surface) for surface in ballast.rooms()]
+        else:
+            plug = _plug(whole.met(Solid.of(rod(hole))))
+            taken.append(Solid.of(rod(_bore(ballast, hole))))
+    left = whole.less(*taken) if taken else whole
+    return Cut(left, () if ballast is None else ballast.surfaces(), plug)
 
 
-def _drilled(bait: Bait, ballast: Ballast) -> Solid:
-    """The hole below the room, down to beyond the belly."""
+def _bore(ballast: Ballast, hole: Cylinder) -> Cylinder:
+    """Room and hole as one: two that meet face to face could leave a skin between them."""
     (room,) = ballast.room()
     assert isinstance(room, Cylinder)
-    back = bait.frame.back
-    bottom = room.middle - back * room.length / 2
-    lowest = float((bait.body.surface.vertices @ back).min()) - _BEYOND
-    length = float(bottom @ back) - lowest
-    if length <= _BEYOND:
+    return Cylinder((room.ends[0] + hole.ends[1]) / 2, hole.axis, room.length + hole.length, hole.radius)
+
+
+def _plug(made: Solid) -> Solid:
+    count = len(made.parts())
+    if count != 1:
         raise InputError(
-            Fault("the ballast reaches below the belly", "ballast.pocket", "", "", "choose pocket = 'embedded'")
+            Fault(
+                "the hole from the belly goes through the skin more than once",
+                "ballast.pocket",
+                f"{count} pieces of body below the ballast",
+                "one",
+                "choose pocket = 'embedded', or another stretch with between",
+            )
         )
-    return Solid.of(rod(Cylinder(bottom - back * length / 2, back, length, room.radius)))
+    return made

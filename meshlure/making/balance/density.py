@@ -1,14 +1,13 @@
-"""The body's density that meets a target with the ballast as it stands, and whether a resin mix reaches it."""
+"""The body's density that meets a target with the ballast as it stands."""
 
 from __future__ import annotations
 
 from dataclasses import dataclass, replace
 
-from meshlure.bait.composition import Composition
+from meshlure.bait.reweighed import reweighed
 from meshlure.making.balance.aim import Aim
 from meshlure.making.balance.ground import Ground
 from meshlure.making.balance.outcome import Outcome, outcome
-from meshlure.physics.repose import Vessel
 
 
 @dataclass(frozen=True, eq=False)
@@ -19,13 +18,11 @@ class Dense:
     ----------
     density : float, kg/m3
         Not positive where no body would be light enough.
-    vessel : Vessel or None
-        The bait with that density.
     outcome : Outcome or None
+        Of the bait with that density.
     """
 
     density: float
-    vessel: Vessel | None
     outcome: Outcome | None
 
 
@@ -50,14 +47,7 @@ def density_for(ground: Ground, goal: Aim) -> Dense:
     others = ground.mass(ends).amount - body.mass.amount
     density = (displaced - goal.reserve - others) / body.volume
     if density <= 0:
-        return Dense(density, None, None)
-    vessel = replace(ground.vessel, composition=_with_density(ground.composition, density))
-    return Dense(density, vessel, outcome(vessel, goal, ends))
-
-
-def _with_density(composition: Composition, density: float) -> Composition:
-    body, *others = composition.parts
+        return Dense(density, None)
     assert body.substance is not None
-    mass = body.mass * (density / body.substance.density)
-    substance = replace(body.substance, density=density)
-    return replace(composition, parts=(replace(body, mass=mass, substance=substance), *others))
+    composition = reweighed(ground.composition, {body.name: density / body.substance.density})
+    return Dense(density, outcome(replace(ground.vessel, composition=composition), goal, ends))

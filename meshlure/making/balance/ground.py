@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass, replace
 from functools import cached_property
 
@@ -14,10 +15,21 @@ from meshlure.errors import Fault, InputError
 from meshlure.geometry.blocks import BlockIndex
 from meshlure.geometry.clearance import Boxes
 from meshlure.geometry.moments import Moments
+from meshlure.geometry.offset import grown
 from meshlure.geometry.surface import Floats, Surface
-from meshlure.making.altered import altered
+from meshlure.making.altered import altered, lifted
 from meshlure.making.balance.ballast import Ballast
 from meshlure.physics.repose import Ends, Vessel
+
+_BEYOND = 1e-3
+"""m. How far below the body a hole from the belly begins."""
+
+_PRINTED = Fault(
+    what="nothing can be placed in printed walls with infill: what a pocket takes from them is unknown",
+    where="body.printed",
+    allowed="density or material",
+    next_step="weigh the print, state its density, and print a wall round the pocket as thick as its cover",
+)
 
 
 @dataclass(frozen=True, eq=False)
@@ -28,22 +40,18 @@ class Ground:
     ----------
     bait : Bait
         Without the inserts that are free.
-    bait_as_stated : Bait
-        With them.
     freed : tuple of MeshPiece
         Those.
-    composition : Composition
     vessel : Vessel
-    tip : float, m
-        Of the nose along the nose direction.
+        The bait without them.
+    stated : Vessel
+        The bait as its file has it.
     """
 
     bait: Bait
-    bait_as_stated: Bait
     freed: tuple[MeshPiece, ...]
-    composition: Composition
     vessel: Vessel
-    tip: float
+    stated: Vessel
 
     @classmethod
     def of(cls, bait: Bait, keep: bool = False) -> Ground:
@@ -55,43 +63,27 @@ class Ground:
             Where what stays leaves a mass or a volume undefined, or the body has no one density.
         """
         if bait.plan.body.printed is not None:
-            raise InputError(
-                Fault(
-                    what="nothing can be placed in printed walls with infill: what a pocket takes from them is unknown",
-                    where="body.printed",
-                    allowed="density or material",
-                    next_step="weigh the print, state its density, and print a wall round the pocket as thick as its"
-                    " cover",
-                )
-            )
-        free = set() if keep else {insert.name for insert in bait.plan.inserts if insert.free}
+            raise InputError(_PRINTED)
+        stated = _vessel(bait, _composed(bait))
+        free = {insert.name for insert in bait.plan.inserts if insert.free and not keep}
         freed = tuple(piece for piece in bait.pieces if piece.name in free and piece.role is Role.INSERT)
-        gone = {piece.name for piece in freed}
-        stays = tuple(
-            replace(piece, replaces=tuple(name for name in piece.replaces if name not in gone))
-            for piece in bait.pieces
-            if piece.name not in gone
-        )
-        files = tuple(
-            file
-            for piece, file in zip((bait.body, *bait.pieces), bait.files, strict=True)
-            if piece.name not in gone or piece is bait.body
-        )
-        left = replace(bait, pieces=stays, files=files)
-        composition = compose(left)
-        refuse(
-            composition.findings,
-            {piece.name: str(file.path) for piece, file in zip((left.body, *stays), files, strict=True)},
-        )
-        index = BlockIndex.build(composition.skin.surface, composition.skin.thickness)
-        vessel = Vessel(composition, index, bait.hardware, bait.frame, bait.water.density)
-        tip = float((bait.body.surface.vertices @ bait.frame.nose).max())
-        return cls(left, bait, freed, composition, vessel, tip)
+        if not freed:
+            return cls(bait, (), stated, stated)
+        gone = frozenset(piece.name for piece in freed)
+        left = _without(bait, gone)
+        lighter = lifted(bait, stated.composition, gone)
+        vessel = _vessel(left, _composed(left)) if lighter is None else replace(stated, composition=lighter)
+        return cls(left, freed, vessel, stated)
 
     @property
     def frame(self) -> Frame:
         """The bait's directions."""
         return self.bait.frame
+
+    @property
+    def composition(self) -> Composition:
+        """The bait without what is free, put together."""
+        return self.vessel.composition
 
     @property
     def body_density(self) -> float:
@@ -100,15 +92,30 @@ class Ground:
         return self.bait.body.substance.density
 
     @cached_property
+    def tip(self) -> float:
+        """Of the nose along the nose direction, m."""
+        return float((self.bait.body.surface.vertices @ self.frame.nose).max())
+
+    @cached_property
+    def length(self) -> float:
+        """Of the body, nose to tail, m."""
+        return float(np.ptp(self.bait.body.surface.vertices @ self.frame.nose))
+
+    @cached_property
+    def lowest(self) -> float:
+        """A height along the back that lies surely below the body, m."""
+        return float((self.bait.body.surface.vertices @ self.frame.back).min()) - _BEYOND
+
+    @cached_property
     def skin(self) -> Boxes:
         """The body's own skin, to be asked for distances."""
         return Boxes.of(self.bait.body.surface)
 
     @cached_property
     def neighbours(self) -> tuple[Surface, ...]:
-        """Skins of all that lies in the body already: inserts, voids, cavities."""
-        hollows = self.bait.body.cavities
-        return (*(piece.surface for piece in self.bait.pieces), *hollows)
+        """Skins of all that takes room in the body already: inserts with their gaps, voids, cavities."""
+        pockets = (grown(piece.surface, piece.fit) for piece in self.bait.pieces)
+        return (*pockets, *self.bait.body.cavities)
 
     @cached_property
     def points(self) -> Floats:
@@ -120,11 +127,7 @@ class Ground:
         """The neighbours' skins, to be asked for distances; None where there are none."""
         if not self.neighbours:
             return None
-        starts = np.cumsum([0, *(len(surface.vertices) for surface in self.neighbours)])
-        faces = [surface.faces + start for surface, start in zip(self.neighbours, starts, strict=False)]
-        return Boxes.of(
-            Surface(np.concatenate([surface.vertices for surface in self.neighbours]), np.concatenate(faces))
-        )
+        return Boxes.of(together(self.neighbours))
 
     def ends(self, up: Floats) -> Ends:
         """Return where the balls lie in a posture: at the lower end, unless the bait file holds them."""
@@ -144,3 +147,32 @@ class Ground:
     def from_nose(self, place: Floats) -> float:
         """Return how far behind the nose tip a place is, m."""
         return self.tip - float(place @ self.frame.nose)
+
+
+def together(surfaces: Sequence[Surface]) -> Surface:
+    """Return several surfaces as one, which may overlap."""
+    starts = np.cumsum([0, *(len(surface.vertices) for surface in surfaces)])
+    faces = [surface.faces + start for surface, start in zip(surfaces, starts, strict=False)]
+    return Surface(np.concatenate([surface.vertices for surface in surfaces]), np.concatenate(faces))
+
+
+def _composed(bait: Bait) -> Composition:
+    composition = compose(bait)
+    pieces = zip((bait.body, *bait.pieces), bait.files, strict=True)
+    refuse(composition.findings, {piece.name: str(file.path) for piece, file in pieces})
+    return composition
+
+
+def _vessel(bait: Bait, composition: Composition) -> Vessel:
+    index = BlockIndex.build(composition.skin.surface, composition.skin.thickness)
+    return Vessel(composition, index, bait.hardware, bait.frame, bait.water.density)
+
+
+def _without(bait: Bait, gone: frozenset[str]) -> Bait:
+    stays = tuple(
+        replace(piece, replaces=tuple(name for name in piece.replaces if name not in gone))
+        for piece in bait.pieces
+        if piece.name not in gone
+    )
+    kept = (True, *(piece.name not in gone for piece in bait.pieces))
+    return replace(bait, pieces=stays, files=tuple(file for file, stay in zip(bait.files, kept, strict=True) if stay))

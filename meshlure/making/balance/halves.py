@@ -11,12 +11,14 @@ import numpy as np
 from meshlure.bait.pieces import Frame
 from meshlure.errors import Fault, InputError
 from meshlure.geometry.clearance import Boxes
+from meshlure.geometry.containment import inside
 from meshlure.geometry.cylinder import Cylinder
 from meshlure.geometry.field import Field, pitch_for
 from meshlure.geometry.shapes import rod
 from meshlure.geometry.solids import Solid
-from meshlure.geometry.standoff import cylinder_standoff
+from meshlure.geometry.standoff import clears
 from meshlure.geometry.surface import Floats, Surface
+from meshlure.making.balance.ground import together
 
 PIN_DIAMETERS: Final = (3e-3, 2.5e-3, 2e-3, 1.5e-3)
 """m. Pins that are tried, the thickest first; ours."""
@@ -31,8 +33,6 @@ _STEP: Final = 0.5e-3
 _WITHIN: Final = 0.12
 """Share of the body's length by which a pin may stray from its place."""
 _TRIED: Final = 16
-_LOST: Final = 1e-7
-"""Share of the body that the two halves and the holes may miss together."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -69,8 +69,8 @@ def halves(body: Solid, frame: Frame, others: Sequence[Surface]) -> Halves:
         Where no two pins have room.
     """
     skin = body.surface()
-    low, high = (float(value) for value in _span(skin.vertices @ frame.side))
-    plane = (low + high) / 2
+    across = skin.vertices @ frame.side
+    plane = float(across.min() + across.max()) / 2
     pins = _pins(skin, frame, plane, others)
     if len(pins) < 2:
         raise InputError(
@@ -82,49 +82,24 @@ def halves(body: Solid, frame: Frame, others: Sequence[Surface]) -> Halves:
                 next_step="leave --halves out and part the body in CAD, or make the body thicker",
             )
         )
-    bored = body.less(*(Solid.of(rod(pin)) for pin in pins))
-    reach = 2 * float(np.ptp(skin.vertices, axis=0).max())
-    middle = skin.bounds.mean(axis=0)
-    start = middle + (plane - float(middle @ frame.side)) * frame.side
-    wide = Solid.of(_block(start, frame, reach))
-    left, right = bored.met(wide), bored.less(wide)
-    if abs(left.volume + right.volume - bored.volume) > _LOST * bored.volume:
-        raise InputError(
-            Fault("the two halves do not add up to the body", "--halves", next_step="part the body in CAD")
-        )
+    left, right = body.less(*(Solid.of(rod(pin)) for pin in pins)).split(frame.side, plane)
     return Halves(left, right, tuple(pins))
-
-
-def _span(values: Floats) -> tuple[float, float]:
-    return float(values.min()), float(values.max())
-
-
-def _block(start: Floats, frame: Frame, reach: float) -> Surface:
-    """A box that holds everything on the left of the plane through a point of it."""
-    axes = np.stack([frame.nose, frame.back, frame.side])
-    corners = np.array([[x, y, z] for x in (-1, 1) for y in (-1, 1) for z in (0, 1)], dtype=np.float64) * reach
-    faces = np.array(
-        [
-            *((0, 1, 3), (0, 3, 2), (4, 6, 7), (4, 7, 5)),
-            *((0, 4, 5), (0, 5, 1), (2, 3, 7), (2, 7, 6)),
-            *((0, 2, 6), (0, 6, 4), (1, 5, 7), (1, 7, 3)),
-        ]
-    )
-    surface = Surface(start + corners @ axes, faces)
-    handed = float(np.linalg.det(axes))
-    return surface if handed > 0 else surface.turned()
 
 
 def _pins(skin: Surface, frame: Frame, plane: float, others: Sequence[Surface]) -> list[Cylinder]:
     """Pins spread along the body, as thick as there is room for."""
     turn = np.stack([frame.nose, frame.side, frame.back])
-    walls = Boxes.of(_together([skin, *others]))
-    low, high = skin.moved(rotation=turn).bounds
-    depths = Field.of(skin.moved(rotation=turn), pitch_for(skin, _VOXELS))
+    walls = Boxes.of(together((skin, *others)))
+    turned = skin.moved(rotation=turn)
+    low, high = turned.bounds
+    depths = Field.of(turned, pitch_for(skin, _VOXELS))
     nose, back = (np.arange(low[axis], high[axis], _STEP) for axis in (0, 2))
     grid = np.stack(np.meshgrid(nose, [plane], back, indexing="ij"), axis=-1).reshape(-1, 3)
     grid = grid[depths.at(grid) > 0]
+    if others:
+        grid = grid[~inside(Boxes.of(together(others)), grid @ turn)]
     wide = walls.nearest(grid @ turn).distance
+    found: list[Cylinder] = []
     for diameter in PIN_DIAMETERS:
         found = []
         for share in np.linspace(0.2, 0.8, PINS):
@@ -133,7 +108,7 @@ def _pins(skin: Surface, frame: Frame, plane: float, others: Sequence[Surface]) 
             pin = _pin(grid[near][np.argsort(-wide[near])] @ turn, walls, turn[1], diameter)
             found += [] if pin is None else [pin]
         if len(found) >= 2:
-            return found
+            break
     return found
 
 
@@ -141,12 +116,6 @@ def _pin(places: Floats, walls: Boxes, across: Floats, diameter: float) -> Cylin
     """The pin at the first of some places that leaves wall enough all round, None where none does."""
     for place in places[:: max(1, len(places) // _TRIED)][:_TRIED]:
         pin = Cylinder(place, across, 2 * PIN_DEPTH, diameter / 2)
-        if cylinder_standoff(walls, pin, 2e-5).distance >= PIN_WALL:
+        if clears(walls, pin, PIN_WALL):
             return pin
     return None
-
-
-def _together(surfaces: Sequence[Surface]) -> Surface:
-    starts = np.cumsum([0, *(len(surface.vertices) for surface in surfaces)])
-    faces = [surface.faces + start for surface, start in zip(surfaces, starts, strict=False)]
-    return Surface(np.concatenate([surface.vertices for surface in surfaces]), np.concatenate(faces))

@@ -7,12 +7,10 @@ from dataclasses import replace
 from math import degrees
 from typing import Final
 
-import numpy as np
-
 from meshlure.bait.pieces import Substance
 from meshlure.bait.substances import substance
 from meshlure.files.sections.substance import Substance as Stated
-from meshlure.making.balance.ballast import FROM_BELLY, ROD, Ballast, Kind
+from meshlure.making.balance.ballast import ROD, Ballast, Kind
 from meshlure.making.balance.ranking import Ranked
 from meshlure.making.balance.search import REACHED_ANGLE, REACHED_RESERVE, Search
 from meshlure.stock.rods import rod_diameters
@@ -20,8 +18,7 @@ from meshlure.stock.rods import rod_diameters
 DENSER: Final = (
     "lead",
     "tungsten heavy alloy 90% W",
-    "tungsten heavy alloy 95% W",
-    "tungsten pure",
+    "tungsten heavy alloy 97% W",
 )
 """Metals tried where those asked for have no room, the lighter first."""
 
@@ -36,98 +33,100 @@ def hindrances(search: Search, best: Sequence[Ranked]) -> tuple[str, ...]:
         return (_too_heavy(search, net),)
     found = []
     if not any(abs(row.option.outcome.reserve - goal.reserve) <= REACHED_RESERVE for row in best):
-        found += [_cramped(search, net)]
+        found.append(_short_of_room(search, net) if search.cramped else _short_of_sizes(search, net, best))
     if best:
-        off = best[0].option.outcome.off(goal)
-        if max(map(abs, off)) > REACHED_ANGLE:
-            found.append(_elsewhere(search, best[0]))
-        if not best[0].option.upright:
-            found.append(
-                "set so, the bait comes to rest on another side when it lands back up: its ballast lies too high"
-            )
+        first = best[0].option
+        if max(map(abs, first.outcome.off(goal))) > REACHED_ANGLE:
+            found.append(_elsewhere(search, first.ballast, first.outcome.off(goal)))
+        if not first.upright:
+            found.append("so weighted, the bait comes to rest on another side from back up: its ballast lies too high")
     return tuple(found)
 
 
 def _too_heavy(search: Search, net: float) -> str:
-    base = search.goal.reserve + net
-    words = f"without any ballast the reserve is {base * 1e3:.2f} g, {search.goal.reserve * 1e3:.2f} g are wanted"
-    lighter = -net / _body_volume(search)
-    density = search.ground.body_density
+    goal, ground = search.goal, search.ground
+    body = ground.composition.parts[0]
+    lighter = (body.mass.amount + net) / body.volume
+    words = (
+        f"without any ballast the reserve is {(goal.reserve + net) * 1e3:+z.2f} g, and "
+        f"{goal.reserve * 1e3:+z.2f} g are wanted: the bait must lose {-net * 1e3:.2f} g"
+    )
+    if lighter <= 0:
+        return f"{words}, more than the body weighs"
     return (
-        f"{words}: the bait must lose {-net * 1e3:.2f} g, by lighter hooks or a body of "
-        f"{(density - lighter) / 1e3:.3f} g/cm3 instead of {density / 1e3:.3f}"
+        f"{words}, by lighter hooks or a body of {lighter / 1e3:.3f} g/cm3 instead of {ground.body_density / 1e3:.3f}"
     )
 
 
-def _body_volume(search: Search) -> float:
-    return search.ground.composition.parts[0].volume
-
-
-def _cramped(search: Search, net: float) -> str:
+def _short_of_room(search: Search, net: float) -> str:
     """How much has room, by material, and what would have room instead."""
-    cover = search.stated.cover * 1e3
     rooms: dict[str, float] = {}
     needed: dict[str, float] = {}
-    for kind, length in search.cramped.items():
-        name = kind.substance.name or "the ballast"
-        held = _rod(search, kind, length).volume().amount if length > 0 else 0.0
-        rooms[name] = max(rooms.get(name, 0.0), held * kind.substance.density)
-        whole = Ballast(
-            kind,
-            kind.length_for(net, search.ground.body_density),
-            search.ground.frame.nose * 0,
-            search.ground.frame.nose,
-        )
-        needed[name] = whole.volume().amount * kind.substance.density
-    if not rooms:
-        return f"no size in stock adds the {net * 1e3:.2f} g that are missing, in the shapes asked for"
+    for kind, ballast in search.cramped.items():
+        name, density = kind.substance.name or "the ballast", kind.substance.density
+        held = 0.0 if ballast is None else ballast.volume().amount * density
+        if name not in rooms or held > rooms[name]:
+            rooms[name] = held
+            needed[name] = search.drawn(kind, net).volume().amount * density
+    cover = f"{search.room.cover * 1e3:.3g} mm of cover"
+    if search.room.between is not None:
+        low, high = search.room.between
+        cover += f" between {low * 1e3:g} and {high * 1e3:g} mm from the nose"
     text = ", ".join(
-        f"{rooms[name] * 1e3:.1f} g of {name} ({needed[name] * 1e3:.1f} g needed)" for name in sorted(rooms)
+        f"{f'{held * 1e3:.1f} g' if held > 0 else 'no piece'} of {name}, {needed[name] * 1e3:.1f} g needed"
+        for name, held in rooms.items()
     )
-    others = [metal.name for metal in _fitting(search, net) if metal.name is not None]
-    end = f"; {others[0]} would fit" if others else "; nothing denser in stock would fit either"
-    return f"{cover:.3g} mm of cover leave room for a rod of {text}{end}"
+    others = _fitting(search, net)
+    end = f"{others[0]} would fit" if others else "no denser metal in stock would fit either"
+    return f"{cover} leaves room for {text}; {end}"
 
 
-def _fitting(search: Search, net: float) -> list[Substance]:
+def _short_of_sizes(search: Search, net: float, best: Sequence[Ranked]) -> str:
+    shapes = " or ".join({"rod": "rod", "ball": "balls"}[shape] for shape in search.asked.stated.shapes)
+    words = f"no size of {shapes} in stock adds the {net * 1e3:.2f} g that are missing"
+    if not best:
+        return words
+    near = min((row.option.outcome.reserve - search.goal.reserve for row in best), key=abs)
+    return f"{words}: the nearest leaves the reserve {near * 1e3:+z.2f} g off"
+
+
+def _fitting(search: Search, net: float) -> list[str]:
     """Metals not asked for of which some rod has room."""
-    asked = {kind.substance.name for kind in search.cramped}
+    asked = {metal.name for metal in search.asked.metals}
     pattern = next(iter(search.cramped))
     found = []
     for name in DENSER:
         metal = substance(Stated(material=name), "ballast.materials")
-        if metal.name in asked:
-            continue
-        if any(_has_room(search, replace(pattern, substance=metal, diameter=d), net) for d in rod_diameters(name)):
-            found.append(metal)
+        if metal.name not in asked and _has_room(search, metal, pattern, net):
+            found.append(str(metal.name))
     return found
 
 
-def _has_room(search: Search, kind: Kind, net: float) -> bool:
-    assert kind.shape == ROD
-    length = kind.length_for(net, search.ground.body_density)
-    return length > 0 and bool(len(search.room.places(_rod(search, kind, length))))
+def _has_room(search: Search, metal: Substance, pattern: Kind, net: float) -> bool:
+    kinds = (
+        replace(pattern, substance=metal, shape=ROD, count=1, diameter=diameter)
+        for diameter in rod_diameters(metal.name or "")
+    )
+    return any(search.is_piece(kind, net) and search.settled(kind, net) is not None for kind in kinds)
 
 
-def _rod(search: Search, kind: Kind, length: float) -> Ballast:
-    frame = search.ground.frame
-    return Ballast(kind, length, np.zeros(3), frame.back if kind.pocket == FROM_BELLY else frame.nose)
-
-
-def _elsewhere(search: Search, best: Ranked) -> str:
+def _elsewhere(search: Search, ballast: Ballast, off: tuple[float, float]) -> str:
     """Where the middle of the ballast would have to lie, and where the nearest room is."""
-    ground, option = search.ground, best.option
-    ballast = option.ballast
+    ground = search.ground
     line = search.lines.line(ballast.kind.net(ballast.length, ground.body_density))
-    height = float(ballast.middle @ line.up)
-    wanted = ground.from_nose(line.at(height))
-    here = ground.from_nose(ballast.middle)
-    nose_up, lean = (degrees(angle) for angle in option.outcome.off(search.goal))
-    aside = float((line.at(height) - ballast.middle) @ ground.frame.side) * 1e3
-    words = f"the ballast would have to lie {wanted * 1e3:.1f} mm from the nose"
+    wanted = line.at(float(ballast.middle @ line.up))
+    nose_up, lean = (degrees(angle) for angle in off)
+    behind = ground.from_nose(wanted) * 1e3
+    where = f"{behind:.1f} mm from the nose"
+    if behind < 0:
+        where = f"{-behind:.1f} mm ahead of the nose"
+    elif behind > ground.length * 1e3:
+        where += f", {behind - ground.length * 1e3:.1f} mm behind the tail"
+    aside = float((wanted - ballast.middle) @ ground.frame.side) * 1e3
     if abs(aside) > 0.05:
-        words += f" and {abs(aside):.1f} mm to the {'left' if aside > 0 else 'right'}"
+        where += f" and {abs(aside):.1f} mm to the {'left' if aside > 0 else 'right'}"
+    here = ground.from_nose(ballast.middle) * 1e3
     return (
-        f"{words}; the nearest room for it is at {here * 1e3:.1f} mm, which misses the posture by {nose_up:+.1f} "
-        f"degrees of nose up and {lean:+.1f} of lean"
+        f"the ballast would have to lie {where}; the nearest room for it is at {here:.1f} mm, which misses the posture "
+        f"by {nose_up:+z.1f} degrees of nose up and {lean:+z.1f} of lean"
     )

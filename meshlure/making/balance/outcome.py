@@ -22,6 +22,8 @@ _BELOW = 2e-3
 """m. Of the centre of gravity below that of buoyancy in a bait that sinks, to begin with."""
 _SPEED_ROUNDS = 6
 _SPEED_CLOSE = 0.02
+_AFLOAT = 1e-6
+"""kg. With less reserve a bait is as good as under water."""
 _TILT_MEETS = np.cos(np.radians(1.0))
 """Two postures closer than this are one."""
 
@@ -69,15 +71,38 @@ class Outcome:
 
 
 def outcome(vessel: Vessel, goal: Aim, ends: Ends) -> Outcome:
-    """Return how a bait behaves, as reached from the posture wanted."""
+    """Return how a bait behaves, as reached from the posture wanted.
+
+    Parameters
+    ----------
+    vessel : Vessel
+    goal : Aim
+    ends : dict
+        Where its balls lie in the posture wanted; where they do not stay there in the one that is reached, the ends at
+        which they do are taken.
+    """
+    settings = [ends, *(other for other in vessel.settings() if other != ends)]
+    first: Outcome | None = None
+    for setting in settings:
+        found, held = _outcome(vessel, goal, setting)
+        if held:
+            return found
+        first = first or found
+    assert first is not None
+    return first
+
+
+def _outcome(vessel: Vessel, goal: Aim, ends: Ends) -> tuple[Outcome, bool]:
+    """How it behaves with its balls at some ends, and whether they stay there."""
     frame, mass = vessel.frame, vessel.composition.mass(ends)
     reserve = vessel.hull(ends).volume * vessel.water - mass.amount
-    repose = vessel.reposed(ends, goal.up) if goal.floats else None
+    repose = vessel.reposed(ends, goal.up) if reserve > _AFLOAT else None
     if repose is None:
-        hang = vessel.dangle(ends).hang
+        dangle = vessel.dangle(ends)
+        hang = dangle.hang
         heights = Metacentric(hang.stiffness, hang.stiffness, hang.stiffness)
         angles = None if hang.up is None else attitude(hang.up, frame.nose, frame.back, frame.side)
-        return Outcome(ends, reserve, hang.up, angles, heights)
+        return Outcome(ends, reserve, hang.up, angles, heights), dangle.held
     state = repose.rest.state
     angles = attitude(state.up, frame.nose, frame.back, frame.side)
     least = float(state.modes()[0][0])
@@ -86,7 +111,7 @@ def outcome(vessel: Vessel, goal: Aim, ends: Ends) -> Outcome:
         ahead = horizontal(frame.nose, state.up)
         fore_aft = state.metacentric(ahead)
         sideways = state.metacentric(np.cross(state.up, ahead))
-    return Outcome(ends, reserve, state.up, angles, Metacentric(fore_aft, sideways, least))
+    return Outcome(ends, reserve, state.up, angles, Metacentric(fore_aft, sideways, least)), repose.held
 
 
 def lands_upright(vessel: Vessel, found: Outcome, goal: Aim) -> bool:

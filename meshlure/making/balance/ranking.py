@@ -47,7 +47,7 @@ class Ranked:
 
 
 def ranked(search: Search, most: int = OFFERED) -> tuple[Ranked, ...]:
-    """Return the best ways, the best first.
+    """Return the best ways, the best first: before all others those that reach the target, then by points.
 
     Notes
     -----
@@ -58,13 +58,15 @@ def ranked(search: Search, most: int = OFFERED) -> tuple[Ranked, ...]:
         return ()
     stiffest = max(option.outcome.metacentric.least for option in options)
     rows = sorted(((_score(option, goal, stiffest), option) for option in options), key=lambda row: row[0])
+    there = _various([row for row in rows if row[1].reaches(goal)])
+    beside = _various([row for row in rows if not row[1].reaches(goal)])
     found = []
-    for score, option in _various(rows, most):
+    for score, option in [*there, *beside][:most]:
         ballast = option.ballast
         upright = lands_upright(search.ground.with_ballast(ballast), option.outcome, goal)
         points = score if upright else score + NOT_UPRIGHT
         found.append(Ranked(replace(option, upright=upright), points, search.room.left(ballast)))
-    return tuple(sorted(found, key=lambda row: row.score))
+    return tuple(sorted(found, key=lambda row: (not row.option.reaches(goal), row.score)))
 
 
 def _score(option: Option, goal: Aim, stiffest: float) -> float:
@@ -77,7 +79,7 @@ def _score(option: Option, goal: Aim, stiffest: float) -> float:
     )
 
 
-def _various(rows: Sequence[tuple[float, Option]], most: int) -> list[tuple[float, Option]]:
+def _various(rows: Sequence[tuple[float, Option]]) -> list[tuple[float, Option]]:
     """The first of each sort, then whatever is left, in order."""
     taken: dict[tuple[str | None, str], int] = {}
     first: list[tuple[float, Option]] = []
@@ -87,4 +89,4 @@ def _various(rows: Sequence[tuple[float, Option]], most: int) -> list[tuple[floa
         sort = kind.substance.name, kind.shape
         taken[sort] = taken.get(sort, 0) + 1
         (first if taken[sort] <= _OF_A_SORT else rest).append(row)
-    return [*first, *rest][:most]
+    return [*first, *rest]

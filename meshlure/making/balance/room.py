@@ -2,46 +2,31 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
 from dataclasses import dataclass
 from functools import cached_property
-from typing import TYPE_CHECKING, Final
+from typing import Final
 
 import numpy as np
 
+from meshlure.files.sections.ballast import BallastSection
 from meshlure.geometry.clearance import Boxes
+from meshlure.geometry.containment import inside
 from meshlure.geometry.cylinder import Cylinder
 from meshlure.geometry.field import Field, pitch_for
 from meshlure.geometry.samples import spread
-from meshlure.geometry.standoff import cylinder_standoff
-from meshlure.geometry.surface import Bools, Floats, Surface
+from meshlure.geometry.standoff import TOLERANCE, clears, solid_standoff
+from meshlure.geometry.surface import Bools, Floats
 from meshlure.making.balance.ballast import BALL, FROM_BELLY, Ballast, Solid
 from meshlure.making.balance.ground import Ground
-
-if TYPE_CHECKING:
-    from scipy.spatial import cKDTree
 
 _VOXELS: Final = 300_000
 """Voxels in the box round the body: about half a millimetre for a bait of 95 mm."""
 
-_EXACT: Final = 2e-6
-"""m. How closely distances of one place are told."""
-
-_SPREAD: Final = 0.3e-3
-"""m. How far apart the points are that stand for a skin: a rod some millimetres from it is told its distance to a
-hundredth."""
-
-_CLOSE: Final = 0.1e-3
-"""m. Steps along a rod's axis."""
-
-_SHELL: Final = 0.35e-3
-"""m. Steps over a rod's surface; halfway between two points it comes nearer by a hundredth of a millimetre."""
-
 _NEXT_SLICE: Final = 1e3
 """m. A slice of the grid counts as so far from the next that distances stay within it."""
 
-_SURE: Final = 0.05e-3
-"""m. Held back for both, so that what seems to have room has it."""
+_FAR: Final = 1.0
+"""m. Stands for the distance to what is not there."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -55,7 +40,7 @@ class Left:
     cover_at : (3,) array, m
         On the skin.
     clear : float, m
-        Least distance to the other inserts and to hardware; inf where there are none.
+        Least distance from its room, or the hole to it, to the other inserts and to hardware; inf where there are none.
     """
 
     cover: float
@@ -81,6 +66,11 @@ class Room:
     keep_clear: float
     between: tuple[float, float] | None
 
+    @classmethod
+    def of(cls, ground: Ground, stated: BallastSection) -> Room:
+        """Return the room that a [ballast] leaves."""
+        return cls(ground, stated.cover, stated.keep_clear, stated.between)
+
     @cached_property
     def turn(self) -> Floats:
         """Rows nose, side, back: mesh coordinates into the grid's, (3, 3) array."""
@@ -94,84 +84,89 @@ class Room:
         return Field.of(surface, pitch_for(surface, _VOXELS))
 
     @cached_property
-    def _skin_points(self) -> cKDTree[None]:
-        return _tree([self.ground.bait.body.surface])
-
-    @cached_property
-    def _other_points(self) -> cKDTree[None] | None:
-        """Points of the other pieces' skins, and the hardware's; None where there are none."""
-        if not self.ground.neighbours and not len(self.ground.points):
-            return None
-        return _tree(self.ground.neighbours, self.ground.points)
-
-    @cached_property
     def _apart(self) -> Floats:
-        """Distance from every voxel that is inside to the nearest other piece or hardware, m; inf elsewhere."""
-        depths = self.depths
-        apart = np.full(depths.values.shape, np.inf)
-        if self._other_points is None:
-            return apart
-        within = depths.places(depths.inside) @ self.turn
-        far = np.asarray(self._other_points.query(within)[0])
-        for field in self._other_fields:
-            far[field.at(within) > 0] = 0.0
-        apart[depths.inside] = far
-        return apart
+        """Distance from every voxel to the nearest other piece or hardware, m, by the grid."""
+        from scipy.ndimage import distance_transform_edt
 
-    def _roomy(self, radius: float) -> Bools:
-        """Voxels about which a ball of a radius keeps its distances, by the grid."""
-        slack = self.depths.pitch / 2
+        field = self.depths
+        taken = np.zeros(field.values.shape, dtype=np.bool_)
+        within = np.argwhere(field.inside)
+        middles = field.origin + field.pitch * within
+        clouds = [self.ground.points @ self.turn.T]
+        for piece in self.ground.neighbours:
+            surface = piece.moved(rotation=self.turn)
+            clouds.append(spread(surface, field.pitch))
+            held = Field.of(surface, field.pitch).at(middles) > 0
+            taken[tuple(within[held].T)] = True
+        cells = np.rint((np.concatenate(clouds) - field.origin) / field.pitch).astype(np.intp)
+        taken[tuple(cells[((cells >= 0) & (cells < taken.shape)).all(axis=1)].T)] = True
+        if not taken.any():
+            return np.full(taken.shape, _FAR)
+        return np.asarray(distance_transform_edt(~taken, sampling=field.pitch))
+
+    def _balls(self, radius: float, slack: float) -> Bools:
+        """Voxels about which a ball of a radius keeps its distances."""
         wide = self.depths.values >= radius + self.cover - slack
         return np.asarray(wide & (self._apart >= radius + self.keep_clear - slack))
 
-    def _discs(self, radius: float, along: int) -> Bools:
+    def _discs(self, radius: float, along: int, slack: float) -> Bools:
         """Voxels about which a disc of a radius, square to an axis of the grid, keeps its distances."""
-        return np.asarray(self._widths(along) >= radius - self.depths.pitch / 2)
+        return np.asarray(self._widths(along, slack) >= radius - slack)
 
-    def _widths(self, along: int) -> Floats:
+    def _widths(self, along: int, slack: float) -> Floats:
         """Radius of the largest disc about every voxel that keeps its distances, m."""
         from scipy.ndimage import distance_transform_edt
 
-        if along not in self._known_widths:
-            slack, pitch = self.depths.pitch / 2, self.depths.pitch
-            sure = (self.depths.values >= self.cover - slack) & (self._apart >= self.keep_clear - slack)
+        known = self._known_widths
+        if (along, slack) not in known:
+            pitch = self.depths.pitch
+            free = (self.depths.values >= self.cover - slack) & (self._apart >= self.keep_clear - slack)
             sampling = np.where(np.arange(3) == along, _NEXT_SLICE, pitch)
-            self._known_widths[along] = np.asarray(distance_transform_edt(sure, sampling=sampling)) - pitch / 2
-        return self._known_widths[along]
+            known[along, slack] = np.asarray(distance_transform_edt(free, sampling=sampling)) - pitch / 2
+        return known[along, slack]
 
     @cached_property
-    def _known_widths(self) -> dict[int, Floats]:
+    def _known_widths(self) -> dict[tuple[int, float], Floats]:
         return {}
 
-    def _bored(self, radius: float) -> Bools:
+    def _bored(self, radius: float, slack: float) -> Bools:
         """Voxels from which a hole of a radius straight down to the belly stays clear of all else."""
-        blocked = self.depths.inside & (self._apart < radius + self.keep_clear - self.depths.pitch / 2)
+        blocked = self.depths.inside & (self._apart < radius + self.keep_clear - slack)
         return np.asarray(~np.logical_or.accumulate(blocked, axis=2))
 
-    def places(self, ballast: Ballast) -> Floats:
+    def _free(self, ballast: Ballast, slack: float) -> tuple[Bools, int]:
+        """Voxels that a part of the ballast may lie about, and the axis of the grid along which it is stacked."""
+        kind = ballast.kind
+        along, radius = (2 if kind.pocket == FROM_BELLY else 0), kind.diameter / 2 + kind.fit
+        free = self._balls(radius, slack) if kind.shape == BALL else self._discs(radius, along, slack)
+        return (free & self._bored(radius, slack) if kind.pocket == FROM_BELLY else free), along
+
+    def places(self, ballast: Ballast, sure: bool = False) -> Floats:
         """Return middles at which ballast has room by the grid, (n, 3) array, m, mesh coordinates.
+
+        Parameters
+        ----------
+        ballast : Ballast
+        sure : bool
+            The grid errs by half a voxel either way: whether what it cannot tell counts as no room.
 
         Notes
         -----
-        A rod is a stack of discs, a row of balls one of balls. The grid errs by half a voxel either way.
+        A rod is a stack of discs, a row of balls one of balls.
         """
-        kind, along = ballast.kind, 2 if ballast.kind.pocket == FROM_BELLY else 0
-        radius = kind.diameter / 2 + kind.fit
-        free = self._roomy(radius) if kind.shape == BALL else self._discs(radius, along)
-        if kind.pocket == FROM_BELLY:
-            free &= self._bored(radius)
+        kind, pitch = ballast.kind, self.depths.pitch
+        slack = -pitch / 2 if sure else pitch / 2
+        free, along = self._free(ballast, slack)
         if kind.shape == BALL:
             steps = (np.arange(kind.count) - (kind.count - 1) / 2) * kind.spacing
         else:
-            half = max(ballast.length / 2 + kind.fit - self.depths.pitch / 2, 0.0)
-            steps = np.linspace(-half, half, 2 * int(np.ceil(half / self.depths.pitch)) + 1)
+            half = max(ballast.length / 2 + kind.fit - slack, 0.0)
+            steps = np.linspace(-half, half, 2 * int(np.ceil(half / pitch)) + 1)
         middle = np.ones_like(free)
-        for shift in np.unique(np.round(steps / self.depths.pitch).astype(np.intp)):
+        for shift in np.unique(np.round(steps / pitch).astype(np.intp)):
             middle &= _shifted(free, int(shift), along)
         places = self.depths.places(middle)
-        reach = (ballast.length / 2 + kind.fit) if along == 0 else radius
-        kept = self._allowed(places[:, 0], reach)
-        return np.asarray(places[kept] @ self.turn)
+        return np.asarray(places[self._allowed(places[:, 0], _reach(ballast))] @ self.turn)
 
     def _allowed(self, along: Floats, reach: float) -> Bools:
         """Whether ballast that reaches so far either way lies within the stretch that is allowed."""
@@ -181,70 +176,57 @@ class Room:
         return np.asarray((behind - reach >= self.between[0] - 1e-9) & (behind + reach <= self.between[1] + 1e-9))
 
     def left(self, ballast: Ballast) -> Left:
-        """Return exactly what is left around ballast, to some micrometres."""
-        skin = [_standoff(self.ground.skin, piece) for piece in ballast.room()]
-        cover, place = min(skin, key=lambda found: found[0])
+        """Return what is left around ballast that lies in the body, to some micrometres."""
+        cover, place = min((_standoff(self.ground.skin, piece) for piece in ballast.room()), key=lambda found: found[0])
         clear = np.inf
-        if self.ground.others is not None:
-            clear = min(_standoff(self.ground.others, piece)[0] for piece in ballast.room())
-        if len(self.ground.points):
-            clear = min(clear, *(float(_to_points(piece, self.ground.points).min()) for piece in ballast.room()))
+        for piece in self._ways(ballast):
+            if self.ground.others is not None:
+                clear = min(clear, _standoff(self.ground.others, piece)[0])
+            clear = min(clear, float(_to_points(piece, self.ground.points).min(initial=np.inf)))
         return Left(cover, place, clear)
 
     def holds(self, ballast: Ballast) -> bool:
-        """Tell whether ballast that lies in the body surely keeps every distance.
-
-        Notes
-        -----
-        Points stand for the skins, and others for the ballast where its axis alone does not settle it: every place of a
-        rod is within its radius of its axis. A twentieth of a millimetre is held back for that.
-        """
+        """Tell whether ballast in its place lies in the body, in no other piece, and keeps every distance."""
         along = np.array([float(ballast.middle @ self.ground.frame.nose)])
-        kind = ballast.kind
-        reach = (kind.diameter if kind.pocket == FROM_BELLY else ballast.length) / 2 + kind.fit
-        if not self._allowed(along, reach).all():
+        if not self._allowed(along, _reach(ballast)).all():
             return False
         pieces = ballast.room()
-        if not self._within(np.concatenate([_axis(piece) for piece in pieces])):
+        middles = np.stack([piece.middle for piece in pieces])
+        if not inside(self.ground.skin, middles).all():
             return False
-        return self._keeps(self._skin_points, pieces, self.cover) and (
-            self._other_points is None or self._keeps(self._other_points, pieces, self.keep_clear)
+        others, ways = self.ground.others, self._ways(ballast)
+        if any((_to_points(piece, self.ground.points) < self.keep_clear).any() for piece in ways):
+            return False
+        if not all(_clears(self.ground.skin, piece, self.cover) for piece in pieces):
+            return False
+        return others is None or (
+            not inside(others, middles).any() and all(_clears(others, piece, self.keep_clear) for piece in ways)
         )
 
-    def _within(self, points: Floats) -> bool:
-        """Whether points lie in the body and in no other piece, by the grids: distances alone do not tell the side."""
-        deep = self.depths.at(points @ self.turn.T).min() > 0
-        return bool(deep and all(field.at(points).max() < 0 for field in self._other_fields))
-
-    @cached_property
-    def _other_fields(self) -> tuple[Field, ...]:
-        return tuple(Field.of(surface, pitch_for(surface, _VOXELS)) for surface in self.ground.neighbours)
-
-    @staticmethod
-    def _keeps(tree: cKDTree[None], pieces: Sequence[Solid], distance: float) -> bool:
-        for piece in pieces:
-            if _clear(tree, _axis(piece), piece.radius + distance + _SURE):
-                continue
-            if not isinstance(piece, Cylinder) or not _clear(tree, _shell(piece), distance + _SURE):
-                return False
-        return True
+    def _ways(self, ballast: Ballast) -> tuple[Solid, ...]:
+        """What must keep clear of other pieces: the room, and the hole to it."""
+        hole = ballast.drill(self.ground.lowest)
+        return ballast.room() if hole is None else (*ballast.room(), hole)
 
     def longest(self, ballast: Ballast) -> float:
         """Return the length of the longest rod of a kind that has room anywhere, m, by the grid; 0 where none has."""
-        kind, along = ballast.kind, 2 if ballast.kind.pocket == FROM_BELLY else 0
-        radius = kind.diameter / 2 + kind.fit
-        free = self._discs(radius, along)
-        if kind.pocket == FROM_BELLY:
-            free &= self._bored(radius)
-        elif self.between is not None:
+        kind = ballast.kind
+        free, along = self._free(ballast, self.depths.pitch / 2)
+        if self.between is not None:
             places = self.depths.origin[0] + self.depths.pitch * np.arange(free.shape[0])
-            free &= self._allowed(places, 0.0)[:, None, None]
+            free &= self._allowed(places, 0.0 if along == 0 else kind.diameter / 2 + kind.fit)[:, None, None]
         run = np.zeros(np.delete(free.shape, along), dtype=np.intp)
         best = 0
         for layer in np.moveaxis(free, along, 0):
             run = np.where(layer, run + 1, 0)
             best = max(best, int(run.max()))
         return max(best * self.depths.pitch - 2 * kind.fit, 0.0)
+
+
+def _reach(ballast: Ballast) -> float:
+    """How far ballast with its gap reaches either way along the nose, m."""
+    kind = ballast.kind
+    return (kind.diameter if kind.pocket == FROM_BELLY else ballast.length) / 2 + kind.fit
 
 
 def _shifted(free: Bools, steps: int, axis: int) -> Bools:
@@ -258,49 +240,19 @@ def _shifted(free: Bools, steps: int, axis: int) -> Bools:
 
 
 def _standoff(boxes: Boxes, piece: Solid) -> tuple[float, Floats]:
+    """Distance from a piece to a mesh, m, and its place there."""
     if isinstance(piece, Cylinder):
-        found = cylinder_standoff(boxes, piece, _EXACT)
+        found = solid_standoff(boxes, piece)
         return found.distance, found.place
     near = boxes.nearest(piece.middle[None])
     return max(float(near.distance[0]) - piece.radius, 0.0), near.place[0]
 
 
-def _axis(piece: Solid) -> Floats:
-    """Points along a piece's axis, (n, 3) array, m; a ball's middle."""
-    if not isinstance(piece, Cylinder):
-        return piece.middle[None]
-    count = int(np.ceil(piece.length / _CLOSE)) + 1
-    return np.asarray(piece.middle + np.linspace(-0.5, 0.5, count)[:, None] * piece.length * piece.axis)
-
-
-def _shell(piece: Cylinder) -> Floats:
-    """Points all over a cylinder's surface, (n, 3) array, m."""
-    around = 2 * np.pi * np.arange(n := max(12, int(2 * np.pi * piece.radius / _SHELL))) / n
-    circle = np.column_stack([np.cos(around), np.sin(around)]) @ piece.across
-    heights = np.linspace(-0.5, 0.5, max(2, int(piece.length / _SHELL) + 1)) * piece.length
-    side = (heights[:, None, None] * piece.axis + piece.radius * circle).reshape(-1, 3)
-    rings = np.linspace(0.0, piece.radius, max(2, int(piece.radius / _SHELL)))[:-1]
-    ends = (rings[:, None, None] * circle).reshape(-1, 3)
-    half = piece.length / 2 * piece.axis
-    return np.asarray(piece.middle + np.concatenate([side, ends + half, ends - half]))
-
-
-def _clear(tree: cKDTree[None], points: Floats, distance: float) -> bool:
-    """Whether no point of a tree is nearer than a distance, m."""
-    return bool(np.isinf(np.asarray(tree.query(points, distance_upper_bound=distance)[0])).all())
-
-
-def _tree(surfaces: Sequence[Surface], further: Floats | None = None) -> cKDTree[None]:
-    """Points spread over surfaces, one in a cell, and further ones."""
-    from scipy.spatial import cKDTree
-
-    points = np.concatenate([np.zeros((0, 3)), *(spread(surface, _SPREAD) for surface in surfaces)])
-    cells = np.floor(points / _SPREAD).astype(np.int64)
-    cells -= cells.min(axis=0, initial=0)
-    span = cells.max(axis=0, initial=0) + 1
-    one = np.unique((cells[:, 0] * span[1] + cells[:, 1]) * span[2] + cells[:, 2], return_index=True)[1]
-    points = points[one]
-    return cKDTree(points if further is None else np.concatenate([points, further]))
+def _clears(boxes: Boxes, piece: Solid, distance: float) -> bool:
+    """Whether a mesh comes no nearer to a piece than a distance, m."""
+    if isinstance(piece, Cylinder):
+        return clears(boxes, piece, distance)
+    return bool(boxes.nearest(piece.middle[None]).distance[0] >= piece.radius + distance - TOLERANCE)
 
 
 def _to_points(piece: Solid, points: Floats) -> Floats:

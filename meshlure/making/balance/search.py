@@ -3,18 +3,15 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Iterator
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from typing import Final
 
 import numpy as np
 
 from meshlure.bait.pieces import Substance
-from meshlure.bait.substances import substance
-from meshlure.errors import Fault, InputError
-from meshlure.files.sections.ballast import BallastSection
-from meshlure.files.sections.substance import Substance as Stated
 from meshlure.geometry.surface import Floats
 from meshlure.making.balance.aim import Aim, Line, Lines
+from meshlure.making.balance.asked import Asked
 from meshlure.making.balance.ballast import BALL, FROM_BELLY, ROD, Ballast, Kind
 from meshlure.making.balance.ground import Ground
 from meshlure.making.balance.outcome import Outcome, outcome
@@ -29,12 +26,13 @@ _FLATTEST: Final = 0.3
 """Length over diameter below which a rod is a coin; ours."""
 _BALLS_OFF: Final = 0.3e-3
 """kg. Balls come in sizes: rows whose mass misses by more than this are left out, unless nothing comes closer."""
-_LIFT: Final = 0.25e-3
-"""m. Steps in which a place on the line is tried."""
-_TRIED: Final = 12
-"""Places tried exactly before a kind is given up."""
-_HALVINGS: Final = 6
-_SHORTER: Final = (0.99, 0.93, 0.85)
+_OF_A_COUNT: Final = 2
+"""Sizes of balls that are tried for each number of them."""
+_TRIED: Final = 6
+"""Places tried before a kind is given up."""
+_FINE: Final = 30e-6
+"""m. How closely a place is settled between one that has room and one that has none."""
+_SHORTER: Final = (1.0, 0.97, 0.94, 0.9, 0.85, 0.8, 0.7, 0.6)
 """Shares of the longest rod by the grid that are tried where that is all there is room for."""
 _HALF_DIAGONAL: Final = float(np.sqrt(3) / 2)
 _ALIKE: Final = float(np.radians(0.05))
@@ -80,126 +78,153 @@ class Search:
     ----------
     ground : Ground
     goal : Aim
-    stated : BallastSection
+    asked : Asked
     room : Room
     lines : Lines
     options : list of Option
-    cramped : dict of float
-        By kind of rod that would have to be longer than there is room for: the longest that has room, m.
+    cramped : dict of Ballast or None
+        By kind that would add the mass wanted but has no room: the longest rod that has; None where none has.
     """
 
     ground: Ground
     goal: Aim
-    stated: BallastSection
+    asked: Asked
     room: Room
     lines: Lines
     options: list[Option] = field(default_factory=list)
-    cramped: dict[Kind, float] = field(default_factory=dict)
+    cramped: dict[Kind, Ballast | None] = field(default_factory=dict)
 
     @classmethod
-    def of(cls, ground: Ground, goal: Aim, stated: BallastSection, room: Room | None = None) -> Search:
-        """Return a search that has not begun; a room made before is taken as it is."""
-        room = room or Room(ground, stated.cover, stated.keep_clear, stated.between)
-        return cls(ground, goal, stated, room, Lines(ground, goal))
+    def of(cls, ground: Ground, goal: Aim, asked: Asked, room: Room) -> Search:
+        """Return a search that has not begun."""
+        return cls(ground, goal, asked, room, Lines(ground, goal))
 
     def run(self, tell: Callable[[str], None] = lambda _: None) -> None:
-        """Settle every kind of ballast that can give the reserve wanted."""
+        """Settle every kind of ballast that can give the reserve wanted; where none can, the most that has room."""
         net = self.lines.net
         if net <= 0:
             return
-        for substance_ in metals(self.stated):
-            tell(f"trying {substance_.name}")
-            for kind in self._kinds(substance_, net):
-                option = self._settled(kind, net)
-                if option is not None:
-                    self.options.append(option)
+        for metal in self.asked.metals:
+            tell(f"trying {metal.name}")
+            for kind in self._kinds(metal, net):
+                ballast = self.settled(kind, net)
+                if ballast is None:
+                    self.cramped[kind] = self._longest(kind) if kind.shape == ROD else None
+                else:
+                    self.options.append(Option(ballast, self.outcome_of(ballast)))
         if not self.options:
-            # Nothing has the mass that is wanted: what comes nearest is the most that has room.
-            for kind, longest in self.cramped.items():
-                option = self._shortened(kind, longest)
-                if option is not None:
-                    self.options.append(option)
+            self.options += [Option(most, self.outcome_of(most)) for most in self.cramped.values() if most is not None]
 
     def _kinds(self, metal: Substance, net: float) -> Iterator[Kind]:
-        glue = self._glue()
-        name = metal.name or ""
-        body = self.ground.body_density
-        if ROD in self.stated.shapes:
+        """Kinds of a metal that can add a net mass, kg."""
+        stated, glue = self.asked.stated, self.asked.glue
+        name, body = metal.name or "", self.ground.body_density
+        if ROD in stated.shapes:
             for diameter in rod_diameters(name):
-                yield Kind(metal, ROD, diameter, 1, self.stated.pocket, self.stated.fit, glue)
-        if BALL in self.stated.shapes:
+                kind = Kind(metal, ROD, diameter, 1, stated.pocket, stated.fit, glue)
+                if self.is_piece(kind, net):
+                    yield kind
+        if BALL in stated.shapes:
             rows = [
-                Kind(metal, BALL, diameter, count, self.stated.pocket, self.stated.fit, glue)
+                Kind(metal, BALL, diameter, count, stated.pocket, stated.fit, glue)
                 for diameter in ball_diameters(name)
                 for count in range(1, MOST_BALLS + 1)
             ]
             missed = {row: abs(row.net(0.0, body) - net) for row in rows if row.net(0.0, body) > 0}
+            within = max(_BALLS_OFF, 0.0 if ROD in stated.shapes else min(missed.values(), default=0.0))
             for count in range(1, MOST_BALLS + 1):
-                near = sorted((row for row in missed if row.count == count), key=missed.__getitem__)[:2]
-                yield from (row for row in near if missed[row] <= _BALLS_OFF)
+                near = sorted((row for row in missed if row.count == count), key=missed.__getitem__)[:_OF_A_COUNT]
+                yield from (row for row in near if missed[row] <= within)
 
-    def _glue(self) -> Substance | None:
-        return None if self.stated.glue is None else substance(Stated(material=self.stated.glue), "ballast.glue")
+    def settled(self, kind: Kind, net: float) -> Ballast | None:
+        """Return ballast of a kind in the best place; None where it has no room.
 
-    def _settled(self, kind: Kind, net: float) -> Option | None:
-        """The best place for one kind, None where it has none."""
-        body, axis = self.ground.body_density, self._axis(kind)
-        if kind.shape == ROD:
-            length = kind.length_for(net, body)
-            if length < max(_SHORTEST, _FLATTEST * kind.diameter):
-                return None
-            ballast = Ballast(kind, length, np.zeros(3), axis)
-        else:
-            ballast = Ballast.balls(kind, np.zeros(3), axis)
-            net = kind.net(0.0, body)
-        places = self.room.places(ballast)
-        if not len(places):
-            if kind.shape == ROD:
-                self.cramped[kind] = min(self.room.longest(ballast), ballast.length)
-            return None
-        placed = self._place(ballast, net, places)
-        return None if placed is None else Option(placed, self.outcome_of(placed))
+        Parameters
+        ----------
+        kind : Kind
+        net : float, kg
+            That a rod must add; balls add what they add.
+        """
+        if kind.shape == BALL:
+            net = kind.net(0.0, self.ground.body_density)
+        return self._placed(self.drawn(kind, net), net)
 
-    def _shortened(self, kind: Kind, longest: float) -> Option | None:
+    def is_piece(self, kind: Kind, net: float) -> bool:
+        """Tell whether a rod that adds a net mass, kg, is long enough to be cut and held."""
+        return kind.length_for(net, self.ground.body_density) >= max(_SHORTEST, _FLATTEST * kind.diameter)
+
+    def drawn(self, kind: Kind, net: float) -> Ballast:
+        """Return ballast of a kind about the origin of the drawing: a rod that adds a net mass, kg, or its balls."""
+        axis = self.ground.frame.back if kind.pocket == FROM_BELLY else self.ground.frame.nose
+        if kind.shape == BALL:
+            return Ballast.balls(kind, np.zeros(3), axis)
+        return Ballast(kind, kind.length_for(net, self.ground.body_density), np.zeros(3), axis)
+
+    def _longest(self, kind: Kind) -> Ballast | None:
         """The longest rod of a kind that has room, in its best place."""
+        rod, body = self.drawn(kind, self.lines.net), self.ground.body_density
+        longest = min(self.room.longest(rod), rod.length)
         for share in _SHORTER:
             length = share * longest
-            net = kind.net(length, self.ground.body_density) if length > 0 else 0.0
+            net = kind.net(length, body) if length > 0 else 0.0
             if length < max(_SHORTEST, _FLATTEST * kind.diameter) or net <= 0:
                 return None
-            ballast = Ballast(kind, length, np.zeros(3), self._axis(kind))
-            places = self.room.places(ballast)
-            placed = self._place(ballast, net, places) if len(places) else None
+            placed = self._placed(replace(rod, length=length), net)
             if placed is not None:
-                return Option(placed, self.outcome_of(placed))
+                return placed
         return None
-
-    def _axis(self, kind: Kind) -> Floats:
-        return self.ground.frame.back if kind.pocket == FROM_BELLY else self.ground.frame.nose
 
     def outcome_of(self, ballast: Ballast) -> Outcome:
         """Return how the bait behaves with ballast in a place."""
         return outcome(self.ground.with_ballast(ballast), self.goal, self.lines.ends)
 
-    def _place(self, ballast: Ballast, net: float, places: Floats) -> Ballast | None:
+    def _placed(self, ballast: Ballast, net: float) -> Ballast | None:
+        """Ballast in the lowest place that gives the posture, else in the one that misses it least."""
+        places = self.room.places(ballast)
+        if not len(places):
+            return None
         line = self.lines.line(net)
-        off = line.off(places)
-        heights = places @ line.up
-        tilts = self.lines.tilts(net, places)
-        near = (np.linalg.norm(off, axis=1) <= self.room.depths.pitch * _HALF_DIAGONAL) & (tilts < np.pi)
-        if near.any():
-            steps = np.unique(np.round(heights[near] / _LIFT))[:_TRIED]
-            for tried in (ballast.at(line.at(float(step) * _LIFT)) for step in steps):
-                if self.room.holds(tried):
-                    return tried
-        # Else the place that misses the posture least; of alike ones the lowest. The grid has no voxels on the line's
-        # own lengthwise plane, on which a bait alike on both sides wants its weight.
+        sure = self.room.places(ballast, sure=True)
+        found = self._on_line(ballast, line, net, places, sure)
+        return self._beside(ballast, line, net, places, sure) if found is None else found
+
+    def _on_line(self, ballast: Ballast, line: Line, net: float, places: Floats, sure: Floats) -> Ballast | None:
+        """The lowest place on the line that has room."""
+        heights = self._heights(line, net, places)
+        if not len(heights):
+            return None
+        tried = [heights[0], *self._heights(line, net, sure)[:1], *heights[:: max(1, len(heights) // _TRIED)][1:]]
+        low = heights[0]
+        for height in sorted(tried):
+            if self.room.holds(ballast.at(line.at(height))):
+                return ballast.at(line.at(self._lowest(ballast, line, low, height)))
+            low = height
+        return None
+
+    def _heights(self, line: Line, net: float, places: Floats) -> Floats:
+        """Heights at which places lie on a line, by the grid, and the posture there is stable, ascending, m."""
+        near = np.linalg.norm(line.off(places), axis=1) <= self.room.depths.pitch * _HALF_DIAGONAL
+        return np.unique(places[near & (self.lines.tilts(net, places) < np.pi)] @ line.up)
+
+    def _lowest(self, ballast: Ballast, line: Line, low: float, high: float) -> float:
+        """The lowest height with room above one without."""
+        while high - low > _FINE:
+            middle = (low + high) / 2
+            low, high = (low, middle) if self.room.holds(ballast.at(line.at(middle))) else (middle, high)
+        return high
+
+    def _beside(self, ballast: Ballast, line: Line, net: float, places: Floats, sure: Floats) -> Ballast | None:
+        """The place that misses the posture least; of alike ones the lowest."""
         side = self.ground.frame.side
-        aside = (off @ side)[:, None] * side
-        for number in np.lexsort((heights, np.round(tilts / _ALIKE)))[:_TRIED]:
-            for place in (places[number] - aside[number], places[number]):
-                if self.room.holds(ballast.at(place)):
-                    return self._drawn(self._drawn(ballast.at(place), line, side), line, None)
+        for some in (sure, places):
+            # The grid has no voxels on the line's own lengthwise plane, on which a bait alike on both sides wants its
+            # weight.
+            aside = (line.off(some) @ side)[:, None] * side
+            order = np.lexsort((some @ line.up, np.round(self.lines.tilts(net, some) / _ALIKE)))
+            for number in order[:_TRIED]:
+                for place in (some[number] - aside[number], some[number]):
+                    if self.room.holds(ballast.at(place)):
+                        return self._drawn(self._drawn(ballast.at(place), line, side), line, None)
         return None
 
     def _drawn(self, ballast: Ballast, line: Line, along: Floats | None) -> Ballast:
@@ -208,32 +233,11 @@ class Search:
         way = -line.off(start)
         if along is not None:
             way = (way @ along) * along
-        near, far = 0.0, 1.0
-        for _ in range(_HALVINGS):
+        length = float(np.linalg.norm(way))
+        if length <= _FINE or self.room.holds(ballast.at(start + way)):
+            return ballast.at(start + way) if length > _FINE else ballast
+        near, far = 0.0, min(1.0, 4 * self.room.depths.pitch / length)
+        while (far - near) * length > _FINE:
             share = (near + far) / 2
-            if self.room.holds(ballast.at(start + share * way)):
-                near = share
-            else:
-                far = share
-        whole = ballast.at(start + way)
-        return whole if self.room.holds(whole) else ballast.at(start + near * way)
-
-
-def metals(stated: BallastSection) -> tuple[Substance, ...]:
-    """Return what ballast may be made of.
-
-    Raises
-    ------
-    InputError
-        With every name that the stock does not know.
-    """
-    found: list[Substance] = []
-    faults: list[Fault] = []
-    for number, name in enumerate(stated.materials, 1):
-        try:
-            found.append(substance(Stated(material=name), f"ballast.materials[{number}]"))
-        except InputError as error:
-            faults += error.faults
-    if faults:
-        raise InputError(faults)
-    return tuple(found)
+            near, far = (share, far) if self.room.holds(ballast.at(start + share * way)) else (near, share)
+        return ballast.at(start + near * way)

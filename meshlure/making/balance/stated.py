@@ -7,11 +7,14 @@ from typing import Final
 
 import numpy as np
 
+from meshlure.bait.meshpiece import solid_of
 from meshlure.bait.substances import substance
 from meshlure.errors import Fault, InputError
-from meshlure.files.sections.ballast import BallastSection
 from meshlure.files.sections.substance import Substance as Stated
-from meshlure.geometry.shells import winding_number
+from meshlure.geometry.shapes import rod
+from meshlure.geometry.solids import Solid
+from meshlure.geometry.surface import Floats
+from meshlure.making.balance.asked import glue_of
 from meshlure.making.balance.ballast import BALL, FROM_BELLY, ROD, Ballast, Kind
 from meshlure.making.balance.ground import Ground
 from meshlure.units import quantity
@@ -26,18 +29,18 @@ _FORM = re.compile(
 )
 _LONGEST = 2.0
 _MOST = 20
+_LOST = 1e-6
+"""Share of the ballast's room that rounding may cost."""
 
 
-def stated_ballast(text: str, ground: Ground, section: BallastSection) -> Ballast:
-    """Return ballast that was stated in one line.
+def stated_ballast(text: str, ground: Ground) -> Ballast:
+    """Return ballast that was stated in one line; pocket, fit and glue are those of [ballast].
 
     Parameters
     ----------
     text : str
         Count (of balls), material, shape, diameter, length (of a rod), and its middle in the bait file's coordinates.
     ground : Ground
-    section : BallastSection
-        For pocket, fit and glue.
 
     Raises
     ------
@@ -47,19 +50,19 @@ def stated_ballast(text: str, ground: Ground, section: BallastSection) -> Ballas
     found = _FORM.fullmatch(text.strip())
     if found is None:
         raise InputError(Fault("the ballast cannot be read", WHERE, text, SUCH_AS, "write it like that"))
-    rod = found["shape"].lower() == ROD
+    is_rod = found["shape"].lower() == ROD
     count = int(found["count"] or 1)
-    if rod is (found["length"] is None) or (rod and count > 1) or not 1 <= count <= _MOST:
+    if is_rod is (found["length"] is None) or (is_rod and count > 1) or not 1 <= count <= _MOST:
         what = "a rod has a diameter and a length, balls have a count and a diameter"
         raise InputError(Fault(what, WHERE, text, SUCH_AS, "write it like that"))
     metal = substance(Stated(material=found["material"]), WHERE)
     diameter = quantity(found["diameter"], "length", WHERE, positive=True, most=_LONGEST)
-    glue = None if section.glue is None else substance(Stated(material=section.glue), "ballast.glue")
-    kind = Kind(metal, ROD if rod else BALL, diameter, count, section.pocket, section.fit, glue)
+    section = ground.bait.plan.ballast
+    kind = Kind(metal, ROD if is_rod else BALL, diameter, count, section.pocket, section.fit, glue_of(ground.bait))
     frame = ground.frame
     axis = frame.back if section.pocket == FROM_BELLY else frame.nose
     middle = _point(found["at"], ground.bait.plan.bait.metres)
-    if rod:
+    if is_rod:
         length = quantity(found["length"], "length", WHERE, positive=True, most=_LONGEST)
         ballast = Ballast(kind, length, middle, axis)
     else:
@@ -68,7 +71,7 @@ def stated_ballast(text: str, ground: Ground, section: BallastSection) -> Ballas
     return ballast
 
 
-def _point(text: str, metres: float) -> np.ndarray[tuple[int, ...], np.dtype[np.float64]]:
+def _point(text: str, metres: float) -> Floats:
     try:
         x, y, z = (float(number) for number in text.split(","))
         place = np.array([x, y, z]) * metres
@@ -81,16 +84,12 @@ def _point(text: str, metres: float) -> np.ndarray[tuple[int, ...], np.dtype[np.
 
 def _check_inside(ballast: Ballast, ground: Ground, text: str) -> None:
     """Refuse ballast of which some room lies outside the body's material, or in another piece."""
-    from meshlure.bait.meshpiece import solid_of
-    from meshlure.geometry.solids import Solid
-
     body = ground.bait.body
     rooms = [Solid.of(surface) for surface in ballast.rooms()]
     whole = rooms[0].joined(*rooms[1:])
     beyond = whole.less(solid_of(body.surface, body.name)).volume
-    inside = winding_number(body.surface, ballast.middle) > 0.5
     faults = []
-    if beyond > 1e-6 * whole.volume or not inside:
+    if beyond > _LOST * whole.volume:
         faults.append(
             Fault(
                 "the ballast does not lie in the body",
@@ -100,12 +99,15 @@ def _check_inside(ballast: Ballast, ground: Ground, text: str) -> None:
                 "move it, or make it smaller",
             )
         )
-    for piece in ground.bait.pieces:
-        shared = whole.met(solid_of(piece.surface, piece.name)).volume
-        if shared > 1e-6 * whole.volume:
+    hole = ballast.drill(ground.lowest)
+    way = whole if hole is None or hole.length <= 0 else whole.joined(Solid.of(rod(hole)))
+    names = [f"'{piece.name}'" for piece in ground.bait.pieces] + ["a cavity of the body"] * len(body.cavities)
+    for name, surface in zip(names, ground.neighbours, strict=True):
+        shared = way.met(Solid.of(surface)).volume
+        if shared > _LOST * whole.volume:
             faults.append(
                 Fault(
-                    f"the ballast and '{piece.name}' share room",
+                    f"the ballast{' or the hole to it' if hole is not None else ''} and {name} share room",
                     WHERE,
                     f"{text}: {shared * 1e9:.3g} mm3",
                     "none",
