@@ -48,6 +48,9 @@ def report(
         bool,
         typer.Option("--cut", help="Also write the body with pockets cut for its inserts, and each insert, as STL."),
     ] = False,
+    glb: Annotated[
+        bool, typer.Option("--glb", help="Also write the bait in its water as a 3-D scene for viewers, scene.glb.")
+    ] = False,
     density: Annotated[
         str | None, typer.Option("--density", metavar="DENSITY", help='Quick: of the body, "0.72 g/cm3".')
     ] = None,
@@ -93,6 +96,10 @@ def report(
         raise InputError(
             Fault("--cut writes meshes and needs a folder", "--out", "nothing", "a folder", "add --out DIR")
         )
+    if glb and out is None:
+        raise InputError(
+            Fault("--glb writes a scene and needs a folder", "--out", "nothing", "a folder", "add --out DIR")
+        )
     options = {
         "--density": density,
         "--material": material,
@@ -120,7 +127,7 @@ def report(
             from meshlure.cli.writing import write
 
             said("writing the page" if not no_page else "writing")
-            found = write(found, out, page=not no_page, variant=read if cut else None)
+            found = write(found, out, page=not no_page, variant=read if cut else None, glb=glb)
     if json:
         hand_on(found.to_json())
     else:
@@ -141,7 +148,7 @@ def _plan(bait: Path, options: dict[str, str | None], inserts: list[str]) -> Bai
                     what="these options belong to the quick form, which takes a mesh instead of a bait file",
                     where=str(bait),
                     found=", ".join(given),
-                    allowed="--out, --no-page, --json, --cut, --against",
+                    allowed="--out, --no-page, --json, --cut, --glb, --against",
                     next_step="write them into the bait file",
                 )
             )

@@ -14,8 +14,11 @@ from meshlure.results.study import Study
 PAGE = "report.html"
 
 
-def write(found: Study, out: Path, *, page: bool, variant: Bait | None) -> Study:
-    """Write results.json, the page and the meshes of a variant; return the study with their names in it.
+SCENE = "scene.glb"
+
+
+def write(found: Study, out: Path, *, page: bool, variant: Bait | None, glb: bool = False) -> Study:
+    """Write results.json, the page, the meshes of a variant and the scene; return the study with their names in it.
 
     Parameters
     ----------
@@ -26,14 +29,22 @@ def write(found: Study, out: Path, *, page: bool, variant: Bait | None) -> Study
         Whether to draw the page.
     variant : Bait or None
         Of which the cut body and inserts are written.
+    glb : bool
+        Whether to write the bait in its water as a 3-D scene.
     """
 
     def make(folder: Path) -> tuple[Study, Sequence[str]]:
-        if variant is None:
-            return found, ()
-        from meshlure.making.variant import write_cuttings
+        names: list[str] = []
+        if variant is not None:
+            from meshlure.making.variant import write_cuttings
 
-        return found, write_cuttings(variant, folder)
+            names += write_cuttings(variant, folder)
+        if glb:
+            from meshlure.report.glb import glb as scene
+
+            (folder / SCENE).write_bytes(scene(found))
+            names.append(SCENE)
+        return found, names
 
     return write_made(out, page=page, make=make)
 

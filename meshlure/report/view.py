@@ -137,7 +137,7 @@ def _data(scene: Scene, standing: Stand, legend: tuple[Entry, ...], subject: Sub
         "under": scene.up is not None and standing.water is None,
         "colours": {"ink": INK, "water": WATER},
         "pieces": [
-            _piece(piece, points, entry, low, step)
+            _piece(piece, points, standing.axes, entry, low, step)
             for piece, points, entry in zip(scene.pieces, placed, legend, strict=True)
         ],
         "marks": [
@@ -148,7 +148,7 @@ def _data(scene: Scene, standing: Stand, legend: tuple[Entry, ...], subject: Sub
     return json.dumps(tree, separators=(",", ":"), ensure_ascii=True).replace("<", "\\u003c")
 
 
-def _piece(piece: ScenePiece, points: Floats, entry: Entry, low: Floats, step: float) -> dict[str, Any]:
+def _piece(piece: ScenePiece, points: Floats, axes: Floats, entry: Entry, low: Floats, step: float) -> dict[str, Any]:
     steps = np.clip(np.rint((points - low) / step), 0, STEPS).astype("<u2")
     wide = "<u4" if len(points) > STEPS else "<u2"
     middle = (points.min(axis=0) + points.max(axis=0)) / 2 if len(points) else low
@@ -157,10 +157,15 @@ def _piece(piece: ScenePiece, points: Floats, entry: Entry, low: Floats, step: f
         "colour": entry.colour,
         "label": "" if entry.number is None or piece.role == "body" else str(entry.number),
         "at": [round(float(value), 3) for value in middle],
-        "places": base64.b64encode(steps.tobytes()).decode("ascii"),
-        "faces": base64.b64encode(piece.faces.astype(wide).tobytes()).decode("ascii"),
+        "places": _packed(steps),
+        "normals": _packed(np.rint(piece.normals @ axes.T * 127).astype("<i1")),
+        "faces": _packed(piece.faces.astype(wide)),
         "wide": wide == "<u4",
     }
+
+
+def _packed(values: NDArray[Any]) -> str:
+    return base64.b64encode(values.tobytes()).decode("ascii")
 
 
 def _marks(scene: Scene, subject: Subject, nose: Floats) -> Iterator[tuple[str, str, Floats]]:

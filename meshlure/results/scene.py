@@ -10,9 +10,11 @@ import numpy as np
 from meshlure.bait.chambers import BallRow
 from meshlure.bait.pieces import Bait, MeshPiece, Role
 from meshlure.geometry.clusters import coarse
+from meshlure.geometry.normals import facets, skin_normals
 from meshlure.geometry.shapes import ball
 from meshlure.geometry.solids import Solid, SolidError
 from meshlure.geometry.surface import Floats, Surface, together
+from meshlure.geometry.topology import paired
 from meshlure.results.numbers import MM
 from meshlure.results.study import Scene, ScenePiece
 
@@ -50,9 +52,8 @@ def scene(bait: Bait, rows: Sequence[BallRow], ends: Mapping[str, str], posture:
     drawn = [*_meshes(bait), *_balls(rows, ends)]
     allowed = allowances([len(surface.faces) for _, _, surface in drawn], TRIANGLES)
     pieces = tuple(
-        ScenePiece(name, str(role), seen.vertices * MM, seen.faces)
+        _shaded(name, role, within(surface, triangles))
         for (name, role, surface), triangles in zip(drawn, allowed, strict=True)
-        for seen in [_within(surface, triangles)]
     )
     up = posture["up"]
     return Scene(pieces, None if up is None else np.asarray(up, dtype=np.float64), posture["waterline_mm"])
@@ -65,6 +66,14 @@ def allowances(counts: Sequence[int], total: int) -> list[int]:
         allowed[number] = min(counts[number], left // (len(counts) - rank))
         left -= allowed[number]
     return allowed
+
+
+def _shaded(name: str, role: Role, surface: Surface) -> ScenePiece:
+    skin = skin_normals(surface, paired(surface), facets(surface))
+    used, faces = np.unique(skin.groups, return_inverse=True)
+    vertex = np.zeros(len(used), dtype=np.intp)
+    vertex[faces] = surface.faces.ravel()
+    return ScenePiece(name, str(role), surface.vertices[vertex] * MM, skin.normals[:, used].T, faces.reshape(-1, 3))
 
 
 def _meshes(bait: Bait) -> Iterator[tuple[str, Role, Surface]]:
@@ -88,7 +97,7 @@ def _balls(rows: Sequence[BallRow], ends: Mapping[str, str]) -> Iterator[tuple[s
             yield f"balls in {row.balls.chamber}", Role.BALL, together(*made)
 
 
-def _within(surface: Surface, triangles: int) -> Surface:
+def within(surface: Surface, triangles: int) -> Surface:
     """Return a surface of about as many triangles as allowed or fewer; one that has no more comes back as it is."""
     if len(surface.faces) <= triangles:
         return surface

@@ -60,11 +60,24 @@ class View:
 
 @dataclass(frozen=True, eq=False)
 class ScenePiece:
-    """One piece's mesh, to be looked at: vertices (n, 3), mm, in mesh coordinates; faces (m, 3)."""
+    """One piece's mesh, to be looked at.
+
+    Attributes
+    ----------
+    name, role : str
+        As in ``pieces`` of results.json.
+    vertices : (n, 3) array, mm
+        In mesh coordinates; at a sharp edge, one for each side of it.
+    normals : (n, 3) array
+        Unit normals of the smooth skin there.
+    faces : (m, 3) array
+        Vertex numbers, outward by the right-hand rule.
+    """
 
     name: str
     role: str
     vertices: Floats
+    normals: Floats
     faces: NDArray[np.intp]
 
 

@@ -16,40 +16,18 @@ function bytes(text) {
   for (var i = 0; i < raw.length; i++) out[i] = raw.charCodeAt(i);
   return out.buffer;
 }
-function unpack(piece) {
-  var steps = new Uint16Array(bytes(piece.places)), places = new Float32Array(steps.length);
-  for (var i = 0; i < steps.length; i++) places[i] = data.low[i % 3] + data.step * steps[i];
-  var raw = bytes(piece.faces);
-  return {places: places, faces: piece.wide ? new Uint32Array(raw) : new Uint16Array(raw)};
-}
-// Corners with their normals: the mean over the faces round a vertex that lie within 40 degrees of the corner's own,
-// so that round stays round and edges stay sharp.
-function shaded(mesh) {
-  var p = mesh.places, f = mesh.faces, count = f.length / 3, flat = new Float32Array(f.length);
-  var start = new Uint32Array(p.length / 3 + 1), around = new Uint32Array(f.length), i, j, k;
-  for (i = 0; i < count; i++) {
-    var a = 3 * f[3 * i], b = 3 * f[3 * i + 1], c = 3 * f[3 * i + 2];
-    var ux = p[b] - p[a], uy = p[b + 1] - p[a + 1], uz = p[b + 2] - p[a + 2];
-    var vx = p[c] - p[a], vy = p[c + 1] - p[a + 1], vz = p[c + 2] - p[a + 2];
-    flat[3 * i] = uy * vz - uz * vy; flat[3 * i + 1] = uz * vx - ux * vz; flat[3 * i + 2] = ux * vy - uy * vx;
-  }
-  for (i = 0; i < f.length; i++) start[f[i] + 1]++;
-  for (i = 1; i < start.length; i++) start[i] += start[i - 1];
-  var next = start.slice();
-  for (i = 0; i < f.length; i++) around[next[f[i]]++] = Math.floor(i / 3);
-  var out = new Float32Array(6 * f.length), near = Math.cos(40 * Math.PI / 180);
-  function size(n) { return Math.hypot(flat[3 * n], flat[3 * n + 1], flat[3 * n + 2]); }
-  for (i = 0; i < f.length; i++) {
-    var own = Math.floor(i / 3), length = size(own), nx = 0, ny = 0, nz = 0;
-    for (j = start[f[i]]; j < start[f[i] + 1]; j++) {
-      k = around[j];
-      var dot = flat[3 * own] * flat[3 * k] + flat[3 * own + 1] * flat[3 * k + 1] + flat[3 * own + 2] * flat[3 * k + 2];
-      if (k === own || dot > near * length * size(k)) {
-        nx += flat[3 * k]; ny += flat[3 * k + 1]; nz += flat[3 * k + 2];
-      }
+// Places and normals of a piece's corners, in the order of its faces.
+function corners(piece) {
+  var steps = new Uint16Array(bytes(piece.places)), facing = new Int8Array(bytes(piece.normals));
+  var faces = piece.wide ? new Uint32Array(bytes(piece.faces)) : new Uint16Array(bytes(piece.faces));
+  var out = new Float32Array(6 * faces.length);
+  for (var i = 0; i < faces.length; i++) {
+    for (var k = 0; k < 3; k++) {
+      out[6 * i + k] = data.low[k] + data.step * steps[3 * faces[i] + k];
+      out[6 * i + 3 + k] = facing[3 * faces[i] + k] / 127;
+      low[k] = Math.min(low[k], out[6 * i + k]);
+      high[k] = Math.max(high[k], out[6 * i + k]);
     }
-    var scale = 1 / (Math.hypot(nx, ny, nz) || 1), at = 3 * f[i];
-    out.set([p[at], p[at + 1], p[at + 2], nx * scale, ny * scale, nz * scale], 6 * i);
   }
   return out;
 }
@@ -59,12 +37,7 @@ function colour(text) {
 }
 var low = [Infinity, Infinity, Infinity], high = [-Infinity, -Infinity, -Infinity];
 var pieces = data.pieces.map(function (piece) {
-  var mesh = unpack(piece);
-  for (var i = 0; i < mesh.places.length; i++) {
-    low[i % 3] = Math.min(low[i % 3], mesh.places[i]);
-    high[i % 3] = Math.max(high[i % 3], mesh.places[i]);
-  }
-  return {corners: shaded(mesh), look: piece.look, colour: colour(piece.colour), label: piece.label, at: piece.at,
+  return {corners: corners(piece), look: piece.look, colour: colour(piece.colour), label: piece.label, at: piece.at,
     shown: true};
 });
 var middle = [0, 1, 2].map(function (i) { return (low[i] + high[i]) / 2; });
@@ -195,7 +168,7 @@ function use(what, way, values) {
     if (typeof value === "number") gl.uniform1f(at, value); else gl["uniform" + value.length + "fv"](at, value);
   });
 }
-function corners(made, count) {
+function show(made, count) {
   gl.bindBuffer(gl.ARRAY_BUFFER, made);
   gl.vertexAttribPointer(0, 3, gl.FLOAT, false, 24, 0);
   gl.vertexAttribPointer(1, 3, gl.FLOAT, false, 24, 12);
@@ -213,14 +186,14 @@ function paint() {
     // Count how often the body's skin lies before the water: where not evenly, the water is inside the body.
     gl.colorMask(false, false, false, false);
     use(water, way, {edge: edge});
-    corners(sheetBuffer, 6);
+    show(sheetBuffer, 6);
     gl.depthMask(false);
     gl.enable(gl.STENCIL_TEST);
     gl.stencilFunc(gl.ALWAYS, 0, 255);
     gl.stencilOpSeparate(gl.FRONT, gl.KEEP, gl.KEEP, gl.INCR_WRAP);
     gl.stencilOpSeparate(gl.BACK, gl.KEEP, gl.KEEP, gl.DECR_WRAP);
     use(solid, way, {});
-    corners(body.buffer, body.count);
+    show(body.buffer, body.count);
     gl.disable(gl.STENCIL_TEST);
     gl.depthMask(true);
     gl.colorMask(true, true, true, true);
@@ -229,7 +202,7 @@ function paint() {
   pieces.forEach(function (piece) {
     if (!piece.shown || piece.look !== "solid") return;
     use(solid, way, {ink: piece.colour});
-    corners(piece.buffer, piece.count);
+    show(piece.buffer, piece.count);
   });
   gl.depthMask(false);
   gl.enable(gl.BLEND);
@@ -245,7 +218,7 @@ function paint() {
       use(glass, way, {ink: piece.colour, line: inkOf, deep: deep, level: surface ? data.water : 0,
         side: surface ? side : 0, thin: thin, strength: piece === body ? 1 : 0.8});
       gl.enable(gl.CULL_FACE);
-      [gl.FRONT, gl.BACK].forEach(function (culled) { gl.cullFace(culled); corners(piece.buffer, piece.count); });
+      [gl.FRONT, gl.BACK].forEach(function (culled) { gl.cullFace(culled); show(piece.buffer, piece.count); });
       gl.disable(gl.CULL_FACE);
     });
   });
@@ -259,7 +232,7 @@ function sheetOf(way, thin, deep) {
   // mm across the rules to a pixel on the screen: more the flatter the water is looked at.
   var c = way.right[0], s = way.right[1], m = Math.max(Math.abs(way.away[2]), 0.01);
   use(water, way, {deep: deep, edge: edge, fine: [thin * Math.hypot(c, s / m), thin * Math.hypot(s, c / m)]});
-  corners(sheetBuffer, 6);
+  show(sheetBuffer, 6);
   gl.disable(gl.STENCIL_TEST);
 }
 function marks(way) {
@@ -391,10 +364,10 @@ figure.addEventListener("click", function (event) {
   if (button) BUTTONS[button.getAttribute("data-do")]();
 });
 figure.addEventListener("change", function (event) {
-  var show = event.target.getAttribute("data-show"), on = event.target.checked;
-  if (show === "water") waterShown = on && wet;
-  else if (show === "marks") marksShown = on;
-  else if (show !== null) pieces[+show].shown = on;
+  var what = event.target.getAttribute("data-show"), on = event.target.checked;
+  if (what === "water") waterShown = on && wet;
+  else if (what === "marks") marksShown = on;
+  else if (what !== null) pieces[+what].shown = on;
   draw();
 });
 canvas.addEventListener("webglcontextlost", function () { figure.hidden = true; });
