@@ -193,6 +193,8 @@ def study(bait: Bait, against: Bait | None = None, tell: Callable[[str], None] =
         "assumptions": account.assumptions(bait, speed, pull),
         "cautions": account.cautions(bait),
         "balance": None,
+        "chamber": None,
+        "hollow": None,
         "mould": None,
         "timings_s": clock.spent,
     }
