@@ -16,7 +16,7 @@ from meshlure.geometry.blocks import BlockIndex
 from meshlure.physics.buoyancy import COAT_SPREAD, Cause, Doubt, Reserve, reserve
 from meshlure.physics.hydrostatic import Lever, Weighing, explained
 from meshlure.physics.repose import Vessel
-from meshlure.physics.whatifs import net_mass
+from meshlure.physics.whatifs import beside_inserts, net_mass
 from meshlure.posing import Posed, pose
 from meshlure.results import measured as tree
 from meshlure.stock.waters import water
@@ -257,7 +257,7 @@ def _levers(
     skin, painted = vessel.index.volume, vessel.composition.skin.painted
     on = 0.0 if coat is None else coat.mass.amount
     wet = 0.0 if coat is None else coat.volume
-    size = 0.01 * (3 * own + 2 * on)
+    size = 0.01 * (3 * (own + stuff.density * beside_inserts(bait, parts).amount) + 2 * on)
     solid = stuff.density if bait.body.printed is None else bait.body.printed.solid.density
     levers = [
         Lever("density of the body", "%", own / 100, -own / 100, (max(low, _BATCH), max(high, _BATCH))),

@@ -12,6 +12,7 @@ from meshlure.bait.wording import volume_text
 from meshlure.files.defaults import PRINT_SOLID, PRINT_SOLID_RANGE
 from meshlure.files.sections.body import Printed
 from meshlure.findings import Finding, Level
+from meshlure.geometry.inset import inset
 from meshlure.geometry.moments import NOTHING, Moments, solid_moments
 from meshlure.geometry.solids import Solid
 from meshlure.geometry.surface import Surface, together
@@ -82,8 +83,6 @@ def printed(solid: Substance, stated: Printed, skin: Surface, cavities: Sequence
     cavities : sequence of Surface
         Each outward.
     """
-    from meshlure.geometry.inset import inset
-
     walls = together(skin, *(cavity.turned() for cavity in cavities)) if cavities else skin
     return Print(solid, stated.wall, stated.infill, inset(walls, stated.wall))
 

@@ -11,7 +11,7 @@ import numpy as np
 from meshlure.bait.composition import Part
 from meshlure.bait.pieces import Bait, Hardware, Print, Role
 from meshlure.bait.printed import Core
-from meshlure.geometry.moments import Moments, solid_moments
+from meshlure.geometry.moments import Moments, point_moments, solid_moments
 from meshlure.geometry.surface import Floats
 from meshlure.physics.buoyancy import COAT_SPREAD
 from meshlure.physics.changes import Changes, load, moved
@@ -62,6 +62,14 @@ def net_mass(part: Part, body: Part) -> float:
     return part.mass.amount - density * part.volume
 
 
+def beside_inserts(bait: Bait, parts: Sequence[Part]) -> Moments:
+    """Return what solid inserts take of the body as drawn, m3: room that does not grow when the body does."""
+    drawn = sum((solid_moments(cavity) * -1.0 for cavity in bait.body.cavities), solid_moments(bait.body.surface))
+    own = {part.name for part in parts if part.role in (Role.BODY, Role.VOID)}
+    hollows = {piece.name for piece in bait.pieces} | {bait.body.name}
+    return sum((point_moments(-part.volume, part.centre) for part in parts if part.name in own & hollows), drawn)
+
+
 def whatifs(
     bait: Bait, parts: Sequence[Part], skin: Layers, dry: Sequence[str] = (), core: Core | None = None
 ) -> tuple[Whatif, ...]:
@@ -95,10 +103,16 @@ def whatifs(
 
 
 def _grown(bait: Bait, parts: Sequence[Part], body: Part, skin: Layers, at: float) -> Iterator[Whatif]:
-    """The bait a percent larger and a layer thicker: of its material, and at the mass that was weighed."""
+    """The bait a percent larger and a layer thicker: of its material, and at the mass that was weighed.
+
+    Solid inserts stay as large as they are, so the body's material grows by a share of all that its skin holds; what
+    stands out of the body is taken to grow with it.
+    """
     still = Changes.one(at)
     k = _SCALE
-    mass, volume, wet = four(body.mass) * (k**3 - 1), np.zeros(4), np.zeros(4)
+    density = 0.0 if body.substance is None else body.substance.density
+    mass = (four(body.mass) + density * four(beside_inserts(bait, parts))) * (k**3 - 1)
+    volume, wet = np.zeros(4), np.zeros(4)
     coat = next((part for part in parts if part.role is Role.COAT), None)
     if coat is not None and bait.coat is not None:
         # The skin that the coat lies on grows by the square of the scale.
@@ -109,7 +123,6 @@ def _grown(bait: Bait, parts: Sequence[Part], body: Part, skin: Layers, at: floa
     grown = "size of body and seats, inserts and hooks as they are"
     yield Whatif(grown, "+1 %", still, Changes.one(at, mass, volume, wet, k))
     yield Whatif("the same, at the mass as it is", "+1 %", still, Changes.one(at, np.zeros(4), volume, wet, k))
-    density = 0.0 if body.substance is None else body.substance.density
     if bait.body.printed is not None:
         density = bait.body.printed.solid.density
     layer, under = skin.whole * _SKIN, skin.wet * _SKIN
