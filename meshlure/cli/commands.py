@@ -5,11 +5,12 @@ from __future__ import annotations
 from types import ModuleType
 from typing import Final
 
-from meshlure.cli import balance, chamber, mould, pour, report
+from meshlure.cli import balance, balls, chamber, hardware, materials, mould, pour, report, rods, waters
 
 JOBS: Final[dict[str, tuple[ModuleType, ...]]] = {
     "Study a bait": (report,),
     "Change its design": (balance, chamber),
     "Make it": (mould, pour),
+    "Look up stock": (materials, waters, hardware, balls, rods),
 }
 """In the order in which a maker comes to them."""

@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING, Annotated, Final
 
 import typer
 
+from meshlure.cli.completion import inserts_begun, materials_begun
 from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer, hand_on
 from meshlure.errors import Fault, InputError
@@ -55,12 +56,21 @@ def report(
         str | None, typer.Option("--density", metavar="DENSITY", help='Quick: of the body, "0.72 g/cm3".')
     ] = None,
     material: Annotated[
-        str | None, typer.Option("--material", metavar="NAME", help="Quick: of the body, instead of a density.")
+        str | None,
+        typer.Option(
+            "--material",
+            metavar="NAME",
+            help="Quick: of the body, instead of a density.",
+            autocompletion=materials_begun,
+        ),
     ] = None,
     insert: Annotated[
         list[str] | None,
         typer.Option(
-            "--insert", metavar="FILE=WHAT", help="Quick: WHAT is a material, a density, sealed or flooded. May repeat."
+            "--insert",
+            metavar="FILE=WHAT",
+            help="Quick: WHAT is a material, a density, sealed or flooded. May repeat.",
+            autocompletion=inserts_begun,
         ),
     ] = None,
     unit: Annotated[

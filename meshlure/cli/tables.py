@@ -84,9 +84,13 @@ class Table:
 
     def _least(self, heads: list[str], rows: list[list[str]]) -> int:
         """How wide a terminal must be for the columns to stand side by side."""
-        sizes = [max(map(len, cells)) for cells in zip(heads, *rows, strict=True)]
-        held = [min(size, _WORDS) if c.words else size for size, c in zip(sizes, self.columns, strict=True)]
-        return sum(held) + _GAP * (len(held) - 1)
+        return sum(self._narrowest(heads, rows)) + _GAP * (len(heads) - 1)
+
+    def _narrowest(self, heads: list[str], rows: list[list[str]]) -> list[int]:
+        """How narrow each column may become: heads are broken between words, cells only where they hold words."""
+        longest = [max(map(len, cells), default=0) for cells in zip(*rows, strict=True)] or [0] * len(heads)
+        held = [min(size, _WORDS) if c.words else size for size, c in zip(longest, self.columns, strict=True)]
+        return [max(size, *map(len, head.split() or [""])) for size, head in zip(held, heads, strict=True)]
 
     def _records(self, heads: list[str], rows: list[list[str]]) -> list[str]:
         """Every row as a block of its own, a line a cell, where the columns have no room."""
@@ -110,12 +114,13 @@ class Table:
             padding=(0, _GAP - ruled, 0, 0),  # the rule takes a blank of its own
             header_style="bold" if colour else "",
         )
-        for head, column in zip(heads, self.columns, strict=True):
+        least = self._narrowest(heads, rows)
+        for head, column, size in zip(heads, self.columns, least, strict=True):
             made.add_column(
                 Text(head),
                 justify="right" if column.number else "left",
-                no_wrap=not column.words,
                 overflow="fold",
+                min_width=size,
                 vertical="top",
             )
         for number, row in enumerate(rows):

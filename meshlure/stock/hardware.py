@@ -103,6 +103,33 @@ def item(name: str, where: str) -> HardwareItem:
     raise shelf.unknown("hardware", name, where, known, _TABLE, f"name one, {_WEIGH}")
 
 
+def hardware_named(words: str, where: str) -> tuple[HardwareItem, ...]:
+    """Hardware whose name begins words with all of these; all of it without any, a wire as it is asked for.
+
+    Parameters
+    ----------
+    words : str
+        Such as ``"treble"``, ``"ring 3"`` or ``"wire 0.8 x 90"``.
+    where : str
+        What the words stand at, for the message.
+
+    Raises
+    ------
+    InputError
+        As `item` does, where nothing answers to them.
+    """
+    asked = shelf.plain(words)
+    if asked in _by_name():
+        return (_by_name()[asked],)
+    parts = asked.split()
+    found = tuple(
+        row
+        for name, row in _by_name().items()
+        if all(any(word.startswith(part) for word in re.split(r"[\s,]+", name)) for part in parts)
+    )
+    return found or (item(words, where),)
+
+
 def _trebles(table: Mapping[str, Any]) -> list[HardwareItem]:
     group = table["treble"]
     return [

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import functools
+import re
 from collections.abc import Mapping
 from dataclasses import dataclass
 from types import MappingProxyType
@@ -111,3 +112,36 @@ def material(name: str, where: str) -> Material:
         )
     known = {key: row.name for key, row in _by_name().items()} | {key: key for key in _unsettled()}
     raise shelf.unknown("material", name, where, known, _TABLE, f"name one, {_WEIGH}")
+
+
+def materials_named(words: str, where: str) -> tuple[Material, ...]:
+    """Materials whose name, alias or family begins words with all of these, in the table's order.
+
+    Parameters
+    ----------
+    words : str
+        Such as ``"cedar"``, ``"tungsten 95"`` or ``"wood"``; case and hyphens do not matter.
+    where : str
+        What the words stand at, for the message.
+
+    Raises
+    ------
+    InputError
+        Where there is none, with the names near it.
+    """
+    asked = shelf.plain(words).split()
+    families: dict[str, list[str]] = {}
+    for family, rows in _unsettled().items():
+        for name in rows:
+            families.setdefault(shelf.plain(name), []).append(family)
+
+    def answers(row: Material) -> bool:
+        own = shelf.plain(row.name)
+        named = " ".join([own, *map(shelf.plain, row.aliases), *families.get(own, ())])
+        return all(any(part.startswith(word) for part in re.split(r"[\s/+,]+", named)) for word in asked)
+
+    found = tuple(row for row in materials() if answers(row))
+    if not found:
+        known = {key: row.name for key, row in _by_name().items()} | {key: key for key in _unsettled()}
+        raise shelf.unknown("material", words, where, known, _TABLE, "shorten the words, or leave them out to see all")
+    return found
