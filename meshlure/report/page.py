@@ -9,6 +9,7 @@ from typing import Any
 from meshlure.report import (
     airborne,
     attitude,
+    budget,
     charts,
     compared,
     flight,
@@ -17,6 +18,7 @@ from meshlure.report import (
     substance,
     underwater,
     water,
+    weighed,
     wording,
 )
 from meshlure.report.drawings import TITLES, Drawing, drawing
@@ -51,6 +53,8 @@ class Verdict:
     faults: tuple[origin.Found, ...]
     warnings: tuple[origin.Found, ...]
     missed: tuple[str, ...]
+    posture_band: str
+    passing: str
 
 
 def page(study: Study) -> str:
@@ -96,6 +100,7 @@ def page(study: Study) -> str:
         throw=flight.throw(results),
         help_words=flight.help_words(results["flight"]),
         timings=origin.timings(results),
+        budget_words=budget.words(results),
         tables=_tables(results),
         turning=turning(study.scene, results, shown),
         w=wording,
@@ -142,6 +147,8 @@ def _verdict(results: Mapping[str, Any]) -> Verdict:
         faults=tuple(f for f in findings if f.level == "fault"),
         warnings=tuple(f for f in findings if f.level == "warning"),
         missed=tuple(missed),
+        posture_band=budget.posture_band(results),
+        passing=budget.passing(results),
     )
 
 
@@ -153,6 +160,12 @@ def _tables(results: Mapping[str, Any]) -> dict[str, Any]:
         "facets": substance.facets(results),
         "limits": substance.limits(results),
         "measured": substance.measured(results),
+        "weighed": weighed.facts(results),
+        "again": weighed.again(results),
+        "explanations": weighed.explanations(results),
+        "budget": budget.rows(results),
+        "copies": budget.copies(results),
+        "budget_doubts": budget.doubts(results),
         "buoyancy": water.buoyancy(results),
         "doubts": water.doubts(results),
         "waters": water.waters(results),

@@ -52,7 +52,9 @@ def verdict_words(found: Mapping[str, Any]) -> str:
 
 
 def doubts(results: Results) -> Table | None:
-    """Return what the reserve's band is made of."""
+    """Return what the reserve's band is made of; None where the error budget tells it with more."""
+    if results.get("budget"):
+        return None
     rows = [
         (row["what"], fixed(-row["low_g"], 2), fixed(row["high_g"], 2, signed=True))
         for row in results["buoyancy"]["doubts"]
