@@ -8,21 +8,17 @@ from typing import Final
 import numpy as np
 from numpy.typing import NDArray
 
+from meshlure.geometry.ears import ears_of
 from meshlure.geometry.surface import Floats, Ints
 
 FLAT: Final = 1e-3
 """Share of a polygon's size by which a corner may lie off its plane before it is told; rounding to text stays below."""
 
 _STRAIGHT: Final = 1e-6
-"""Sine of a corner's turn, and share of the polygon's size for a triangle's height, below which they count as none."""
+"""Sine of a corner's turn, and share of the squared size for a triangle's area, below which they count as none."""
 
 _POINTLESS: Final = 1e-12
 """Share of its squared size below which a polygon has no area: its corners lie on a line."""
-
-_SAME_AREA: Final = 1e-6
-
-_TURNS: Final = 2_000_000
-"""Triangles looked at, all in all, while a polygon's needles are turned: some seconds."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -116,7 +112,7 @@ def cut(vertices: Floats, polygons: Polygons) -> Cut:
         faces.append(corners[fanned][:, fans].reshape(-1, 3))
         owners.append(np.repeat(numbers[fanned], count - 2))
         for row in np.flatnonzero(~(fanned | halved)):
-            ears, whole = _ears(vertices[corners[row]], shape.normal[row])
+            ears, whole = ears_of(vertices[corners[row]], shape.normal[row])
             faces.append(corners[row][ears])
             owners.append(np.full(len(ears), numbers[row]))
             if not whole:
@@ -177,68 +173,3 @@ def _halves(corners: Floats, normal: Floats) -> tuple[Ints, NDArray[np.bool_]]:
     best = least.argmax(axis=1)
     size = np.linalg.norm(np.ptp(corners, axis=1), axis=1)
     return ways[best], least.max(axis=1) > _STRAIGHT * size**2
-
-
-def _ears(corners: Floats, normal: Floats) -> tuple[Ints, bool]:
-    """Triangles (m, 3) of one polygon by ear cutting, and whether they cover it as it is drawn."""
-    # Imported here: only a file with concave polygons needs them.
-    from mapbox_earcut import triangulate_float64
-    from trimesh.geometry import plane_transform
-    from trimesh.transformations import transform_points
-
-    # A corner written twice in a row is one corner; the ear cutter drops it, so it is dropped before the count.
-    apart = np.flatnonzero((corners != np.roll(corners, 1, axis=0)).any(axis=1))
-    to_plane = plane_transform(corners.mean(axis=0), normal)  # type: ignore[no-untyped-call]
-    flat: Floats = transform_points(corners[apart], to_plane)[:, :2]
-    order = triangulate_float64(np.ascontiguousarray(flat), np.array([len(flat)], dtype=np.uint32))
-    ears: Ints = order.astype(np.intp).reshape(-1, 3)
-    areas = _signed_areas(flat[ears])
-    around = np.roll(flat, -1, axis=0)
-    area = float((flat[:, 0] * around[:, 1] - around[:, 0] * flat[:, 1]).sum()) / 2
-    whole = len(ears) == len(flat) - 2 and bool(abs(np.abs(areas).sum() - area) <= _SAME_AREA * abs(area))
-    return apart[_without_needles(ears, flat)], whole
-
-
-def _without_needles(ears: Ints, flat: Floats) -> Ints:
-    """Turn the long edge of a triangle without height the other way between it and its neighbour.
-
-    Corners that were drawn on one line stand beside it by a rounding, so the cutter may take three of them for an ear.
-    """
-    ears = ears.copy()
-    least = _STRAIGHT * float(np.linalg.norm(np.ptp(flat, axis=0)))
-    # Every turn settles a needle or moves two of them apart; an outline that crosses itself may keep some, and one of
-    # very many corners is not worth the time: needles do no harm.
-    for _ in range(min(4 * len(ears), _TURNS // max(len(ears), 1))):
-        sides = np.linalg.norm(flat[np.roll(ears, -1, axis=1)] - flat[ears], axis=2)
-        longest = sides.argmax(axis=1)
-        needles = 2 * _signed_areas(flat[ears]) <= least * sides.max(axis=1)
-        pair = _pair(ears, longest, needles)
-        if pair is None:
-            break
-        needle, other = pair
-        a, c, b = np.roll(ears[needle], -longest[needle])
-        (d,) = set(ears[other].tolist()) - {int(a), int(c)}
-        ears[needle], ears[other] = (a, d, b), (d, c, b)
-    return ears
-
-
-def _pair(ears: Ints, longest: Ints, needles: NDArray[np.bool_]) -> tuple[int, int] | None:
-    """Needle, and the triangle across its long edge: one with height, else a needle whose long edge it is as well."""
-    holders = {(int(ear[k]), int(ear[k - 2])): (row, k) for row, ear in enumerate(ears) for k in range(3)}
-    mutual: tuple[int, int] | None = None
-    for needle in np.flatnonzero(needles).tolist():
-        k = int(longest[needle])
-        other = holders.get((int(ears[needle][k - 2]), int(ears[needle][k])))
-        if other is None:
-            continue
-        if not needles[other[0]]:
-            return needle, other[0]
-        if longest[other[0]] == other[1]:
-            mutual = needle, other[0]
-    return mutual
-
-
-def _signed_areas(triangles: Floats) -> Floats:
-    a, b, c = triangles[:, 0], triangles[:, 1], triangles[:, 2]
-    areas: Floats = ((b - a)[:, 0] * (c - a)[:, 1] - (b - a)[:, 1] * (c - a)[:, 0]) / 2
-    return areas

@@ -65,7 +65,7 @@ def face_flaws(surface: Surface, pairs: EdgePairs, areas: Floats, piece: str) ->
             "Delete the second copies, or the wall between two solids, and export again.",
             stops=not balanced,
         )
-    thin = _without_area(surface, areas)
+    thin = without_area(surface, areas)
     if len(thin):
         middles = surface.vertices[surface.faces[thin]].mean(axis=1)
         yield Finding(
@@ -167,13 +167,21 @@ def _third(half: Ints32) -> Ints32:
     return np.asarray(half - slot + (slot + np.int32(2)) % np.int32(3))
 
 
-def _without_area(surface: Surface, areas: Floats) -> Ints:
-    """Faces thinner than the resolution of an STL."""
+def without_area(surface: Surface, areas: Floats) -> Ints:
+    """Return the faces thinner than the resolution of an STL.
+
+    Parameters
+    ----------
+    surface : Surface
+    areas : (m,) array, m2
+        Of its faces.
+    """
     if not len(areas):
         return np.empty(0, dtype=np.intp)
-    step = STL_STEP * float(np.abs(surface.vertices).max())
-    # A face is no longer than the whole; only those thin at that length are measured.
     reach = float(np.linalg.norm(np.ptp(extent(surface.vertices), axis=0)))
+    # A body that stands far off its origin is not thin for it: other formats than STL keep its digits.
+    step = STL_STEP * min(float(np.abs(surface.vertices).max()), 10 * reach)
+    # A face is no longer than the whole; only those thin at that length are measured.
     thin = np.flatnonzero(2 * areas <= step * reach)
     corners = surface.vertices[surface.faces[thin]]
     longest = np.linalg.norm(corners - np.roll(corners, 1, axis=1), axis=2).max(axis=1)

@@ -12,6 +12,7 @@ from meshlure.findings import Finding, Level
 from meshlure.geometry.crossing import self_crossings
 from meshlure.geometry.flaws import edge_flaws, face_flaws
 from meshlure.geometry.nesting import nest
+from meshlure.geometry.overcount import overcount
 from meshlure.geometry.phrasing import counted, places, places_text
 from meshlure.geometry.shellflaws import shell_flaws
 from meshlure.geometry.shells import Shell, extent, measures, split
@@ -147,11 +148,13 @@ def _self_crossing(surface: Surface, shells: tuple[Shell, ...], depth: float, pi
     pairs = pairs[owner[pairs[:, 0]] == owner[pairs[:, 1]]]
     if len(pairs):
         middles = surface.vertices[surface.faces[pairs[:, 0]]].mean(axis=1)
+        count = overcount(surface)
         yield Finding(
             "self-crossing",
             Level.WARNING,
             f"the skin crosses itself: {counted(len(pairs), 'pair')} of faces reach through each other, "
-            f"at {places_text(middles)}; space enclosed twice counts twice",
+            f"at {places_text(middles)}; space enclosed twice counts twice, about {count.twice * 1e9:.2g} mm3 too much "
+            f"({count.twice / count.enclosed if count.enclosed else 0.0:.2%})",
             piece,
             len(pairs),
             places(middles),
