@@ -81,10 +81,9 @@ def mould(bait: Bait, kind: Kind = Kind.HALVES, tab: bool = False, progress: Pro
         Where a mass or a volume is left undefined, or something stated does not fit the body.
     """
     section = bait.plan.mould or MouldSection()
-    progress("weighing the bait")
-    found = study(bait)
     start = time.perf_counter()
     where = f"{bait.plan.path.name}: mould" if bait.plan.path is not None else "mould"
+    # First, for what a mould cannot be made of is told before the bait is weighed.
     made = design(bait, section, kind, tab, where, progress)
     rubber = material(RUBBER, "mould")
     assert bait.body.substance is not None
@@ -99,9 +98,12 @@ def mould(bait: Bait, kind: Kind = Kind.HALVES, tab: bool = False, progress: Pro
     )
     progress("drawing the maps")
     maps = tuple(draft_map(made.plug.surface, one.name, section.draft_least) for one in made.study.halves)
+    spent = time.perf_counter() - start
+    progress("weighing the bait")
+    found = study(bait)
     whole = Moulded(bait, found, made, maps, quantities, rubber)
     results = _results(whole, None, {})
-    results["timings_s"] = results["timings_s"] | {"mould": time.perf_counter() - start}
+    results["timings_s"] = results["timings_s"] | {"mould": spent}
     shown = reliefs([(piece.name, piece.solid.surface()) for piece in made.pieces if piece.name != FRAME])
     return replace(whole, study=replace(found, results=results, maps=half_maps(maps), reliefs=shown))
 

@@ -101,7 +101,9 @@ class Mould:
 NO_PINS: Final = Pins((), (), ())
 
 
-def design(bait: Bait, section: MouldSection, kind: Kind, tab: bool, where: str, progress: Progress) -> Mould:
+def design(
+    bait: Bait, section: MouldSection, kind: Kind, tab: bool, where: str, progress: Progress, lean: bool = True
+) -> Mould:
     """Return a bait's mould.
 
     Parameters
@@ -115,6 +117,8 @@ def design(bait: Bait, section: MouldSection, kind: Kind, tab: bool, where: str,
         The mould section's name in messages.
     progress : callable
         Is told what is done next.
+    lean : bool
+        Whether to look for a pull near the one asked for that would trap less.
 
     Raises
     ------
@@ -135,7 +139,7 @@ def design(bait: Bait, section: MouldSection, kind: Kind, tab: bool, where: str,
     if kind is Kind.ONE_PIECE:
         study = pull_study(made.lowered(LEVEL), section.draft_least, HALVES[:1], lean=False)
     else:
-        study = pull_study(made, section.draft_least)
+        study = pull_study(made, section.draft_least, lean=lean)
     findings += study.findings
     blank = Mould(kind, section, made, study, None, None, (), NO_PINS, None, (), ())
     if kind is Kind.MASTER:

@@ -16,7 +16,7 @@ VERTICAL: Final = np.radians(0.05)
 RANGES: Final = ("opens", "within", "vertical", "undercut")
 """More draft than the least asked for; some, but no more than that; none; hidden from the pull."""
 
-SAMPLES: Final = 60_000
+SAMPLES: Final = 30_000
 """Points at most that are asked whether something hides them, besides one on every face."""
 
 _MOST_ROWS: Final = 60

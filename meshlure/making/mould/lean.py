@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 from typing import Final
 
@@ -13,16 +14,22 @@ from meshlure.making.mould.shadow import ALIKE, Shadow
 CONE: Final = np.radians(15.0)
 """rad. Half-angle of the cone of pulls about the one asked for that are tried."""
 
-_RINGS: Final = 5
+_RINGS: Final = 4
 _TURNS: Final = 6
-_WAYS: Final = 9
+_WAYS: Final = 8
+_PATIENCE: Final = 2
+_ROUNDS: Final = 14
+_STARTS: Final = 2
 _PHASE: Final = 2.399963
 """rad. The golden angle."""
 _FINEST: Final = np.radians(0.1)
+_ASKEW: Final = np.array([[0.921061, -0.389418, 0.0], [0.389418, 0.921061, 0.0], [0.0, 0.0, 1.0]])
+"""Turns the grid by 0.4 rad about the pull."""
+
 _NOTHING: Final = 1e-6
 """Share of the volume below which nothing is left to be gained."""
 
-_COLUMNS: Final = 140
+_COLUMNS: Final = 100
 """Columns along the solid's greatest extent in the search."""
 
 
@@ -60,13 +67,15 @@ def best_pull(solid: Surface, volume: float, cone: float = CONE) -> Pull:
 
     Notes
     -----
-    Pulls on rings about z, then a walk from the best of them in steps that are halved where none leads on. z itself is
-    kept where nothing beats it by more than `shadow.ALIKE` of the volume.
+    Pulls on rings about z, then walks downhill from the best of them, in steps that are halved where none leads on. z
+    itself is kept where nothing beats it by more than `shadow.ALIKE` of the volume. The columns' grid stands askew to
+    the bench, so that a wall of the bait meets columns at all distances and an overhang narrower than their pitch
+    counts for as much as it holds.
     """
     reach = float(np.ptp(solid.bounds, axis=0).max())
 
     def ask(direction: Floats) -> Pull:
-        turned = solid.moved(rotation=_frame(direction))
+        turned = solid.moved(rotation=_ASKEW @ _frame(direction))
         shadow = Shadow.of(turned, reach / _COLUMNS)
         height = shadow.best_height(float(turned.bounds[:, 2].mean()), volume)
         return Pull(direction, height, shadow.trapped(height), shadow.pitch)
@@ -75,26 +84,42 @@ def best_pull(solid: Surface, volume: float, cone: float = CONE) -> Pull:
     asked = ask(up)
     if asked.trapped <= ALIKE * volume:
         return asked
+    places = [(ring, step) for ring in range(1, _RINGS + 1) for step in range(_TURNS * ring)]
+    leant = [_leant(up, cone * ring / _RINGS, 2 * np.pi * step / (_TURNS * ring)) for ring, step in places]
+    tried = [asked, *map(ask, leant)]
     best = asked
-    for ring in range(1, _RINGS + 1):
-        for step in range(_TURNS * ring):
-            best = _lesser(best, ask(_leant(up, cone * ring / _RINGS, 2 * np.pi * step / (_TURNS * ring))))
-    tilt, phase = cone / _RINGS / 2, 0.0
-    while tilt >= _FINEST and best.trapped > _NOTHING * volume:
-        found = best
-        # Another phase every time: what traps has creases, and a walk along one of them needs its direction.
-        phase += _PHASE
-        for step in range(_WAYS):
-            leant = _leant(best.direction, tilt, phase + 2 * np.pi * step / _WAYS)
-            if leant[2] >= np.cos(cone) - 1e-9:
-                found = _lesser(found, ask(leant))
-        tilt *= 0.5 if found is best else 1.2
-        best = found
+    for start in _lowest(tried, cone):
+        best = min(best, _walked(start, ask, cone, volume), key=lambda each: each.trapped)
+        if best.trapped <= _NOTHING * volume:
+            break
     return asked if asked.trapped - best.trapped <= ALIKE * volume else best
 
 
-def _lesser(one: Pull, other: Pull) -> Pull:
-    return other if other.trapped < one.trapped else one
+def _lowest(tried: list[Pull], cone: float) -> list[Pull]:
+    """Pulls that trap least, no two of them close to each other."""
+    found: list[Pull] = []
+    for pull in sorted(tried, key=lambda each: each.trapped):
+        if all(pull.direction @ other.direction < np.cos(0.4 * cone) for other in found):
+            found.append(pull)
+    return found[:_STARTS]
+
+
+def _walked(start: Pull, ask: Callable[[Floats], Pull], cone: float, volume: float) -> Pull:
+    """Pull that a walk downhill ends at, in steps that are halved where none leads on."""
+    best, tilt, phase, failed = start, cone / _RINGS / 2, 0.0, 0
+    for _ in range(_ROUNDS):
+        if tilt < _FINEST or best.trapped <= _NOTHING * volume:
+            break
+        # Another phase every time: what traps has creases, and a walk along one of them needs its direction.
+        phase += _PHASE
+        leant = (_leant(best.direction, tilt, phase + 2 * np.pi * step / _WAYS) for step in range(_WAYS))
+        found = min((ask(way) for way in leant if way[2] >= np.cos(cone) - 1e-9), key=lambda each: each.trapped)
+        failed = 0 if found.trapped < best.trapped else failed + 1
+        if failed == 0:
+            best = found
+        elif failed == _PATIENCE:
+            tilt, failed = tilt / 2, 0
+    return best
 
 
 def _frame(direction: Floats) -> Floats:
