@@ -18,7 +18,7 @@ from meshlure.errors import Fault, InputError
 from meshlure.examine import study
 from meshlure.geometry.blocks import BlockIndex
 from meshlure.geometry.moments import solid_moments
-from meshlure.making.hollow import Hollow, drained, filled, hollow, read_wish
+from meshlure.making.hollow import Hollow, closed, hollow, read_wish, shelled
 from meshlure.making.variantfile import Variant, write_variant
 from meshlure.physics.repose import Vessel
 from meshlure.results import hollow as tree
@@ -117,31 +117,44 @@ def hollowed(bait: Bait, words: str, tell: Tell = lambda _: None) -> Hollowed:
     tell("hollowing")
     made = hollow(bait, wish)
     tell("weighing")
-    dry, wet = (_weighed(filled(bait, made, wet=wet)) for wet in (False, True))
+    written = _weighed(shelled(bait, made))
     if made.drains:
-        wet = _weighed(drained(bait, made))
-    written = wet if made.drains else dry
+        sealed, flooded = _weighed(closed(bait, made)).reserve, written.reserve
+    else:
+        before = sum(solid_moments(cavity).amount for cavity in bait.body.cavities)
+        sealed, flooded = written.reserve, written.reserve - (written.cavities - before) * bait.water.density
     account = tree.hollow(
         made,
         shell_mass=made.body.volume * (0.0 if bait.body.substance is None else bait.body.substance.density),
-        mass=written[0],
-        sealed=dry[1],
-        flooded=wet[1],
+        mass=written.mass,
+        sealed=sealed,
+        flooded=flooded,
         inside=_inside(bait, made),
         coated=bait.coat is not None,
     )
-    return Hollowed(bait, made, written[1], account)
+    return Hollowed(bait, made, written.reserve, account)
 
 
-def _weighed(bait: Bait) -> tuple[float, float]:
-    """Mass and reserve of a bait, kg, with its balls where they lie."""
+@dataclass(frozen=True)
+class _Weighed:
+    """Mass and reserve of a bait, kg, and what stays hollow in its body, m3."""
+
+    mass: float
+    reserve: float
+    cavities: float
+
+
+def _weighed(bait: Bait) -> _Weighed:
+    """Weigh a bait, its balls where they lie."""
     composition = compose(bait)
     refuse(composition.findings, {})
     index = BlockIndex.build(composition.skin.surface, composition.skin.thickness)
     vessel = Vessel(composition, index, bait.hardware, bait.frame, bait.water.density)
     ends = vessel.settings()[0]
     mass = composition.mass(ends).amount
-    return mass, vessel.hull(ends).volume * bait.water.density - mass
+    voids = {piece.name for piece in bait.pieces if piece.role is Role.VOID}
+    hollow = sum(part.volume for part in composition.parts if part.role is Role.VOID and part.name not in voids)
+    return _Weighed(mass, vessel.hull(ends).volume * bait.water.density - mass, hollow)
 
 
 def _inside(bait: Bait, made: Hollow) -> list[str]:

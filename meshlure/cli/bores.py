@@ -4,17 +4,19 @@ from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
 from pathlib import Path
-from typing import Any
+from typing import Any, Final
+
+from meshlure.cli.tables import Column, Table
 
 Tree = Mapping[str, Any]
 
 
-def chamber_lines(results: Tree, out: Path) -> tuple[str, ...]:
+def chamber_lines(results: Tree, out: Path | None) -> tuple[str | Table, ...]:
     """Return the ways, what stood in the way and what was written, a line a thing."""
     account = results["chamber"]
-    lines = [str(results["name"])]
+    lines: list[str | Table] = [str(results["name"])]
     if account["options"]:
-        lines += [f"  {line}" for line in _table(account["options"], account["taken"])]
+        lines.append(_table(account["options"], account["taken"]))
         lines += [f"  {line}" for line in _taken(account["options"][account["taken"] - 1])]
     if account["replaced"]:
         lines.append(f"  replaced {', '.join(account['replaced'])}")
@@ -25,7 +27,7 @@ def chamber_lines(results: Tree, out: Path) -> tuple[str, ...]:
     return tuple(lines)
 
 
-def hollow_lines(results: Tree, out: Path) -> tuple[str, ...]:
+def hollow_lines(results: Tree, out: Path | None) -> tuple[str | Table, ...]:
     """Return what the shell holds and weighs, a line a thing."""
     account = results["hollow"]
     return (
@@ -59,13 +61,26 @@ def _taken(row: Tree) -> list[str]:
     return lines
 
 
-def _table(rows: Sequence[Tree], taken: int) -> list[str]:
-    """One line a way, columns aligned."""
-    head = ("", "balls", "bore mm", "from nose mm", "travel mm", "shift mm", "turns", "wall mm", "ends mm", "reserve g")
-    head = (*head, "kind", "score")
-    cells = [head, *(_cells(number, row, number == taken) for number, row in enumerate(rows, 1))]
-    widths = [max(len(line[column]) for line in cells) for column in range(len(head))]
-    return ["  ".join(cell.ljust(width) for cell, width in zip(line, widths, strict=True)).rstrip() for line in cells]
+_COLUMNS: Final = (
+    Column(""),
+    Column("balls", words=True),
+    Column("bore mm"),
+    Column("from nose mm"),
+    Column("travel mm", number=True),
+    Column("shift mm", number=True),
+    Column("turns deg", number=True),
+    Column("wall mm", number=True),
+    Column("ends mm", number=True),
+    Column("reserve g", number=True),
+    Column("kind"),
+    Column("score", number=True),
+)
+
+
+def _table(rows: Sequence[Tree], taken: int) -> Table:
+    """One row a way."""
+    cells = [_cells(number, row, number == taken) for number, row in enumerate(rows, 1)]
+    return Table(_COLUMNS, cells, frozenset({taken - 1}))
 
 
 def _cells(number: int, row: Tree, taken: bool) -> tuple[str, ...]:
@@ -76,7 +91,7 @@ def _cells(number: int, row: Tree, taken: bool) -> tuple[str, ...]:
         " to ".join(f"{value:.1f}" for value in row["from_nose_mm"]),
         f"{row['travel_mm']:.1f}",
         f"{row['shift_mm']:.2f}",
-        f"{row['posture_change_deg']:.1f} deg",
+        f"{row['posture_change_deg']:.1f}",
         f"{row['wall_mm']:.2f}",
         f"{row['end_wall_mm']:.2f}",
         f"{row['reserve_g']:+.2f}",

@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING, Annotated, Any, Final, Protocol
 
 import typer
 
+from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer, hand_on, tell
 from meshlure.errors import Fault, InputError
 
@@ -26,11 +27,10 @@ The bait file's [chamber] says which balls may run in it, how thick its walls mu
 
 Every way is shown with what it shifts, how the bait rests and flies with the balls at either end, and what it does when
 the chamber fills with water. A void marked free = true and the balls in it are replaced. With --hollow the body itself
-becomes a shell, closed or drained:
+becomes a shell, closed, or drained as by "wall 2 mm, drain 3 mm at 0,-8,30":
 
 \b
-  meshlure chamber samples/minnow/minnow.toml --hollow "wall 1.6 mm" --out out/hollow
-  meshlure chamber samples/minnow/minnow.toml --hollow "wall 1.6 mm, drain 3 mm at 30,0,-9" --out out/hollow
+  meshlure chamber samples/stick/stick.toml --hollow "wall 2 mm" --out out/hollow
 
 Exit code: 0 done, 1 no bore fits (what nearly does is told), 2 the input cannot be used.
 """
@@ -73,35 +73,38 @@ def chamber(
         from meshlure.files.folder import check_folder
 
         check_folder(out)
-    from meshlure.bait.loading import read_bait
+    written: Study | None = None
+    with phases() as said:
+        said("reading the meshes")
+        from meshlure.bait.loading import read_bait
 
-    found = _found(read_bait(bait), take, hollow)
-    key = "chamber" if hollow is None else "hollow"
-    if out is None:
-        import json as text
+        found = _found(read_bait(bait), take, hollow, said)
+        if out is not None:
+            from meshlure.cli.writing import write_made
 
-        hand_on(text.dumps({key: found.account}, indent=1, allow_nan=False, ensure_ascii=False) + "\n")
+            written = write_made(out, page=not no_page, make=lambda folder: found.make(folder, out, said))
+    if written is None:
+        from json import dumps
+
+        account = {"chamber" if hollow is None else "hollow": found.account}
+        hand_on(dumps(account, indent=1, allow_nan=False, ensure_ascii=False) + "\n")
+    elif json:
+        hand_on(written.to_json())
     else:
-        from meshlure.cli.writing import write_made
+        from meshlure.cli.bores import chamber_lines, hollow_lines
 
-        written = write_made(out, page=not no_page, make=lambda folder: found.make(folder, out))
-        if json:
-            hand_on(written.to_json())
-        else:
-            from meshlure.cli.bores import chamber_lines, hollow_lines
-
-            answer(*(chamber_lines if hollow is None else hollow_lines)(written.results, out))
+        answer(*(chamber_lines if hollow is None else hollow_lines)(written.results, out))
     if not found.reachable:
         if out is None:
             tell("no bore fits")
         raise typer.Exit(1)
 
 
-def _found(bait: Bait, take: int, hollow: str | None) -> _Found:
+def _found(bait: Bait, take: int, hollow: str | None, said: Callable[[str], None]) -> _Found:
     if hollow is not None:
         from meshlure.chambering.hollowing import hollowed
 
-        return hollowed(bait, hollow)
+        return hollowed(bait, hollow, said)
     from meshlure.chambering import finding
 
-    return finding.chamber(bait, take)
+    return finding.chamber(bait, take, said)

@@ -269,8 +269,8 @@ def _one(skin: Surface, number: int) -> Surface:
     return Surface(skin.vertices[skin.faces[number]], np.array([[0, 1, 2]]))
 
 
-def filled(bait: Bait, made: Hollow, *, wet: bool) -> Bait:
-    """Return the bait with the sealed shell for its body, its hollow full of water or of air."""
+def closed(bait: Bait, made: Hollow) -> Bait:
+    """Return the bait with its hollow full of air, whatever drains it has: a void piece for each part of it."""
     names = {piece.name for piece in bait.pieces}
     hollows = []
     for number, part in enumerate(made.inside, 1):
@@ -278,11 +278,11 @@ def filled(bait: Bait, made: Hollow, *, wet: bool) -> Bait:
         name = f"hollow {number}"
         while name in names:
             name += "'"
-        hollows.append(MeshPiece(name, Role.VOID, surface, paired(surface), (surface,), flooded=wet))
+        hollows.append(MeshPiece(name, Role.VOID, surface, paired(surface), (surface,)))
     return replace(bait, pieces=(*bait.pieces, *hollows))
 
 
-def drained(bait: Bait, made: Hollow) -> Bait:
+def shelled(bait: Bait, made: Hollow) -> Bait:
     """Return the bait with the shell for its body as it is made, drains and all.
 
     Raises

@@ -80,7 +80,7 @@ def bores(site: Site, grid: Grid, rules: Rules, least: float, most: int = 1) -> 
     """
     looks = [look for look in grid.looks(rules) if look.length > 0.7 * least]
     found: list[Bore] = []
-    for _ in range(2 * most):
+    for _ in range(most + 1):
         bore = _best(site, rules, looks)
         if bore is None:
             # What the grid promised does not hold.

@@ -103,7 +103,9 @@ class Grid:
     def _looks(self, start: NDArray[np.int64], end: NDArray[np.int64]) -> list[Look]:
         field, length = self.field, end - start
         rows = np.argwhere(length > 0)
-        order = np.argsort(-length[length > 0], kind="stable")
+        middle = field.values[(start + end)[length > 0] // 2, rows[:, 0], rows[:, 1]]
+        # Of equal lengths the one that lies deepest: a voxel of length is worth more than any depth.
+        order = np.lexsort((-middle, -length[length > 0]))
         found = []
         for j, k in rows[order]:
             place = field.origin[1:] + field.pitch * np.array([j, k])

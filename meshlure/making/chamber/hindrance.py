@@ -45,12 +45,31 @@ def hindrances(site: Site, asked: Needs, grid: Grid, tell: Tell = lambda _: None
             f"{asked.end_wall * 1e3:.2g} mm and {asked.clear * 1e3:.2g} mm to the next piece"
         )
     else:
+        words += _fewer(site, asked, grid, choice, keeps)
         words += _pieces(site, asked, grid, choice, keeps)
         words += _walls(site, asked, grid, choice, keeps)
     if not words:
         words.append(f"no straight bore for {choice.name} lies in the body, however thin its walls")
     words += _smaller(site, asked, grid, choice)
     return words
+
+
+def _fewer(site: Site, asked: Needs, grid: Grid, choice: Choice, keeps: Rules) -> list[str]:
+    """How many of these balls the longest bore would hold, where it holds fewer."""
+    if choice.count == 1:
+        return []
+    found = bores(site, grid, keeps, asked.shortest(replace(choice, count=1)))
+    if not found:
+        return []
+    longest = found[0].length
+    fits = max(n for n in range(1, choice.count) if n == 1 or asked.shortest(replace(choice, count=n)) <= longest)
+    fewer = replace(choice, count=fits)
+    verb = "runs" if fits == 1 else "run"
+    size = f"{choice.diameter * 1e3:.4g} mm"
+    return [
+        f"the longest bore for balls of {size} is {longest * 1e3:.1f} mm long: {fewer.name} {verb} "
+        f"{(longest - fewer.row) * 1e3:.1f} mm in it"
+    ]
 
 
 def _walls(site: Site, asked: Needs, grid: Grid, choice: Choice, keeps: Rules) -> list[str]:
