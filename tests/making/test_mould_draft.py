@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from typing import Any
+
 import numpy as np
 import pytest
 import shapes
@@ -143,7 +145,7 @@ def test_hidden_faces_as_rays_find_them() -> None:
     # That library is at home in mm.
     body = shapes.lumpy(7, 3, depth=0.9)
     body = body.moved(shift=-body.bounds.mean(axis=0))
-    mesh = shapes.as_trimesh(body.moved(scale=1e3))
+    mesh: Any = shapes.as_trimesh(body.moved(scale=1e3))
     middles = mesh.triangles_center + 1e-4 * mesh.face_normals
     hits = mesh.ray.intersects_any(middles, np.tile([0.0, 0.0, 1.0], (len(middles), 1)))
     found, under = judged(body)

@@ -62,7 +62,7 @@ def test_the_parting_curve_of_an_ellipsoid(seed: int) -> None:
     # Where the normal is square to the pull d, x^T A d = 0: a plane through the middle (polar of the direction).
     axes = np.array([0.03, 0.007, 0.01])
     tilt = shapes.turn(seed)
-    ellipsoid = shapes.ellipsoid(axes, 5).moved(rotation=tilt)
+    ellipsoid = shapes.ellipsoid(axes.tolist(), 5).moved(rotation=tilt)
     (ring,) = parting(ellipsoid)
     polar = tilt @ np.diag(axes**-2.0) @ tilt.T @ np.array([0.0, 0.0, 1.0])
     off = np.abs(ring @ polar / np.linalg.norm(polar))

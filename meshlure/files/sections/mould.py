@@ -156,10 +156,10 @@ def _pull(keys: Keys) -> str | Point:
 
 def _shrinkages(keys: Keys | None) -> tuple[Three, Three, Three]:
     if keys is None:
-        return ((0.0,) * 3,) * 3  # type: ignore[return-value]
-    found = tuple(_per_axis(keys, key) for key in ("print", "silicone", "resin"))
+        return (0.0, 0.0, 0.0), (0.0, 0.0, 0.0), (0.0, 0.0, 0.0)
+    found = _per_axis(keys, "print"), _per_axis(keys, "silicone"), _per_axis(keys, "resin")
     keys.close()
-    return found  # type: ignore[return-value]
+    return found
 
 
 def _per_axis(keys: Keys, key: str) -> Three:

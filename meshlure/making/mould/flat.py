@@ -57,12 +57,12 @@ def flat_back(body: Surface, covered: float, where: str) -> Flat:
     """
     best: tuple[float, float, float] | None = None
     for way in (1.0, -1.0):
-        faces, height = _square(body, way)
+        faces, heights = _square(body, way)
         if not faces.any():
             continue
-        area = np.linalg.norm(body.double_areas[faces], axis=1) / 2
-        levels, group = _levels(height[faces])
-        sums = np.bincount(group, area)
+        areas = np.linalg.norm(body.double_areas[faces], axis=1) / 2
+        levels, group = _levels(heights[faces])
+        sums = np.bincount(group, areas)
         largest = int(sums.argmax())
         if best is None or sums[largest] > best[2]:
             best = (way, float(levels[largest]), float(sums[largest]))

@@ -148,7 +148,7 @@ def _edges(surface: Surface, found: Draft) -> Floats:
     places = start[each] + share[:, None] * (end - start)[each]
     places = places[places[:, 2] >= 0][:: max(1, len(places) // _EDGES)]
     hair = 1e-5 * float(np.ptp(surface.bounds, axis=0).max())
-    return places[~covered(places, found.corners[found.away], hair)]
+    return np.asarray(places[~covered(places, found.corners[found.away], hair)])
 
 
 def _behind_edges(places: Floats, edges: Floats) -> Floats:
