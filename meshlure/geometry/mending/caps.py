@@ -59,7 +59,8 @@ def capped(surface: Surface, share: float) -> tuple[Step | None, list[Left]]:
     for lid in lids:
         said = _hole_text(lid.outer, lid.area, surface.area)
         if lid.area > most:
-            left.append(_left(lid.outer, f"{said}: larger than the {share:.3g} of the skin that a lid may be"))
+            allowed = f"{100 * share:.3g}% of the skin"
+            left.append(_left(lid.outer, f"{said}: larger than the {allowed} up to which holes are closed"))
             continue
         faces = _faces(lid)
         if faces is None:

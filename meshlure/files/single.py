@@ -1,0 +1,109 @@
+"""A single file written whole or not at all, and never over something that is there."""
+
+from __future__ import annotations
+
+import contextlib
+import errno
+import os
+import secrets
+from pathlib import Path
+from typing import Final
+
+from meshlure.errors import Fault, InputError
+
+_NO_LINKS: Final = frozenset({errno.EPERM, errno.ENOTSUP, errno.ENOSYS, errno.EMLINK, errno.EXDEV})
+"""What file systems answer that know no second name of a file."""
+
+
+def check_absent(path: Path, option: str, mark: bytes = b"") -> None:
+    """Refuse a file that is to be written where something is that is not ours to replace.
+
+    Parameters
+    ----------
+    path : Path
+    option : str
+        That named it, for the message.
+    mark : bytes
+        What the first kilobytes of a file hold that may be replaced; empty where none may.
+
+    Raises
+    ------
+    InputError
+        Something is there, or the folder is not.
+    """
+    try:
+        there = path.is_symlink() or path.exists()
+        folder = path.parent.is_dir()
+        ours = there and bool(mark) and path.is_file() and not path.is_symlink() and mark in _beginning(path)
+    except (OSError, ValueError) as error:
+        # ValueError: a NUL character in the name.
+        reason = error.strerror if isinstance(error, OSError) and error.strerror else str(error)
+        raise InputError(Fault("this file cannot be looked at", f"{option} {path}", reason)) from error
+    if there and not ours:
+        raise InputError(
+            Fault(
+                "there is something of this name already, and it stays",
+                f"{option} {path}",
+                next_step="name another file, or move that one out of the way",
+            )
+        )
+    if not folder:
+        raise InputError(
+            Fault("the folder is not there", f"{option} {path}", str(path.parent), "a folder", "make it first")
+        )
+
+
+def write_file(path: Path, content: bytes, option: str, replace: bool = False) -> None:
+    """Write a file beside its place and move it there, so that nobody ever finds a part of it.
+
+    Parameters
+    ----------
+    path : Path
+    content : bytes
+    option : str
+        That named it, for messages.
+    replace : bool
+        Whether a file that is there is replaced; else it stays, and that is a fault.
+
+    Raises
+    ------
+    InputError
+        The disk is full or refuses, or something is there that stays. Nothing is left behind.
+    """
+    beside = path.with_name(f".{path.name[:80]}.{secrets.token_hex(4)}")
+    try:
+        with beside.open("xb") as file:
+            file.write(content)
+            file.flush()
+            os.fsync(file.fileno())
+        if replace:
+            beside.replace(path)
+        else:
+            _place(beside, path)
+    except FileExistsError:
+        check_absent(path, option)
+        raise
+    except (OSError, ValueError) as error:
+        reason = error.strerror if isinstance(error, OSError) and error.strerror else str(error)
+        step = "nothing was written; name another place, or free some space"
+        raise InputError(Fault("this file cannot be written", f"{option} {path}", reason, next_step=step)) from error
+    finally:
+        with contextlib.suppress(OSError):
+            beside.unlink(missing_ok=True)
+
+
+def _place(beside: Path, path: Path) -> None:
+    """Give a file its name; unlike a renaming, a second link fails where something of that name is there."""
+    try:
+        path.hardlink_to(beside)
+    except OSError as error:
+        if error.errno not in _NO_LINKS:
+            raise
+        if path.exists():
+            raise FileExistsError(errno.EEXIST, os.strerror(errno.EEXIST), str(path)) from None
+        beside.rename(path)
+
+
+def _beginning(path: Path) -> bytes:
+    with path.open("rb") as file:
+        return file.read(4096)
