@@ -5,10 +5,10 @@ from __future__ import annotations
 from types import ModuleType
 from typing import Final
 
-from meshlure.cli import balance, balls, chamber, hardware, materials, mould, pour, report, rods, waters
+from meshlure.cli import balance, balls, chamber, hardware, inspect, materials, mould, pour, report, rods, waters
 
 JOBS: Final[dict[str, tuple[ModuleType, ...]]] = {
-    "Study a bait": (report,),
+    "Study a bait": (report, inspect),
     "Change its design": (balance, chamber),
     "Make it": (mould, pour),
     "Look up stock": (materials, waters, hardware, balls, rods),
