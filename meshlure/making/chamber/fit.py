@@ -8,7 +8,9 @@ from typing import Final
 import numpy as np
 
 from meshlure.geometry.cylinder import Cylinder
+from meshlure.geometry.samples import spread
 from meshlure.geometry.surface import Floats
+from meshlure.making.chamber.barrel import barrel
 from meshlure.making.chamber.bore import Bore, measured, shortened
 from meshlure.making.chamber.grid import Grid, Look
 from meshlure.making.chamber.line import Cloud, Rules, Run, longest
@@ -79,9 +81,10 @@ def bores(site: Site, grid: Grid, rules: Rules, least: float, most: int = 1) -> 
     to the mesh, and shortened where those are less than asked for. A bore in the mid-plane is preferred.
     """
     looks = [look for look in grid.looks(rules) if look.length > 0.7 * least]
+    cloud = Cloud(site.points, site.way.points)
     found: list[Bore] = []
     for _ in range(most + 1):
-        bore = _best(site, rules, looks)
+        bore = _best(site, rules, looks, cloud)
         if bore is None:
             # What the grid promised does not hold.
             looks = looks[_STARTS:]
@@ -92,28 +95,29 @@ def bores(site: Site, grid: Grid, rules: Rules, least: float, most: int = 1) -> 
             found.append(bore)
         if len(found) == most:
             break
-        looks = [look for look in looks if not _covers(site, rules, bore, look.place, look.start, look.end)]
+        keeps = replace(rules, radius=rules.radius + rules.clear / 2)
+        looks = [look for look in looks if not _covers(site, keeps, bore, look.place, look.start, look.end)]
+        cloud = cloud.joined(Cloud(cloud.skin[:0], site.axes.local(spread(barrel(bore.cut), site.spacing))))
     return found
 
 
-def _best(site: Site, rules: Rules, looks: list[Look]) -> Bore | None:
+def _best(site: Site, rules: Rules, looks: list[Look], cloud: Cloud) -> Bore | None:
     if not looks:
         return None
     nearest = min(abs(float(look.place[0])) for look in looks)
     middle = [look for look in looks if abs(float(look.place[0])) <= max(nearest + 1e-6, _BESIDE)]
     central = [replace(look, place=look.place * (0, 1)) for look in middle]
-    found = _found(site, rules, central, free=False)
+    found = _found(site, rules, central, cloud, free=False)
     # The grid's lengths, right to about two of its voxels, tell whether it is worth while to look beside the middle.
     if found is None or found.length < OFF_MIDDLE * looks[0].length:
-        beside = _found(site, rules, looks, free=True)
+        beside = _found(site, rules, looks, cloud, free=True)
         if beside is not None and (found is None or found.length < OFF_MIDDLE * beside.length):
             return beside
     return found
 
 
-def _found(site: Site, rules: Rules, looks: list[Look], *, free: bool) -> Bore | None:
+def _found(site: Site, rules: Rules, looks: list[Look], cloud: Cloud, *, free: bool) -> Bore | None:
     """The best bore near lines of the grid; where it is not free it stays in the mid-plane."""
-    cloud = Cloud(site.points, site.way.points)
     trials: list[_Trial] = []
     for look in looks[:_STARTS]:
         near = cloud.near(look.place, rules.reach)
@@ -220,10 +224,10 @@ def _trimmed(site: Site, rules: Rules, trial: _Trial) -> Bore | tuple[float, flo
 
 
 def _covers(site: Site, rules: Rules, bore: Bore, place: Floats, start: float, end: float) -> bool:
-    """Whether a stretch of a line shares room with a bore."""
+    """Whether a bore of the radius along a stretch of a line shares room with a bore."""
     low, high = sorted(site.axes.local(np.stack([bore.nose_end, bore.tail_end]))[:, 0])
     apart = float(np.hypot(*(place - site.axes.local(bore.cut.middle[None])[0, 1:])))
-    return apart < 2 * rules.radius + rules.clear and start < high + rules.clear and end > low - rules.clear
+    return apart < 2 * rules.radius and start < high and end > low
 
 
 def _meet(site: Site, rules: Rules, one: Bore, other: Bore) -> bool:
