@@ -173,7 +173,8 @@ def _waters(bait: Bait) -> Iterator[Whatif]:
     yield Whatif(f"sea water of {SEA_SALINITY:g} g/kg after fresh", change, Changes.one(fresh), Changes.one(sea))
     cold, warm = (water(degrees, salinity).density for degrees in (_COLD, _WARM))
     change = f"{_COLD:g} to {_WARM:g} °C"
-    yield Whatif(f"water of {salinity:g} g/kg warmed", change, Changes.one(cold), Changes.one(warm))
+    what = "fresh water warmed" if salinity == 0 else f"water of {salinity:g} g/kg warmed"
+    yield Whatif(what, change, Changes.one(cold), Changes.one(warm))
 
 
 def _coat(bait: Bait, skin: Layers, at: float) -> Iterator[Whatif]:

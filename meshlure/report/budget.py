@@ -6,7 +6,7 @@ from collections.abc import Mapping
 from typing import Any
 
 from meshlure.report.table import Table, table
-from meshlure.report.wording import DASH, band, earned, fixed, percent
+from meshlure.report.wording import DASH, MINUS, band, earned, fixed, percent
 
 Tree = Mapping[str, Any]
 
@@ -19,7 +19,7 @@ def rows(results: Tree) -> Table | None:
     lines = [
         (
             row["what"],
-            row["change"],
+            row["change"].replace("-", MINUS),
             fixed(row["reserve_g"], 2, signed=True),
             row["state"],
             _turn(row["nose_up_deg"]),
@@ -89,7 +89,7 @@ def words(results: Tree) -> list[str]:
     ]
     told = ["; ".join(said) + ".", f"Of the copies {_listed(states)}."]
     if drawn["left_share"] > 0:
-        told.append(f"{_share(drawn['left_share'])} leave the posture for another, or have none.")
+        told.append(f"{_share(drawn['left_share']).capitalize()} leave the posture for another, or have none.")
     if passing(results):
         told.append(passing(results))
     return told
@@ -99,7 +99,9 @@ def passing(results: Tree) -> str:
     """Return what share of copies would pass the limits; empty where none are set or one has no value."""
     found = results.get("budget")
     share = None if found is None else found["monte_carlo"]["pass_share"]
-    return "" if share is None else f"{_share(share)} of copies would pass the limits."
+    if share is None:
+        return ""
+    return f"{'none' if share == 0 else _share(share)} of the copies would pass the limits.".capitalize()
 
 
 def posture_band(results: Tree) -> str:
@@ -124,6 +126,8 @@ def _turn(angle: float | None) -> str:
 
 
 def _share(share: float) -> str:
+    if share == 1:
+        return "all"
     if 0 < share < 0.01:
         return "less than 1 %"
     if 0.99 < share < 1:

@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from typing import Any
 
+from meshlure.report.subject import touchy
 from meshlure.report.table import Table, table
 from meshlure.report.wording import (
     DASH,
@@ -113,8 +114,9 @@ def _posture(postures: Any) -> str:
     posture = (afloat or list(postures))[0]
     if posture["up"] is None:
         return "no attitude of its own"
-    nose = nose_words(posture["nose_up_deg"], rounded=bool(posture.get("rounded")))
-    return f"{nose}, {lean_words(posture['lean_deg'], free=posture['free'] is not None)}"
+    nose = nose_words(posture["nose_up_deg"], rounded=touchy(posture, "nose_up_deg"))
+    lean = lean_words(posture["lean_deg"], rounded=touchy(posture, "lean_deg"), free=posture["free"] is not None)
+    return f"{nose}, {lean}"
 
 
 def _places(row: Tree) -> int:

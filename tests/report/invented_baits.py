@@ -7,6 +7,7 @@ import math
 from typing import Any
 
 import numpy as np
+from invented_budget import budget
 from invented_flights import fluttering, rising, swaying_flight, tumbling_flight
 
 from meshlure.results import DrawnPiece, Study, View
@@ -260,6 +261,7 @@ def minnow_results() -> dict[str, Any]:
             "verdict": "Floats: reserve +1.22 g, between +0.91 and +1.54 g.",
             "bulk_density_g_cm3": 0.914,
         },
+        "budget": budget(),
         "smooth": {"mass_g": 13.24, "displaced_mm3": 14480.0, "reserve_g": 1.22},
         "waters": [
             {
@@ -429,6 +431,12 @@ def minnow_results() -> dict[str, Any]:
             {"trigger": "hooks fitted", "text": "Fit hooks last and cover the points."},
         ],
         "measured": None,
+        "pour": None,
+        "changes": [],
+        "balance": None,
+        "chamber": None,
+        "hollow": None,
+        "mould": None,
         "limits": [
             {"what": "reserve, g", "low": 0.8, "high": 1.6, "value": 1.2233, "met": True},
             {"what": "nose up, degrees", "low": -3.0, "high": 0.0, "value": -3.9, "met": False},
@@ -438,11 +446,14 @@ def minnow_results() -> dict[str, Any]:
             "soundness": 0.05,
             "weight": 0.11,
             "posture": 0.21,
+            "budget": 0.2,
+            "measured": 0.0,
             "areas": 0.06,
             "drag": 0.02,
             "flight": 0.3,
             "sinking": 0.1,
             "page": 0.0,
+            "mould": 0.0,
         },
     }
 

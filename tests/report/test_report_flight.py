@@ -158,7 +158,7 @@ def test_reach_counts_this_baits_as_one() -> None:
         "18° towards the nose",
         "an order of size",
         "swimming action",
-        "What the band is made of",
+        "What the bands are made of",
     ],
 )
 def test_a_maker_reads(words: str, minnow_words: str) -> None:

@@ -24,6 +24,7 @@ SECTIONS = [
     "weight",
     "buoyancy",
     "postures",
+    "budget",
     "areas",
     "drag",
     "flight",
