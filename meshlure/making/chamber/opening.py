@@ -10,7 +10,7 @@ import numpy as np
 from meshlure.geometry.cylinder import Cylinder
 from meshlure.geometry.shells import winding_number
 from meshlure.geometry.solids import Solid
-from meshlure.geometry.standoff import cylinder_standoff
+from meshlure.geometry.standoff import TOLERANCE, cylinder_standoff
 from meshlure.geometry.surface import Floats
 from meshlure.making.chamber.ahead import ahead
 from meshlure.making.chamber.barrel import barrel
@@ -78,6 +78,8 @@ def from_belly(site: Site, bore: Bore, wall: float, clear: float) -> Opening | N
             if not _hidden(site, below):
                 continue
             plug = wall + ahead(site.boxes, below, 0).distance
+            if plug < wall:
+                continue
             if nearest_other(site, _stretch(drill, 0.0, min(plug + 2 * radius, drill.length))).distance >= clear:
                 found.append(Opening("belly", drill, plug))
         if found:
@@ -138,4 +140,4 @@ def _hidden(site: Site, cylinder: Cylinder) -> bool:
     """Whether a cylinder lies wholly under the body's skin."""
     if winding_number(site.bait.body.surface, cylinder.middle) < 0.5:
         return False
-    return cylinder_standoff(site.boxes, cylinder).distance > 0
+    return cylinder_standoff(site.boxes, cylinder).distance > 2 * TOLERANCE
