@@ -9,8 +9,8 @@ import numpy as np
 from meshlure.bait.composition import Skin
 from meshlure.geometry.surface import Floats
 
-_AT_ONCE = 65536
-"""Faces worked on at a time."""
+_AT_ONCE = 8192
+"""Faces worked on at a time, so that their numbers stay in the processor's cache."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -52,16 +52,15 @@ def layers(skin: Skin, side: Floats, up: Floats | None, height: float | None) ->
     A face is wet whose middle is, and belongs to the flank that it looks to.
     """
     sums = np.zeros((4, 4))
-    surface = skin.surface
-    own = np.flatnonzero(skin.own)
-    for at in range(0, len(own), _AT_ONCE):
-        faces = own[at : at + _AT_ONCE]
-        normals = surface.double_areas[faces]
-        area = np.sqrt(np.einsum("ij,ij->i", normals, normals)) / 2
-        middle = surface.vertices.take(surface.faces[faces], axis=0).sum(axis=1) / 3
-        held = np.column_stack([area, area[:, None] * middle])
-        below = np.ones(len(faces), bool) if up is None or height is None else middle @ up < height
-        flank = np.sign(normals @ side)
-        for row, weight in enumerate((np.ones(len(faces)), below, flank, flank * below)):
-            sums[row] += weight @ held
+    surface, normals = skin.surface, skin.surface.double_areas
+    for at in range(0, len(skin.own), _AT_ONCE):
+        part = slice(at, at + _AT_ONCE)
+        across = normals[part].T
+        area = np.sqrt(across[0] ** 2 + across[1] ** 2 + across[2] ** 2) / 2 * skin.own[part]
+        corners = surface.vertices.take(surface.faces[part], axis=0)
+        middle = (corners[:, 0] + corners[:, 1] + corners[:, 2]).T / 3
+        held = np.concatenate([area[None], area * middle])
+        below = np.ones(len(area)) if up is None or height is None else (up @ middle < height).astype(np.float64)
+        flank = np.sign(side @ across)
+        sums += np.stack([np.ones(len(area)), below, flank, flank * below]) @ held.T
     return Layers(*sums)
