@@ -5,9 +5,23 @@ from __future__ import annotations
 from types import ModuleType
 from typing import Final
 
-from meshlure.cli import balance, balls, chamber, hardware, inspect, materials, mould, pour, report, rods, waters
+from meshlure.cli import (
+    balance,
+    balls,
+    chamber,
+    hardware,
+    inspect,
+    materials,
+    mould,
+    new,
+    pour,
+    report,
+    rods,
+    waters,
+)
 
 JOBS: Final[dict[str, tuple[ModuleType, ...]]] = {
+    "Begin": (new,),
     "Study a bait": (report, inspect),
     "Change its design": (balance, chamber),
     "Make it": (mould, pour),

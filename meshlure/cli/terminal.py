@@ -65,6 +65,11 @@ def is_terminal(stream: TextIO) -> bool:
         return False
 
 
+def can_ask() -> bool:
+    """Tell whether somebody is there to answer questions: at a terminal that shows them, and not asked to be quiet."""
+    return is_terminal(sys.stdin) and is_terminal(sys.stderr) and not hushed()
+
+
 def has_colour(stream: TextIO) -> bool:
     """Tell whether a stream may be coloured: a terminal that can, and nobody who asked for none (no-color.org)."""
     if os.environ.get("NO_COLOR") or os.environ.get("TERM") == "dumb" or not is_terminal(stream):

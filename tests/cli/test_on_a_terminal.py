@@ -2,16 +2,16 @@
 
 from __future__ import annotations
 
-import os
 import re
 import sys
 from collections.abc import Mapping
-from pathlib import Path
 
 import pytest
 from command_bench import QUICK, SCRIPT, Bench
 
-pty = pytest.importorskip("pty", reason="needs POSIX pseudo-terminals")
+pytest.importorskip("pty", reason="needs POSIX pseudo-terminals")
+
+from terminal_bench import left_over, shown
 
 SLOW = """
 import time
@@ -21,45 +21,6 @@ with phases() as said:
     time.sleep(%s)
 print("done")
 """
-
-
-def shown(words: list[str | Path], columns: int = 80, more: Mapping[str, str] | None = None) -> tuple[int, str]:
-    """Exit code and everything that a terminal of a width is sent while a command runs on it."""
-    import fcntl
-    import struct
-    import termios
-
-    pid, terminal = pty.fork()
-    if pid == 0:  # the child: on the terminal's own side
-        plain = {key: value for key, value in os.environ.items() if key not in ("NO_COLOR", "FORCE_COLOR")}
-        os.write(1, b"^")
-        os.read(0, 1)
-        os.execve(words[0], [str(word) for word in words], plain | {"TERM": "xterm"} | dict(more or {}))
-    assert os.read(terminal, 1) == b"^"
-    fcntl.ioctl(terminal, termios.TIOCSWINSZ, struct.pack("HHHH", 24, columns, 0, 0))
-    os.write(terminal, b"\n")
-    sent = b""
-    while True:
-        try:
-            more_sent = os.read(terminal, 4096)
-        except OSError:  # Linux: the other side is closed
-            break
-        if not more_sent:
-            break
-        sent += more_sent
-    code = os.waitstatus_to_exitcode(os.waitpid(pid, 0)[1])
-    return code, sent.decode().replace("\r\n", "\n").removeprefix("\n")
-
-
-def left_over(sent: str) -> list[str]:
-    """Lines as the terminal shows them in the end: what follows a carriage return is written over the line."""
-    lines = []
-    for line in sent.split("\n"):
-        face = ""
-        for part in line.split("\r"):
-            face = part + face[len(part) :]
-        lines.append(face.rstrip())
-    return lines
 
 
 def test_progress_of_long_work_comes_and_goes() -> None:
