@@ -51,6 +51,8 @@ def outside_findings(
         if piece.name not in out:
             continue
         beyond, drawn = out[piece.name], filling.solids[piece.name]
+        if not np.isin(outer.sources(), drawn.sources()).any():
+            continue  # in a pocket that other pieces close
         if drawn.volume - beyond.volume <= _FITTED * drawn.volume:
             findings.append(_sits_outside(piece, drawn.volume, beyond))
         else:

@@ -88,7 +88,7 @@ class Balance:
         InputError
             Where a mesh does not come back as promised, or the bait read back does not keep its reserve and posture.
         """
-        tell("cutting")
+        tell("cutting the pocket")
         made = cut(self.ground, self.taken)
         further: list[tuple[str, Surface]] = []
         account = dict(self.account)
@@ -109,8 +109,9 @@ class Balance:
         names = write_variant(folder, "balanced", self.bait, variant)
         tell("reading back")
         again = read_bait(folder / "balanced.toml")
-        found = study(again)
+        found = study(again, tell=tell)
         self._check(found, again, made)
+        tell("writing")
         results = dict(found.results)
         results["inputs"] = [row | {"file": str(out / Path(row["file"]).name)} for row in results["inputs"]]
         results["balance"] = account
@@ -171,7 +172,7 @@ class Balance:
         volume = _material(self.bait)
         if self.taken is None or self.taken.kind.pocket == UNCUT:
             return volume
-        return volume - self.taken.taken().amount - (0.0 if made.plug is None else made.plug.volume)
+        return volume - self.taken.taken().amount - made.drilled
 
     def _off(self, found: Study) -> float:
         """By how many degrees the nearest posture differs from the one promised."""

@@ -57,7 +57,7 @@ def balance(bait: Bait, take: int = 1, tell: Tell = lambda _: None) -> Balance:
             raise InputError(Fault("there is one density only", "--take", str(take), "1", "leave it out"))
         return _by_density(bait, target, tell)
     wanted = asked(bait)
-    tell("what stays")
+    tell("weighing what stays")
     ground = Ground.of(bait)
     goal = aim(ground, target)
     flights = Flights(ground)
@@ -67,7 +67,7 @@ def balance(bait: Bait, take: int = 1, tell: Tell = lambda _: None) -> Balance:
         raise InputError(
             Fault("there is no such way to take", "--take", str(take), f"1 to {max(len(rows), 1)}", "choose one")
         )
-    tell("flight")
+    tell("flying the ways")
     trees = [
         tree.option(
             ground,
@@ -107,7 +107,7 @@ def place(bait: Bait, text: str, tell: Tell = lambda _: None) -> Balance:
     InputError
         Where the words cannot be read, or the ballast does not lie in the body.
     """
-    tell("what stays")
+    tell("weighing what stays")
     ground = Ground.of(bait)
     ballast = stated_ballast(text, ground)
     vessel = ground.with_ballast(ballast)
@@ -117,7 +117,7 @@ def place(bait: Bait, text: str, tell: Tell = lambda _: None) -> Balance:
     landed = vessel.landed(ground.ends(back))
     up = back if landed is None else landed.rest.state.up
     option = Option(ballast, outcome(vessel, Aim(up, 0.0, None, 0.0, 0.0, ()), ground.ends(up)))
-    tell("flight")
+    tell("flying the ways")
     flights = Flights(ground)
     left = Room.of(ground, bait.plan.ballast).left(ballast)
     speed = None if goal is None else _speed(ground, flights, option, goal)
@@ -216,7 +216,7 @@ def _wanted(ground: Ground, goal: Aim, target: TargetSection) -> Tree:
 
 def _by_density(bait: Bait, target: TargetSection, tell: Tell) -> Balance:
     """The body's density for the ballast as it stands."""
-    tell("density")
+    tell("weighing the body")
     if target.sink is not None:
         raise InputError(
             Fault(

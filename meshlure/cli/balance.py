@@ -4,12 +4,16 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from pathlib import Path
-from typing import Annotated, Any, Final
+from typing import TYPE_CHECKING, Annotated, Any, Final
 
 import typer
 
+from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer, hand_on
 from meshlure.errors import Fault, InputError
+
+if TYPE_CHECKING:
+    from meshlure.results.study import Study
 
 SHORT: Final = "Find the ballast that makes a bait rest as wanted, and write the meshes."
 
@@ -25,7 +29,7 @@ Inserts marked free = true are replaced. Without a search, ballast goes exactly 
 \b
   meshlure balance bait.toml --ballast "lead rod 5 mm x 18 mm at 41,0,-6" --out out/balanced
 
-Exit code: 0 the target is met, 1 it cannot be met (the nearest is written), 2 the input cannot be used.
+Exit code: 0 what is written meets the target, 1 it does not (the nearest is written), 2 the input cannot be used.
 """
 
 
@@ -68,22 +72,28 @@ def balance(
     from meshlure.bait.loading import read_bait
     from meshlure.balancing import finding
 
-    read = read_bait(bait)
-    found = finding.balance(read, take) if ballast is None else finding.place(read, ballast)
-    account: Mapping[str, Any] = found.account
-    if out is None:
+    written: Study | None = None
+    with phases() as said:
+        said("reading the meshes")
+        read = read_bait(bait)
+        found = finding.balance(read, take, said) if ballast is None else finding.place(read, ballast, said)
+        if out is not None:
+            from meshlure.cli.writing import write_made
+
+            folder = out
+            written = write_made(
+                folder, page=not no_page, make=lambda staging: found.make(staging, folder, halves, said)
+            )
+    if written is None:
         import json as text
 
+        account: Mapping[str, Any] = found.account
         hand_on(text.dumps({"balance": account}, indent=1, allow_nan=False, ensure_ascii=False) + "\n")
+    elif json:
+        hand_on(written.to_json())
     else:
-        from meshlure.cli.writing import write_made
+        from meshlure.cli.ways import balance_lines
 
-        written = write_made(out, page=not no_page, make=lambda folder: found.make(folder, out, halves))
-        if json:
-            hand_on(written.to_json())
-        else:
-            from meshlure.cli.ways import balance_lines
-
-            answer(*balance_lines(written.results, out))
+        answer(*balance_lines(written.results, folder))
     if not found.met:
         raise typer.Exit(1)

@@ -6,18 +6,42 @@ from collections.abc import Mapping, Sequence
 from pathlib import Path
 from typing import Any
 
+from meshlure.cli.tables import Column, Table
+
 Tree = Mapping[str, Any]
 
+_COLUMNS = (
+    Column(""),
+    Column("ballast", words=True),
+    Column("g", number=True),
+    Column("from nose mm", number=True),
+    Column("middle at mm", number=True),
+    Column("reserve g", number=True),
+    Column("nose up", number=True),
+    Column("lean", number=True),
+    Column("stiff mm", number=True),
+    Column("cover mm", number=True),
+    Column("thinnest at mm", number=True),
+    Column("flight", words=True),
+    Column("reach", number=True),
+    Column("points", number=True),
+)
 
-def balance_lines(results: Tree, out: Path) -> tuple[str, ...]:
+_NOT_TOLD = ("hooks", "sanding")
+"""Cautions that every bait calls for: they stand on the page."""
+
+
+def balance_lines(results: Tree, out: Path) -> tuple[str | Table, ...]:
     """Return target, ways, what stood in the way and what was written, a line a thing."""
     account = results["balance"]
-    lines = [str(results["name"])]
-    wanted = account["target"]
+    lines: list[str | Table] = [str(results["name"])]
+    wanted, rows = account["target"], account["options"]
     if wanted is not None:
         lines.append(f"  target   {wanted['behaviour']}, {_wanted(wanted)}")
-    if account["options"]:
-        lines += [f"  {line}" for line in _table(account["options"], account["taken"])]
+    if rows:
+        lines.append(_table(rows, account["taken"]))
+    if len(rows) > 1:
+        lines.append(f"  order    {_order(account['weights'])}")
     dense = account["body_density"]
     if dense is not None:
         lines.append(f"  body     {dense['needed_g_cm3']:.3f} g/cm3 instead of {dense['now_g_cm3']:.3f}")
@@ -29,54 +53,57 @@ def balance_lines(results: Tree, out: Path) -> tuple[str, ...]:
     lines += [f"           {words}" for words in account["in_the_way"]]
     lines.append(f"  verdict  {results['buoyancy']['verdict']}")
     lines += [f"  posture  {posture['words']}" for posture in results["postures"][:1]]
+    lines += [f"  caution  {row['text']}" for row in results["cautions"] if row["trigger"] not in _NOT_TOLD]
     lines.append(f"  written  {', '.join(['results.json', *results['files']])} in {out}")
     return tuple(lines)
 
 
 def _wanted(wanted: Tree) -> str:
     how = (
-        f"reserve {wanted['reserve_g']:+.2f} g"
+        f"reserve {wanted['reserve_g']:+z.2f} g"
         if wanted["sink_m_s"] is None
         else f"{wanted['sink_m_s'] * 100:.1f} cm/s"
     )
-    return f"{how}, nose up {wanted['nose_up_deg']:+.1f} deg, lean {wanted['lean_deg']:+.1f} deg"
+    return f"{how}, nose up {wanted['nose_up_deg']:+z.1f} deg, lean {wanted['lean_deg']:+z.1f} deg"
 
 
-def _table(rows: Sequence[Tree], taken: int | None) -> list[str]:
-    """One line a way, columns aligned."""
-    head = (
-        "",
-        "ballast",
-        "g",
-        "mm from nose",
-        "at mm",
-        "reserve g",
-        "nose up",
-        "lean",
-        "stiff mm",
-        "cover mm",
-        "flight",
-        "reach",
+def _order(weights: Tree) -> str:
+    return (
+        "what meets the target first, then by points, fewer are better (our choice): "
+        f"{weights['per_degree_off']:g} a degree off, {weights['per_gram_off']:g} a gram off, "
+        f"{weights['per_mm_less_stiff']:g} a mm less stiff than the stiffest, "
+        f"{weights['per_further_piece']:g} for each further piece, "
+        f"{weights['not_upright']:g} where it does not come to rest so from back up"
     )
-    cells = [head, *(_cells(number, row, number == taken) for number, row in enumerate(rows, 1))]
-    widths = [max(len(line[column]) for line in cells) for column in range(len(head))]
-    return ["  ".join(cell.ljust(width) for cell, width in zip(line, widths, strict=True)).rstrip() for line in cells]
+
+
+def _table(rows: Sequence[Tree], taken: int | None) -> Table:
+    """One row a way; the one that is written carries an arrow."""
+    cells = [_cells(number, row, number == taken) for number, row in enumerate(rows, 1)]
+    return Table(_COLUMNS, cells, frozenset() if taken is None else frozenset({taken - 1}))
 
 
 def _cells(number: int, row: Tree, taken: bool) -> tuple[str, ...]:
-    rod = row["shape"] == "rod"
+    rod, flight = row["shape"] == "rod", row["flight"]
     size = f"{row['size_mm']:.4g} x {row['length_mm']:.2f}" if rod else f"{row['count']} x {row['size_mm']:.4g}"
+    trim = "" if flight["trim_deg"] is None else f", trim {flight['trim_deg']:.0f} deg"
     return (
         f"{number}{'>' if taken else ''}",
         f"{row['material']} {row['shape']} {size} mm",
         f"{row['mass_g']:.2f}",
-        f"{row['from_nose_mm']:.1f}",
-        ", ".join(f"{value + 0.0:.2f}".replace("-0.00", "0.00") for value in row["at_mm"]),
-        f"{row['reserve_g']:+.2f}",
-        "none" if row["nose_up_deg"] is None else f"{row['nose_up_deg']:+.1f}",
-        "none" if row["lean_deg"] is None else f"{row['lean_deg']:+.1f}",
-        f"{row['metacentric_mm']['least']:.2f}",
+        f"{row['from_nose_mm']:z.1f}",
+        ", ".join(f"{value:z.2f}" for value in row["at_mm"]),
+        f"{row['reserve_g']:+z.2f}",
+        _angle(row["nose_up_deg"]),
+        _angle(row["lean_deg"]) + ("" if row["upright"] else ", not from back up"),
+        f"{row['metacentric_mm']['least']:z.2f}",
         f"{row['cover_mm']:.2f}",
-        f"{row['flight']['leads']} first, {row['flight']['verdict']}",
+        ", ".join(f"{value:z.1f}" for value in row["cover_at_mm"]),
+        f"{flight['leads']} first, {flight['verdict']}{trim}",
         f"{row['distance_ratio']:.2f}",
+        "" if row["score"] is None else f"{row['score']:z.2f}",
     )
+
+
+def _angle(value: float | None) -> str:
+    return "none" if value is None else f"{value:+z.1f}"

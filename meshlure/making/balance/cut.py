@@ -12,6 +12,7 @@ from meshlure.geometry.solids import Solid
 from meshlure.geometry.surface import Surface
 from meshlure.making.balance.ballast import UNCUT, Ballast
 from meshlure.making.balance.ground import Ground
+from meshlure.making.chamber.opening import TIGHT
 
 
 @dataclass(frozen=True, eq=False)
@@ -24,12 +25,15 @@ class Cut:
         Cavities and the room cut out.
     ballast : tuple of Surface
     plug : Solid or None
-        Closes a hole drilled from the belly, flush with the skin.
+        Closes a hole drilled from the belly, flush with the skin, and a hair larger than the hole.
+    drilled : float, m3
+        What the hole below the room takes from the body.
     """
 
     body: Solid
     ballast: tuple[Surface, ...]
-    plug: Solid | None
+    plug: Solid | None = None
+    drilled: float = 0.0
 
 
 def cut(ground: Ground, ballast: Ballast | None) -> Cut:
@@ -43,16 +47,16 @@ def cut(ground: Ground, ballast: Ballast | None) -> Cut:
     body = ground.bait.body
     whole = solid_of(body.surface, body.name)
     taken = [Solid.of(cavity) for cavity in body.cavities]
-    plug = None
-    if ballast is not None and ballast.kind.pocket != UNCUT:
-        hole = ballast.drill(ground.lowest)
-        if hole is None:
-            taken += [Solid.of(surface) for surface in ballast.rooms()]
-        else:
-            plug = _plug(whole.met(Solid.of(rod(hole))))
-            taken.append(Solid.of(rod(_bore(ballast, hole))))
-    left = whole.less(*taken) if taken else whole
-    return Cut(left, () if ballast is None else ballast.surfaces(), plug)
+    if ballast is None:
+        return Cut(whole.less(*taken) if taken else whole, ())
+    hole = ballast.drill(ground.lowest)
+    if hole is None:
+        taken += [Solid.of(surface) for surface in ballast.rooms() if ballast.kind.pocket != UNCUT]
+        return Cut(whole.less(*taken) if taken else whole, ballast.surfaces())
+    drilled = whole.met(Solid.of(rod(hole))).volume
+    # As for a chamber the plug is a hair larger than its hole: else the two would leave a slit between them.
+    plug = _plug(whole.met(Solid.of(rod(hole.grown(TIGHT, 0.0)))))
+    return Cut(whole.less(*taken, Solid.of(rod(_bore(ballast, hole)))), ballast.surfaces(), plug, drilled)
 
 
 def _bore(ballast: Ballast, hole: Cylinder) -> Cylinder:

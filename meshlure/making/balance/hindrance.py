@@ -10,7 +10,7 @@ from typing import Final
 from meshlure.bait.pieces import Substance
 from meshlure.bait.substances import substance
 from meshlure.files.sections.substance import Substance as Stated
-from meshlure.making.balance.ballast import ROD, Ballast, Kind
+from meshlure.making.balance.ballast import FROM_BELLY, ROD, Ballast, Kind
 from meshlure.making.balance.ranking import Ranked
 from meshlure.making.balance.search import REACHED_ANGLE, REACHED_RESERVE, Search
 from meshlure.stock.rods import rod_diameters
@@ -67,13 +67,15 @@ def _short_of_room(search: Search, net: float) -> str:
         held = 0.0 if ballast is None else ballast.volume().amount * density
         if name not in rooms or held > rooms[name]:
             rooms[name] = held
-            needed[name] = search.drawn(kind, net).volume().amount * density
+            needed[name] = search.placing.drawn(kind, net).volume().amount * density
     cover = f"{search.room.cover * 1e3:.3g} mm of cover"
+    if search.asked.stated.pocket == FROM_BELLY:
+        cover += " round a hole from the belly"
     if search.room.between is not None:
         low, high = search.room.between
         cover += f" between {low * 1e3:g} and {high * 1e3:g} mm from the nose"
     text = ", ".join(
-        f"{f'{held * 1e3:.1f} g' if held > 0 else 'no piece'} of {name}, {needed[name] * 1e3:.1f} g needed"
+        f"{f'{held * 1e3:.1f} g' if held > 0 else 'no piece'} of {name} ({needed[name] * 1e3:.1f} g needed)"
         for name, held in rooms.items()
     )
     others = _fitting(search, net)
@@ -107,7 +109,11 @@ def _has_room(search: Search, metal: Substance, pattern: Kind, net: float) -> bo
         replace(pattern, substance=metal, shape=ROD, count=1, diameter=diameter)
         for diameter in rod_diameters(metal.name or "")
     )
-    return any(search.is_piece(kind, net) and search.settled(kind, net) is not None for kind in kinds)
+    placing = search.placing
+    return any(
+        placing.is_piece(kind, net) and (placing.on_line(kind, net) or placing.beside(kind, net)) is not None
+        for kind in kinds
+    )
 
 
 def _elsewhere(search: Search, ballast: Ballast, off: tuple[float, float]) -> str:

@@ -155,7 +155,7 @@ class Room:
         A rod is a stack of discs, a row of balls one of balls.
         """
         kind, pitch = ballast.kind, self.depths.pitch
-        slack = -pitch / 2 if sure else pitch / 2
+        slack = (-0.5 if sure else 0.5) * pitch
         free, along = self._free(ballast, slack)
         if kind.shape == BALL:
             steps = (np.arange(kind.count) - (kind.count - 1) / 2) * kind.spacing
@@ -194,10 +194,10 @@ class Room:
         middles = np.stack([piece.middle for piece in pieces])
         if not inside(self.ground.skin, middles).all():
             return False
+        if not all(_clears(self.ground.skin, piece, self.cover) for piece in pieces):
+            return False
         others, ways = self.ground.others, self._ways(ballast)
         if any((_to_points(piece, self.ground.points) < self.keep_clear).any() for piece in ways):
-            return False
-        if not all(_clears(self.ground.skin, piece, self.cover) for piece in pieces):
             return False
         return others is None or (
             not inside(others, middles).any() and all(_clears(others, piece, self.keep_clear) for piece in ways)
@@ -208,10 +208,13 @@ class Room:
         hole = ballast.drill(self.ground.lowest)
         return ballast.room() if hole is None else (*ballast.room(), hole)
 
-    def longest(self, ballast: Ballast) -> float:
-        """Return the length of the longest rod of a kind that has room anywhere, m, by the grid; 0 where none has."""
-        kind = ballast.kind
-        free, along = self._free(ballast, self.depths.pitch / 2)
+    def longest(self, ballast: Ballast, sure: bool = False) -> float:
+        """Return the length of the longest rod of a kind that has room anywhere, m, by the grid; 0 where none has.
+
+        What is sure is as in `places`.
+        """
+        kind, slack = ballast.kind, (-0.5 if sure else 0.5) * self.depths.pitch
+        free, along = self._free(ballast, slack)
         if self.between is not None:
             places = self.depths.origin[0] + self.depths.pitch * np.arange(free.shape[0])
             free &= self._allowed(places, 0.0 if along == 0 else kind.diameter / 2 + kind.fit)[:, None, None]
@@ -220,7 +223,7 @@ class Room:
         for layer in np.moveaxis(free, along, 0):
             run = np.where(layer, run + 1, 0)
             best = max(best, int(run.max()))
-        return max(best * self.depths.pitch - 2 * kind.fit, 0.0)
+        return max((best - 1) * self.depths.pitch + 2 * slack - 2 * kind.fit, 0.0)
 
 
 def _reach(ballast: Ballast) -> float:

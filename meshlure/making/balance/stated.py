@@ -88,9 +88,8 @@ def _check_inside(ballast: Ballast, ground: Ground, text: str) -> None:
     rooms = [Solid.of(surface) for surface in ballast.rooms()]
     whole = rooms[0].joined(*rooms[1:])
     beyond = whole.less(solid_of(body.surface, body.name)).volume
-    faults = []
     if beyond > _LOST * whole.volume:
-        faults.append(
+        raise InputError(
             Fault(
                 "the ballast does not lie in the body",
                 WHERE,
@@ -99,8 +98,9 @@ def _check_inside(ballast: Ballast, ground: Ground, text: str) -> None:
                 "move it, or make it smaller",
             )
         )
+    faults = []
     hole = ballast.drill(ground.lowest)
-    way = whole if hole is None or hole.length <= 0 else whole.joined(Solid.of(rod(hole)))
+    way = whole if hole is None else whole.joined(Solid.of(rod(hole)))
     names = [f"'{piece.name}'" for piece in ground.bait.pieces] + ["a cavity of the body"] * len(body.cavities)
     for name, surface in zip(names, ground.neighbours, strict=True):
         shared = way.met(Solid.of(surface)).volume
