@@ -17,6 +17,7 @@ from meshlure.cli import (
     pour,
     report,
     rods,
+    sheet,
     waters,
 )
 
@@ -24,7 +25,7 @@ JOBS: Final[dict[str, tuple[ModuleType, ...]]] = {
     "Begin": (new,),
     "Study a bait": (report, inspect),
     "Change its design": (balance, chamber),
-    "Make it": (mould, pour),
+    "Make it": (mould, pour, sheet),
     "Look up stock": (materials, waters, hardware, balls, rods),
 }
 """In the order in which a maker comes to them."""

@@ -78,23 +78,33 @@ def halo() -> list[Any]:
     return [withStroke(linewidth=2.2, foreground="white")]
 
 
-def swatches() -> Picture:
-    """Return the fills with what they stand for, for the key beside the drawings."""
+SWATCHES = (
+    ("insert", 11.0, "heavy metal, 9 g/cm³ and up"),
+    ("insert", 5.0, "lighter metal"),
+    ("insert", 1.2, "plastic, wood, foam"),
+    ("void", None, "hollow"),
+    ("ball", 7.8, "ball; dotted: other end"),
+)
+"""The fills with what they stand for: role, a density of its kind in g/cm3, words."""
+SWATCHES_WIDE, SWATCHES_TALL = 58.0, 28.0
+"""mm that they take."""
+
+
+def draw_swatches(axes: Axes, left: float = 0.0, foot: float = 0.0) -> None:
+    """Draw the fills with what they stand for, from a lower left corner in mm on."""
     from matplotlib.patches import Rectangle
 
-    figure = blank(58, 28)
+    for number, (role, density, words) in enumerate(SWATCHES):
+        y = foot + 23.6 - 5.5 * number
+        axes.add_artist(Rectangle((left + 1, y), 9, 3.6, **fills(role, density)))
+        axes.text(left + 12, y + 1.8, words, va="center", fontsize=7.5)
+
+
+def swatches() -> Picture:
+    """Return the fills with what they stand for, for the key beside the drawings."""
+    figure = blank(SWATCHES_WIDE, SWATCHES_TALL)
     axes = figure.add_axes((0, 0, 1, 1))
-    axes.set(xlim=(0, 58), ylim=(0, 28))
+    axes.set(xlim=(0, SWATCHES_WIDE), ylim=(0, SWATCHES_TALL))
     axes.axis("off")
-    rows = (
-        ("insert", 11.0, "heavy metal, 9 g/cm³ and up"),
-        ("insert", 5.0, "lighter metal"),
-        ("insert", 1.2, "plastic, wood, foam"),
-        ("void", None, "hollow"),
-        ("ball", 7.8, "ball; dotted: other end"),
-    )
-    for number, (role, density, words) in enumerate(rows):
-        y = 23.6 - 5.5 * number
-        axes.add_artist(Rectangle((1, y), 9, 3.6, **fills(role, density)))
-        axes.text(12, y + 1.8, words, va="center", fontsize=7.5)
-    return picture(figure, "Key to the fills: " + "; ".join(words for _, _, words in rows) + ".")
+    draw_swatches(axes)
+    return picture(figure, "Key to the fills: " + "; ".join(words for _, _, words in SWATCHES) + ".")
