@@ -27,7 +27,7 @@ FRESH_21 = 997.99
 def box(density: float = 0.72, scale: float = 1.0, thick: float | None = None, **sections: Any) -> Bait:
     """A box that sinks, its size times a scale, with a coat of 1.2 g/cm3 where one is asked for."""
     slug = insert("slug", shapes.box((0.01, 0.01, 0.01), (0.004, 0.001, -0.008)), 24.0)
-    over = {} if thick is None else {"coat": coat(thick, 1.2)}
+    over: dict[str, Any] = {} if thick is None else {"coat": coat(thick, 1.2)}
     hook = hardware("hook", 2.0, vector(0, 0, -17), 8.0)
     body = shapes.box(tuple(scale * side for side in SIZE))
     return bait(body, slug, density=density, hardware=[hook], **over, **sections)

@@ -1,4 +1,4 @@
-"""Hydrostatic weighing: what a copy displaces, how dense its body is, and which single cause explains the difference."""
+"""Hydrostatic weighing: what a copy displaces, how dense it is, and which single cause explains the difference."""
 
 from __future__ import annotations
 

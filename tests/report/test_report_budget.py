@@ -78,7 +78,7 @@ def test_what_the_weighings_tell(weighed: Study) -> None:
     found = weighed.results["measured"]
     table = facts(weighed.results)
     assert table is not None
-    told = dict(table.rows)
+    told = {row[0]: row[1] for row in table.rows}
     assert set(told) == {"displaces", "body's density", "coat"}
     assert told["body's density"].startswith(f"{found['body']['density_g_cm3']:.3f} g/cm³")
     assert told["coat"].startswith("0.90\N{NO-BREAK SPACE}g")
