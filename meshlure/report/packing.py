@@ -105,25 +105,37 @@ class _Sheets:
         self.shelves.append(_Shelf(sheet, top, height, x + wide - across.low + GAP))
         self.placed.append(Placed(sheet, x, top - height, block, across, upright))
 
-    def fit(self, block: Block) -> None:
-        """Put a block where it first fits: beside others, under them, or on a new sheet."""
-        across, upright = Window(0, block.width, 0, block.width), Window(0, block.height, 0, block.height)
+    def fit(self, shapes: Sequence[Block]) -> None:
+        """Put a block, in the first of its shapes that fits, beside others, under them, or on a new sheet."""
+        if not any(self._beside(block) or self._under(block) for block in shapes):
+            self.shelve(self.open(), shapes[0], *_whole(shapes[0]), 0.0)
+
+    def _beside(self, block: Block) -> bool:
         height = self.tall(block)
         for shelf in self.shelves:
             last = min(s.top for s in self.shelves if s.sheet == shelf.sheet) == shelf.top
-            room = shelf.top if last else shelf.height
-            if shelf.used + block.wide <= self.room.width and height <= room:
-                self.placed.append(Placed(shelf.sheet, shelf.used, shelf.top - height, block, across, upright))
+            if shelf.used + block.wide <= self.room.width and height <= (shelf.top if last else shelf.height):
+                self.placed.append(Placed(shelf.sheet, shelf.used, shelf.top - height, block, *_whole(block)))
                 shelf.used += block.wide + GAP
                 shelf.height = max(shelf.height, height)
-                return
-        sheet = next((n for n in range(self.count) if height <= self.free(n)), None)
-        self.shelve(self.open() if sheet is None else sheet, block, across, upright, 0.0)
+                return True
+        return False
+
+    def _under(self, block: Block) -> bool:
+        for sheet in range(self.count):
+            if self.tall(block) <= self.free(sheet):
+                self.shelve(sheet, block, *_whole(block), 0.0)
+                return True
+        return False
+
+
+def _whole(block: Block) -> tuple[Window, Window]:
+    return Window(0, block.width, 0, block.width), Window(0, block.height, 0, block.height)
 
 
 def pack(
     long: Sequence[Block],
-    others: Sequence[Block],
+    others: Sequence[Sequence[Block]],
     room: Room,
     title: float,
     words: Callable[[Block], Sequence[tuple[float, float, float, float]]],
@@ -134,8 +146,8 @@ def pack(
     ----------
     long : sequence of Block
         The views along the bait: under each other on one sheet where the room is high enough, cut at the same places.
-    others : sequence of Block
-        Put where there is room.
+    others : sequence of sequences of Block
+        Put where there is room, each in the first of its shapes for which there is some.
     room : Room
     title : float
         mm that a title takes over its block.
@@ -146,11 +158,12 @@ def pack(
     stacked = sum(sheets.tall(block) for block in long) + GAP * (len(long) - 1) <= room.height
     for group in [list(long)] if stacked and long else [[block] for block in long]:
         _lay(sheets, group, words)
-    for block in others:
-        if block.width > room.width or sheets.tall(block) > room.height:
-            _lay(sheets, [block], words)
+    for shapes in others:
+        fitting = [b for b in shapes if b.width <= room.width and sheets.tall(b) <= room.height]
+        if fitting:
+            sheets.fit(fitting)
         else:
-            sheets.fit(block)
+            _lay(sheets, [shapes[0]], words)
     return sheets.placed, sheets.count
 
 
@@ -171,9 +184,9 @@ def _lay(
         for across in windows(length, sheets.room.width, beside):
             sheet = sheets.open()
             for block, shift in zip(group, shifts, strict=True):
-                seen, whole = _seen(across, shift, block.width), Window(0, block.height, 0, block.height)
+                seen = _seen(across, shift, block.width)
                 if seen is not None:
-                    sheets.shelve(sheet, block, seen, upright or whole, max(shift - across.low, 0.0))
+                    sheets.shelve(sheet, block, seen, upright or _whole(block)[1], max(shift - across.low, 0.0))
 
 
 def _seen(window: Window, shift: float, width: float) -> Window | None:

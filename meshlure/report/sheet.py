@@ -71,8 +71,8 @@ def sheet(study: Study) -> Sheet:
     shown = subject(results)
     views = {view.name: readable(view) for view in study.views if view.pieces and view.pieces[0].rings}
     long = [_drawn(views[name], shown) for name in ("side", "top") if name in views]
-    others = [_drawn(views[name], shown) for name in ("front",) if name in views]
-    others += [*sheetparts.lists(results), sheetparts.key(shown.buoyancy_of)]
+    others: list[Sequence[Block]] = [[_drawn(views[name], shown)] for name in ("front",) if name in views]
+    others += [*([block] for block in sheetparts.lists(results)), sheetparts.key(shown.buoyancy_of)]
     with drawing_style():
         pdf, count = _pdf(long, others, results)
         return Sheet(pdf, _svg(long, others, results), count)
@@ -97,7 +97,7 @@ def _zero(paper: Layout) -> float:
     return float(paper.origin[0])
 
 
-def _pdf(long: Sequence[Block], others: Sequence[Block], results: Mapping[str, Any]) -> tuple[bytes, int]:
+def _pdf(long: Sequence[Block], others: Sequence[Sequence[Block]], results: Mapping[str, Any]) -> tuple[bytes, int]:
     from matplotlib.backends.backend_pdf import PdfPages
 
     placed, count = pack(long, others, Room(A4[0] - 2 * MARGIN, A4[1] - 2 * MARGIN - FOOT), CAPTION, _words)
@@ -124,13 +124,13 @@ def _pdf(long: Sequence[Block], others: Sequence[Block], results: Mapping[str, A
     return paper.getvalue(), count
 
 
-def _svg(long: Sequence[Block], others: Sequence[Block], results: Mapping[str, Any]) -> bytes:
+def _svg(long: Sequence[Block], others: Sequence[Sequence[Block]], results: Mapping[str, Any]) -> bytes:
     from matplotlib.backends.backend_svg import FigureCanvasSVG
 
     # One sheet as large as it must be: as wide as the longest view, and as high as what then stands under it.
     left = max((block.zero for block in long), default=0.0)
     wide = max([A4[0] - 2 * MARGIN, *(block.width + left - block.zero for block in long)])
-    high = sum(block.height + 2 * CAPTION for block in [*long, *others])
+    high = sum(block.height + 2 * CAPTION for block in [*long, *(shapes[0] for shapes in others)])
     placed, _ = pack(long, others, Room(wide, high), CAPTION, _words)
     foot = min(at.y for at in placed)
     size = (wide + 2 * MARGIN, high - foot + 2 * MARGIN + FOOT)

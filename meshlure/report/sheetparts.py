@@ -23,6 +23,8 @@ COLUMNS = ((0, 40.0), (2, 36.0), (5, 12.0), (6, 16.0), (7, 34.0))
 HEADS = ("piece", "material", "g", "from nose", "centre x, y, z in CAD")
 ROWS = 36
 """Pieces that one list holds."""
+LETTERS_WIDE, STEP = 66.0, 4.2
+"""mm that the key's letters take, and from one to the next."""
 RULER = 100
 """mm of the ruler on every sheet."""
 
@@ -76,8 +78,8 @@ def _fitting(text: str, wide: float) -> str:
     return short
 
 
-def key(buoyancy_of: str) -> Block:
-    """Return what fills, letters and lines stand for."""
+def key(buoyancy_of: str) -> tuple[Block, Block]:
+    """Return what fills, letters and lines stand for, in two shapes: a high one and a wide one."""
     rows = (
         ("G", "centre of gravity"),
         ("B", f"centre of buoyancy {buoyancy_of}"),
@@ -86,16 +88,26 @@ def key(buoyancy_of: str) -> Block:
         ("◇", "line tie"),
         ("▽", "water as it rests"),
     )
-    height = SWATCHES_TALL + 4.2 * len(rows) + 1
+    under = STEP * len(rows) + 1
 
-    def draw(axes: Axes) -> None:
-        draw_swatches(axes, 0.0, height - SWATCHES_TALL)
+    def letters(axes: Axes, left: float, top: float) -> None:
         for number, (sign, words) in enumerate(rows):
-            y = height - SWATCHES_TALL - 4.2 * (number + 0.4)
-            axes.text(5.5, y, sign, fontsize=8, fontweight="bold", ha="center", va="center")
-            axes.text(12, y, words, fontsize=7.5, va="center")
+            y = top - STEP * (number + 0.5)
+            axes.text(left + 5.5, y, sign, fontsize=8, fontweight="bold", ha="center", va="center")
+            axes.text(left + 12, y, words, fontsize=7.5, va="center")
 
-    return Block("Key", SWATCHES_WIDE + 8, height, draw)
+    def high(axes: Axes) -> None:
+        draw_swatches(axes, 0.0, under)
+        letters(axes, 0.0, under)
+
+    def wide(axes: Axes) -> None:
+        draw_swatches(axes, 0.0, 0.0)
+        letters(axes, SWATCHES_WIDE, SWATCHES_TALL)
+
+    return (
+        Block("Key", LETTERS_WIDE, SWATCHES_TALL + under, high),
+        Block("Key", SWATCHES_WIDE + LETTERS_WIDE, SWATCHES_TALL, wide),
+    )
 
 
 def draw_title(axes: Axes, width: float, results: Mapping[str, Any], sheet: int, count: int) -> None:

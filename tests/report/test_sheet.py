@@ -303,7 +303,7 @@ def test_nothing_on_a_sheet_covers_another_or_its_margin(
     def block(wide: float, high: float, zero: float = 0.0) -> Block:
         return Block("", wide, high, lambda _: None, zero)
 
-    placed, count = pack([block(*b) for b in long_ones], [block(*b) for b in others], room, 5, lambda _: [])
+    placed, count = pack([block(*b) for b in long_ones], [[block(*b)] for b in others], room, 5, lambda _: [])
     found = boxes(placed)
     assert {box[0] for box in found} == set(range(count))
     for number, (on, left, right, low, high) in enumerate(found):
