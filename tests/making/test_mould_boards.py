@@ -100,11 +100,15 @@ def test_keys_mate_in_one_way_only(tmp_path: Path) -> None:
         assert np.minimum(place - box.low, box.high - place).min() > keys.diameter / 2 + 1.4e-3
 
 
-@pytest.mark.parametrize("count", [0, 1, 3, 20])
-def test_any_count_of_keys(count: int) -> None:
+@pytest.mark.parametrize("count", [0, 1, 2, 3, 20])
+def test_any_count_of_keys_fits_in_one_way(count: int) -> None:
     made = moulded(BODY, keys=count, wall="14 mm")
     assert made.halves is not None
-    assert len(made.halves.keys.places) == count
+    keys, box = made.halves.keys, made.halves.box
+    assert len(keys.places) == count
+    # Turned by half a turn about the pull, some key meets none.
+    apart = np.linalg.norm((2 * box.middle - keys.places)[:, None] - keys.places[None], axis=-1)
+    assert count == 0 or apart.min(axis=1).max() > keys.diameter / 2
 
 
 def test_a_flat_back_is_moulded_in_one_piece(tmp_path: Path) -> None:

@@ -107,6 +107,16 @@ def test_a_block_parts_between_opposite_edges_too() -> None:
     assert found.trapped < 0.01 * 36e-6
 
 
+def test_an_overhang_narrower_than_the_grid_counts() -> None:
+    # Walls 1 degree off: 0.17 mm on each half of the height, where columns stand 0.6 mm apart. By hand 100 mm2 x tan 1
+    # degree x 30 mm on the two ends together.
+    block = shapes.box((0.06, 0.03, 0.02)).moved(rotation=turned(1.0, "y"))
+    asked = best_pull(block, 36e-6, cone=np.radians(0.01))
+    assert asked.trapped * MM3 == pytest.approx(100 * np.tan(np.radians(1)) * 30, rel=0.15)
+    found = best_pull(block, 36e-6)
+    assert np.degrees(np.arccos(found.direction @ turned(1.0, "y")[:, 2])) < 0.2
+
+
 def test_a_pull_as_good_as_any_is_kept() -> None:
     for body, volume in ((shapes.ellipsoid((0.03, 0.007, 0.01), 4), 8.8e-6), (shapes.box((0.03, 0.02, 0.01)), 6e-6)):
         found = best_pull(body, volume)

@@ -18,8 +18,8 @@ _RINGS: Final = 4
 _TURNS: Final = 6
 _WAYS: Final = 8
 _PATIENCE: Final = 2
-_ROUNDS: Final = 14
-_STARTS: Final = 2
+_ROUNDS: Final = 12
+_STARTS: Final = 3
 _PHASE: Final = 2.399963
 """rad. The golden angle."""
 _FINEST: Final = np.radians(0.1)
@@ -67,10 +67,10 @@ def best_pull(solid: Surface, volume: float, cone: float = CONE) -> Pull:
 
     Notes
     -----
-    Pulls on rings about z, then walks downhill from the best of them, in steps that are halved where none leads on. z
-    itself is kept where nothing beats it by more than `shadow.ALIKE` of the volume. The columns' grid stands askew to
-    the bench, so that a wall of the bait meets columns at all distances and an overhang narrower than their pitch
-    counts for as much as it holds.
+    Pulls on rings about z, then walks downhill from z and from the best of them, in steps that are halved where none
+    leads on. z itself is kept where nothing beats it by more than `shadow.ALIKE` of the volume. The columns' grid
+    stands askew to the bench, so that a wall of the bait meets columns at all distances and an overhang narrower than
+    their pitch counts for as much as it holds.
     """
     reach = float(np.ptp(solid.bounds, axis=0).max())
 
@@ -96,8 +96,8 @@ def best_pull(solid: Surface, volume: float, cone: float = CONE) -> Pull:
 
 
 def _lowest(tried: list[Pull], cone: float) -> list[Pull]:
-    """Pulls that trap least, no two of them close to each other."""
-    found: list[Pull] = []
+    """The first pull, and those that trap least, no two of them close to each other."""
+    found = tried[:1]
     for pull in sorted(tried, key=lambda each: each.trapped):
         if all(pull.direction @ other.direction < np.cos(0.4 * cone) for other in found):
             found.append(pull)
