@@ -12,7 +12,7 @@ import numpy as np
 from meshlure import tolerances
 from meshlure.bait.meshpiece import shape
 from meshlure.errors import Fault, InputError
-from meshlure.files.formats import FORMATS
+from meshlure.files.formats import FORMATS, METRES
 from meshlure.files.nearness import did_you_mean
 from meshlure.files.reading import MeshFile, read_mesh
 from meshlure.files.source import LARGEST
@@ -34,8 +34,14 @@ from meshlure.version import VERSION
 
 Tree = dict[str, Any]
 
+_MATTERS: Final = 2e-9
+"""m3. What facets leave out of a small insert does not matter below this: 0.02 g, if it is lead."""
+
 _WHOLE: Final = 1.0
 """A lid of any size, to tell what the volume would be with it."""
+
+_NAMES: Final = {"inches": "in", "millimetres": "mm", "centimetres": "cm", "metres": "m"}
+"""Units that a mesh may be in after all, in words."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -178,17 +184,13 @@ def _size(file: MeshFile) -> Iterator[Finding]:
     if usual[0] <= length <= usual[1]:
         return
     level = Level.NOTE if possible[0] <= length <= possible[1] else Level.WARNING
-    others = {"inches": length / _metres(file.unit) * 0.0254, "millimetres": length / _metres(file.unit) * 1e-3}
-    others |= {"centimetres": length / _metres(file.unit) * 1e-2, "metres": length / _metres(file.unit)}
+    units = length / METRES[file.unit]
+    others = {name: units * METRES[unit] for name, unit in _NAMES.items() if unit != file.unit}
     near = [f"{name} ({m * 1e3:.4g} mm)" for name, m in others.items() if usual[0] <= m <= usual[1]]
     asks = f"is the file in {' or '.join(near[:2])}?" if near else "is that meant?"
     message = f"the part is {length * 1e3:.4g} mm long, read in {file.unit}: {asks}"
     advice = "State the unit as the mesh was exported; a small insert may well be that small."
     yield Finding("unusual-size", level, message, file.path.stem, advice=advice)
-
-
-def _metres(unit: str) -> float:
-    return {"mm": 1e-3, "cm": 1e-2, "m": 1.0, "in": 0.0254, "ft": 0.3048, "um": 1e-6}[unit]
 
 
 def _facets(volume: Volume | None, file: MeshFile) -> Iterator[Finding]:
@@ -199,7 +201,8 @@ def _facets(volume: Volume | None, file: MeshFile) -> Iterator[Finding]:
     if abs(share) > tolerances.COARSE_SHARE:
         message = f"the facets leave out about {volume.deficit * 1e9:.3g} mm3 ({share:.1%}) of the smooth part"
         advice = "Export finer: at 0.02 mm chord or less."
-        yield Finding("coarse-facets", Level.WARNING, message, file.path.stem, advice=advice)
+        level = Level.WARNING if abs(volume.deficit) > _MATTERS else Level.NOTE
+        yield Finding("coarse-facets", level, message, file.path.stem, advice=advice)
 
 
 def _balls(sound: Soundness, piece: str) -> Iterator[Finding]:

@@ -6,6 +6,7 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Any
 
+from meshlure.bait.axes import rest_findings
 from meshlure.findings import Finding, Level
 from meshlure.physics.barrier import barriers
 from meshlure.physics.buoyancy import suspends_within
@@ -91,6 +92,7 @@ def pose(vessel: Vessel, stated: float | None = None) -> Posed:
         share = 1.0 / len(hanging)
         trees += [postures.dangling(d, vessel.frame, vessel.composition.mass(d.ends).amount, share) for d in hanging]
     findings += _dry(afloat, vessel)
+    findings += rest_findings(main.hang.up if isinstance(main, Dangle) else main.rest.state.up, vessel.frame)
     return Posed(ends, main, trees, _righting(vessel, afloat), _balls(vessel, settings, ends), tuple(findings))
 
 

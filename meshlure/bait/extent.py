@@ -11,6 +11,8 @@ from meshlure import tolerances
 from meshlure.bait.pieces import Frame, Hardware, MeshPiece
 from meshlure.errors import Fault, InputError
 from meshlure.files.baitfile import BaitFile
+from meshlure.files.formats import METRES
+from meshlure.files.reading import MeshFile
 from meshlure.files.tables import entry_path
 from meshlure.findings import Finding, Level
 from meshlure.geometry.clearance import nearest
@@ -20,7 +22,7 @@ from meshlure.units import LENGTH_UNITS
 _WORDS: Final = {"mm": "millimetres", "cm": "centimetres", "m": "metres", "in": "inches"}
 
 
-def size_findings(body: MeshPiece, frame: Frame, plan: BaitFile, file: str) -> list[Finding]:
+def size_findings(body: MeshPiece, frame: Frame, plan: BaitFile, file: MeshFile) -> list[Finding]:
     """Return the question that a bait of unusual length raises.
 
     Parameters
@@ -28,9 +30,9 @@ def size_findings(body: MeshPiece, frame: Frame, plan: BaitFile, file: str) -> l
     body : MeshPiece
     frame : Frame
     plan : BaitFile
-        States the unit, and whether the maker has seen that the size is unusual.
-    file : str
-        The body's mesh, for the message.
+        States whether the maker has seen that the size is unusual.
+    file : MeshFile
+        The body's, with the unit that it was read in.
 
     Raises
     ------
@@ -38,14 +40,14 @@ def size_findings(body: MeshPiece, frame: Frame, plan: BaitFile, file: str) -> l
         Where no bait is of such a length.
     """
     length = float(np.ptp(body.surface.vertices @ frame.nose))
-    unit = plan.bait.length_unit
+    unit = file.unit
     usual, possible = tolerances.LENGTH_USUAL, tolerances.LENGTH_POSSIBLE
     others = " or ".join(f"{_WORDS[name]} ({metres * 1e3:.0f} mm)" for name, metres in _other_units(length, unit))
     if not possible[0] <= length <= possible[1]:
         raise InputError(
             Fault(
                 what="the body is of no bait's length",
-                where=file,
+                where=str(file.path),
                 found=f"{length * 1e3:.4g} mm from nose to tail, read in {unit}",
                 allowed=f"{possible[0] * 1e3:g} mm to {possible[1]:g} m",
                 next_step=f"is the file in {others}? State length_unit (or --unit) as the mesh was exported"
@@ -71,7 +73,7 @@ def _other_units(length: float, unit: str) -> list[tuple[str, float]]:
     """Return up to two units in which the length would be usual, each with that length in m, a hand's length first."""
     low, high = tolerances.LENGTH_USUAL
     hand = float(np.sqrt(low * high))
-    lengths = [(name, length / LENGTH_UNITS[unit] * metres) for name, metres in LENGTH_UNITS.items() if name != unit]
+    lengths = [(name, length / METRES[unit] * metres) for name, metres in LENGTH_UNITS.items() if name != unit]
     usual = [(name, metres) for name, metres in lengths if low <= metres <= high]
     return sorted(usual, key=lambda row: abs(float(np.log(row[1] / hand))))[:2]
 

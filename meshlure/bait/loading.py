@@ -11,7 +11,9 @@ from typing import TypeVar
 
 import numpy as np
 
+from meshlure.bait.axes import axis_findings
 from meshlure.bait.extent import check_reach, size_findings
+from meshlure.bait.mended import mended
 from meshlure.bait.meshpiece import shape
 from meshlure.bait.pieces import Bait, Balls, Coat, Frame, MeshPiece, Role, Substance
 from meshlure.bait.printed import as_drawn, printed, solid_print
@@ -24,8 +26,10 @@ from meshlure.files.reading import MeshFile
 from meshlure.files.sections.balls import BallsSection
 from meshlure.files.sections.inserts import InsertSection
 from meshlure.files.sections.substance import Substance as Stated
+from meshlure.files.source import LARGEST
 from meshlure.files.tables import entry_path
 from meshlure.findings import Finding
+from meshlure.geometry.mending.steps import Wishes
 from meshlure.geometry.soundness import examine
 from meshlure.stock.waters import Water, stated_density, water
 
@@ -43,8 +47,16 @@ def read_bait(path: str | PathLike[str]) -> Bait:
     return load(read_baitfile(Path(path)))
 
 
-def load(plan: BaitFile) -> Bait:
+def load(plan: BaitFile, wishes: Wishes | None = None, largest: int = LARGEST) -> Bait:
     """Return the bait of a bait file's contents.
+
+    Parameters
+    ----------
+    plan : BaitFile
+    wishes : Wishes or None
+        How its meshes are mended before they are examined; None takes them as they are.
+    largest : int
+        Bytes beyond which a mesh file is not read.
 
     Raises
     ------
@@ -53,7 +65,9 @@ def load(plan: BaitFile) -> Bait:
     """
     made = _Lookup(plan)
     start = time.perf_counter()
-    files = read_meshes(plan)
+    files = read_meshes(plan, largest)
+    if wishes is not None:
+        files = mended(files, wishes)
     return _assembled(plan, files, made, time.perf_counter() - start)
 
 
@@ -80,7 +94,8 @@ def _assembled(plan: BaitFile, files: Mapping[str, MeshFile], made: _Lookup, rea
     pieces, found = _pieces(plan, files, made)
     findings += found
     frame = Frame.of(np.array(plan.bait.nose), np.array(plan.bait.back))
-    findings += size_findings(pieces[0], frame, plan, str(files[pieces[0].name].path))
+    findings += size_findings(pieces[0], frame, plan, files[pieces[0].name])
+    findings += axis_findings(pieces[0].surface, frame, pieces[0].name)
     check_reach(pieces[0], made.hardware, plan)
     return Bait(
         name=plan.bait.name,

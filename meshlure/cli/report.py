@@ -11,12 +11,13 @@ from meshlure.cli.completion import inserts_begun, materials_begun
 from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer, hand_on
 from meshlure.errors import Fault, InputError
+from meshlure.files.formats import FORMATS
 
 if TYPE_CHECKING:
     from meshlure.files.baitfile import BaitFile
 
 BAIT_FILE: Final = ".toml"
-SUFFIXES: Final = (BAIT_FILE, ".stl", ".obj")
+SUFFIXES: Final = (BAIT_FILE, *FORMATS)
 
 SHORT: Final = "Weigh, float and measure a bait."
 
@@ -27,7 +28,7 @@ BAIT is a bait file (.toml), which names the meshes and what they are made of:
 \b
   meshlure report samples/minnow/minnow.toml --out out
 
-Or, for a quick look, it is the body's mesh (.stl, .obj), with the rest in options:
+Or, for a quick look, it is the body's mesh (.stl, .obj, .3mf, .ply, .off, .glb, .step), with the rest in options:
 
 \b
   meshlure report body.stl --density "0.72 g/cm3" --insert belly.stl=lead \\
@@ -94,6 +95,12 @@ def report(
         Path | None,
         typer.Option("--against", metavar="BAIT.toml", help="Another bait file whose flight this one is held against."),
     ] = None,
+    mend: Annotated[
+        bool, typer.Option("--mend", help="Mend the meshes before anything is told, each step as a finding.")
+    ] = False,
+    largest: Annotated[
+        str | None, typer.Option("--largest", metavar="SIZE", help='Greatest mesh to read, "2 GB"; 500 MB unasked.')
+    ] = None,
     debug: Annotated[bool, typer.Option("--debug", help="On a fault of ours, print where it happened.")] = False,
 ) -> None:
     """Study a bait and write what was found."""
@@ -127,11 +134,15 @@ def report(
         check_folder(out)
     from meshlure.bait.loading import load
     from meshlure.examine import study
+    from meshlure.files.source import LARGEST, size_in_bytes
+    from meshlure.geometry.mending.steps import Wishes
 
+    most = LARGEST if largest is None else size_in_bytes(largest, "--largest")
+    wishes = Wishes() if mend else None
     with phases() as said:
         said("reading the meshes")
-        read = load(plan)
-        other = None if against is None else load(_plan(against, {}, []))
+        read = load(plan, wishes, most)
+        other = None if against is None else load(_plan(against, {}, []), wishes, most)
         found = study(read, other, said)
         if out is not None:
             from meshlure.cli.writing import write
@@ -158,7 +169,7 @@ def _plan(bait: Path, options: dict[str, str | None], inserts: list[str]) -> Bai
                     what="these options belong to the quick form, which takes a mesh instead of a bait file",
                     where=str(bait),
                     found=", ".join(given),
-                    allowed="--out, --no-page, --json, --cut, --glb, --against",
+                    allowed="--out, --no-page, --json, --cut, --glb, --against, --mend, --largest",
                     next_step="write them into the bait file",
                 )
             )
@@ -178,14 +189,16 @@ def _plan(bait: Path, options: dict[str, str | None], inserts: list[str]) -> Bai
                 next_step="name the bait file in it" if folder else "export the part as STL, or name the bait file",
             )
         )
-    missing = [option for option in ("--unit", "--nose", "--back") if options[option] is None]
+    says = FORMATS[bait.suffix.casefold()].says_unit
+    needed = ("--nose", "--back") if says else ("--unit", "--nose", "--back")
+    missing = [option for option in needed if options[option] is None]
     if missing:
         raise InputError(
             Fault(
                 what="a mesh does not say its unit, nor which way its nose and back are",
                 where=str(bait),
                 found=f"no {', '.join(missing)}",
-                allowed="all of --unit, --nose and --back",
+                allowed=f"all of {', '.join(needed)}",
                 next_step="add them, such as --unit mm --nose -x --back +z; a bait file ends in .toml",
             )
         )
@@ -196,7 +209,7 @@ def _plan(bait: Path, options: dict[str, str | None], inserts: list[str]) -> Bai
         density=options["--density"],
         material=options["--material"],
         inserts=inserts,
-        unit=options["--unit"] or "",
+        unit=options["--unit"] or ("mm" if says else ""),
         nose=options["--nose"] or "",
         back=options["--back"] or "",
         name=options["--name"],

@@ -39,6 +39,11 @@ FORMATS: Final[Mapping[str, Format]] = MappingProxyType(
 )
 """By the suffix in small letters."""
 
+METRES: Final[Mapping[str, float]] = MappingProxyType(
+    {"mm": 1e-3, "cm": 1e-2, "m": 1.0, "in": 0.0254, "ft": 0.3048, "um": 1e-6}
+)
+"""m. The units that a file may say, or be stated to be in."""
+
 ELSEWHERE: Final[Mapping[str, str]] = MappingProxyType(
     {".gltf": "export it as GLB, which is one file"}
     | dict.fromkeys((".igs", ".iges", ".sat", ".x_t", ".brep"), "export the solid as STEP, or as a mesh: STL or 3MF")

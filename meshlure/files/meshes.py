@@ -8,10 +8,17 @@ from types import MappingProxyType
 from meshlure.errors import Fault, InputError
 from meshlure.files.baitfile import BaitFile
 from meshlure.files.reading import MeshFile, read_mesh
+from meshlure.files.source import LARGEST
 
 
-def read_meshes(bait: BaitFile) -> Mapping[str, MeshFile]:
+def read_meshes(bait: BaitFile, largest: int = LARGEST) -> Mapping[str, MeshFile]:
     """Meshes of a bait by piece, the body's first, then the inserts' in the bait file's order.
+
+    Parameters
+    ----------
+    bait : BaitFile
+    largest : int
+        Bytes beyond which a file is not read.
 
     Raises
     ------
@@ -22,7 +29,7 @@ def read_meshes(bait: BaitFile) -> Mapping[str, MeshFile]:
     faults: list[Fault] = []
     for mesh in bait.meshes():
         try:
-            read[mesh.piece] = read_mesh(mesh.path, bait.bait.length_unit, mesh.piece, mesh.where)
+            read[mesh.piece] = read_mesh(mesh.path, bait.bait.length_unit, mesh.piece, mesh.where, largest)
         except InputError as error:
             faults.extend(error.faults)
     if faults:

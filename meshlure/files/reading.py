@@ -148,7 +148,7 @@ def read_mesh(
     _check_size(welded, loose, place)
     findings = list(loose.findings)
     if loose.unit and unit is not None and loose.unit != unit:
-        message = f"The file says that its unit is {loose.unit}; that was believed, not the {unit} stated beside it."
+        message = f"The file says that its unit is {loose.unit}: that is believed, and not the {unit} of other meshes."
         findings.append(Finding("unit-of-file", Level.NOTE, message))
     if welded.collapsed:
         message = f"Left out: {welded.collapsed} of {len(loose.corners)} triangles, with corners at one point."

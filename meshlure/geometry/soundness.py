@@ -25,6 +25,11 @@ SEARCHED: Final = 100_000
 CROSSING_SHARE: Final = 1e-6
 """Share of the greatest extent that faces must reach into each other to cross: 0.1 um on a 100 mm bait."""
 
+OVERCOUNTED: Final = 1e-5
+"""Share of what a surface encloses that may be enclosed twice without a word."""
+
+_MEND_CROSSING: Final = "Repair the sketch or the loft that folds there, or join its parts in CAD."
+
 
 @dataclass(frozen=True, eq=False)
 class Soundness:
@@ -92,7 +97,7 @@ def examine(surface: Surface, piece: str) -> Soundness:
     if made.changed and shells:
         surface, shells = _reassembled(surface, measured[0], shells)
         pairs = paired(surface)
-    findings += _self_crossing(surface, shells, depth, piece)
+    findings += _self_crossing(surface, shells, bool(made.joins), depth, piece)
     volume = float(sum(shell.volume for shell in shells)) if shells else None
     return Soundness(surface, pairs, tuple(findings), shells, made.joins, volume)
 
@@ -129,34 +134,49 @@ def _reassembled(surface: Surface, volumes: Floats, shells: tuple[Shell, ...]) -
     return Surface(surface.vertices, faces[kept]), tuple(replace(s, faces=numbers[s.faces]) for s in shells)
 
 
-def _self_crossing(surface: Surface, shells: tuple[Shell, ...], depth: float, piece: str) -> Iterator[Finding]:
-    """Report faces of one shell that reach into each other; shells that cross are another matter."""
+def _self_crossing(
+    surface: Surface, shells: tuple[Shell, ...], joined: bool, depth: float, piece: str
+) -> Iterator[Finding]:
+    """Report skins that cross themselves; shells that cross are another matter."""
     pairs = self_crossings(surface, depth, SEARCHED)
-    if pairs is None:
-        yield Finding(
-            "self-crossing-unsearched",
-            Level.NOTE,
-            f"not searched for places where the skin crosses itself: with {len(surface.faces):,} faces that takes long",
-            piece,
-        )
-        return
-    if not len(pairs):
-        return
     owner = np.empty(len(surface.faces), dtype=np.intp)
     for number, shell in enumerate(shells):
         owner[shell.faces] = number
-    pairs = pairs[owner[pairs[:, 0]] == owner[pairs[:, 1]]]
-    if len(pairs):
+    if pairs is not None:
+        pairs = pairs[owner[pairs[:, 0]] == owner[pairs[:, 1]]]
+    # Where shells are known to share space, lines cannot tell it from a skin that crosses itself.
+    lines = overcount(surface) if shells and (not joined or (pairs is not None and len(pairs))) else None
+    shared = lines is not None and lines.enclosed > 0 and abs(lines.twice) > OVERCOUNTED * lines.enclosed
+    much = ""
+    if lines is not None and shared:
+        too = "much" if lines.twice > 0 else "little"
+        much = f", about {abs(lines.twice) * 1e9:.2g} mm3 too {too} ({abs(lines.twice) / lines.enclosed:.2%})"
+    if pairs is not None and len(pairs):
         middles = surface.vertices[surface.faces[pairs[:, 0]]].mean(axis=1)
-        count = overcount(surface)
         yield Finding(
             "self-crossing",
             Level.WARNING,
             f"the skin crosses itself: {counted(len(pairs), 'pair')} of faces reach through each other, "
-            f"at {places_text(middles)}; space enclosed twice counts twice, about {count.twice * 1e9:.2g} mm3 too much "
-            f"({count.twice / count.enclosed if count.enclosed else 0.0:.2%})",
+            f"at {places_text(middles)}; space enclosed twice counts twice{much}",
             piece,
             len(pairs),
             places(middles),
-            "Repair the sketch or the loft that folds there, or join its parts in CAD.",
+            _MEND_CROSSING,
+        )
+    elif shared and not joined:
+        yield Finding(
+            "self-crossing",
+            Level.WARNING,
+            f"the skin runs through itself or lies on itself: space that it encloses twice counts twice{much}",
+            piece,
+            advice=_MEND_CROSSING,
+        )
+    elif pairs is None:
+        so_far = "" if joined else "; along some ten thousand lines through it no space is enclosed twice"
+        yield Finding(
+            "self-crossing-unsearched",
+            Level.NOTE,
+            f"not searched for places where the skin crosses itself: with {len(surface.faces):,} faces that takes "
+            f"long{so_far}",
+            piece,
         )
