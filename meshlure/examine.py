@@ -194,6 +194,7 @@ def study(bait: Bait, against: Bait | None = None, tell: Callable[[str], None] =
         "cautions": account.cautions(bait),
         "balance": None,
         "chamber": None,
+        "comparison": None,
         "hollow": None,
         "mould": None,
         "timings_s": clock.spent,

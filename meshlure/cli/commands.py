@@ -9,6 +9,7 @@ from meshlure.cli import (
     balance,
     balls,
     chamber,
+    compare,
     hardware,
     inspect,
     materials,
@@ -23,7 +24,7 @@ from meshlure.cli import (
 
 JOBS: Final[dict[str, tuple[ModuleType, ...]]] = {
     "Begin": (new,),
-    "Study a bait": (report, inspect),
+    "Study a bait": (report, compare, inspect),
     "Change its design": (balance, chamber),
     "Make it": (mould, pour, sheet),
     "Look up stock": (materials, waters, hardware, balls, rods),

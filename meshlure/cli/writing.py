@@ -92,3 +92,26 @@ def write_bench(found: Study, out: Path) -> Study:
         return found, (BENCH,)
 
     return write_made(out, page=False, make=make)
+
+
+def write_page(found: Study, out: Path, name: str, draw: Callable[[], str] | None) -> Study:
+    """Write results.json and a page of its own kind; return the study with its name in it.
+
+    Parameters
+    ----------
+    found : Study
+    out : Path
+        The output folder.
+    name : str
+        Of the page.
+    draw : callable or None
+        Returns the page's text; None for no page.
+    """
+
+    def make(folder: Path) -> tuple[Study, Sequence[str]]:
+        if draw is None:
+            return found, ()
+        (folder / name).write_text(draw(), encoding="utf-8", errors="backslashreplace")
+        return found, (name,)
+
+    return write_made(out, page=False, make=make)
