@@ -145,7 +145,7 @@ def density(found: Dense, now: float, mixes: Sequence[Tree], stock: Sequence[Tre
     return {
         "now_g_cm3": now / 1e3,
         "needed_g_cm3": found.density / 1e3,
-        **(outcome(found.outcome) if found.outcome is not None else {}),
+        "outcome": None if found.outcome is None else outcome(found.outcome),
         "mixes": list(mixes),
         "stock": list(stock),
     }

@@ -253,7 +253,7 @@ ONE_FAULT = [
     (
         "pinned = true",
         'colour = "red"',
-        r"insert\[1\] 'belly weight'.colour: no such key.*allowed: .*cavities, density",
+        r"insert\[1\] 'belly weight'.colour: no such key.*allowed: .*cavities, coated, density",
     ),
     ("tie = [0.5, 0.0, 0.25]\n", "", "line.tie: the key is missing.*add it"),
     ('mesh = "lip.stl"\n', "", r"insert\[3\] 'lip'.mesh: the key is missing"),
