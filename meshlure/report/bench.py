@@ -46,7 +46,7 @@ def bench(study: Study) -> str:
         "name": wording.clipped(results["name"] or "Bait without a name", SHOWN),
         "inserts": inserts(pour),
         "outcomes": outcomes(pour),
-        "assumed": assumed(pour),
+        "assumed": [row for row in pour["assumptions"] if row["assumed"]],
         "cautions": results["cautions"],
         "findings": told,
     }
@@ -94,7 +94,7 @@ def walls_table(pour: Tree) -> Table | None:
     asked = found["target_g"] is not None
     rows = []
     for row in found["rows"]:
-        cells = [significant(row["wall_mm"], 3), fixed(row["lines"], 1), *(fixed(mass, 2) for mass in row["bait_g"])]
+        cells = [fixed(row["wall_mm"], 2), fixed(row["lines"], 1), *(fixed(mass, 2) for mass in row["bait_g"])]
         if asked:
             cells.append(DASH if row["infill_share"] is None else fixed(100 * row["infill_share"], 1) + " %")
         rows.append(cells)
@@ -109,7 +109,7 @@ def mix_words(pour: Tree) -> str:
     """Return the mix as a sentence."""
     mix = pour["mix"]
     if mix["share"] == 0:
-        return f"{mix['resin']['name']}, unfilled: {fixed(mix['density_g_cm3'], 3)} g/cm³."
+        return f"{mix['resin']['name']} without balloons: {fixed(mix['density_g_cm3'], 3)} g/cm³."
     low, high = mix["density_low_g_cm3"], mix["density_high_g_cm3"]
     return (
         f"{mix['resin']['name']} with {fixed(100 * mix['share'], 1)} % of its volume {mix['balloons']['name']}: "
@@ -174,12 +174,4 @@ def _outcome(name: str, row: Tree) -> tuple[str, ...]:
         row["state"],
         degrees(row["nose_up_deg"]),
         degrees(row["lean_deg"]),
-    )
-
-
-def assumed(pour: Tree) -> Table | None:
-    """Return what the sheet rests on that nobody stated."""
-    rows = [(row["what"], row["value"], row["source"]) for row in pour["assumptions"] if row["assumed"]]
-    return table(
-        "Measure these; a weighed trial casting replaces most of them", ("what", "value", "from"), rows, (0, 1, 2)
     )

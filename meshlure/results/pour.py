@@ -101,8 +101,8 @@ def cast(
     return {
         "wanted": wanted,
         "mix": {
-            "resin": named(names[0]),
-            "balloons": named(names[1]),
+            "resin": named(names[0], "resin"),
+            "balloons": named(names[1], "balloons"),
             **_mix(mix),
             "packing": mix.packing,
             "density_g_cm3": mix.density / 1e3,
@@ -172,10 +172,10 @@ def inserts(bait: Bait, parts: Sequence[Part]) -> list[Tree]:
     ]
 
 
-def named(of: Substance) -> Tree:
-    """Return a material with its range."""
+def named(of: Substance, what: str) -> Tree:
+    """Return a material with its range; what it is stands for a name where a density was stated."""
     return {
-        "name": of.name or f"{of.density / 1e3:g} g/cm3",
+        "name": of.name or f"{what} of {of.density / 1e3:g} g/cm3",
         "density_g_cm3": of.density / 1e3,
         "low_g_cm3": of.low / 1e3,
         "high_g_cm3": of.high / 1e3,

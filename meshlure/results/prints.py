@@ -47,7 +47,7 @@ def printed(
         That the infill takes up.
     """
     return {
-        "material": named(made.solid),
+        "material": named(made.solid, "a print"),
         "solid_g_cm3": made.solid.density / 1e3,
         "wall_mm": made.wall * MM,
         "infill_share": made.infill,
