@@ -114,7 +114,8 @@ def test_any_count_of_keys_fits_in_one_way(count: int) -> None:
 def test_a_flat_back_is_moulded_in_one_piece(tmp_path: Path) -> None:
     back, _ = Solid.of(shapes.ellipsoid((0.03, 0.014, 0.01), 3)).split(np.array([0.0, 1.0, 0.0]), 0.0)
     for turn in (np.eye(3), np.diag([1.0, -1.0, -1.0])):
-        made = moulded(back.surface().moved(rotation=turn), kind=Kind.ONE_PIECE, shrink=SHRINK)
+        off = back.surface().moved(rotation=turn, shift=vector(1, 7, -3))
+        made = moulded(off, kind=Kind.ONE_PIECE, shrink=SHRINK)
         files = written(made, tmp_path)
         assert set(files.meshes) == {"board", "frame"}
         volume = back.volume * 1e9 * K3
@@ -126,6 +127,19 @@ def test_a_flat_back_is_moulded_in_one_piece(tmp_path: Path) -> None:
         room = (60 * k + 20.4) * (20 * k + 20.4) * (14 * k + 10)
         assert made.halves.rubber[0] * 1e9 == pytest.approx(room - volume, rel=1e-5)
         assert (made.sprue, made.vents, made.study.trapped) == (None, (), 0.0)
+
+
+def test_a_back_as_flat_as_a_print_is_stands_on_its_board(tmp_path: Path) -> None:
+    # Corners of the back up to 8 um off its plane: no gap is left between it and the board.
+    back, _ = Solid.of(shapes.ellipsoid((0.03, 0.014, 0.01), 3)).split(np.array([0.0, 1.0, 0.0]), 0.0)
+    skin = back.surface()
+    rough = skin.vertices.copy()
+    flat = rough[:, 1] < 1e-9
+    rough[flat, 1] += np.random.default_rng(2).uniform(0, 8e-6, np.count_nonzero(flat))
+    files = written(moulded(Surface(rough, skin.faces), kind=Kind.ONE_PIECE), tmp_path)
+    board = files.meshes["board"]
+    assert (board.body_count, board.euler_number) == (1, 2)
+    assert above(board, 6.0) == pytest.approx(back.volume * 1e9, rel=2e-3)
 
 
 @pytest.mark.parametrize("body", [BODY, shapes.sphere(0.01, 3)])
