@@ -56,9 +56,10 @@ def test_what_is_not_convex_has_no_planes() -> None:
     assert planes_of(shapes.together(shapes.sphere(1.0, 2), shapes.sphere(0.4, 2).turned())) is None
     apart = shapes.sphere(1.0, 2).moved(shift=np.array([3.0, 0, 0]))
     assert planes_of(shapes.together(shapes.sphere(1.0, 2), apart)) is None
-    # One vertex of a fine ball pushed in by a hundredth of the radius; one vertex by rounding of four-byte numbers.
-    ball = shapes.sphere(0.02, 4)
-    for share, convex in ((0.99, False), (1 - 1e-8, True)):
+    # One vertex of a fine ball pushed in by a five hundredth of the radius, less than a millionth of the volume; one by
+    # the rounding of four-byte numbers.
+    ball = shapes.sphere(0.02, 5)
+    for share, convex in ((0.998, False), (1 - 1e-8, True)):
         vertices = ball.vertices.copy()
         vertices[100] *= share
         assert (planes_of(Surface(vertices, ball.faces)) is not None) is convex

@@ -50,11 +50,20 @@ def test_points_with_thousands_of_spots_as_near() -> None:
     planes = np.abs(np.einsum("ij,ij->i", ball.corners[:, 0], ball.double_areas)) / np.linalg.norm(
         ball.double_areas, axis=1
     )
-    assert Proximity.of(ball, 0.9).nearest(np.zeros((1, 3))).distance[0] == pytest.approx(planes.min(), rel=1e-12)
+    assert Proximity.spaced(ball, 1.0).nearest(np.zeros((1, 3))).distance[0] == pytest.approx(planes.min(), rel=1e-12)
+
+
+def test_a_large_face_a_little_nearer_than_many_small_ones() -> None:
+    # The spots of the small ones all come before those of the large one, at whose place nearest there is none.
+    many = shapes.box((4, 4, 0.2), (0, 0, 1.1), level=6)
+    large = shapes.box((4, 4, 0.2), (0.3, 0.4, -1.09))
+    found = Proximity.spaced(shapes.together(many, large), 1.0).nearest(np.zeros((1, 3)))
+    assert found.distance[0] == pytest.approx(0.99, rel=1e-12)
 
 
 def test_a_triangle_alone_and_no_points() -> None:
-    corner = Proximity.of(Surface(np.eye(3), np.array([[0, 1, 2]])), 1.0)
+    corner = Proximity.spaced(Surface(np.eye(3), np.array([[0, 1, 2]])), 5.0)
     assert corner.nearest(np.zeros((1, 3))).distance[0] == pytest.approx(1 / np.sqrt(3), rel=1e-14)
+    assert corner.nearest(np.ones((1, 3)) * 7).distance[0] == pytest.approx(20 / np.sqrt(3), rel=1e-14)
     assert corner.nearest(np.array([[3.0, 0, 0]])).distance[0] == pytest.approx(2, rel=1e-14)
     assert len(corner.nearest(np.empty((0, 3))).distance) == 0
