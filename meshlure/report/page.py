@@ -9,11 +9,14 @@ from typing import Any
 from meshlure.report import (
     airborne,
     attitude,
+    ballast,
     budget,
+    chambers,
     charts,
     compared,
     flight,
     flow,
+    moulds,
     origin,
     substance,
     underwater,
@@ -80,6 +83,7 @@ def page(study: Study) -> str:
     shown = subject(results)
     with drawing_style():
         pictures = _pictures(study, results, shown)
+        made = moulds.moulded(study, results)
     templates = Environment(
         loader=PackageLoader("meshlure.report", "templates"),
         autoescape=True,
@@ -101,6 +105,10 @@ def page(study: Study) -> str:
         help_words=flight.help_words(results["flight"]),
         timings=origin.timings(results),
         budget_words=budget.words(results),
+        balanced=ballast.balanced(results),
+        chambered=chambers.chambered(results),
+        moulded=made,
+        changes=[str(row["words"]) for row in results.get("changes") or []],
         tables=_tables(results),
         turning=turning(study.scene, results, shown),
         w=wording,

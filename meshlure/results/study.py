@@ -59,6 +59,56 @@ class View:
 
 
 @dataclass(frozen=True, eq=False)
+class DraftRegion:
+    """A part of a mould half's map.
+
+    Attributes
+    ----------
+    low, high : float or None, degrees
+        Draft there; None where rubber is held.
+    rings : tuple of (n, 2) arrays, mm
+        Outer ones anticlockwise, holes clockwise.
+    """
+
+    low: float | None
+    high: float | None
+    rings: tuple[Floats, ...]
+
+
+@dataclass(frozen=True, eq=False)
+class HalfMap:
+    """A mould half seen from the side that it is pulled to, as it lies on its board.
+
+    Attributes
+    ----------
+    half : str
+        A or B.
+    regions : tuple of DraftRegion
+        Together all that the half covers; what is held comes last and lies over the others.
+    """
+
+    half: str
+    regions: tuple[DraftRegion, ...]
+
+
+@dataclass(frozen=True, eq=False)
+class Relief:
+    """A piece seen from above as heights on a grid.
+
+    Attributes
+    ----------
+    name : str
+    heights : (i, j) array, mm
+        Of the topmost place over each cell, along x and y of the bench; NaN beside the piece.
+    pitch : float, mm
+    """
+
+    name: str
+    heights: Floats
+    pitch: float
+
+
+@dataclass(frozen=True, eq=False)
 class ScenePiece:
     """One piece's mesh, to be looked at.
 
@@ -112,11 +162,17 @@ class Study:
         side, top and front, for drawing.
     scene : Scene or None
         The meshes to look at from all sides; None where there is none to show.
+    maps : tuple of HalfMap
+        Of a mould's halves, where one was made.
+    reliefs : tuple of Relief
+        Of a mould's boards.
     """
 
     results: Mapping[str, Any]
     views: tuple[View, ...] = ()
     scene: Scene | None = None
+    maps: tuple[HalfMap, ...] = ()
+    reliefs: tuple[Relief, ...] = ()
 
     def to_json(self) -> str:
         """Return results.json as text; raises ValueError if a number in it is not finite."""
