@@ -54,7 +54,8 @@ def _row(measure: Measure, trees: Sequence[Tree]) -> Tree | None:
     values = [measure.value(tree) for tree in trees]
     if all(value is None for value in values):
         return None
-    first, differences = values[0], []
+    first = values[0]
+    differences: list[Tree] = []
     for tree, value in zip(trees[1:], values[1:], strict=True):
         if first is None or value is None:
             differences.append({"by": None, "low": None, "high": None, "counts": None})

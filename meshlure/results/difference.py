@@ -78,7 +78,7 @@ def reserve(results: Tree) -> Doubts:
     # The little that is left of what water and mass lose each is no surer than these.
     water = results["buoyancy"]["water"]["density_kg_m3"] * 1e-6
     lost = (results["smooth"]["displaced_mm3"] - results["buoyancy"]["displaced_mm3"]) * water
-    return found | _facets(results, off, max(abs(lost), abs(lost - off)))
+    return {**found, **_facets(results, off, max(abs(lost), abs(lost - off)))}
 
 
 def mass(results: Tree) -> Doubts:

@@ -216,8 +216,8 @@ def _sink_band(tree: Tree) -> Band | None:
     if row is None:
         return None
     speed = sinking["speed_m_s"] * 100
-    ends = sorted((sinking["speed_low_m_s"] * 100, sinking["speed_high_m_s"] * 100))
-    drag = difference.scattered(speed, *ends, _cd(row))
+    low, high = sorted((sinking["speed_low_m_s"] * 100, sinking["speed_high_m_s"] * 100))
+    drag = difference.scattered(speed, low, high, _cd(row))
     half = max(buoyancy["reserve_high_g"] - buoyancy["reserve_g"], buoyancy["reserve_g"] - buoyancy["reserve_low_g"])
     loose = abs(speed) * min(1.0, half / abs(buoyancy["reserve_g"]) / 2) if buoyancy["reserve_g"] else abs(speed)
     return Band.root([drag, Band(loose, loose)])
