@@ -8,9 +8,8 @@ from typing import Any, Final, NoReturn
 
 import typer
 
-from meshlure.cli.commands import JOBS
 from meshlure.cli.terminal import answer, complain, hush, tell
-from meshlure.cli.usage import Commands, UsageError, misread, shared
+from meshlure.cli.usage import Commands, UsageError, misread
 from meshlure.errors import InputError
 from meshlure.version import VERSION
 
@@ -39,10 +38,6 @@ app = typer.Typer(
     rich_markup_mode=None,
     pretty_exceptions_enable=False,
 )
-for job, modules in JOBS.items():
-    for module in modules:
-        name = module.__name__.rpartition(".")[2]
-        app.command(name, help=module.HELP, short_help=module.SHORT, rich_help_panel=job)(shared(getattr(module, name)))
 
 
 def _version(asked: bool) -> None:

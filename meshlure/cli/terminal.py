@@ -24,8 +24,8 @@ _PLAINER: Final = str.maketrans(
 NARROWEST: Final = 40
 """Columns under which lines are no longer fitted to a terminal."""
 
-_HEAD: Final = re.compile(r" *(?:- |[a-z][a-z ]{0,10}: |[a-z][a-z ]{0,10} {2,})?")
-"""What a line begins with that its continuation stands beside: a dash, "found: ", "mass     "."""
+_HEAD: Final = re.compile(r" *(?:- |[A-H]  |[a-z][a-z ]{0,10}: |[a-z][a-z ]{0,10} {2,})?")
+"""What a line begins with that its continuation stands beside: a dash, a letter, "found: ", "mass     "."""
 _DEEPEST: Final = 12
 """Columns to which a continuation is moved in at most."""
 

@@ -11,7 +11,7 @@ from typing import Annotated, Any, Final
 import typer
 from typer.core import TyperGroup
 
-from meshlure.cli import report
+from meshlure.cli.commands import JOBS, NAMES, Built, module
 from meshlure.cli.terminal import hush
 from meshlure.errors import Fault, InputError
 from meshlure.files.nearness import nearest
@@ -26,20 +26,16 @@ _STEM: Final = 5
 class Commands(TyperGroup):
     """The commands, listed by job; a word that is none of them is answered with the one that was meant."""
 
+    def __init__(self, **settings: Any) -> None:
+        super().__init__(**settings)
+        self.commands: Any = Built()
+
     def format_options(self, ctx: Any, formatter: Any) -> None:
         """Write the commands by job, then the options."""
-        names = self.list_commands(ctx)
-        wide = max(map(len, names), default=0)
-        jobs: dict[str, list[tuple[str, str]]] = {}
-        for name in names:
-            command = self.commands[name]
-            room = formatter.width - wide - 6
-            jobs.setdefault(command.rich_help_panel or "", []).append(  # type: ignore[attr-defined]
-                (name.ljust(wide), command.get_short_help_str(room))
-            )
-        for job, rows in jobs.items():
+        wide = max(map(len, NAMES))
+        for job, names in JOBS.items():
             with formatter.section(job):
-                formatter.write_dl(rows)
+                formatter.write_dl([(name.ljust(wide), module(name).SHORT) for name in names])
         super().format_options(ctx, formatter)
 
     def format_commands(self, ctx: Any, formatter: Any) -> None:
@@ -58,12 +54,12 @@ class Commands(TyperGroup):
         return super().resolve_command(ctx, args)
 
     def _unknown(self, word: str) -> Fault:
-        if Path(word).suffix.casefold() in report.SUFFIXES:
+        if Path(word).suffix.casefold() in module("report").SUFFIXES:
             step = f"write meshlure report {word} ..."
             return Fault("a command comes first", "meshlure", word, ", ".join(self.commands), step)
         near = nearest(word, self.commands)
         stem = word.casefold()[:_STEM]
-        does = [name for name, command in self.commands.items() if stem in (command.short_help or "").casefold()]
+        does = [name for name in NAMES if stem in module(name).SHORT.casefold()]
         step = "meshlure --help says what each does"
         if near:
             step = f"did you mean {_either(f'meshlure {name}' for name in near)}?"

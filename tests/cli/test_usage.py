@@ -4,10 +4,12 @@ from __future__ import annotations
 
 import json
 import re
+from pathlib import Path
 
 import pytest
 from command_bench import QUICK, Bench, fault
 
+from meshlure.cli import commands
 from meshlure.cli.commands import JOBS
 
 
@@ -35,9 +37,13 @@ def test_a_slip_is_answered_with_what_was_meant(bench: Bench, words: list[str], 
 
 
 def test_every_job_has_commands_and_no_command_two() -> None:
-    modules = [module for modules in JOBS.values() for module in modules]
-    assert len(modules) == len(set(modules)) >= 4
+    names = [name for names in JOBS.values() for name in names]
+    assert len(names) == len(set(names)) >= 14
     assert all(JOBS.values())
+    # Every module of a command that is there is listed.
+    folder = Path(commands.__file__).parent
+    there = {path.stem for path in folder.glob("*.py") if "SHORT: Final" in path.read_text(encoding="utf-8")}
+    assert set(names) == there
 
 
 def test_quiet_prints_only_errors(bench: Bench) -> None:
