@@ -91,7 +91,7 @@ def solid_standoff(boxes: Boxes, cylinder: Cylinder, tolerance: float = TOLERANC
 
 
 def clears(boxes: Boxes, cylinder: Cylinder, distance: float, tolerance: float = TOLERANCE) -> bool:
-    """Tell whether no place of a mesh is nearer to a solid cylinder than a distance, m.
+    """Tell whether no place of a mesh is nearer to a solid cylinder than a distance, m, or lies in it.
 
     Parameters
     ----------
@@ -99,13 +99,13 @@ def clears(boxes: Boxes, cylinder: Cylinder, distance: float, tolerance: float =
     cylinder : Cylinder
     distance : float, m
     tolerance : float, m
-        Positive; what is nearer by less than this may pass.
+        Positive; what is nearer by less than this may pass, and what is as near as this is too near for any distance.
 
     Notes
     -----
     As `solid_standoff`, but quicker: it ends with the first place that is too near.
     """
-    skin, bar = _Within(cylinder), distance - tolerance
+    skin, bar = _Within(cylinder), max(distance - tolerance, tolerance)
     middle, reach = (boxes.low + boxes.high) / 2, _length(boxes.high - boxes.low) / 2
     kept = _length(middle - skin.nearest(middle)) - reach < bar
     middle, reach = boxes.middle[kept].reshape(-1, 3), boxes.radius[kept].reshape(-1)

@@ -62,7 +62,8 @@ def _short_of_room(search: Search, net: float) -> str:
     """How much has room, by material, and what would have room instead."""
     rooms: dict[str, float] = {}
     needed: dict[str, float] = {}
-    for kind, ballast in search.cramped.items():
+    for kind in search.cramped:
+        ballast = search.longest(kind)
         name, density = kind.substance.name or "the ballast", kind.substance.density
         held = 0.0 if ballast is None else ballast.volume().amount * density
         if name not in rooms or held > rooms[name]:
@@ -95,7 +96,7 @@ def _short_of_sizes(search: Search, net: float, best: Sequence[Ranked]) -> str:
 def _fitting(search: Search, net: float) -> list[str]:
     """Metals not asked for of which some rod has room."""
     asked = {metal.name for metal in search.asked.metals}
-    pattern = next(iter(search.cramped))
+    pattern = search.cramped[0]
     found = []
     for name in DENSER:
         metal = substance(Stated(material=name), "ballast.materials")

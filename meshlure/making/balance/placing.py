@@ -82,6 +82,8 @@ class Placing:
         if placed is not None or kind.shape == BALL:
             return placed
         # In a tight body the grid may miss the one place that there is.
+        if self.room.longest(ballast) < ballast.length:
+            return None
         longest = self.longest(kind, net)
         if longest is None or longest.length < ballast.length:
             return None
@@ -130,7 +132,7 @@ class Placing:
         heights = self._heights(line, net, self.room.places(ballast))
         if not len(heights):
             return None
-        # The next voxel below has no room by the grid, which errs by half of one.
+        # The next voxel below has no room by the grid, which errs by about one.
         low = heights[0] - self.room.depths.pitch
         for height in heights[:: max(1, len(heights) // _TRIED)]:
             if self.room.holds(ballast.at(line.at(height))):

@@ -148,7 +148,7 @@ class Room:
         ----------
         ballast : Ballast
         sure : bool
-            The grid errs by half a voxel either way: whether what it cannot tell counts as no room.
+            The grid errs by about a voxel either way: whether what it cannot tell counts as no room.
 
         Notes
         -----
@@ -159,12 +159,9 @@ class Room:
         free, along = self._free(ballast, slack)
         if kind.shape == BALL:
             steps = (np.arange(kind.count) - (kind.count - 1) / 2) * kind.spacing
+            middle = np.logical_and.reduce([_shifted(free, int(np.rint(step / pitch)), along) for step in steps])
         else:
-            half = max(ballast.length / 2 + kind.fit - slack, 0.0)
-            steps = np.linspace(-half, half, 2 * int(np.ceil(half / pitch)) + 1)
-        middle = np.ones_like(free)
-        for shift in np.unique(np.round(steps / pitch).astype(np.intp)):
-            middle &= _shifted(free, int(shift), along)
+            middle = _runs(free, int(np.rint(max(ballast.length / 2 + kind.fit - slack, 0.0) / pitch)), along)
         places = self.depths.places(middle)
         return np.asarray(places[self._allowed(places[:, 0], _reach(ballast))] @ self.turn)
 
@@ -240,6 +237,19 @@ def _shifted(free: Bools, steps: int, axis: int) -> Bools:
     if abs(steps) < count:
         here[max(-steps, 0) : count - max(steps, 0)] = there[max(steps, 0) : count - max(-steps, 0)]
     return moved
+
+
+def _runs(free: Bools, reach: int, axis: int) -> Bools:
+    """Voxels that are free with as many on either side along an axis."""
+    whole = np.zeros_like(free)
+    there, here = np.moveaxis(free, axis, 0), np.moveaxis(whole, axis, 0)
+    wide = 2 * reach + 1
+    if wide <= len(there):
+        held = np.concatenate(
+            [np.zeros((1, *there.shape[1:]), dtype=np.int32), np.cumsum(there, axis=0, dtype=np.int32)]
+        )
+        here[reach : len(here) - reach] = held[wide:] - held[:-wide] == wide
+    return whole
 
 
 def _standoff(boxes: Boxes, piece: Solid) -> tuple[float, Floats]:

@@ -72,8 +72,8 @@ class Search:
     lines : Lines
     placing : Placing
     options : list of Option
-    cramped : dict of Ballast or None
-        By kind that would add the mass wanted but has no room: the longest rod that has; None where none has.
+    cramped : list of Kind
+        That would add the mass wanted, but have no room.
     """
 
     ground: Ground
@@ -83,7 +83,7 @@ class Search:
     lines: Lines
     placing: Placing
     options: list[Option] = field(default_factory=list)
-    cramped: dict[Kind, Ballast | None] = field(default_factory=dict)
+    cramped: list[Kind] = field(default_factory=list)
 
     @classmethod
     def of(cls, ground: Ground, goal: Aim, asked: Asked, room: Room) -> Search:
@@ -116,12 +116,17 @@ class Search:
         for kind in elsewhere:
             tell(f"placing {kind.substance.name} beside")
             ballast = self.placing.beside(kind, net)
-            if ballast is not None:
-                self.options.append(self._option(ballast))
+            if ballast is None:
+                self.cramped.append(kind)
             else:
-                self.cramped[kind] = self.placing.longest(kind, net) if kind.shape == ROD else None
+                self.options.append(self._option(ballast))
         if len(self.options) < _ENOUGH:
-            self.options += [self._option(most) for most in self.cramped.values() if most is not None]
+            longest = (self.longest(kind) for kind in self.cramped)
+            self.options += [self._option(rod) for rod in longest if rod is not None]
+
+    def longest(self, kind: Kind) -> Ballast | None:
+        """Return the longest rod of a cramped kind that has room; None where none has, and for balls."""
+        return None if kind.shape == BALL else self.placing.longest(kind, self.lines.net)
 
     def _kinds(self, metal: Substance, net: float) -> Iterator[Kind]:
         """Kinds of a metal that can add a net mass, kg."""
