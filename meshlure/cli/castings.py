@@ -4,7 +4,10 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from pathlib import Path
-from typing import Any
+from typing import Any, Final
+
+NOTHING: Final = 1e-4
+"""Share of the body's volume below which held rubber is a matter of facets, not worth a word."""
 
 
 def mould_lines(results: Mapping[str, Any], out: Path | None) -> tuple[str, ...]:
@@ -49,8 +52,8 @@ def _scale(found: Mapping[str, Any]) -> str:
 def _parting(found: Mapping[str, Any]) -> str:
     way = "[" + ", ".join(f"{value + 0.0:.3g}" for value in found["pull"]) + "]"
     held = f"{found['trapped_mm3']:.3g} mm3 held, up to {found['undercut_depth_mm']:.1f} mm under"
-    free = found["undercut_depth_mm"] == 0
-    return f"along {way} at {found['plane_mm']:.2f} mm: {'nothing is held' if free else held}"
+    free = found["trapped_mm3"] <= NOTHING * found["volume_moulded_mm3"]
+    return f"along {way} at {round(found['plane_mm'], 2) + 0.0:.2f} mm: {'nothing is held' if free else held}"
 
 
 def _count(number: int, noun: str) -> str:

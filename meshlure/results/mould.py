@@ -135,6 +135,7 @@ def _parting(made: Mould) -> Tree:
     )
     pull, offset = _plane(bench)
     best = study.best
+    way = bench.turn.T @ best.direction
     lean = float(np.degrees(np.arccos(np.clip(best.direction[2], -1.0, 1.0)))) + 0.0
     return {
         "pull": plain(pull),
@@ -153,8 +154,9 @@ def _parting(made: Mould) -> Tree:
         "trapped_mm3": study.trapped * MM3,
         "trapped_error_mm3": sum(one.draft.trapped_error for one in study.halves) * MM3,
         "best_pull": {
-            "direction": plain(bench.turn.T @ best.direction),
+            "direction": plain(way),
             "lean_deg": lean,
+            "plane_mm": (best.height + float(best.direction[2]) * bench.height) / _stretch(way, bench) * MM,
             "trapped_mm3": best.trapped * MM3,
             "pitch_mm": best.pitch * MM,
         },
@@ -163,9 +165,16 @@ def _parting(made: Mould) -> Tree:
 
 def _plane(bench: Bench) -> tuple[Floats, float]:
     """Return the pull, and the parting plane's offset along it in the drawing, m."""
-    # Where the axes' scales differ the drawn plane is square to the scaled pull, by less than their difference.
-    length = float(np.linalg.norm(bench.pull * bench.scale.part))
-    return bench.pull, bench.height / length
+    return bench.pull, bench.height / _stretch(bench.pull, bench)
+
+
+def _stretch(way: Floats, bench: Bench) -> float:
+    """Length in the master of a unit along a direction of the drawing.
+
+    Where the axes' scales differ, a plane that is square to a direction in the master is so in the drawing to within
+    their difference.
+    """
+    return float(np.linalg.norm(way * bench.scale.part))
 
 
 def _undercuts(one: Half, bench: Bench) -> list[Tree]:

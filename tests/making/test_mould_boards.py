@@ -268,6 +268,9 @@ def test_from_a_bait_to_its_files(tmp_path: Path) -> None:
     body = next(row for row in found.results["pieces"] if row["role"] == "body")
     assert (account["resin_cm3"] - account["resin_outside_cm3"]) * 1e3 == pytest.approx(body["volume_mm3"], rel=1e-6)
     assert account["resin_g"] == pytest.approx(account["resin_cm3"] * body["density_g_cm3"], rel=1e-9)
+    # Both planes in the drawing go through the body's middle, 3 mm off the mesh's origin.
+    for plane, way in ((account, account["pull"]), (account["best_pull"], account["best_pull"]["direction"])):
+        assert plane["plane_mm"] == pytest.approx(np.dot(way, [80, 3, 5]), abs=1e-3)
     # 1.15 g/cm3 and 15% to spare, as the account says.
     assert account["rubber_g"] == pytest.approx(np.array(account["rubber_cm3"]) * 1.15 * 1.15, rel=1e-9)
     package = trimesh.load(tmp_path / "mould.3mf")

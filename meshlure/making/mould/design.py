@@ -135,7 +135,7 @@ def design(
         middle = float(made.body.bounds[:, 2].mean())
         made = made.lowered(shadow.best_height(middle, made.whole.volume))
     progress("studying how it parts")
-    findings = [*bench.scale.findings(), *_hollow_findings(bait, made), *_loose_findings(made)]
+    findings = [*bench.scale.findings(), *_hollow_findings(bait, made), *_loose_findings(made, kind)]
     if kind is Kind.ONE_PIECE:
         study = pull_study(made.lowered(LEVEL), section.draft_least, HALVES[:1], lean=False)
     else:
@@ -295,18 +295,22 @@ def _hollow_findings(bait: Bait, made: Plug) -> list[Finding]:
     return found
 
 
-def _loose_findings(made: Plug) -> list[Finding]:
-    """Tell of what lies inside without anything of the mould that holds it."""
+def _loose_findings(made: Plug, kind: Kind) -> list[Finding]:
+    """Tell of what lies inside without anything of the mould that holds it; an open mould has no seats for pins."""
+    loose = {Holding.EMBEDDED, Holding.PINNED} if kind is Kind.ONE_PIECE else {Holding.EMBEDDED}
+    held = "it hangs on a wire, or is cast into a second pour"
+    if kind is not Kind.ONE_PIECE:
+        held = f"pinned = true gives it seats for pins; or {held}"
     return [
         Finding(
             code="mould-loose",
             level=Level.NOTE,
             piece=fitting.piece.name,
             message=f"'{fitting.piece.name}' lies inside, and nothing of the mould holds it in its place",
-            advice="pinned = true gives it seats for pins; or it hangs on a wire, or is cast into a second pour",
+            advice=held,
         )
         for fitting in made.fittings
-        if fitting.holding is Holding.EMBEDDED
+        if fitting.holding in loose and kind is not Kind.MASTER
     ]
 
 
