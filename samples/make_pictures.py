@@ -43,7 +43,8 @@ def main() -> None:
     with tempfile.TemporaryDirectory() as place:
         for folder, (command, bait) in RUNS.items():
             out = Path(place) / folder
-            words = [str(Path(sys.executable).with_name("meshlure")), command, str(HERE / bait), "--out", str(out), "--quiet"]
+            program = str(Path(sys.executable).with_name("meshlure"))
+            words = [program, command, str(HERE / bait), "--out", str(out), "--quiet"]
             subprocess.run(words, check=False)
             if not (out / "report.html").exists():
                 raise SystemExit(f"{command} {bait} wrote no page")

@@ -13,7 +13,7 @@ from typing import Any
 
 import numpy as np
 import pytest
-from studied import SAMPLES, drawn, sample
+from studied import SAMPLES, drawn
 
 sys.path.append(str(Path(__file__).parent / "authorities"))
 
