@@ -92,7 +92,7 @@ def _shorter(site: Site, asked: Needs, trials: list[Trial]) -> list[tuple[Trial,
                 continue
             less = shorter(site, asked, row.trial.option, _asked_of(site, row.trial, holds))
             if less is not None:
-                found.append((rested(site, less, row.trial), kind))
+                found.append((rested(site, less), kind))
     return found
 
 

@@ -102,11 +102,12 @@ def rested(site: Site, option: Option, near: Trial | None = None) -> Trial:
     site : Site
     option : Option
     near : Trial, optional
-        Of a chamber much like it, from whose postures the search starts; by default from the back up.
+        Of a chamber much like it, whose postures are followed, which is quicker; by default the bait is set down with
+        its back up, as in the report.
     """
     vessel = option.vessel(site)
-    found = {end: _rest(site, vessel, option, _ends(site, end), near and near.rested[end].up) for end in ENDS}
-    ends = _ends(site, "nose")
+    found = {end: _rest(site, vessel, option, ends_of(site, end), near and near.rested[end].up) for end in ENDS}
+    ends = ends_of(site, "nose")
     mass = vessel.composition.mass(ends).amount
     reserve = vessel.hull(ends).volume * vessel.water - mass
     return Trial(option, option.shift(site), reserve, found)
@@ -121,17 +122,17 @@ def leaked(site: Site, trial: Trial) -> Leak:
     """Return what a bait that was tried does once its chamber is full of water."""
     option = trial.option
     vessel = option.flooded(site)
-    tried = {end: _rest(site, vessel, option, _ends(site, end), trial.rested[end].up) for end in ENDS}
+    tried = {end: _rest(site, vessel, option, ends_of(site, end), trial.rested[end].up) for end in ENDS}
     # Both ends may hold, or none: then the nose, to which the bore was sloped.
     end = "tail" if not tried["nose"].returns and not tried["tail"].returns else "nose"
-    ends = _ends(site, end)
+    ends = ends_of(site, end)
     displaced, mass = vessel.hull(ends).volume * vessel.water, vessel.composition.mass(ends).amount
     state = behaviour(displaced - mass, suspends_within(displaced, site.bait.plan.bait.suspends_within))
     return Leak(displaced - mass, state, tried[end], end)
 
 
-def _ends(site: Site, end: str) -> Ends:
-    """Ends of all chambers: this one's as given, the others' held, or the lower one with the back up."""
+def ends_of(site: Site, end: str) -> Ends:
+    """Return the ends of all chambers: this one's as given, the others' held, or the lower one with the back up."""
     back = site.bait.frame.back
     others = {
         row.balls.chamber: row.balls.at or ("tail" if float(row.axis @ back) > 0 else "nose")
@@ -141,7 +142,7 @@ def _ends(site: Site, end: str) -> Ends:
 
 
 def _rest(site: Site, vessel: Vessel, option: Option, ends: Ends, start: Floats | None) -> Rested:
-    repose = vessel.reposed(ends, site.bait.frame.back if start is None else start)
+    repose = vessel.landed(ends) if start is None else vessel.reposed(ends, start)
     up = vessel.dangle(ends).hang.up if repose is None else repose.rest.state.up
     if up is None:
         return Rested(None, None, None)

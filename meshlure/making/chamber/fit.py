@@ -46,6 +46,12 @@ _GAIN = 4.0
 _LEAST_GAIN = 0.2
 """Least share of what was missing that a step is taken to have gained."""
 
+_ENOUGH = 1e-6
+"""m by which a distance may be less than asked for: what an exact one is found to."""
+
+_SHORT = 3.0
+"""Voxels by which a stretch of the grid may be shorter than it is."""
+
 _ROUNDS = 5
 _TRIMS = 8
 
@@ -80,7 +86,8 @@ def bores(site: Site, grid: Grid, rules: Rules, least: float, most: int = 1) -> 
     stand for the skin, and moved across until no step lengthens them. What comes out is held against exact distances
     to the mesh, and shortened where those are less than asked for. A bore in the mid-plane is preferred.
     """
-    looks = [look for look in grid.looks(rules) if look.length > 0.7 * least]
+    # A stretch of whole voxels may be shorter than it is by one at either end, and by what half a voxel's depth hides.
+    looks = [look for look in grid.looks(rules) if look.length > least - _SHORT * grid.field.pitch]
     cloud = Cloud(site.points, site.way.points)
     found: list[Bore] = []
     for _ in range(most + 1):
@@ -119,17 +126,23 @@ def _best(site: Site, rules: Rules, looks: list[Look], cloud: Cloud) -> Bore | N
 def _found(site: Site, rules: Rules, looks: list[Look], cloud: Cloud, *, free: bool) -> Bore | None:
     """The best bore near lines of the grid; where it is not free it stays in the mid-plane."""
     trials: list[_Trial] = []
+    fair = _asked(rules, -_ENOUGH / 2)
     for look in looks[:_STARTS]:
         near = cloud.near(look.place, rules.reach)
-        trials.append(_tried(near, rules, look.place, (look.start + look.end) / 2))
+        trials.append(_tried(near, fair, look.place, (look.start + look.end) / 2))
     trials.sort(key=lambda t: -t.worth)
     best: list[_Trial] = []
     for trial in trials:
         if trial.run.length > 0 and all(np.abs(trial.place - other.place).max() > _ROOM for other in best):
             best.append(trial)
-    bores = [
-        _settled(site, rules, cloud.near(t.place, rules.reach + 2 * _ROOM), t, free=free) for t in best[:_FOLLOWED]
-    ]
+    # A fit to the last micrometre is looked for only where there is none with a margin.
+    for margin in (_CLOSE, -_ENOUGH / 2):
+        bores = [
+            _settled(site, rules, cloud.near(t.place, rules.reach + 2 * _ROOM), t, margin, free=free)
+            for t in best[:_FOLLOWED]
+        ]
+        if any(bores):
+            break
     return max((bore for bore in bores if bore is not None), key=lambda bore: bore.length, default=None)
 
 
@@ -158,9 +171,9 @@ def _moved(cloud: Cloud, rules: Rules, trial: _Trial, first: float, last: float,
     return best
 
 
-def _settled(site: Site, rules: Rules, cloud: Cloud, trial: _Trial, *, free: bool) -> Bore | None:
+def _settled(site: Site, rules: Rules, cloud: Cloud, trial: _Trial, margin: float, *, free: bool) -> Bore | None:
     """The bore of a line, moved and shortened until its exact distances are what was asked for."""
-    asked = replace(rules, wall=rules.wall + _CLOSE, end_wall=rules.end_wall + _CLOSE, clear=rules.clear + _CLOSE)
+    asked = _asked(rules, margin)
     trial = _moved(cloud, asked, trial, _ROOM / 2, _ROOM / 16, free=free)
     for rounds in range(_ROUNDS):
         if trial.run.length <= 0:
@@ -204,8 +217,8 @@ def _trimmed(site: Site, rules: Rules, trial: _Trial) -> Bore | tuple[float, flo
     lacks, gain, missed = (0.0, 0.0), _GAIN, np.inf
     for _ in range(_TRIMS):
         bore = measured(site, cut)
-        nose, tail = (max(rules.end_wall - end, 0.0) for end in bore.ends)
-        lacks = max(rules.wall - bore.wall, 0.0), max(rules.clear - bore.clear, 0.0)
+        nose, tail = (_lack(rules.end_wall, end) for end in bore.ends)
+        lacks = _lack(rules.wall, bore.wall), _lack(rules.clear, bore.clear)
         for lack, at, keeps in zip(lacks, (bore.wall_at, bore.nearest_at), (rules.wall, rules.clear), strict=True):
             along = float((at - cut.middle) @ cut.axis)
             if lack > 0 and abs(along) < cut.length / 2 - keeps / 2:
@@ -221,6 +234,16 @@ def _trimmed(site: Site, rules: Rules, trial: _Trial) -> Bore | tuple[float, flo
         missed = max(lacks) if max(lacks) > 0 else np.inf
         cut = shortened(cut, nose, tail)
     return lacks
+
+
+def _asked(rules: Rules, margin: float) -> Rules:
+    """Every distance greater by a margin, m."""
+    return replace(rules, wall=rules.wall + margin, end_wall=rules.end_wall + margin, clear=rules.clear + margin)
+
+
+def _lack(asked: float, found: float) -> float:
+    """By how much a distance falls short, m."""
+    return asked - found if asked - found > _ENOUGH else 0.0
 
 
 def _covers(site: Site, rules: Rules, bore: Bore, place: Floats, start: float, end: float) -> bool:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable
+from dataclasses import replace
 from typing import Final
 
 from meshlure.making.chamber.bore import Bore, measured, shortened
@@ -94,21 +95,20 @@ def shorter(site: Site, asked: Needs, option: Option, holds: Callable[[Option], 
     found to a quarter of a millimetre.
     """
     low, high = max(asked.shortest(option.choice), option.choice.row + _WORTH * option.travel), option.bore.length
-    best = _cut_back(site, asked, option, low)
-    if low >= high or best is None or not holds(best):
+    if low >= high or not holds(_cut_back(asked, option, low)):
         return None
     while high - low > _CLOSE:
         middle = (low + high) / 2
-        tried = _cut_back(site, asked, option, middle)
-        if tried is not None and holds(tried):
-            best, low = tried, middle
+        if holds(_cut_back(asked, option, middle)):
+            low = middle
         else:
             high = middle
-    return best
+    best = _cut_back(asked, option, low)
+    return made(site, asked, option.choice, measured(site, best.bore.cut))
 
 
-def _cut_back(site: Site, asked: Needs, option: Option, length: float) -> Option | None:
-    """An option with its bore shortened to a length."""
+def _cut_back(asked: Needs, option: Option, length: float) -> Option:
+    """An option with its bore shortened to a length, its walls those of the longer one."""
     less = option.bore.length - length
     nose, tail = (0.0, less) if asked.open_to == "nose" else (less, 0.0)
-    return made(site, asked, option.choice, measured(site, shortened(option.bore.cut, nose, tail)))
+    return replace(option, bore=replace(option.bore, cut=shortened(option.bore.cut, nose, tail)))
