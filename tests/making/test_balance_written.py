@@ -59,7 +59,7 @@ class Drawn:
         """From a bait drawn with its nose to -x and its back to +z to this one."""
         side = np.cross(self.back, self.nose)
         plain = np.array([[-1.0, 0, 0], [0, 0, 1.0], [0, -1.0, 0]])
-        return np.stack([self.nose, self.back, side], axis=1) @ plain
+        return np.asarray(np.stack([self.nose, self.back, side], axis=1) @ plain)
 
     def moved(self, surface: Surface) -> Surface:
         return surface.moved(rotation=self.turn, shift=np.array(self.middle))
