@@ -34,14 +34,20 @@ def rows(*trees: Tree) -> dict[str, Tree]:
 
 
 @functools.cache
-def box(density: float = 1.2, nose: bool = False) -> Tree:
-    """A box of 60 x 12 x 20 mm with a lead cube of 8 mm, and another of 4 mm ahead if asked, studied; it sinks."""
+def box(density: float = 1.2, nose: bool = False, dressed: bool = False) -> Tree:
+    """A box of 60 x 12 x 20 mm with a lead cube of 8 mm, studied; it sinks. With another cube of 4 mm ahead if asked,
+    and with a hook and a coat."""
     cubes = [("keel", 8e-3, 5e-3)] + [("nose", 4e-3, -18e-3)] * nose
     inserts = [
         workbench.Insert(name, shapes.box((size,) * 3, (at, 0.0, -3e-3)), {"material": "lead"})
         for name, size, at in cubes
     ]
-    return dict(meshlure.study(workbench.bait(shapes.box((60e-3, 12e-3, 20e-3)), *inserts, density=density)).results)
+    more: Tree = {}
+    if dressed:
+        hook = {"name": "hook", "item": "treble 6", "at": [0.0, 0.0, -10.0], "hangs": True}
+        more = {"hardware": [hook], "coat": {"thickness": "0.15 mm", "material": "epoxy clear coat"}}
+    body = shapes.box((60e-3, 12e-3, 20e-3))
+    return dict(meshlure.study(workbench.bait(body, *inserts, density=density, **more)).results)
 
 
 def test_one_design_meshed_twice_differs_in_nothing_that_counts() -> None:
@@ -84,6 +90,21 @@ def test_another_weight_of_the_same_lead_differs_by_what_it_weighs() -> None:
     assert found["side_mm2"]["differences"][0]["counts"] is False
     # One body: its drag is estimated alike in both.
     assert found["drag_air_nose_mm2"]["differences"][0]["by"] == 0
+
+
+def test_a_hook_and_a_coat_are_doubted_by_what_they_weigh() -> None:
+    found = rows(box(), box(dressed=True))
+    # A treble of size 6 weighs 0.60 to 0.90 g in stock, its steel 7.85 g/cm3; the coat lies on 4320 mm2, 0.10 to 0.20
+    # mm thick, of 1.15 (1.10 to 1.18) g/cm3.
+    hook, coat = 0.15, 4.32 * 0.05 * 1.15
+    difference = found["mass_g"]["differences"][0]
+    assert difference["by"] == pytest.approx(0.75 + 4.32 * 0.15 * 1.15, rel=1e-6)
+    assert difference["high"] - difference["by"] == pytest.approx(math.hypot(hook, coat, 0.648 * 0.03), rel=1e-6)
+    assert difference["by"] - difference["low"] == pytest.approx(math.hypot(hook, coat, 0.648 * 0.05), rel=1e-6)
+    # Under water both lose what they displace; the bench's water has 1 g/cm3.
+    wet = (hook * (1 - 1 / 7.85), 4.32 * 0.05 * 0.15)
+    difference = found["reserve_g"]["differences"][0]
+    assert difference["by"] - difference["low"] == pytest.approx(math.hypot(*wet, 0.648 * 0.03), rel=1e-6)
 
 
 def test_two_mixes_are_doubted_apart_and_one_mix_is_not() -> None:

@@ -223,7 +223,8 @@ def _stations(found: Tree, trees: Sequence[Tree]) -> Picture:
         table_ = tree["stations"]
         label = bait["letter"] if drawable(bait["letter"]) else str(number + 1)
         axes.plot(table_["from_nose_mm"], table_["area_mm2"], label=label, **look(number, 0.12))
-    axes.set(ylabel="section area, mm²", xlabel="mm from the nose", ylim=(0, None))
+    most = max(max(tree["stations"]["area_mm2"]) for tree in trees)
+    axes.set(ylabel="section area, mm²", xlabel="mm from the nose", ylim=(0, 1.08 * most))
     axes.legend(loc="lower center", bbox_to_anchor=(0.5, 0.99), ncols=4, fontsize=7, borderaxespad=0.1)
     each = "; ".join(f"{bait['letter']} {WORDS[number]}" for number, bait in enumerate(found["baits"]))
     return picture(

@@ -10,6 +10,7 @@ import pytest
 from command_bench import SCRIPT, Bench, Ran, box, fault
 
 from meshlure.files.baitfile import bait_of, read_baitfile
+from meshlure.files.newbait import put_new
 
 KNOWN = ("--unit", "mm", "--density", "1.2 g/cm3")
 
@@ -91,6 +92,10 @@ def test_nothing_is_written_over(bench: Bench) -> None:
     bench.put("body.toml", "mine")
     told = fault(new(bench, *KNOWN, "--yes"))
     assert "body.toml: there is a file of this name already" in told
+    assert (bench.folder / "body.toml").read_text() == "mine"
+    # Nor is one that came to be there while the shape was looked at.
+    with pytest.raises(FileExistsError):
+        put_new(bench.folder / "body.toml", "ours")
     assert (bench.folder / "body.toml").read_text() == "mine"
 
 
