@@ -6,11 +6,9 @@ was drawn. A point is 1/72 inch (ISO 32000), an A4 sheet 210 x 297 mm (ISO 216).
 
 from __future__ import annotations
 
-import io
 import math
 import re
-from collections.abc import Iterator
-from dataclasses import dataclass, replace
+from dataclasses import replace
 from itertools import pairwise
 from typing import Any
 from xml.etree import ElementTree as ET
@@ -21,17 +19,13 @@ import pytest
 from command_bench import Bench
 from hypothesis import given
 from hypothesis import strategies as st
-from pypdf import PdfReader
-from pypdf.generic import ContentStream
+from pdfpages import MM, Page, Path, pages
 
 from meshlure.errors import InputError
 from meshlure.report.packing import Block, Room, pack
 from meshlure.report.sheet import Sheet, sheet
 from meshlure.report.tiles import LAP, windows
 from meshlure.results import Study
-
-MM = 25.4 / 72
-"""mm of a point."""
 
 
 def sized(study: Study, times: float) -> Study:
@@ -53,73 +47,6 @@ def sized(study: Study, times: float) -> Study:
         for view in study.views
     )
     return replace(study, results=grown(dict(study.results)), views=views)
-
-
-@dataclass
-class Path:
-    """A line as a page draws it: its points, mm from the lower left corner, and the width of its pen, points."""
-
-    points: np.ndarray
-    pen: float
-
-    @property
-    def size(self) -> np.ndarray:
-        return np.asarray(np.ptp(self.points, axis=0))
-
-
-@dataclass
-class Page:
-    """What stands on a page: its size, lines, signs (forms set at a place) and words, mm."""
-
-    size: tuple[float, float]
-    paths: list[Path]
-    signs: list[tuple[str, np.ndarray]]
-    text: str
-
-
-def pages(pdf: bytes) -> list[Page]:
-    reader = PdfReader(io.BytesIO(pdf))
-    found = []
-    for page in reader.pages:
-        size = (float(page.mediabox.width) * MM, float(page.mediabox.height) * MM)
-        paths: list[Path] = []
-        signs: list[tuple[str, np.ndarray]] = []
-        for kind, name, points, pen in drawn(page.get_contents(), reader):
-            if kind == "sign":
-                signs.append((name, points[0]))
-            elif len(points):
-                paths.append(Path(points, pen))
-        found.append(Page(size, paths, signs, page.extract_text()))
-    return found
-
-
-def drawn(content: Any, reader: PdfReader) -> Iterator[tuple[str, str, np.ndarray, float]]:
-    """Follow a page's operators (ISO 32000, 8.5): every stretch of a path by itself, every form with its place."""
-    matrix, pen, stack = np.eye(3), 1.0, []
-    points: list[Any] = []
-    for operands, operator in ContentStream(content, reader).operations:
-        numbers = [float(value) for value in operands if isinstance(value, int | float)]
-        if operator == b"q":
-            stack.append((matrix, pen))
-        elif operator == b"Q":
-            matrix, pen = stack.pop()
-        elif operator == b"cm":
-            a, b, c, d, e, f = numbers
-            matrix = np.array([[a, b, 0], [c, d, 0], [e, f, 1]]) @ matrix
-        elif operator == b"w":
-            pen = numbers[0]
-        elif operator in (b"m", b"l", b"c", b"re"):
-            place = (np.array([*numbers[-2:], 1]) @ matrix)[:2] * MM
-            if operator == b"m" and points:
-                yield "path", "", np.array(points), pen
-                points = []
-            points.append(place)
-        elif operator in (b"S", b"f", b"B", b"b", b"s", b"n", b"f*", b"B*", b"b*"):
-            if operator != b"n" and points:
-                yield "path", "", np.array(points), pen
-            points = []
-        elif operator == b"Do":
-            yield "sign", str(operands[0]), np.array([matrix[2, :2] * MM]), pen
 
 
 @pytest.fixture(scope="module")

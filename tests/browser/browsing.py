@@ -1,0 +1,134 @@
+"""A headless browser for the tests, and what they ask a page: words over each other, things cut off, requests made."""
+
+from __future__ import annotations
+
+import shutil
+from collections.abc import Iterator
+from contextlib import contextmanager
+from dataclasses import dataclass, field
+from pathlib import Path
+from typing import Any
+
+import pytest
+
+NAMES = ("chromium", "chromium-browser", "google-chrome", "google-chrome-stable")
+"""What the browser's program is called where."""
+
+SETTINGS = (
+    "--no-sandbox",  # a container's root may start it
+    "--use-angle=swiftshader",  # WebGL without a graphics card
+    "--enable-unsafe-swiftshader",
+)
+
+
+@contextmanager
+def browser() -> Iterator[Any]:
+    """Give the browser, or skip the test where there is none."""
+    found = next((path for name in NAMES if (path := shutil.which(name))), None)
+    if found is None:
+        pytest.skip(f"no browser: none of {', '.join(NAMES)} is installed")
+    sync_api = pytest.importorskip("playwright.sync_api", reason="playwright is not installed")
+    with sync_api.sync_playwright() as driver:
+        started = driver.chromium.launch(executable_path=found, args=list(SETTINGS))
+        yield started
+        started.close()
+
+
+@dataclass
+class Opened:
+    """A page with all that it said and asked for."""
+
+    page: Any
+    path: Path
+    said: list[str] = field(default_factory=list)
+    asked: list[str] = field(default_factory=list)
+
+    def wide(self, width: int) -> None:
+        """Give the window a width in pixels, and let the page come to rest."""
+        self.page.set_viewport_size({"width": width, "height": 900})
+        self.rest()
+
+    def rest(self) -> None:
+        """Wait until what is to be drawn has been drawn."""
+        self.page.evaluate("() => new Promise(done => requestAnimationFrame(() => requestAnimationFrame(done)))")
+
+    def pixels(self, selector: str) -> bytes:
+        """Return a part of the page as a PNG."""
+        shot: bytes = self.page.locator(selector).screenshot()
+        return shot
+
+
+@contextmanager
+def opened(started: Any, path: Path, width: int = 1440, before: str = "", **options: Any) -> Iterator[Opened]:
+    """Open a file of the disk in a window of its own; ``before`` is a script that runs before the page's."""
+    context = started.new_context(viewport={"width": width, "height": 900}, reduced_motion="reduce", **options)
+    page = context.new_page()
+    found = Opened(page, path)
+    page.on("console", lambda message: found.said.append(f"{message.type}: {message.text}"))
+    page.on("pageerror", lambda error: found.said.append(f"error: {error}"))
+    page.on("request", lambda request: found.asked.append(request.url))
+    if before:
+        page.add_init_script(before)
+    page.goto(path.as_uri())
+    yield found
+    context.close()
+
+
+OVERLAPS = """() => {
+  // Every line of words that shows, cut to the boxes that cut it; then all pairs that cover each other.
+  const lines = [], walker = document.createTreeWalker(document.body, NodeFilter.SHOW_TEXT);
+  const cutting = new Map();
+  function cuts(element) {
+    if (!element || element === document.documentElement) return [];
+    if (!cutting.has(element)) {
+      const style = getComputedStyle(element), above = cuts(element.parentElement);
+      const open = style.overflowX === 'visible' && style.overflowY === 'visible';
+      cutting.set(element, open ? above : [...above, element]);
+    }
+    return cutting.get(element);
+  }
+  while (walker.nextNode()) {
+    const node = walker.currentNode, parent = node.parentElement;
+    if (!node.data.trim() || !parent.checkVisibility({visibilityProperty: true}) || parent.closest('.unseen')) continue;
+    if (getComputedStyle(parent).clipPath !== 'none') continue;
+    const range = document.createRange();
+    range.selectNodeContents(node);
+    for (const box of range.getClientRects()) {
+      let left = box.left, right = box.right, top = box.top, bottom = box.bottom;
+      for (const element of cuts(parent)) {
+        const edge = element.getBoundingClientRect();
+        left = Math.max(left, edge.left); right = Math.min(right, edge.right);
+        top = Math.max(top, edge.top); bottom = Math.min(bottom, edge.bottom);
+      }
+      if (right - left > 1 && bottom - top > 1) lines.push({left, right, top, bottom, text: node.data.trim(), node});
+    }
+  }
+  lines.sort((a, b) => a.top - b.top);
+  const found = [];
+  for (let i = 0; i < lines.length; i++) {
+    const a = lines[i];
+    if (a.right > document.documentElement.clientWidth + 1 || a.left < -1) found.push('off the page: ' + a.text);
+    for (let j = i + 1; j < lines.length && lines[j].top < a.bottom - 3; j++) {
+      const b = lines[j];
+      if (a.node !== b.node && Math.min(a.right, b.right) - Math.max(a.left, b.left) > 2) {
+        found.push(a.text.slice(0, 40) + ' | ' + b.text.slice(0, 40));
+      }
+    }
+  }
+  return found;
+}"""
+
+OVERFLOWS = """() => {
+  // Elements whose content is wider than they are, and that neither scroll nor hide it on purpose.
+  const found = [];
+  if (document.documentElement.scrollWidth > document.documentElement.clientWidth) found.push('the page itself');
+  for (const element of document.body.querySelectorAll('*')) {
+    if (!element.checkVisibility() || element.closest('.unseen') || element instanceof SVGElement) continue;
+    const style = getComputedStyle(element);
+    if (style.display === 'inline' || style.overflowX !== 'visible') continue;
+    if (element.scrollWidth > element.clientWidth + 1 && element.clientWidth > 0) {
+      found.push(element.tagName + '.' + element.className + ': ' + element.textContent.trim().slice(0, 40));
+    }
+  }
+  return found;
+}"""

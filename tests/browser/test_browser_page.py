@@ -1,0 +1,166 @@
+"""The samples' pages in a real browser, opened from the disk.
+
+Authorities: Chromium opens, lays out and prints them; axe-core judges what people need to read them; pypdf takes the
+print apart.
+"""
+
+from __future__ import annotations
+
+import functools
+from collections.abc import Callable, Iterator
+from pathlib import Path
+from typing import Any
+
+import pytest
+from browsing import OVERFLOWS, OVERLAPS, Opened, browser, opened
+from pdfpages import pages
+from studied import SAMPLES, sample
+
+from meshlure.report.page import page
+
+WIDTHS = (360, 768, 1440)
+"""Pixels: a phone, a tablet, a desk."""
+STAGE = "#turn .glass"
+MARGIN = (15.0, 14.0)
+"""mm that the page's style leaves white at the sides and at head and foot of an A4 sheet."""
+
+
+@pytest.fixture(scope="module")
+def chromium() -> Iterator[Any]:
+    with browser() as started:
+        yield started
+
+
+@pytest.fixture(scope="module")
+def written(tmp_path_factory: pytest.TempPathFactory) -> Callable[[str], Path]:
+    """Give a callable that returns where a sample's page lies on the disk."""
+
+    @functools.cache
+    def path(name: str) -> Path:
+        made: Path = tmp_path_factory.mktemp("page") / "report.html"
+        made.write_text(page(sample(name)), encoding="utf-8")
+        return made
+
+    return path
+
+
+@pytest.fixture(scope="module", params=SAMPLES)
+def window(request: pytest.FixtureRequest, chromium: Any, written: Callable[[str], Path]) -> Iterator[Opened]:
+    """One sample's page in a window that all its tests share."""
+    with opened(chromium, written(request.param)) as found:
+        yield found
+
+
+def test_it_opens_without_a_complaint_and_asks_for_nothing(window: Opened) -> None:
+    assert window.said == []
+    assert [url for url in window.asked if not url.startswith("data:")] == [window.path.as_uri()]
+    assert window.path.stat().st_size < 3e6
+
+
+def test_the_bait_can_be_turned_by_hand_and_by_key(window: Opened) -> None:
+    window.wide(1440)
+    hand = window.page.locator(f"{STAGE} canvas.marks")
+    first, marks = window.pixels(STAGE), signs(window)
+    box = hand.bounding_box()
+    x, y = box["x"] + box["width"] / 2, box["y"] + box["height"] / 2
+    window.page.mouse.move(x, y)
+    window.page.mouse.down()
+    window.page.mouse.move(x + 120, y + 30, steps=3)
+    window.page.mouse.up()
+    assert window.pixels(STAGE) != first
+    seen = [marks, signs(window)]
+    hand.focus()
+    for key in ("ArrowRight", "ArrowUp", "+", "Shift+ArrowLeft"):
+        window.page.keyboard.press(key)
+        seen.append(signs(window))
+    assert len(set(seen)) == len(seen)
+    window.page.keyboard.press("0")
+    assert signs(window) == marks
+    for name in ("side", "above", "front", "nearer"):
+        window.page.click(f"#turn [data-do={name}]")
+        seen.append(signs(window))
+    assert len(set(seen)) == len(seen)
+    window.page.click("#turn [data-do=reset]")
+    assert signs(window) == marks
+
+
+def signs(window: Opened) -> str:
+    """The canvas with the marks, which lie where the view puts them."""
+    window.rest()
+    shown: str = window.page.evaluate(f"() => document.querySelector('{STAGE} canvas.marks').toDataURL()")
+    return shown
+
+
+def test_pieces_can_be_hidden(window: Opened) -> None:
+    body = window.page.locator("#turn [data-show='0']")
+    body.focus()
+    first = window.pixels(STAGE)
+    body.uncheck()
+    assert window.pixels(STAGE) != first
+    body.check()
+
+
+def test_tables_open(window: Opened) -> None:
+    window.page.locator("details summary").first.click()
+    folded = "() => [...document.querySelectorAll('details')]"
+    assert window.page.evaluate(f"{folded}.filter(each => each.open).length") == 1
+    window.page.evaluate(f"{folded}.slice(1).forEach(each => each.querySelector('summary').click())")
+    shut = "each => !each.open || ![...each.querySelectorAll('table, ul')].every(held => held.checkVisibility())"
+    assert window.page.evaluate(f"{folded}.filter({shut}).map(each => each.textContent.slice(0, 60))") == []
+
+
+@pytest.mark.parametrize("width", WIDTHS)
+def test_no_words_lie_over_others_and_nothing_is_wider_than_its_place(window: Opened, width: int) -> None:
+    window.wide(width)
+    open_all(window)
+    assert window.page.evaluate(OVERLAPS) == []
+    assert window.page.evaluate(OVERFLOWS) == []
+
+
+def test_its_print_cuts_no_figure(window: Opened) -> None:
+    found = pages(window.page.pdf(prefer_css_page_size=True, print_background=True))
+    assert 3 <= len(found) <= 24
+    figures = 0
+    for number, sheet in enumerate(found, 1):
+        assert sheet.size == pytest.approx((210, 297), abs=0.2)
+        assert sheet.paths, f"sheet {number} is empty"
+        # A picture's ground is drawn whole even where a sheet shows a part of it: then it sticks out of the margins.
+        for path in (p for p in sheet.paths if p.size.min() > 20):
+            figures += 1
+            assert (path.points.min(axis=0) > [MARGIN[0] - 1, MARGIN[1] - 1]).all(), f"cut on sheet {number}"
+            assert (path.points.max(axis=0) < [211 - MARGIN[0], 298 - MARGIN[1]]).all(), f"cut on sheet {number}"
+    assert figures >= 10
+
+
+def test_axe_finds_nothing_amiss(window: Opened) -> None:
+    axe = pytest.importorskip("axe_playwright_python.sync_playwright", reason="axe-playwright-python is not installed")
+    window.wide(360)
+    open_all(window)
+    # A table's rows are all of one make: four of each stand for the rest. No test after this one needs them.
+    window.page.evaluate(
+        "() => document.querySelectorAll('tbody').forEach(body => [...body.rows].slice(4).forEach(row => row.remove()))"
+    )
+    found = axe.Axe().run(window.page, options={"resultTypes": ["violations"]}).response
+    assert [(v["id"], v["help"], [n["html"][:200] for n in v["nodes"]]) for v in found["violations"]] == []
+
+
+@pytest.mark.parametrize(
+    ("before", "options"),
+    [
+        ("HTMLCanvasElement.prototype.getContext = () => null;", {}),
+        ("", {"java_script_enabled": False}),
+    ],
+    ids=["without WebGL", "without script"],
+)
+def test_the_pictures_are_left_where_nothing_can_be_turned(
+    chromium: Any, written: Callable[[str], Path], before: str, options: dict[str, Any]
+) -> None:
+    with opened(chromium, written("stick/stick.toml"), before=before, **options) as found:
+        assert found.page.locator("#turn").is_hidden()
+        assert found.page.locator("nav [href='#turn']").is_hidden()
+        assert found.page.locator("#drawings img").first.is_visible()
+        assert found.said == []
+
+
+def open_all(window: Opened) -> None:
+    window.page.evaluate("() => document.querySelectorAll('details').forEach(each => { each.open = true; })")
