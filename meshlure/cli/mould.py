@@ -7,6 +7,7 @@ from typing import Annotated, Final
 
 import typer
 
+from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer, hand_on
 from meshlure.errors import Fault, InputError
 
@@ -66,12 +67,15 @@ def mould(
     from meshlure.moulding import write
 
     kind = Kind.ONE_PIECE if one_piece else Kind.MASTER if master else Kind.HALVES
-    made = design(read_bait(bait), kind, tab)
-    found = made.study
-    if out is not None:
-        from meshlure.cli.writing import write_made
+    with phases() as said:
+        said("reading the meshes")
+        made = design(read_bait(bait), kind, tab, said)
+        found = made.study
+        if out is not None:
+            from meshlure.cli.writing import write_made
 
-        found = write_made(out, page=not no_page, make=lambda folder: write(made, folder))
+            said("writing")
+            found = write_made(out, page=not no_page, make=lambda folder: write(made, folder))
     if json:
         hand_on(found.to_json())
     else:

@@ -8,6 +8,8 @@ from typing import TYPE_CHECKING, Annotated, Final
 
 import typer
 
+from meshlure.cli.completion import materials_begun
+from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer, hand_on
 from meshlure.errors import Fault, InputError
 
@@ -46,10 +48,22 @@ def pour(
         str | None, typer.Option("--waste", metavar="SHARE", help='Mixed beyond what the baits take, "10 %".')
     ] = None,
     resin: Annotated[
-        str | None, typer.Option("--resin", metavar="NAME", help='A material, or its cured density, "1.05 g/cm3".')
+        str | None,
+        typer.Option(
+            "--resin",
+            metavar="NAME",
+            autocompletion=materials_begun,
+            help='A material, or its cured density, "1.05 g/cm3".',
+        ),
     ] = None,
     balloons: Annotated[
-        str | None, typer.Option("--balloons", metavar="NAME", help='A material, or their density, "0.15 g/cm3".')
+        str | None,
+        typer.Option(
+            "--balloons",
+            metavar="NAME",
+            autocompletion=materials_begun,
+            help='A material, or their density, "0.15 g/cm3".',
+        ),
     ] = None,
     mass: Annotated[
         str | None, typer.Option("--mass", metavar="MASS", help='Wanted of the whole bait, ready to fish, "14 g".')
@@ -70,11 +84,16 @@ def pour(
     from meshlure.bait.loading import load
     from meshlure.pouring.study import pour as worked_out
 
-    found = worked_out(load(plan))
-    if out is not None:
-        from meshlure.cli.writing import write_bench
+    with phases() as said:
+        said("reading the meshes")
+        read = load(plan)
+        said("working out the pour")
+        found = worked_out(read)
+        if out is not None:
+            from meshlure.cli.writing import write_bench
 
-        found = write_bench(found, out)
+            said("writing the bench sheet")
+            found = write_bench(found, out)
     if json:
         hand_on(found.to_json())
     else:
