@@ -106,7 +106,8 @@ def rested(site: Site, option: Option, near: Trial | None = None) -> Trial:
         its back up, as in the report.
     """
     vessel = option.vessel(site)
-    found = {end: _rest(site, vessel, option, ends_of(site, end), near and near.rested[end].up) for end in ENDS}
+    starts = {end: None if near is None else near.rested[end].up for end in ENDS}
+    found = {end: _rest(site, vessel, option, ends_of(site, end), starts[end]) for end in ENDS}
     ends = ends_of(site, "nose")
     mass = vessel.composition.mass(ends).amount
     reserve = vessel.hull(ends).volume * vessel.water - mass

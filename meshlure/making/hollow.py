@@ -260,7 +260,7 @@ def _normal(skin: Surface, at: Floats) -> Floats:
     middle = corners.mean(axis=1)
     reach = np.linalg.norm(corners - middle[:, None], axis=2).max(axis=1)
     near = np.flatnonzero(np.linalg.norm(middle - at, axis=1) <= reach * (1 + 1e-9))
-    touching = [n for n in near if nearest(_one(skin, n), at[None]).distance[0] < 1e-9]
+    touching = [int(n) for n in near if nearest(_one(skin, int(n)), at[None]).distance[0] < 1e-9]
     total = skin.double_areas[touching].sum(axis=0)
     return np.asarray(total / np.linalg.norm(total))
 

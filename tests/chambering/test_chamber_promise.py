@@ -28,17 +28,19 @@ from meshlure.results import schema
 
 MM = 1e-3
 BALLS = [{"diameter": "4 mm", "count": [1, 2], "material": "bearing steel"}]
+ROW = [{"diameter": "4 mm", "count": 4, "material": "bearing steel"}]
+"""A row so long that few places are left to try."""
 
 
 def bumped(size: tuple[float, float, float], bump: tuple[float, float, float], radius: float) -> Surface:
     """An ellipsoid of semi-axes in mm with a ball that stands out of it."""
-    body = Solid.of(shapes.ellipsoid(np.array(size) * MM, 3))
+    body = Solid.of(shapes.ellipsoid([semi * MM for semi in size], 3))
     ball = Solid.of(shapes.sphere(radius * MM, 2).moved(shift=np.array(bump) * np.array(size) * MM))
     return body.joined(ball).surface()
 
 
-def made(body: Surface, *pieces: Any, folder: Path, take: int = 1, **keys: Any) -> tuple[finding.Chambered, Any]:
-    asked = {"balls": BALLS, "wall": "1 mm", "end_wall": "1.5 mm"} | keys.pop("chamber", {})
+def made(body: Surface, *pieces: Any, folder: Path, take: int = 1, **keys: Any) -> tuple[delivery.Chambered, Any]:
+    asked = {"balls": ROW, "wall": "1 mm", "end_wall": "1.5 mm"} | keys.pop("chamber", {})
     found = finding.chamber(bait(body, *pieces, chamber=asked, **keys), take)
     assert found.reachable
     study, names = found.make(folder, Path("out"))
@@ -51,9 +53,9 @@ def made(body: Surface, *pieces: Any, folder: Path, take: int = 1, **keys: Any) 
     size=st.tuples(st.floats(28, 40), st.floats(6.5, 9), st.floats(7.5, 11)),
     bump=st.tuples(st.floats(-0.5, 0.5), st.floats(-0.9, 0.9), st.floats(0.4, 0.9)),
     open_to=st.sampled_from(["none", "nose", "tail"]),
-    density=st.sampled_from([0.6, 1.15]),
 )
-def test_lopsided_bodies(size: Any, bump: Any, open_to: str, density: float) -> None:
+def test_lopsided_bodies(size: Any, bump: Any, open_to: str) -> None:
+    density = 1.15  # sinking: its postures take no search
     with TemporaryDirectory() as place:
         folder = Path(place)
         body = bumped(size, bump, 4.0)
@@ -84,7 +86,7 @@ def test_a_tube_a_plug_and_a_coat(tmp_path: Path) -> None:
     weight = insert("keel", shapes.box((8 * MM, 3 * MM, 2 * MM), (0, 0, -8 * MM)), 11.3)
     tube = {"open_to": "tail", "tube": {"material": "brass", "wall": "0.3 mm"}}
     found, study = made(
-        body, weight, folder=tmp_path, chamber=tube, density=1.25, coat=coat(0.2 * MM, 1.15), measured={"dry": "9 g"}
+        body, weight, folder=tmp_path, chamber=tube, density=0.75, coat=coat(0.2 * MM, 1.15), measured={"dry": "9 g"}
     )
     assert found.taken is not None
     option = found.taken.option
@@ -116,7 +118,9 @@ def test_every_way_can_be_taken(tmp_path: Path) -> None:
     assert scores == sorted(scores, reverse=True)
     assert len({(row["count"], row["ball_mm"], *row["from_mm"], row["length_mm"]) for row in rows}) == len(rows)
     walls = {"wall": "1.2 mm", "end_wall": "2 mm"}
-    found, _ = made(body, folder=tmp_path, take=len(rows), chamber={"slope": "0 deg"} | walls, density=1.1)
+    found, _ = made(
+        body, folder=tmp_path, take=len(rows), chamber={"slope": "0 deg", "balls": BALLS} | walls, density=1.1
+    )
     assert found.taken is not None
     assert found.account["taken"] == len(rows)
     assert found.taken.option.bore.length * 1e3 == pytest.approx(rows[-1]["length_mm"], abs=1e-9)
@@ -137,7 +141,7 @@ def test_a_shorter_bore_is_offered_where_the_bait_rests_steadier() -> None:
 def test_a_broken_promise_is_told_and_refused(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
     monkeypatch.setattr(delivery, "KEPT_RESERVE", -1.0)
     monkeypatch.setattr(delivery, "KEPT_ANGLE", -1.0)
-    found = finding.chamber(bait(shapes.box((50 * MM, 13 * MM, 14 * MM)), chamber={"balls": BALLS}, density=1.1))
+    found = finding.chamber(bait(shapes.box((50 * MM, 13 * MM, 14 * MM)), chamber={"balls": ROW}, density=1.1))
     with pytest.raises(InputError) as told:
         found.make(tmp_path, Path("out"))
     what = [fault.what for fault in told.value.faults]

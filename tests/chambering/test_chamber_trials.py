@@ -32,7 +32,7 @@ BORE = Cylinder(np.array([3 * MM, 0, -4 * MM]), AXIS, 30 * MM, 3 * MM)
 
 
 def site(density: float = 1.2, **keys: Any) -> Site:
-    return Site.of(bait(shapes.box(SIZE), density=density, **keys), SLOPE)
+    return Site.of(bait(shapes.box(SIZE.tolist()), density=density, **keys), SLOPE)
 
 
 def option(here: Site, count: int = 2, lining: Lining | None = None) -> Option:
@@ -85,15 +85,18 @@ def test_it_hangs_with_its_weight_below_its_bulk() -> None:
 def test_it_weighs_as_a_drawn_chamber_does() -> None:
     here = site(0.6)
     ours = rested(here, option(here)).rested
-    drawn = bait(shapes.box(SIZE), void("bore", rod(BORE, 96)), balls=[balls("bore", 5 * MM, 2, 7.8)], density=0.6)
+    drawn = bait(
+        shapes.box(SIZE.tolist()), void("bore", rod(BORE, 96)), balls=[balls("bore", 5 * MM, 2, 7.8)], density=0.6
+    )
     other = Site.of(drawn, SLOPE)
     for end in ("nose", "tail"):
         theirs = other.vessel.reposed({"bore": end}, drawn.frame.back)
         assert theirs is not None
         up = theirs.rest.state.up
         angles = attitude(up, drawn.frame.nose, drawn.frame.back, drawn.frame.side)
-        assert ours[end].angles is not None
-        assert angles.nose_up == pytest.approx(ours[end].angles.nose_up, abs=1e-5)
+        own = ours[end].angles
+        assert own is not None
+        assert angles.nose_up == pytest.approx(own.nose_up, abs=1e-5)
 
 
 @pytest.mark.parametrize(("density", "state"), [(1.2, Behaviour.SINKS), (0.5, Behaviour.FLOATS)])
@@ -125,7 +128,9 @@ def test_the_score_is_the_weighted_sum() -> None:
 
 def test_balls_of_other_chambers_stay_where_they_are() -> None:
     old = void("old", rod(replace(BORE, middle=np.array([3 * MM, 0, 5 * MM]), length=12 * MM), 48))
-    here = Site.of(bait(shapes.box(SIZE), old, balls=[balls("old", 5 * MM, 1, 7.8, at="tail")], density=1.2), SLOPE)
+    here = Site.of(
+        bait(shapes.box(SIZE.tolist()), old, balls=[balls("old", 5 * MM, 1, 7.8, at="tail")], density=1.2), SLOPE
+    )
     made = option(here)
     found = rested(here, made)
     mass = made.composed(here).mass({"old": "tail", CHAMBER: "nose"}).amount

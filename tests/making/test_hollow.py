@@ -26,7 +26,7 @@ WHOLE, INSIDE = 40 * 14 * 18, 36 * 10 * 14
 
 
 def box(*pieces: Any, **keys: Any) -> Bait:
-    return bait(shapes.box(np.array(SIZE) * MM), *pieces, density=1.1, **keys)
+    return bait(shapes.box([side * MM for side in SIZE]), *pieces, density=1.1, **keys)
 
 
 def faults(words: str, *pieces: Any, **keys: Any) -> list[str]:

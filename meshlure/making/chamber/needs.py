@@ -130,6 +130,16 @@ def needs(bait: Bait) -> Needs:
                 f"add a line [chamber], and under it {EXAMPLE.removeprefix('[chamber] ')}",
             )
         )
+    if plan.body.printed is not None:
+        raise InputError(
+            Fault(
+                "no chamber is cut into printed walls with infill: what it takes from them is unknown",
+                f"{name}body.printed",
+                "",
+                "density or material",
+                "weigh the print, state its density, and print a wall round the chamber as thick as its walls",
+            )
+        )
     faults: list[Fault] = []
     choices = _choices(section, f"{name}chamber.balls", faults)
     lining = _lining(section, f"{name}chamber.tube.material", faults)
