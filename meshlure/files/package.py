@@ -17,6 +17,9 @@ _MOST: Final = 20_000
 
 _AT_ONCE: Final = 1 << 20
 
+_ENCRYPTED: Final = 0x41
+"""Bits of a part's flags that say so."""
+
 _UNPACKED: Final = frozenset({zipfile.ZIP_STORED, zipfile.ZIP_DEFLATED})
 """What packages may use (ECMA-376 part 2, annex B); of others the zip library unpacks without end at one call."""
 
@@ -85,6 +88,8 @@ class Package:
             raise InputError(self._fault(f"the package has no part '{_shown(name)}'", ""))
         pieces = []
         info = self._zip.getinfo(self._names[name.lstrip("/").casefold()])
+        if info.flag_bits & _ENCRYPTED:
+            raise InputError(self._fault(f"the part '{_shown(name)}' is encrypted", "a password is asked for"))
         if info.compress_type not in _UNPACKED:
             raise InputError(
                 self._fault(f"the part '{_shown(name)}' is packed in a way that packages may not be", "no deflate")

@@ -6,7 +6,8 @@ from collections.abc import Callable, Sequence
 
 import numpy as np
 
-from meshlure.files.polygons import Polygons, cut
+from meshlure.errors import Fault, InputError
+from meshlure.files.polygons import LONGEST, Polygons, TooLongError, cut
 from meshlure.files.triangles import Part, Triangles, check_within, in_metres
 from meshlure.findings import Finding, Level
 from meshlure.geometry.surface import Floats, Ints
@@ -41,14 +42,26 @@ def triangles_of(
     Raises
     ------
     InputError
-        A corner has a coordinate that is no finite number, or farther out than any bait.
+        A corner has a coordinate that is no finite number, or farther out than any bait; or faces that are not convex
+        would take too long to cut.
     """
     count = len(polygons.counts)
     corners = vertices[polygons.corners]
     owners = np.repeat(np.arange(count), polygons.counts)
     with np.errstate(over="ignore"):
         check_within(corners * metres, corners, count, where, owners)
-    pieces = cut(vertices, polygons)
+    try:
+        pieces = cut(vertices, polygons)
+    except TooLongError as error:
+        raise InputError(
+            Fault(
+                "faces that are not convex are too many or have too many corners to be cut into triangles",
+                f"{where}, {line(error.first)}",
+                f"{error.polygons:,} of {error.corners:,} corners",
+                f"what takes {LONGEST:g} s, such as one of 40,000 corners or 300,000 of five",
+                "export triangles",
+            )
+        ) from None
     firsts = vertices[polygons.corners[np.cumsum(polygons.counts) - polygons.counts]] * metres
     findings = []
     if len(pieces.bent):

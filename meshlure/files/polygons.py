@@ -21,6 +21,34 @@ _POINTLESS: Final = 1e-12
 """Share of its squared size below which a polygon has no area: its corners lie on a line."""
 
 
+LONGEST: Final = 120.0
+"""s. About how long polygons that are neither convex nor quadrangles may take to cut, all in all."""
+
+_EACH: Final = 3e-4
+"""s. Of one such polygon."""
+
+_CORNERS: Final = 5e-8
+"""s. Of one pair of its corners, where it crosses itself throughout."""
+
+
+class TooLongError(Exception):
+    """Polygons are too large or too many to be cut.
+
+    Parameters
+    ----------
+    first : int
+        Number of one of them.
+    polygons, corners : int
+        How many there are of its kind, and how many corners each has.
+    """
+
+    def __init__(self, first: int, polygons: int, corners: int) -> None:
+        self.first = first
+        self.polygons = polygons
+        self.corners = corners
+        super().__init__(f"{polygons} polygons of {corners} corners")
+
+
 @dataclass(frozen=True, eq=False)
 class Polygons:
     """Polygons over a table of vertices.
@@ -75,6 +103,11 @@ def cut(vertices: Floats, polygons: Polygons) -> Cut:
     -------
     Cut
 
+    Raises
+    ------
+    TooLongError
+        Cutting would take longer than `LONGEST`.
+
     Notes
     -----
     A polygon's plane goes through the mean of its corners, along the normal of Newell's sums (sum over the edges of
@@ -88,7 +121,7 @@ def cut(vertices: Floats, polygons: Polygons) -> Cut:
     owners: list[Ints] = []
     bent: list[Ints] = []
     crossing: list[int] = []
-    bend = 0.0
+    bend = work = 0.0
     for count in np.unique(polygons.counts).tolist():
         numbers = np.flatnonzero(polygons.counts == count)
         corners = polygons.corners[starts[numbers, None] + np.arange(count)]
@@ -111,7 +144,11 @@ def cut(vertices: Floats, polygons: Polygons) -> Cut:
             halved = np.zeros_like(fanned)
         faces.append(corners[fanned][:, fans].reshape(-1, 3))
         owners.append(np.repeat(numbers[fanned], count - 2))
-        for row in np.flatnonzero(~(fanned | halved)):
+        left = np.flatnonzero(~(fanned | halved))
+        work += len(left) * (_EACH + _CORNERS * count**2)
+        if work > LONGEST and len(left):
+            raise TooLongError(int(numbers[left[0]]), len(left), count)
+        for row in left:
             ears, whole = ears_of(vertices[corners[row]], shape.normal[row])
             faces.append(corners[row][ears])
             owners.append(np.full(len(ears), numbers[row]))

@@ -37,7 +37,7 @@ UNITS: Final[Mapping[str, tuple[str, float]]] = MappingProxyType(
 _DEEPEST: Final = 64
 """Objects within objects; an assembly of a bait has two or three."""
 
-_PLACES: Final = 100_000
+_PLACES: Final = 20_000
 """Placed objects, those that only hold others among them."""
 
 _NOT_PARTS: Final = frozenset({"support", "solidsupport"})

@@ -27,7 +27,8 @@ _CHANGES_NOTHING: Final = frozenset(
 )
 """Extensions that a model may require and that are read, or say nothing of its shape."""
 
-_AT_ONCE: Final = 1 << 20
+_LONGEST: Final = 4_000_000
+"""Bytes of one tag, or between two. The parser looks at a longer one again with every megabyte that it is given."""
 
 _GROUPED: Final = re.compile(rb"""[\s](?:[xyz]|v[123])\s*=\s*["'][0-9.eE+-]*_""")
 """A number with an underscore in it, which Python would read as if it were not there."""
@@ -115,14 +116,20 @@ def read_model(data: bytes, where: str) -> Model:
         line = data.count(b"\n", 0, grouped.start()) + 1
         found = grouped[0].strip().decode("ascii", "replace")
         raise InputError(Fault("a number cannot be read", f"{where}, line {line}", found, "digits", "export it again"))
+    ends = np.flatnonzero(np.frombuffer(data, dtype=np.uint8) == ord(">"))
+    longest = int(np.diff(ends, prepend=0, append=len(data)).max(initial=0))
+    if longest > _LONGEST:
+        raise InputError(
+            Fault(
+                "a piece of the model's XML has no end", where, f"{longest:,} bytes", f"{_LONGEST:,}", "export it again"
+            )
+        )
     reader = _Reader(where)
     parser = expat.ParserCreate(namespace_separator=" ")
     parser.buffer_text = True
     reader.follow(parser)
     try:
-        for at in range(0, len(data), _AT_ONCE):
-            parser.Parse(data[at : at + _AT_ONCE], False)
-        parser.Parse(b"", True)
+        parser.Parse(data, True)
     except expat.ExpatError as error:
         raise InputError(
             Fault(

@@ -14,6 +14,9 @@ _STRAIGHT: Final = 1e-6
 
 _SAME_AREA: Final = 1e-6
 
+_FEW: Final = 300
+"""Corners up to which the quick cutter is used."""
+
 _TURNS: Final = 2_000_000
 """Triangles looked at, all in all, while a polygon's needles are turned: some seconds."""
 
@@ -38,8 +41,14 @@ def ears_of(corners: Floats, normal: Floats) -> tuple[Ints, bool]:
     # A corner written twice in a row is one corner; the ear cutter drops it, so it is dropped before the count.
     apart = np.flatnonzero((corners != np.roll(corners, 1, axis=0)).any(axis=1))
     flat = in_plane(corners[apart] - corners.mean(axis=0), normal)
-    order = triangulate_float64(np.ascontiguousarray(flat), np.array([len(flat)], dtype=np.uint32))
-    ears: Ints = order.astype(np.intp).reshape(-1, 3)
+    if len(flat) <= _FEW:
+        order = triangulate_float64(np.ascontiguousarray(flat), np.array([len(flat)], dtype=np.uint32))
+        ears: Ints = order.astype(np.intp).reshape(-1, 3)
+    else:
+        from meshlure.geometry.solids import triangulated
+
+        # The quick cutter's time can go with the cube of the corners, where they lie on each other.
+        ears = triangulated(flat)
     areas = _signed_areas(flat[ears])
     around = np.roll(flat, -1, axis=0)
     area = float((flat[:, 0] * around[:, 1] - around[:, 0] * flat[:, 1]).sum()) / 2

@@ -203,6 +203,22 @@ def _inner_distance(ball: Solid) -> float:
     return float(np.abs(np.einsum("ij,ij->i", skin.corners[:, 0], normals) / np.linalg.norm(normals, axis=1)).min())
 
 
+def triangulated(ring: Floats) -> Ints:
+    """Return triangles between the corners of a closed outline, (n - 2, 3) array of their numbers.
+
+    Parameters
+    ----------
+    ring : (n, 2) array
+        Anticlockwise, the first point not repeated. Where it crosses itself the triangles overlap.
+
+    Notes
+    -----
+    The library's own way of cutting off ears: it takes outlines that wind round and round, of some thousands of
+    corners, in seconds where other cutters take hours; the time goes with the square of the corners.
+    """
+    return np.asarray(manifold3d.triangulate([np.ascontiguousarray(ring)]), dtype=np.intp).reshape(-1, 3)
+
+
 def new_tag() -> int:
     """Return a number by which a surface's faces can be told from others'."""
     return int(manifold3d.Manifold.reserve_ids(1))

@@ -1,21 +1,26 @@
 """Makes the broken and odd mesh files of this folder, one fault each: `python tests/bad_meshes/build.py`.
 
 The bytes are put together by hand from the formats' published layouts (STL: header of 80 bytes, face count of 4, then
-12 little-endian 32-bit floats and 2 bytes a face; OBJ: one statement a line), so that nothing of the reader is in its
-tests.
+12 little-endian 32-bit floats and 2 bytes a face; OBJ: one statement a line; of the others see tests/formats/build.py,
+whose sound files are broken here), so that nothing of the reader is in its tests.
 """
 
 from __future__ import annotations
 
 import math
+import runpy
 import struct
 from collections.abc import Callable, Sequence
+from itertools import pairwise
 from pathlib import Path
+from typing import Any
 
 Point = tuple[float, float, float]
 Face = tuple[Point, Point, Point]
 
 HERE = Path(__file__).parent
+SOUND: dict[str, Any] = runpy.run_path(str(HERE.parent / "formats" / "build.py"))
+"""What makes sound files of the newer formats."""
 SIZE = (40.0, 10.0, 16.0)
 """mm. The box that the files are made of; 6,400 mm3."""
 
@@ -93,6 +98,95 @@ def with_corner(faces: Sequence[Face], number: int, corner: Point) -> list[Face]
     return faces
 
 
+def half(y: float = 0.0) -> list[Face]:
+    """Left half of a box 40 x 20 x 16 mm, open at its middle plane."""
+    return [face for face in box((0.0, y, 0.0)) if any(corner[1] != y for corner in face)]
+
+
+def ball(centre: Point, radius: float, level: int = 2) -> list[Face]:
+    """Geodesic ball: an octahedron's faces halved along each edge some times, its corners put at the radius."""
+    ends = [(1.0, 0.0, 0.0), (0.0, 1.0, 0.0), (0.0, 0.0, 1.0)]
+    faces: list[Face] = []
+    for signs in ((x, y, z) for x in (1, -1) for y in (1, -1) for z in (1, -1)):
+        a, b, c = (tuple(s * v for s, v in zip(signs, end, strict=True)) for end in ends)
+        faces.append((a, b, c) if signs[0] * signs[1] * signs[2] > 0 else (a, c, b))  # type: ignore[arg-type]
+    for _ in range(level):
+        halved: list[Face] = []
+        for a, b, c in faces:
+            ab, bc, ca = (tuple((p + q) / 2 for p, q in zip(u, v, strict=True)) for u, v in ((a, b), (b, c), (c, a)))
+            halved += [(a, ab, ca), (ab, b, bc), (ca, bc, c), (ab, bc, ca)]  # type: ignore[list-item]
+        faces = halved
+    return [tuple(_at_radius(p, centre, radius) for p in face) for face in faces]  # type: ignore[misc]
+
+
+def _at_radius(point: Point, centre: Point, radius: float) -> Point:
+    length = math.sqrt(sum(v * v for v in point))
+    x, y, z = (c + radius * v / length for c, v in zip(centre, point, strict=True))
+    return x, y, z
+
+
+def moved_corner(faces: Sequence[Face], corner: Point, to: Point, only: int) -> list[Face]:
+    """Faces of which the first few take a corner elsewhere: a crack."""
+    made: list[Face] = []
+    for face in faces:
+        if corner in face and only > 0:
+            only -= 1
+            face = tuple(to if p == corner else p for p in face)  # type: ignore[assignment]
+        made.append(face)
+    return made
+
+
+def stretched(text: str, name: str, value: str) -> str:
+    """Text with the first number of its kind put in another's place."""
+    return text.replace(name, value, 1)
+
+
+def threemf(old: str, new: str) -> bytes:
+    """Package of the box, with a part of its model's text put in another's place."""
+    text = SOUND["model"](SOUND["object_"](1, SOUND["BOX"], "body"), SOUND["item"](1))
+    assert old in text
+    made: bytes = SOUND["package"](text.replace(old, new, 1))
+    return made
+
+
+def holders(depth: int, each: int) -> bytes:
+    """Package of objects that each hold the one before several times: each to the power of depth boxes."""
+    objects = SOUND["object_"](1, SOUND["BOX"], "body")
+    for number in range(2, depth + 2):
+        held = f'<component objectid="{number - 1}"/>' * each
+        objects += SOUND["object_"](number, f"<components>{held}</components>", "holder")
+    made: bytes = SOUND["package"](SOUND["model"](objects, SOUND["item"](depth + 1)))
+    return made
+
+
+def circular() -> bytes:
+    """Package of two objects that hold each other."""
+    objects = "".join(
+        SOUND["object_"](n, f'<components><component objectid="{3 - n}"/></components>', "holder") for n in (1, 2)
+    )
+    made: bytes = SOUND["package"](SOUND["model"](objects, SOUND["item"](1)))
+    return made
+
+
+ENTITIES = (
+    '<?xml version="1.0"?><!DOCTYPE model [<!ENTITY a "ha"><!ENTITY b "&a;&a;&a;&a;&a;&a;&a;&a;&a;&a;">'
+    '<!ENTITY c "&b;&b;&b;&b;&b;&b;&b;&b;&b;&b;"><!ENTITY file SYSTEM "file:///etc/hostname">]>'
+)
+
+
+def box_ply(old: bytes, new: bytes, kind: str = "ascii") -> bytes:
+    data: bytes = SOUND["ply"](kind)
+    assert old in data
+    return data.replace(old, new, 1)
+
+
+def box_glb(nodes: list[dict[str, Any]] | None = None, **more: Any) -> bytes:
+    made: bytes = SOUND["scene"](
+        nodes or [{"mesh": 0}], SOUND["floats"](SOUND["METRES"]), 8, SOUND["shorts"](SOUND["TRIANGLES"]), **more
+    )
+    return made
+
+
 FILES: dict[str, Callable[[], bytes | str]] = {
     # STL that cannot be read
     "empty.stl": lambda: b"",
@@ -158,7 +252,114 @@ FILES: dict[str, Callable[[], bytes | str]] = {
     "shells_overlapping.stl": lambda: binary(box() + box((30.0, 2.0, 2.0), (20.0, 6.0, 6.0))),
     "cavity.stl": lambda: binary(box() + turned(box((10.0, 3.0, 4.0), (20.0, 4.0, 8.0)))),
     "in_metres.stl": lambda: binary(box(size=(0.04, 0.01, 0.016))),
+    "in_inches.stl": lambda: binary(box(size=(3.94, 0.6, 0.8))),
+    "half_body.stl": lambda: binary(half()),
+    "small_hole.stl": lambda: binary([*box(), *ball((60.0, 5.0, 8.0), 6.0)[1:]]),
+    "cracked.obj": lambda: loose_obj(moved_corner(box(), (40.0, 10.0, 16.0), (40.0005, 10.0, 16.0), 2)),
+    "balls.stl": lambda: binary([f for k in range(3) for f in ball((8.0 * k, 0.0, 0.0), 3.0)]),
+    "crossing_itself.stl": lambda: binary(bent_over()),
+    "coarse.stl": lambda: binary(ball((0.0, 0.0, 0.0), 20.0, 1)),
+    "denormal.obj": lambda: edited(box_obj(), 1, "v 0 0 5e-324"),
+    # Numbers beyond what a bait can be
+    "far_out.stl": lambda: binary(with_corner(box(), 4, (1e30, 0.0, 0.0))),
+    "far_out.obj": lambda: edited(box_obj(), 3, "v 0 1e300 0"),
+    "nowhere_large.obj": lambda: box_obj().replace("40", "4e-12").replace("10", "1e-12").replace("16", "2e-12"),
+    "grouped_digits.obj": lambda: edited(box_obj(), 3, "v 0 1_0 0"),
+    # 3MF
+    "empty_package.3mf": lambda: b"PK\x05\x06" + b"\0" * 18,
+    "text_renamed.3mf": lambda: "Belly weight, second try.\n",
+    "cut.3mf": lambda: threemf("body", "body")[:-200],
+    "flipped_byte.3mf": lambda: flipped(threemf("body", "body"), 0.4),
+    "entities.3mf": lambda: threemf('<?xml version="1.0" encoding="UTF-8"?>', ENTITIES),
+    "no_relations.3mf": lambda: SOUND["package"]("").replace(b"_rels/.rels", b"_rels/.real"),
+    "index_beyond.3mf": lambda: threemf('v3="3"', 'v3="8"'),
+    "index_negative.3mf": lambda: threemf('v3="3"', 'v3="-1"'),
+    "index_huge.3mf": lambda: threemf('v3="3"', 'v3="99999999999999999999"'),
+    "not_a_number.3mf": lambda: threemf('x="40"', 'x="nan"'),
+    "decimal_comma.3mf": lambda: threemf('x="40"', 'x="40,5"'),
+    "grouped_digits.3mf": lambda: threemf('x="40"', 'x="4_0"'),
+    "unit_unknown.3mf": lambda: threemf("millimeter", "furlong"),
+    "extension_needed.3mf": lambda: threemf(
+        "<model ",
+        '<model xmlns:b="http://schemas.microsoft.com/3dmanufacturing/beamlattice/2017/02" requiredextensions="b" ',
+    ),
+    "object_missing.3mf": lambda: threemf('<item objectid="1"', '<item objectid="7"'),
+    "bad_transform.3mf": lambda: threemf('<item objectid="1"', '<item objectid="1" transform="1 0 0"'),
+    "no_mesh.3mf": lambda: SOUND["package"](SOUND["model"](SOUND["object_"](1, "", "body"), SOUND["item"](1))),
+    "not_xml.3mf": lambda: threemf("</resources>", "</ressources>"),
+    "components_without_end.3mf": circular,
+    "components_by_the_million.3mf": lambda: holders(9, 10),
+    "part_outside.3mf": lambda: SOUND["linked"]("/../../secret.model"),
+    # PLY
+    "cloud.ply": lambda: SOUND["ply"]("ascii", faces=[]),
+    "cut.ply": lambda: SOUND["ply"]("binary_little_endian")[:-9],
+    "cut_ascii.ply": lambda: SOUND["ply"]("ascii")[:-20],
+    "four_billion.ply": lambda: box_ply(b"element vertex 8", b"element vertex 4000000000", "binary_little_endian"),
+    "four_billion_ascii.ply": lambda: box_ply(b"element face 6", b"element face 4000000000"),
+    "long_face.ply": lambda: long_face(),
+    "index_beyond.ply": lambda: box_ply(b"4 4 5 7 6", b"4 4 5 7 8"),
+    "no_header_end.ply": lambda: box_ply(b"end_header", b"and_header"),
+    "odd_header.ply": lambda: box_ply(b"property float y", b"property flaot y"),
+    "no_z.ply": lambda: box_ply(b"property float z", b"property float w"),
+    "text_renamed.ply": lambda: "Belly weight, second try.\n",
+    # OFF
+    "cut.off": lambda: SOUND["off"]()[:-20],
+    "index_beyond.off": lambda: SOUND["off"]().replace("4 4 5 7 6", "4 4 5 7 8"),
+    "four_dimensions.off": lambda: SOUND["off"]("4OFF"),
+    "text_renamed.off": lambda: "Belly weight, second try.\n",
+    "negative_count.off": lambda: SOUND["off"]().replace("8 6 12", "-8 6 12"),
+    # GLB
+    "cut.glb": lambda: box_glb()[:-40],
+    "text_renamed.glb": lambda: "Belly weight, second try.\n",
+    "not_json.glb": lambda: box_glb().replace(b'"asset"', b"'asset'"),
+    "index_beyond.glb": lambda: box_glb().replace(SOUND["shorts"]([(0, 3, 1)]), SOUND["shorts"]([(0, 3, 9)])),
+    "beyond_buffer.glb": lambda: box_glb().replace(b'"count": 36', b'"count": 99'),
+    "other_file.glb": lambda: box_glb(buffers=[{"byteLength": 168, "uri": "../../secret.bin"}]),
+    "compressed.glb": lambda: box_glb(extensionsRequired=["KHR_draco_mesh_compression"]),
+    "nodes_without_end.glb": lambda: box_glb([{"children": [1]}, {"children": [2]}, {"children": [1], "mesh": 0}]),
+    "no_mesh.glb": lambda: SOUND["glb"]({"asset": {"version": "2.0"}, "nodes": [{}]}, b""),
+    # STEP
+    "text_renamed.step": lambda: "Belly weight, second try.\n",
 }
+
+
+def loose_obj(faces: Sequence[Face]) -> str:
+    points = [corner for face in faces for corner in face]
+    lines = [f"v {x:.7g} {y:.7g} {z:.7g}" for x, y, z in points]
+    return "\n".join([*lines, *(f"f {3 * k + 1} {3 * k + 2} {3 * k + 3}" for k in range(len(faces))), ""])
+
+
+def flipped(data: bytes, share: float) -> bytes:
+    """Bytes of which one, at a share of the length, has all its bits turned."""
+    at = int(share * len(data))
+    return data[:at] + bytes([data[at] ^ 0xFF]) + data[at + 1 :]
+
+
+def long_face() -> bytes:
+    """Binary PLY whose first face says that it has 4,000,000,000 corners."""
+    data: bytes = SOUND["ply"]("binary_little_endian")
+    data = data.replace(b"property list uchar int", b"property list uint int")
+    start = data.index(b"end_header") + 11 + 8 * 12
+    return data[:start] + struct.pack("<I", 4_000_000_000) + data[start + 1 :]
+
+
+def bent_over() -> list[Face]:
+    """A square tube, 4 mm wide, bent in a flat spiral of one and a quarter turns, so that it runs through itself."""
+    rings = []
+    for k in range(61):
+        turn = 2.5 * math.pi * k / 60
+        away, up = (math.cos(turn), math.sin(turn)), 0.04 * k
+        rings.append(
+            [(r * away[0], r * away[1], up + z) for r, z in ((12.0, -2.0), (16.0, -2.0), (16.0, 2.0), (12.0, 2.0))]
+        )
+    faces: list[Face] = []
+    for ring, after in pairwise(rings):
+        for i in range(4):
+            a, b, c, d = ring[i], ring[(i + 1) % 4], after[(i + 1) % 4], after[i]
+            faces += [(a, c, b), (a, d, c)]
+    for (a, b, c, d), ahead in ((rings[0], False), (rings[-1], True)):
+        faces += [(a, c, d), (a, b, c)] if not ahead else [(a, d, c), (a, c, b)]
+    return faces
 
 
 def content(name: str) -> bytes:

@@ -182,7 +182,7 @@ def test_a_bad_quick_form(bench: Bench, case: str) -> None:
     ("name", "said"),
     [
         ("samples", ["- samples: this is a folder", "allowed: .*.toml, .stl, .obj", "next: name the bait file in it"]),
-        ("body.step", ["- body.step: this is neither a bait file nor a mesh", "found: '.step'", "next: export .* STL"]),
+        ("body.iges", ["- body.iges: this is neither a bait file nor a mesh", "found: '.iges'", "next: export .* STL"]),
         ("minnow", ["- minnow: this is neither", "found: 'minnow'", "allowed: .*.toml"]),
     ],
 )

@@ -49,6 +49,61 @@ REFUSED = {
     "decimal_comma.obj": "line 3: .*'v 0 10,5 0'.*decimal point",
     "not_a_number.obj": "face 1, 4, 5; line 3: 3 of 6 faces: .*no finite number.*found: nan",
     "free_form.obj": "line 3: .*free-form.*'cstype'.*polygon mesh",
+    "grouped_digits.obj": "line 3: .*'v 0 1_0 0'.*three numbers",
+    "far_out.stl": r"face 5: 1 of 12 faces: .*farther out than any bait.*found: 1e\+30",
+    "far_out.obj": r"face 1, 4, 5: 3 of 6 faces: .*farther out.*found: 1e\+300.*within 100 km",
+    "nowhere_large.obj": "the whole mesh is smaller than a millionth of a millimetre.*4e-15 m.*scale",
+    # A package of no entries is the 22 bytes of its end.
+    "empty_package.3mf": "does not say where its model is.*no _rels/.rels",
+    "text_renamed.3mf": "no zip package.*not a zip file",
+    "cut.3mf": "no zip package, or it is cut off",
+    "flipped_byte.3mf": "cannot be unpacked.*Bad CRC-32",
+    "entities.3mf": "3dmodel.model, line 1: .*document type.*<!DOCTYPE",
+    "no_relations.3mf": "does not say where its model is.*no _rels/.rels",
+    "index_beyond.3mf": "object 'body', triangle 1: .*not there.*found: 0 2 8.*0 to 7",
+    "index_negative.3mf": "object 'body', triangle 1: .*not there.*found: 0 2 -1",
+    "index_huge.3mf": 'line 3: a triangle cannot be read.*v3="99999999999999999999"',
+    # Faces 2, 5, 11 and 12 have the box's second corner.
+    "not_a_number.3mf": "face 2, 5, 11, 12: 4 of 12 faces: .*no finite number.*found: nan",
+    "decimal_comma.3mf": 'line 3: a vertex cannot be read.*x="40,5".*decimal point',
+    "grouped_digits.3mf": 'line 3: a number cannot be read.*x="4_',
+    "unit_unknown.3mf": "unit is none of the format's.*furlong.*micron, millimeter",
+    "extension_needed.3mf": "needs an extension.*beamlattice.*plain meshes",
+    "object_missing.3mf": "object that is to be built is not there.*'7'",
+    "bad_transform.3mf": "line 4: a build item cannot be read.*twelve numbers",
+    "no_mesh.3mf": "holds no mesh.*1 objects, 1 to be built",
+    "not_xml.3mf": "line 3: the model is no sound XML.*mismatched tag",
+    "components_without_end.3mf": "hold each other without end.*64 levels",
+    "components_by_the_million.3mf": "set in too many places.*20,000",
+    "part_outside.3mf": "no part 'secret.model'",
+    "cloud.ply": "holds no faces.*8 vertices.*cloud of points.*closed mesh",
+    # The last face is a byte and four numbers of four; 9 bytes are gone.
+    "cut.ply": "cut off in face 6.*379 bytes.*388 bytes at least",
+    "cut_ascii.ply": "line 22: the file ends before its last face.*4 of 6",
+    # A header of 199 bytes, and 12 bytes a vertex.
+    "four_billion.ply": "cut off within its table of 'vertex'.*48,000,000,199 bytes for the 4,000,000,000",
+    "four_billion_ascii.ply": "ends before its last face.*6 of 4,000,000,000",
+    "long_face.ply": "cut off in face 1",
+    "index_beyond.ply": "line 20: a face names a vertex that is not there.*found: 8.*0 to 7",
+    "no_header_end.ply": "header of the PLY does not end",
+    "odd_header.ply": "line 6: .*header cannot be read.*'property flaot y'",
+    "no_z.ply": "no vertices in three dimensions.*x, y, w",
+    "text_renamed.ply": "this is no PLY.*Belly weight",
+    "cut.off": "line 14: the file ends before its last face.*4 of 6",
+    "index_beyond.off": "line 12: .*not there.*'4 4 5 7 8'.*0 to 7",
+    "four_dimensions.off": "line 1: .*not in three dimensions.*4OFF",
+    "text_renamed.off": "line 1: an OFF begins with its name.*Belly weight",
+    "negative_count.off": "line 2: the counts .* cannot be read.*'-8 6 12'",
+    "cut.glb": "the GLB is cut off.*as its header says",
+    "text_renamed.glb": "this is no GLB.*Belly weight",
+    "not_json.glb": "JSON of the GLB cannot be read",
+    "index_beyond.glb": "a face names a vertex that is not there.*found: 9.*0 to 7",
+    "beyond_buffer.glb": "reaches beyond its buffer.*99 rows of 2 bytes from 0 on, in 72 bytes",
+    "other_file.glb": "keeps its numbers in another file.*secret.bin.*everything in it",
+    "compressed.glb": "needs an extension that is not read.*draco.*uncompressed",
+    "nodes_without_end.glb": "a node of the GLB hangs in two places, or in itself.*node 1",
+    "no_mesh.glb": "holds no triangles.*1 nodes",
+    "text_renamed.step": "no STEP file.*Belly weight|not installed.*3MF",
 }
 
 BOX = 6400.0
@@ -81,6 +136,15 @@ READ = {
     "cavity.stl": (24, 24, BOX - 640.0, []),
     "in_metres.stl": (12, 12, BOX * 1e-9, []),
     "crossing.obj": (11, 11, None, ["crossing-polygons"]),
+    "in_inches.stl": (12, 12, 3.94 * 0.6 * 0.8, []),
+    "half_body.stl": (10, 10, None, []),
+    "small_hole.stl": (139, 139, None, []),
+    "cracked.obj": (12, 12, None, []),
+    # An octahedron's faces cut in four twice: 128 faces each.
+    "balls.stl": (384, 384, None, []),
+    "crossing_itself.stl": (484, 484, None, []),
+    "coarse.stl": (32, 32, None, []),
+    "denormal.obj": (12, 12, BOX, []),
 }
 
 
@@ -92,7 +156,7 @@ def volume(mesh: MeshFile) -> float:
 
 def test_the_folder_is_what_its_script_makes() -> None:
     made = {name: BUILD["content"](name) for name in BUILD["FILES"]}
-    assert {path.name: path.read_bytes() for path in FOLDER.iterdir() if path.suffix in {".stl", ".obj"}} == made
+    assert {path.name: path.read_bytes() for path in FOLDER.iterdir() if path.is_file() and path.name != "build.py"} == made
 
 
 def test_every_file_has_its_expectation() -> None:
