@@ -190,7 +190,9 @@ def test_nearest_place_of_a_rod_by_another_library(seed: int) -> None:
     cylinder = any_rod(seed)
     found = solid_standoff(boxes, cylinder)
     if found.distance > 0:
-        near, apart, _ = trimesh.proximity.ProximityQuery(shapes.as_trimesh(surface)).on_surface(found.on[None])
+        near, apart, _ = trimesh.proximity.ProximityQuery(  # type: ignore[no-untyped-call]
+            shapes.as_trimesh(surface)
+        ).on_surface(found.on[None])
         assert apart[0] == pytest.approx(found.distance, abs=2e-6)
         assert near[0] == pytest.approx(found.place, abs=1e-4)
 

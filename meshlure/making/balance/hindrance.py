@@ -47,9 +47,10 @@ def _too_heavy(search: Search, net: float) -> str:
     goal, ground = search.goal, search.ground
     body = ground.composition.parts[0]
     lighter = (body.mass.amount + net) / body.volume
+    speed = "" if goal.sink is None else f" for {goal.sink * 100:.1f} cm/s"
     words = (
         f"without any ballast the reserve is {(goal.reserve + net) * 1e3:+z.2f} g, and "
-        f"{goal.reserve * 1e3:+z.2f} g are wanted: the bait must lose {-net * 1e3:.2f} g"
+        f"{goal.reserve * 1e3:+z.2f} g are wanted{speed}: the bait must lose {-net * 1e3:.2f} g"
     )
     if lighter <= 0:
         return f"{words}, more than the body weighs"
