@@ -64,6 +64,7 @@ class Winged:
         return Skin(
             surface=bare,
             thickness=np.zeros(len(bare.faces)),
+            own=np.ones(len(bare.faces), dtype=np.bool_),
             outer=bare,
             outer_pairs=pairs,
             bare=bare,
