@@ -156,7 +156,9 @@ def volume(mesh: MeshFile) -> float:
 
 def test_the_folder_is_what_its_script_makes() -> None:
     made = {name: BUILD["content"](name) for name in BUILD["FILES"]}
-    assert {path.name: path.read_bytes() for path in FOLDER.iterdir() if path.is_file() and path.name != "build.py"} == made
+    assert {
+        path.name: path.read_bytes() for path in FOLDER.iterdir() if path.is_file() and path.name != "build.py"
+    } == made
 
 
 def test_every_file_has_its_expectation() -> None:

@@ -101,7 +101,7 @@ NOT_READ_THERE = {
 @pytest.mark.parametrize("name", [name for name in VOLUMES if name not in NOT_READ_THERE])
 def test_the_general_mesh_library_finds_the_same(name: str) -> None:
     """Volume, centroid and inertia."""
-    theirs = trimesh.load(FOLDER / name, process=False, force="mesh")
+    theirs: Any = trimesh.load(FOLDER / name, process=False, force="mesh")
     mesh = read(name)
     unit = {"mm": 1.0, "in": 25.4, "m": 1000.0}[mesh.unit]
     ours = solid_moments(mesh.surface)
