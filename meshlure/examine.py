@@ -187,16 +187,10 @@ def study(bait: Bait, against: Bait | None = None, tell: Callable[[str], None] =
         "drag": passage_tree.drag(drags),
         "flight": flight,
         "sinking": sinking_tree.sinking(below, pulls),
-        "pour": None,
         "measured": copy,
         **account.stated(bait, held, posed.trees, speed, pull),
         "assumptions": account.assumptions(bait, speed, pull),
         "cautions": account.cautions(bait),
-        "balance": None,
-        "chamber": None,
-        "comparison": None,
-        "hollow": None,
-        "mould": None,
         "timings_s": clock.spent,
     }
     return Study(tree, views, scene=scene(bait, composition.rows, posed.ends, account.headline(posed.trees)))

@@ -431,13 +431,7 @@ def minnow_results() -> dict[str, Any]:
             {"trigger": "hooks fitted", "text": "Fit hooks last and cover the points."},
         ],
         "measured": None,
-        "pour": None,
         "changes": [],
-        "balance": None,
-        "chamber": None,
-        "hollow": None,
-        "mould": None,
-        "comparison": None,
         "limits": [
             {"what": "reserve, g", "low": 0.8, "high": 1.6, "value": 1.2233, "met": True},
             {"what": "nose up, degrees", "low": -3.0, "high": 0.0, "value": -3.9, "met": False},
