@@ -106,7 +106,7 @@ gl.enableVertexAttribArray(0);
 gl.enableVertexAttribArray(1);
 
 // Eye ---------------------------------------------------------------------------------------------------------------
-var START = {turn: -0.5, tilt: 0.24}, eye = {turn: 0, tilt: 0, scale: 1, x: 0, y: 0}, wide = 1, tall = 1, pending = false;
+var START = {turn: -0.5, tilt: 0.24}, eye = {turn: START.turn, tilt: START.tilt, fills: true}, wide = 1, tall = 1, pending = false;
 function axes(turn, tilt) {
   var c = Math.cos(turn), s = Math.sin(turn), k = Math.cos(tilt), m = Math.sin(tilt);
   return {right: [c, s, 0], up: [-s * m, c * m, k], away: [-s * k, c * k, -m]};
@@ -122,8 +122,11 @@ function fitting(turn, tilt) {
   }
   return Math.min((wide - 56) / (2 * x || 1), (tall - 76) / (2 * y || 1));
 }
+function filling(turn, tilt) {
+  return {turn: turn, tilt: tilt, scale: fitting(turn, tilt), x: 0, y: 0, fills: true};
+}
 function look(turn, tilt) {
-  var to = {turn: turn, tilt: tilt, scale: fitting(turn, tilt), x: 0, y: 0};
+  var to = filling(turn, tilt);
   if (window.matchMedia("(prefers-reduced-motion: reduce)").matches) { eye = to; draw(); return; }
   var from = eye, begun = performance.now(), full = 2 * Math.PI;
   to.turn = from.turn + ((turn - from.turn) % full + 1.5 * full) % full - full / 2;
@@ -375,12 +378,13 @@ canvas.addEventListener("webglcontextlost", function () { figure.hidden = true; 
 function fitted() {
   var box = sheet.getBoundingClientRect(), dots = Math.min(window.devicePixelRatio || 1, 2);
   if (box.width < 2 || box.height < 2) return;
-  var before = Math.min(wide, tall * 2), first = wide === 1;
+  var before = Math.min(wide, tall * 2);
   wide = box.width; tall = box.height;
   [canvas, sheet].forEach(function (each) {
     each.width = Math.round(wide * dots); each.height = Math.round(tall * dots);
   });
-  if (first) eye = {turn: START.turn, tilt: START.tilt, scale: fitting(START.turn, START.tilt), x: 0, y: 0};
+  // A view that nobody has moved fills the picture anew.
+  if (eye.fills) eye = filling(eye.turn, eye.tilt);
   else zoomed(Math.min(wide, tall * 2) / before);
   paint();
 }
