@@ -263,6 +263,8 @@ function marks(way) {
   function seat(text, at, half, seats) {
     for (var i = 0; i < seats.length; i++) {
       var x = at[0] + seats[i][0], y = at[1] + seats[i][1];
+      // What is in the picture has its word in the picture.
+      if (at[0] > 0 && at[0] < wide) x = Math.min(Math.max(x, half + 4), wide - half - 4);
       var free = taken.every(function (t) { return Math.abs(t[0] - x) > t[2] + half || Math.abs(t[1] - y) > t[3] + 7; });
       if (free || i === seats.length - 1 && text.length === 1 && text > "9") return [x, y];
     }
