@@ -18,6 +18,7 @@ SETTINGS = (
     "--no-sandbox",  # a container's root may start it
     "--use-angle=swiftshader",  # WebGL without a graphics card
     "--enable-unsafe-swiftshader",
+    "--disable-gpu-compositing",  # or the rest of the page would be drawn by that, too, and slowly
 )
 
 

@@ -133,7 +133,7 @@ def test_the_pictures_are_left_where_nothing_can_be_turned(
         assert found.said == []
 
 
-def test_keys_and_buttons_turn_it_too(chromium: Any, written: Callable[[str], Path]) -> None:
+def test_keys_and_buttons_turn_it_too_and_pieces_can_be_hidden(chromium: Any, written: Callable[[str], Path]) -> None:
     with opened(chromium, written("stick/stick.toml"), SMALL) as window:
         seen = [signs(window)]
         window.page.locator(f"{STAGE} canvas.marks").focus()
@@ -149,10 +149,6 @@ def test_keys_and_buttons_turn_it_too(chromium: Any, written: Callable[[str], Pa
         assert len(set(seen)) == len(seen)
         window.page.click("#turn [data-do=reset]")
         assert signs(window) == seen[0]
-
-
-def test_pieces_can_be_hidden(chromium: Any, written: Callable[[str], Path]) -> None:
-    with opened(chromium, written("stick/stick.toml"), SMALL) as window:
         body = window.page.locator("#turn [data-show='0']")
         body.focus()
         first = window.pixels(STAGE)
