@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Callable, Mapping, Sequence
 from pathlib import Path
 from typing import Any, Final
 
@@ -16,7 +16,7 @@ def chamber_lines(results: Tree, out: Path | None) -> tuple[str | Table, ...]:
     account = results["chamber"]
     lines: list[str | Table] = [str(results["name"])]
     if account["options"]:
-        lines.append(_table(account["options"], account["taken"]))
+        lines += [_table(columns, cells, account["options"], account["taken"]) for columns, cells in _TABLES]
         lines += [f"  {line}" for line in _taken(account["options"][account["taken"] - 1])]
     if account["replaced"]:
         lines.append(f"  replaced {', '.join(account['replaced'])}")
@@ -61,40 +61,54 @@ def _taken(row: Tree) -> list[str]:
     return lines
 
 
-_COLUMNS: Final = (
-    Column(""),
-    Column("balls", words=True),
-    Column("bore mm"),
-    Column("from nose mm"),
-    Column("travel mm", number=True),
-    Column("shift mm", number=True),
-    Column("turns deg", number=True),
-    Column("wall mm", number=True),
-    Column("ends mm", number=True),
-    Column("reserve g", number=True),
-    Column("kind"),
-    Column("score", number=True),
-)
+def _table(
+    columns: Sequence[Column], cells: Callable[[Tree], tuple[str, ...]], rows: Sequence[Tree], taken: int
+) -> Table:
+    """One row a way; the one that is written carries an arrow."""
+    made = [(f"{number}{'>' if number == taken else ''}", *cells(row)) for number, row in enumerate(rows, 1)]
+    return Table(columns, made, frozenset({taken - 1}))
 
 
-def _table(rows: Sequence[Tree], taken: int) -> Table:
-    """One row a way."""
-    cells = [_cells(number, row, number == taken) for number, row in enumerate(rows, 1)]
-    return Table(_COLUMNS, cells, frozenset({taken - 1}))
-
-
-def _cells(number: int, row: Tree, taken: bool) -> tuple[str, ...]:
+def _deed_cells(row: Tree) -> tuple[str, ...]:
     return (
-        f"{number}{'>' if taken else ''}",
         f"{row['count']} x {row['ball_mm']:.4g} mm {row['material']}, {row['balls_g']:.2f} g",
-        f"{row['bore_mm']:.4g} x {row['length_mm']:.1f}",
-        " to ".join(f"{value:.1f}" for value in row["from_nose_mm"]),
         f"{row['travel_mm']:.1f}",
         f"{row['shift_mm']:.2f}",
         f"{row['posture_change_deg']:.1f}",
-        f"{row['wall_mm']:.2f}",
-        f"{row['end_wall_mm']:.2f}",
-        f"{row['reserve_g']:+.2f}",
-        row["kind"],
+        "yes" if row["postures"]["tail"]["returns"] else "no",
+        f"{row['reserve_g']:+z.2f}",
         f"{row['score']:.2f}",
     )
+
+
+def _bore_cells(row: Tree) -> tuple[str, ...]:
+    return (
+        f"{row['bore_mm']:.4g} x {row['length_mm']:.1f}",
+        " to ".join(f"{value:.1f}" for value in row["from_nose_mm"]),
+        f"{row['wall_mm']:.2f}",
+        f"{row['end_wall_mm']:.2f}",
+        row["kind"],
+    )
+
+
+_DEEDS: Final = (
+    Column(""),
+    Column("balls", words=True),
+    Column("travel mm", number=True),
+    Column("shift mm", number=True),
+    Column("turns deg", number=True),
+    Column("returns"),
+    Column("reserve g", number=True),
+    Column("score", number=True),
+)
+_BORES: Final = (
+    Column(""),
+    Column("bore mm"),
+    Column("from nose mm"),
+    Column("wall mm", number=True),
+    Column("ends mm", number=True),
+    Column("kind"),
+)
+
+_TABLES: Final = ((_DEEDS, _deed_cells), (_BORES, _bore_cells))
+"""What a way does, and where it lies: either fits a terminal of 80 columns."""

@@ -69,5 +69,5 @@ def _print(pour: Tree) -> list[str]:
 def outcome_words(row: Tree) -> str:
     """Return mass, reserve, state and posture of a bait."""
     nose = "no attitude" if row["nose_up_deg"] is None else f"nose up {row['nose_up_deg']:+.0f} deg"
-    lean = "" if row["lean_deg"] is None else f", lean {row['lean_deg']:+.0f} deg"
+    lean = "" if row["lean_deg"] is None else f", lean {row['lean_deg']:+z.0f} deg"
     return f"{row['mass_g']:.2f} g, {row['state']}, reserve {row['reserve_g']:+.2f} g, {nose}{lean}"

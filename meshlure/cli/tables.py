@@ -92,6 +92,18 @@ class Table:
         held = [min(size, _WORDS) if c.words else size for size, c in zip(longest, self.columns, strict=True)]
         return [max(size, *map(len, head.split() or [""])) for size, head in zip(held, heads, strict=True)]
 
+    def _widths(self, heads: list[str], rows: list[list[str]], wide: int) -> list[int]:
+        """How wide each column is made: what is to spare goes to the columns of words, then to the heads."""
+        sizes = self._narrowest(heads, rows)
+        spare = wide - sum(sizes) - _GAP * (len(heads) - 1)
+        longest = [max(map(len, cells), default=0) for cells in zip(*rows, strict=True)] or [0] * len(heads)
+        for wanted in (longest, list(map(len, heads))):
+            for place, size in enumerate(wanted):
+                more = min(max(size - sizes[place], 0), spare)
+                sizes[place] += more
+                spare -= more
+        return sizes
+
     def _records(self, heads: list[str], rows: list[list[str]]) -> list[str]:
         """Every row as a block of its own, a line a cell, where the columns have no room."""
         size = max(map(len, heads))
@@ -114,13 +126,12 @@ class Table:
             padding=(0, _GAP - ruled, 0, 0),  # the rule takes a blank of its own
             header_style="bold" if colour else "",
         )
-        least = self._narrowest(heads, rows)
-        for head, column, size in zip(heads, self.columns, least, strict=True):
+        for head, column, size in zip(heads, self.columns, self._widths(heads, rows, wide), strict=True):
             made.add_column(
                 Text(head),
                 justify="right" if column.number else "left",
                 overflow="fold",
-                min_width=size,
+                width=size,
                 vertical="top",
             )
         for number, row in enumerate(rows):

@@ -2,30 +2,13 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Callable, Mapping, Sequence
 from pathlib import Path
-from typing import Any
+from typing import Any, Final
 
 from meshlure.cli.tables import Column, Table
 
 Tree = Mapping[str, Any]
-
-_COLUMNS = (
-    Column(""),
-    Column("ballast", words=True),
-    Column("g", number=True),
-    Column("from nose mm", number=True),
-    Column("middle at mm", number=True),
-    Column("reserve g", number=True),
-    Column("nose up", number=True),
-    Column("lean", number=True),
-    Column("stiff mm", number=True),
-    Column("cover mm", number=True),
-    Column("thinnest at mm", number=True),
-    Column("flight", words=True),
-    Column("reach", number=True),
-    Column("points", number=True),
-)
 
 _NOT_TOLD = ("hooks", "sanding")
 """Cautions that every bait calls for: they stand on the page."""
@@ -39,7 +22,7 @@ def balance_lines(results: Tree, out: Path) -> tuple[str | Table, ...]:
     if wanted is not None:
         lines.append(f"  target   {wanted['behaviour']}, {_wanted(wanted)}")
     if rows:
-        lines.append(_table(rows, account["taken"]))
+        lines += [_table(columns, cells, rows, account["taken"]) for columns, cells in _TABLES]
     if len(rows) > 1:
         lines.append(f"  order    {_order(account['weights'])}")
     dense = account["body_density"]
@@ -77,33 +60,67 @@ def _order(weights: Tree) -> str:
     )
 
 
-def _table(rows: Sequence[Tree], taken: int | None) -> Table:
+def _table(
+    columns: Sequence[Column], cells: Callable[[str, Tree], tuple[str, ...]], rows: Sequence[Tree], taken: int | None
+) -> Table:
     """One row a way; the one that is written carries an arrow."""
-    cells = [_cells(number, row, number == taken) for number, row in enumerate(rows, 1)]
-    return Table(_COLUMNS, cells, frozenset() if taken is None else frozenset({taken - 1}))
+    marks = [f"{number}{'>' if number == taken else ''}" for number in range(1, len(rows) + 1)]
+    made = [cells(mark, row) for mark, row in zip(marks, rows, strict=True)]
+    return Table(columns, made, frozenset() if taken is None else frozenset({taken - 1}))
 
 
-def _cells(number: int, row: Tree, taken: bool) -> tuple[str, ...]:
-    rod, flight = row["shape"] == "rod", row["flight"]
+def _deed_cells(mark: str, row: Tree) -> tuple[str, ...]:
+    rod = row["shape"] == "rod"
     size = f"{row['size_mm']:.4g} x {row['length_mm']:.2f}" if rod else f"{row['count']} x {row['size_mm']:.4g}"
-    trim = "" if flight["trim_deg"] is None else f", trim {flight['trim_deg']:.0f} deg"
     return (
-        f"{number}{'>' if taken else ''}",
+        mark,
         f"{row['material']} {row['shape']} {size} mm",
         f"{row['mass_g']:.2f}",
         f"{row['from_nose_mm']:z.1f}",
-        ", ".join(f"{value:z.2f}" for value in row["at_mm"]),
         f"{row['reserve_g']:+z.2f}",
         _angle(row["nose_up_deg"]),
         _angle(row["lean_deg"]) + ("" if row["upright"] else ", not from back up"),
         f"{row['metacentric_mm']['least']:z.2f}",
+        "" if row["score"] is None else f"{row['score']:z.2f}",
+    )
+
+
+def _place_cells(mark: str, row: Tree) -> tuple[str, ...]:
+    flight = row["flight"]
+    trim = "" if flight["trim_deg"] is None else f", trim {flight['trim_deg']:.0f} deg"
+    return (
+        mark,
+        ", ".join(f"{value:z.2f}" for value in row["at_mm"]),
         f"{row['cover_mm']:.2f}",
         ", ".join(f"{value:z.1f}" for value in row["cover_at_mm"]),
         f"{flight['leads']} first, {flight['verdict']}{trim}",
         f"{row['distance_ratio']:.2f}",
-        "" if row["score"] is None else f"{row['score']:z.2f}",
     )
 
 
 def _angle(value: float | None) -> str:
     return "none" if value is None else f"{value:+z.1f}"
+
+
+_DEEDS: Final = (
+    Column(""),
+    Column("ballast", words=True),
+    Column("g", number=True),
+    Column("from nose mm", number=True),
+    Column("reserve g", number=True),
+    Column("nose up", number=True),
+    Column("lean", number=True),
+    Column("stiff mm", number=True),
+    Column("points", number=True),
+)
+_PLACES: Final = (
+    Column(""),
+    Column("middle at mm", number=True),
+    Column("cover mm", number=True),
+    Column("thinnest at mm", number=True),
+    Column("flight", words=True),
+    Column("reach", number=True),
+)
+
+_TABLES: Final = ((_DEEDS, _deed_cells), (_PLACES, _place_cells))
+"""What a way does, and where it lies: either fits a terminal of 80 columns."""

@@ -47,3 +47,17 @@ def test_rows_are_set_off_in_colour_only_where_there_is_any() -> None:
 def test_an_empty_table_has_its_head() -> None:
     assert Table(TABLE.columns, []).lines(None, "utf-8", False) == ["material  g/cm3  what it rests on"]
     assert Table(TABLE.columns, []).lines(60, "utf-8", False)[0].split()[0] == "material"
+
+
+@pytest.mark.parametrize("wide", range(55, 120, 3))
+def test_many_columns_of_numbers_beside_long_words_are_all_whole(wide: int) -> None:
+    heads = ("from nose mm", "reserve g", "nose up", "lean", "points")
+    cells = ("19.2", "+1.00", "+4.0", "-0.5", "0.15")
+    table = Table(
+        [Column(""), Column("ballast", words=True), *(Column(head, number=True) for head in heads)],
+        [("1>", "tungsten heavy alloy 90% W rod 4 x 7.82 mm", *cells)],
+    )
+    lines = table.lines(wide, "utf-8", False)
+    assert max(map(len, lines)) <= wide
+    words = " ".join(lines).split()
+    assert all(cell in words for cell in (*cells, "tungsten", "mm", "points", "reserve"))
