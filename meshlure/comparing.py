@@ -13,6 +13,7 @@ from meshlure.bait.pieces import Bait
 from meshlure.errors import Fault, InputError
 from meshlure.examine import study
 from meshlure.files.baitfile import BaitFile
+from meshlure.files.source import LARGEST
 from meshlure.geometry.surface import Floats
 from meshlure.results.comparison import MOST, comparison
 from meshlure.results.study import Study
@@ -43,7 +44,10 @@ class Comparison:
 
 
 def compare(
-    plans: Sequence[BaitFile], as_stated: bool = False, tell: Callable[[str], None] = lambda _: None
+    plans: Sequence[BaitFile],
+    as_stated: bool = False,
+    tell: Callable[[str], None] = lambda _: None,
+    largest: int = LARGEST,
 ) -> Comparison:
     """Return baits beside each other.
 
@@ -56,6 +60,8 @@ def compare(
         else can be told from a difference.
     tell : callable
         Told each phase.
+    largest : int
+        Bytes beyond which a mesh is not read.
 
     Raises
     ------
@@ -78,7 +84,7 @@ def compare(
             tell(f"{number} of {len(taken)}, {name}: {phase}")
 
         said("reading the meshes")
-        bait = load(plan)
+        bait = load(plan, largest=largest)
         studies.append(study(bait, tell=said))
         tips.append(_tip(bait))
     trees = [dict(one.results) for one in studies]

@@ -19,10 +19,12 @@ from meshlure.errors import Fault, InputError
 from meshlure.files.baitfile import BaitFile, bait_of
 from meshlure.files.formats import FORMATS
 from meshlure.files.keys import Keys
-from meshlure.files.newbait import NewBait, NewHardware, NewPiece, new_text, put_new
+from meshlure.files.newbait import NewBait, NewHardware, NewPiece, new_text
 from meshlure.files.quickbait import quick_bait
 from meshlure.files.reading import read_mesh
 from meshlure.files.sections.inserts import InsertSection
+from meshlure.files.single import put_file
+from meshlure.files.source import LARGEST
 from meshlure.geometry.moments import solid_moments
 from meshlure.geometry.surface import Floats
 from meshlure.stock.hardware import item
@@ -93,7 +95,7 @@ class Size:
     proposed: str | None
 
 
-def measure(mesh: Path) -> Size:
+def measure(mesh: Path, largest: int = LARGEST) -> Size:
     """Return a mesh's size, to propose a unit.
 
     Raises
@@ -102,7 +104,7 @@ def measure(mesh: Path) -> Size:
         The file cannot be read.
     """
     # Millimetres stand in; a file that says its unit is believed before what is stated.
-    file = read_mesh(mesh, "mm", "body")
+    file = read_mesh(mesh, "mm", "body", largest=largest)
     says = FORMATS[mesh.suffix.casefold()].says_unit
     longest = float(np.ptp(file.surface.bounds, axis=0).max()) / LENGTH_UNITS["mm"]
     fitting = [
@@ -124,8 +126,16 @@ class Start:
     pose: Pose | None = None
 
 
-def look(stated: Stated, tell: Callable[[str], None] = lambda _: None) -> Start:
+def look(stated: Stated, tell: Callable[[str], None] = lambda _: None, largest: int = LARGEST) -> Start:
     """Return a bait as it was stated, with the directions that its meshes suggest.
+
+    Parameters
+    ----------
+    stated : Stated
+    tell : callable
+        Is told what is done.
+    largest : int
+        Bytes beyond which a mesh is not read.
 
     Raises
     ------
@@ -153,7 +163,7 @@ def look(stated: Stated, tell: Callable[[str], None] = lambda _: None) -> Start:
         faults += [replace(fault, where=_WATER.get(fault.where, fault.where)) for fault in error.faults]
     if faults:
         raise InputError(faults)
-    bait = load(plan)
+    bait = load(plan, largest=largest)
     tell("looking at the shape")
     nose, back = (np.array(way) for way in (plan.bait.nose, plan.bait.back))
     start = Start(stated, bait, _numbered(rows))
@@ -302,7 +312,7 @@ def write(start: Start, nose: Guess, back: Guess, out: Path) -> BaitFile:
     made = bait_of(tomllib.loads(text), out.parent, out.stem, out)
     check_reach(start.bait.body, tuple(hardware(row, row.name) for row in made.hardware), made)
     try:
-        put_new(out, text)
+        put_file(out, text.encode("utf-8"))
     except FileExistsError as error:
         raise InputError(_taken(out)) from error
     except OSError as error:

@@ -36,15 +36,21 @@ from meshlure.stock.waters import Water, stated_density, water
 T = TypeVar("T")
 
 
-def read_bait(path: str | PathLike[str]) -> Bait:
+def read_bait(path: str | PathLike[str], largest: int = LARGEST) -> Bait:
     """Return the bait that a bait file describes.
+
+    Parameters
+    ----------
+    path : path
+    largest : int
+        Bytes beyond which a mesh file is not read.
 
     Raises
     ------
     InputError
         With every fault of the file, or of its meshes.
     """
-    return load(read_baitfile(Path(path)))
+    return load(read_baitfile(Path(path)), largest=largest)
 
 
 def load(plan: BaitFile, wishes: Wishes | None = None, largest: int = LARGEST) -> Bait:

@@ -16,6 +16,7 @@ from meshlure.errors import Fault, InputError
 from meshlure.examine import study
 from meshlure.files.sections.inserts import InsertSection
 from meshlure.files.sections.substance import Substance as Stated
+from meshlure.files.source import ALL
 from meshlure.geometry.moments import solid_moments
 from meshlure.geometry.surface import Surface
 from meshlure.making.balance.ballast import UNCUT, Ballast
@@ -108,7 +109,7 @@ class Balance:
         )
         names = write_variant(folder, "balanced", self.bait, variant)
         tell("reading back")
-        again = read_bait(folder / "balanced.toml")
+        again = read_bait(folder / "balanced.toml", ALL)
         found = study(again, tell=tell)
         self._check(found, again, made)
         tell("writing")

@@ -17,6 +17,7 @@ from meshlure.examine import study
 from meshlure.files.sections.balls import BallsSection
 from meshlure.files.sections.inserts import InsertSection
 from meshlure.files.sections.substance import Substance as Stated
+from meshlure.files.source import ALL
 from meshlure.geometry.blocks import BlockIndex
 from meshlure.geometry.moments import solid_moments
 from meshlure.making.chamber.option import CHAMBER
@@ -106,7 +107,7 @@ class Chambered:
         )
         files = write_variant(folder, STEM, self.bait, variant)
         tell("reading back")
-        again = read_bait(folder / f"{STEM}.toml")
+        again = read_bait(folder / f"{STEM}.toml", ALL)
         found = study(again)
         self._check(found, again, made, names[CHAMBER])
         results = dict(found.results)

@@ -16,6 +16,7 @@ from meshlure.bait.refusals import refuse
 from meshlure.chambering.delivery import KEPT_RESERVE, KEPT_VOLUME
 from meshlure.errors import Fault, InputError
 from meshlure.examine import study
+from meshlure.files.source import ALL
 from meshlure.geometry.blocks import BlockIndex
 from meshlure.geometry.moments import solid_moments
 from meshlure.making.hollow import Hollow, closed, hollow, read_wish, shelled
@@ -78,7 +79,7 @@ class Hollowed:
         )
         files = write_variant(folder, STEM, self.bait, variant)
         tell("reading back")
-        again = read_bait(folder / f"{STEM}.toml")
+        again = read_bait(folder / f"{STEM}.toml", ALL)
         found = study(again)
         faults = []
         reserve = found.results["buoyancy"]["reserve_g"] * 1e-3

@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING, Annotated, Any, Final
 
 import typer
 
+from meshlure.cli.limits import Largest, most_bytes
 from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer, hand_on
 from meshlure.errors import Fault, InputError
@@ -49,6 +50,7 @@ def balance(
     ] = False,
     no_page: Annotated[bool, typer.Option("--no-page", help="Write results.json, but no report.html.")] = False,
     json: Annotated[bool, typer.Option("--json", help="Print the results; --out may then be left out.")] = False,
+    largest: Largest = None,
     debug: Annotated[bool, typer.Option("--debug", help="On a fault of ours, print where it happened.")] = False,
 ) -> None:
     """Balance a bait."""
@@ -69,13 +71,14 @@ def balance(
         from meshlure.files.folder import check_folder
 
         check_folder(out)
+    most = most_bytes(largest)
     from meshlure.bait.loading import read_bait
     from meshlure.balancing import finding
 
     written: Study | None = None
     with phases() as said:
         said("reading the meshes")
-        read = read_bait(bait)
+        read = read_bait(bait, most)
         found = finding.balance(read, take, said) if ballast is None else finding.place(read, ballast, said)
         if out is not None:
             from meshlure.cli.writing import write_made

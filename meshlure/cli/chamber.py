@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING, Annotated, Any, Final, Protocol
 
 import typer
 
+from meshlure.cli.limits import Largest, most_bytes
 from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer, hand_on, tell
 from meshlure.errors import Fault, InputError
@@ -57,6 +58,7 @@ def chamber(
     ] = None,
     no_page: Annotated[bool, typer.Option("--no-page", help="Write results.json, but no report.html.")] = False,
     json: Annotated[bool, typer.Option("--json", help="Print the results; --out may then be left out.")] = False,
+    largest: Largest = None,
     debug: Annotated[bool, typer.Option("--debug", help="On a fault of ours, print where it happened.")] = False,
 ) -> None:
     """Chamber or hollow a bait."""
@@ -73,12 +75,13 @@ def chamber(
         from meshlure.files.folder import check_folder
 
         check_folder(out)
+    most = most_bytes(largest)
     written: Study | None = None
     with phases() as said:
         said("reading the meshes")
         from meshlure.bait.loading import read_bait
 
-        found = _found(read_bait(bait), take, hollow, said)
+        found = _found(read_bait(bait, most), take, hollow, said)
         if out is not None:
             from meshlure.cli.writing import write_made
 

@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING, Annotated, Final
 
 import typer
 
+from meshlure.cli.limits import Largest, most_bytes
 from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer, hand_on
 from meshlure.errors import Fault, InputError
@@ -46,6 +47,7 @@ def compare(
     ] = False,
     no_page: Annotated[bool, typer.Option("--no-page", help="Write results.json, but no compare.html.")] = False,
     json: Annotated[bool, typer.Option("--json", help="Print results.json; --out may then be left out.")] = False,
+    largest: Largest = None,
     debug: Annotated[bool, typer.Option("--debug", help="On a fault of ours, print where it happened.")] = False,
 ) -> None:
     """Compare baits."""
@@ -64,11 +66,12 @@ def compare(
         from meshlure.files.folder import check_folder
 
         check_folder(out)
+    most = most_bytes(largest)
     plans = _plans(baits)
     from meshlure.comparing import compare as compared
 
     with phases() as said:
-        found = compared(plans, as_stated, said)
+        found = compared(plans, as_stated, said, most)
         study = found.study
         if out is not None:
             from meshlure.cli.writing import write_page

@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING, Annotated, Final
 
 import typer
 
+from meshlure.cli.limits import Largest, most_bytes
 from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer, hand_on
 from meshlure.errors import Fault, InputError
@@ -82,10 +83,7 @@ def inspect(
             "--remake", metavar="STEP", help='Mend: if nothing else closes it, a new skin in steps, "0.3 mm".'
         ),
     ] = None,
-    largest: Annotated[
-        str | None,
-        typer.Option("--largest", metavar="SIZE", help='Greatest file to read, "2 GB"; 500 MB unless stated.'),
-    ] = None,
+    largest: Largest = None,
     json: Annotated[bool, typer.Option("--json", help="Print everything as JSON, and nothing else.")] = False,
     debug: Annotated[bool, typer.Option("--debug", help="On a fault of ours, print where it happened.")] = False,
 ) -> None:
@@ -97,9 +95,7 @@ def inspect(
         raise InputError(
             Fault("these options belong to mending", ", ".join(given), "no --mend", "--mend beside them", "add --mend")
         )
-    from meshlure.files.source import LARGEST, size_in_bytes
-
-    most = LARGEST if largest is None else size_in_bytes(largest, "--largest")
+    most = most_bytes(largest)
     meshes = list(_meshes(files))
     if out is not None:
         _check_out(out, meshes)

@@ -7,6 +7,7 @@ from typing import Annotated, Final
 
 import typer
 
+from meshlure.cli.limits import Largest, most_bytes
 from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer, hand_on
 from meshlure.errors import Fault, InputError
@@ -43,6 +44,7 @@ def mould(
     tab: Annotated[bool, typer.Option("--tab", help="With --master: add a tab with a hole to hang it by.")] = False,
     no_page: Annotated[bool, typer.Option("--no-page", help="Write results.json, but no report.html.")] = False,
     json: Annotated[bool, typer.Option("--json", help="Print results.json; --out may then be left out.")] = False,
+    largest: Largest = None,
     debug: Annotated[bool, typer.Option("--debug", help="On a fault of ours, print where it happened.")] = False,
 ) -> None:
     """Make a mould."""
@@ -61,6 +63,7 @@ def mould(
         from meshlure.files.folder import check_folder
 
         check_folder(out)
+    most = most_bytes(largest)
     from meshlure.bait.loading import read_bait
     from meshlure.making.mould.design import Kind
     from meshlure.moulding import mould as design
@@ -69,7 +72,7 @@ def mould(
     kind = Kind.ONE_PIECE if one_piece else Kind.MASTER if master else Kind.HALVES
     with phases() as said:
         said("reading the meshes")
-        made = design(read_bait(bait), kind, tab, said)
+        made = design(read_bait(bait, most), kind, tab, said)
         found = made.study
         if out is not None:
             from meshlure.cli.writing import write_made

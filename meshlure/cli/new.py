@@ -11,6 +11,7 @@ from typing import TYPE_CHECKING, Annotated, Any, Final
 import typer
 
 from meshlure.cli.completion import inserts_begun, materials_begun
+from meshlure.cli.limits import Largest, most_bytes
 from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer, can_ask
 from meshlure.errors import Fault, InputError
@@ -85,6 +86,7 @@ def new(
     temperature: Annotated[
         str | None, typer.Option("--temperature", metavar="TEMPERATURE", help='Of the water, "18 degC" if left out.')
     ] = None,
+    largest: Largest = None,
     yes: Annotated[bool, typer.Option("--yes", "-y", help="Ask nothing: take what was guessed.")] = False,
 ) -> None:
     """Begin a bait."""
@@ -92,7 +94,8 @@ def new(
 
     out = mesh.with_suffix(".toml") if out is None else out
     check_new(out)
-    size = measure(mesh)
+    most = most_bytes(largest)
+    size = measure(mesh, most)
     stated = Stated(
         mesh,
         unit or size.unit or "",
@@ -114,7 +117,7 @@ def new(
     else:
         stated = _complete(stated, size, yes)
     with phases() as said:
-        start = look(stated, said)
+        start = look(stated, said, most)
     pose = start.pose
     assert pose is not None
     if asks:

@@ -9,6 +9,7 @@ from typing import TYPE_CHECKING, Annotated, Final
 import typer
 
 from meshlure.cli.completion import materials_begun
+from meshlure.cli.limits import Largest, most_bytes
 from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer, hand_on
 from meshlure.errors import Fault, InputError
@@ -69,6 +70,7 @@ def pour(
         str | None, typer.Option("--mass", metavar="MASS", help='Wanted of the whole bait, ready to fish, "14 g".')
     ] = None,
     json: Annotated[bool, typer.Option("--json", help="Print results.json; --out may then be left out.")] = False,
+    largest: Largest = None,
     debug: Annotated[bool, typer.Option("--debug", help="On a fault of ours, print where it happened.")] = False,
 ) -> None:
     """Work out a pour."""
@@ -81,12 +83,13 @@ def pour(
         from meshlure.files.folder import check_folder
 
         check_folder(out)
+    most = most_bytes(largest)
     from meshlure.bait.loading import load
     from meshlure.pouring.study import pour as worked_out
 
     with phases() as said:
         said("reading the meshes")
-        read = load(plan)
+        read = load(plan, largest=most)
         said("working out the pour")
         found = worked_out(read)
         if out is not None:

@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING, Annotated, Final
 import typer
 
 from meshlure.cli.completion import inserts_begun, materials_begun
+from meshlure.cli.limits import Largest, most_bytes
 from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer, hand_on
 from meshlure.errors import Fault, InputError
@@ -98,9 +99,7 @@ def report(
     mend: Annotated[
         bool, typer.Option("--mend", help="Mend the meshes before anything is told, each step as a finding.")
     ] = False,
-    largest: Annotated[
-        str | None, typer.Option("--largest", metavar="SIZE", help='Greatest mesh to read, "2 GB"; 500 MB unasked.')
-    ] = None,
+    largest: Largest = None,
     debug: Annotated[bool, typer.Option("--debug", help="On a fault of ours, print where it happened.")] = False,
 ) -> None:
     """Study a bait and write what was found."""
@@ -134,10 +133,9 @@ def report(
         check_folder(out)
     from meshlure.bait.loading import load
     from meshlure.examine import study
-    from meshlure.files.source import LARGEST, size_in_bytes
     from meshlure.geometry.mending.steps import Wishes
 
-    most = LARGEST if largest is None else size_in_bytes(largest, "--largest")
+    most = most_bytes(largest)
     wishes = Wishes() if mend else None
     with phases() as said:
         said("reading the meshes")

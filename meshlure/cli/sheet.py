@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING, Annotated, Final
 
 import typer
 
+from meshlure.cli.limits import Largest, most_bytes
 from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer
 from meshlure.errors import Fault, InputError
@@ -40,6 +41,7 @@ def sheet(
         Path | None,
         typer.Option("--out", metavar="DIR", help="Folder to write; absent, empty, or from an earlier run."),
     ] = None,
+    largest: Largest = None,
     debug: Annotated[bool, typer.Option("--debug", help="On a fault of ours, print where it happened.")] = False,
 ) -> None:
     """Draw a bait to scale."""
@@ -49,6 +51,7 @@ def sheet(
     from meshlure.files.folder import check_folder
 
     check_folder(out)
+    most = most_bytes(largest)
     from meshlure.bait.loading import read_bait
     from meshlure.cli.writing import write_made
     from meshlure.examine import study
@@ -67,7 +70,7 @@ def sheet(
 
     with phases() as said:
         said("reading the meshes")
-        read = read_bait(bait)
+        read = read_bait(bait, most)
         found = study(read, tell=said)
         said("drawing")
         written = write_made(out, page=False, make=make)

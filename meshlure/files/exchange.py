@@ -21,7 +21,7 @@ _CANNOT: Final = frozenset({errno.ENOSYS, errno.EINVAL, errno.EOPNOTSUPP})
 
 
 def new_name(target: Path, token: str) -> Path:
-    """Where a run builds its folder: beside its place, so on the same file system."""
+    """Where a run builds its folder or file: beside its place, so on the same file system."""
     return target.with_name(f".{target.name}.meshlure-new-{token}")
 
 
@@ -138,9 +138,11 @@ def settle(target: Path, ours: Callable[[Path], bool]) -> None:
             if left.is_dir() and ours(left):
                 remove(left)
     for left in target.parent.glob(f"{glob.escape(new_name(target, '').name)}*"):
-        with locked(left, wait=False) as free:
-            if free:
-                remove(left)
+        # Opening a pipe of such a name would wait for its other end.
+        if left.is_dir() and not left.is_symlink():
+            with locked(left, wait=False) as free:
+                if free:
+                    remove(left)
 
 
 @contextlib.contextmanager

@@ -209,21 +209,3 @@ def _relative(mesh: Path, folder: Path) -> str:
         return Path(os.path.relpath(mesh, folder)).as_posix()
     except ValueError:  # on another drive
         return mesh.resolve().as_posix()
-
-
-def put_new(path: Path, text: str) -> None:
-    """Write a file that must not be there yet.
-
-    Raises
-    ------
-    FileExistsError
-        It is there.
-    OSError
-        It cannot be written; what was begun is taken away.
-    """
-    with path.open("x", encoding="utf-8", newline="\n") as file:
-        try:
-            file.write(text)
-        except OSError:
-            path.unlink(missing_ok=True)
-            raise

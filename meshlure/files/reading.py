@@ -19,7 +19,7 @@ from meshlure.files.nearness import did_you_mean
 from meshlure.files.obj import read_obj
 from meshlure.files.off import read_off
 from meshlure.files.ply import read_ply
-from meshlure.files.source import LARGEST, read_source
+from meshlure.files.source import ALL, LARGEST, read_source
 from meshlure.files.step import read_step
 from meshlure.files.stl import read_stl
 from meshlure.files.threemfreading import read_3mf
@@ -128,8 +128,44 @@ def read_mesh(
     poles, and left in they would make a closed mesh read as an open one.
     """
     place = f"{where}: {path}" if where else str(path)
-    metres = None if unit is None else length_unit(unit, place)
+    form = _known(path, unit, place)
+    data = read_source(path, "mesh", where, largest)
+    # A folder has no suffix that means something, and read_source has refused it.
+    assert form is not None
+    return _mesh(data, form, path, unit, piece, place, largest)
+
+
+def mesh_of(data: bytes, path: Path, unit: str | None) -> MeshFile:
+    """Welded surface, m, of a mesh file's bytes that are not on disk.
+
+    Parameters
+    ----------
+    data : bytes
+        All of them, however many.
+    path : Path
+        What it would be called; its suffix says the format.
+    unit : str or None
+        As `read_mesh`.
+
+    Raises
+    ------
+    InputError
+        As `read_mesh`.
+    """
+    form = _known(path, unit, str(path))
+    assert form is not None, "a folder has no bytes"
+    return _mesh(data, form, path, unit, None, str(path), ALL)
+
+
+def _known(path: Path, unit: str | None, place: str) -> Format | None:
+    """Format by the suffix, which says its unit where none is stated; None for a folder.
+
+    Raises
+    ------
+    InputError
+    """
     form = _format(path, place)
+    metres = None if unit is None else length_unit(unit, place)
     if metres is None and form is not None and not form.says_unit:
         raise InputError(
             Fault(
@@ -140,9 +176,13 @@ def read_mesh(
                 "state it as the mesh was exported, with --unit mm for instance",
             )
         )
-    data = read_source(path, "mesh", where, largest)
-    # A folder has no suffix that means something, and read_source has refused it.
-    assert form is not None
+    return form
+
+
+def _mesh(
+    data: bytes, form: Format, path: Path, unit: str | None, piece: str | None, place: str, largest: int
+) -> MeshFile:
+    metres = None if unit is None else length_unit(unit, place)
     loose = _read(form, data, 1.0 if metres is None else metres, place, largest)
     welded = weld(loose.corners)
     _check_size(welded, loose, place)

@@ -4,15 +4,21 @@ from __future__ import annotations
 
 import contextlib
 import errno
+import glob
 import os
 import secrets
 from pathlib import Path
 from typing import Final
 
 from meshlure.errors import Fault, InputError
+from meshlure.files import exchange
 
 _NO_LINKS: Final = frozenset({errno.EPERM, errno.ENOTSUP, errno.ENOSYS, errno.EMLINK, errno.EXDEV})
 """What file systems answer that know no second name of a file."""
+
+
+_BEGINNING: Final = 120
+"""Bytes of a file's name that the name beside it begins with; with what follows, less than any file system takes."""
 
 
 def check_absent(path: Path, option: str, mark: bytes = b"") -> None:
@@ -70,16 +76,8 @@ def write_file(path: Path, content: bytes, option: str, replace: bool = False) -
     InputError
         The disk is full or refuses, or something is there that stays. Nothing is left behind.
     """
-    beside = path.with_name(f".{path.name[:80]}.{secrets.token_hex(4)}")
     try:
-        with beside.open("xb") as file:
-            file.write(content)
-            file.flush()
-            os.fsync(file.fileno())
-        if replace:
-            beside.replace(path)
-        else:
-            _place(beside, path)
+        put_file(path, content, replace)
     except FileExistsError:
         check_absent(path, option)
         raise
@@ -87,9 +85,57 @@ def write_file(path: Path, content: bytes, option: str, replace: bool = False) -
         reason = error.strerror if isinstance(error, OSError) and error.strerror else str(error)
         step = "nothing was written; name another place, or free some space"
         raise InputError(Fault("this file cannot be written", f"{option} {path}", reason, next_step=step)) from error
-    finally:
-        with contextlib.suppress(OSError):
-            beside.unlink(missing_ok=True)
+
+
+def put_file(path: Path, content: bytes, replace: bool = False) -> None:
+    """Write a file as `write_file`, and leave what goes wrong to the caller.
+
+    Raises
+    ------
+    FileExistsError
+        Something is there that stays.
+    OSError
+        The disk is full or refuses.
+
+    Notes
+    -----
+    A run that is killed leaves at most a hidden file beside; it is not locked any more, and the next run that writes
+    the same file clears it away.
+    """
+    beside = exchange.new_name(_short(path), secrets.token_hex(4))
+    with contextlib.ExitStack() as stack:
+        with exchange.locked(path.parent, wait=True):
+            _clear(path)
+            file = stack.enter_context(beside.open("xb"))
+            stack.callback(_unlink, beside)
+            stack.enter_context(exchange.locked(beside, wait=False))
+        file.write(content)
+        file.flush()
+        os.fsync(file.fileno())
+        file.close()  # some systems rename and remove no open file
+        if replace:
+            beside.replace(path)
+        else:
+            _place(beside, path)
+
+
+def _short(path: Path) -> Path:
+    """Return a name for what lies beside a file, short enough to take more characters."""
+    return path.with_name(os.fsencode(path.name)[:_BEGINNING].decode("utf-8", "ignore"))
+
+
+def _clear(path: Path) -> None:
+    """Remove what killed runs left beside a file; what a living one writes is locked, and stays."""
+    for left in path.parent.glob(f"{glob.escape(exchange.new_name(_short(path), '').name)}*"):
+        if left.is_file() and not left.is_symlink():
+            with exchange.locked(left, wait=False) as free:
+                if free:
+                    _unlink(left)
+
+
+def _unlink(path: Path) -> None:
+    with contextlib.suppress(OSError):
+        path.unlink(missing_ok=True)
 
 
 def _place(beside: Path, path: Path) -> None:

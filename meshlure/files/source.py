@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+import sys
 from pathlib import Path
 from typing import Final
 
@@ -11,6 +12,9 @@ from meshlure.files.nearness import nearest
 
 LARGEST: Final = 500_000_000
 """Bytes. A file larger than this is not read unless it is asked for: ten million faces of a binary STL."""
+
+ALL: Final = sys.maxsize
+"""Bytes. For files that we wrote ourselves, from meshes that were allowed."""
 
 _AT_ONCE: Final = 1 << 28
 """Bytes read at a time; most meshes come in one piece, which is then not copied."""

@@ -6,7 +6,7 @@ import unicodedata
 import zipfile
 from collections.abc import Iterator, Sequence
 from pathlib import Path
-from typing import Final
+from typing import IO, Final
 from xml.sax.saxutils import quoteattr
 
 import numpy as np
@@ -36,12 +36,13 @@ _LEVEL: Final = 1
 """Of compression: the highest takes six times as long for a sixth off the file."""
 
 
-def write_3mf(path: Path, pieces: Sequence[tuple[str, Surface]]) -> None:
+def write_3mf(path: Path | IO[bytes], pieces: Sequence[tuple[str, Surface]]) -> None:
     """Write surfaces as a 3MF package in mm, in the surfaces' own coordinates.
 
     Parameters
     ----------
-    path : Path
+    path : Path or file
+        Where it goes.
     pieces : sequence of (str, Surface)
         Name and surface of each object, at least one. Objects of a 3MF are solids: closed, outward, without vertices
         of equal place; that is the caller's to see to.

@@ -2,13 +2,13 @@
 
 from __future__ import annotations
 
-import tempfile
+import io
 from pathlib import Path
 from typing import Final
 
 from meshlure.errors import Fault, InputError
-from meshlure.files.reading import read_mesh
-from meshlure.files.stl import write_stl
+from meshlure.files.reading import mesh_of
+from meshlure.files.stl import stl_bytes
 from meshlure.files.threemf import write_3mf
 from meshlure.geometry.shells import enclosed_volume
 from meshlure.geometry.solids import Solid, SolidError
@@ -43,25 +43,20 @@ def mesh_bytes(surface: Surface, path: Path, name: str) -> tuple[bytes, float]:
     """
     promised = enclosed_volume(surface)
     trouble = ""
-    with tempfile.TemporaryDirectory(prefix="meshlure-") as folder:
-        for slack in _SLACKS:
-            written = Path(folder, f"mended{path.suffix.lower()}")
-            try:
-                merged = surface if slack == 0 else Solid.of(surface).simplified(slack).surface()
-            except SolidError as error:
-                trouble = str(error)
-                break
-            if written.suffix == ".stl":
-                write_stl(written, merged)
-            else:
-                write_3mf(written, [(name, merged)])
-            came_back = examine(read_mesh(written, "mm").surface, path.name)
-            if came_back.volume is None:
-                trouble = came_back.findings[0].message
-            elif abs(came_back.volume - promised) <= (_AGREES if slack == 0 else 100 * _AGREES) * abs(promised):
-                return written.read_bytes(), slack
-            else:
-                trouble = f"{came_back.volume * 1e9:.6g} mm3 instead of {promised * 1e9:.6g}"
+    for slack in _SLACKS:
+        try:
+            merged = surface if slack == 0 else Solid.of(surface).simplified(slack).surface()
+        except SolidError as error:
+            trouble = str(error)
+            break
+        made = stl_bytes(merged) if path.suffix.lower() == ".stl" else _3mf_bytes(name, merged)
+        came_back = examine(mesh_of(made, path, "mm").surface, path.name)
+        if came_back.volume is None:
+            trouble = came_back.findings[0].message
+        elif abs(came_back.volume - promised) <= (_AGREES if slack == 0 else 100 * _AGREES) * abs(promised):
+            return made, slack
+        else:
+            trouble = f"{came_back.volume * 1e9:.6g} mm3 instead of {promised * 1e9:.6g}"
     raise InputError(
         Fault(
             "the mended mesh does not keep its shape once it is written and read back",
@@ -70,3 +65,9 @@ def mesh_bytes(surface: Surface, path: Path, name: str) -> tuple[bytes, float]:
             next_step="write it as 3MF, which keeps more digits" if path.suffix.lower() == ".stl" else "mend it in CAD",
         )
     )
+
+
+def _3mf_bytes(name: str, surface: Surface) -> bytes:
+    paper = io.BytesIO()
+    write_3mf(paper, [(name, surface)])
+    return paper.getvalue()

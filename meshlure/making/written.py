@@ -6,6 +6,7 @@ from pathlib import Path
 
 from meshlure.errors import Fault, InputError
 from meshlure.files.reading import read_mesh
+from meshlure.files.source import ALL
 from meshlure.files.stl import write_stl
 from meshlure.geometry.moments import solid_moments
 from meshlure.geometry.solids import Solid
@@ -57,7 +58,7 @@ def write_solid(
     trouble = ""
     for slack in _SLACKS:
         write_stl(path, solid.simplified(slack).surface())
-        came_back = examine(read_mesh(path, "mm").surface, path.name)
+        came_back = examine(read_mesh(path, "mm", largest=ALL).surface, path.name)
         if came_back.volume is None:
             trouble = came_back.findings[0].message
             continue

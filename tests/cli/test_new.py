@@ -10,7 +10,7 @@ import pytest
 from command_bench import SCRIPT, Bench, Ran, box, fault
 
 from meshlure.files.baitfile import bait_of, read_baitfile
-from meshlure.files.newbait import put_new
+from meshlure.files.single import put_file
 
 KNOWN = ("--unit", "mm", "--density", "1.2 g/cm3")
 
@@ -95,7 +95,7 @@ def test_nothing_is_written_over(bench: Bench) -> None:
     assert (bench.folder / "body.toml").read_text() == "mine"
     # Nor is one that came to be there while the shape was looked at.
     with pytest.raises(FileExistsError):
-        put_new(bench.folder / "body.toml", "ours")
+        put_file(bench.folder / "body.toml", b"ours")
     assert (bench.folder / "body.toml").read_text() == "mine"
 
 
