@@ -9,9 +9,10 @@ import numpy as np
 from numpy.typing import NDArray
 
 from meshlure.report import figures as ink
-from meshlure.report.charts import LINES, WIDE, margins
+from meshlure.report.charts import LINES, WIDE
 from meshlure.report.figures import Picture, blank, picture
 from meshlure.report.pen import halo
+from meshlure.report.rulings import Ticks, margins, ruled
 from meshlure.report.wording import fixed
 
 Floats = NDArray[np.float64]
@@ -57,7 +58,7 @@ def moments(flight: Flight, plane: str) -> Picture | None:
     reach = 1.45 * max(float(np.abs(moment).max()), 1e-9)
     figure = blank(WIDE, 58)
     axes = margins(figure, 14, 10, 3, 10)
-    axes.set(xlim=(-180, 180), ylim=(-reach, reach), xticks=range(-180, 181, 60))
+    axes.set(xlim=(-180, 180), ylim=(-reach, reach))
     axes.axvspan(-steady, steady, color=ink.SHALLOW, linewidth=0)
     for limit in (-sways, sways):
         axes.axvline(limit, color=ink.PENCIL, linewidth=0.7, linestyle=(0, (1, 1.5)))
@@ -83,6 +84,7 @@ def moments(flight: Flight, plane: str) -> Picture | None:
     low, high = TOWARDS[plane]
     axes.set(ylabel="moment, N·mm", xlabel=f"{low} ←  ° from {flight['leads']} first, {SEEN[plane]}  → {high}")
     axes.xaxis.label.set_fontsize(6.8)
+    ruled(axes, Ticks(range(-180, 181, 60)))
     axes.legend(
         loc="lower center", bbox_to_anchor=(0.5, 1.0), ncols=2, fontsize=6.8, handlelength=1.2, borderaxespad=0.2
     )
@@ -123,6 +125,7 @@ def paths(flight: Flight) -> Picture:
         axes.plot(x, y, label=label, zorder=3 if name == "reversed" else 2, **looks[name])
     axes.spines["bottom"].set(color=ink.WATER, linewidth=1.2)
     axes.set(xlabel="m from the rod", ylabel="m above the water")
+    ruled(axes)
     axes.legend(
         loc="lower center",
         bbox_to_anchor=(0.46, 0.99),
@@ -148,6 +151,7 @@ def launch(flight: Flight, cast: Mapping[str, Any]) -> Picture:
     axes.plot([cast["angle_deg"]], [flight["distance_m"]], "D", label=thrown, **look)
     axes.legend(loc="lower center", bbox_to_anchor=(0.5, 0.99), fontsize=7, borderaxespad=0.1)
     axes.set(xlabel="launch angle, ° above the horizontal", ylabel="distance, m", ylim=(0, None))
+    ruled(axes)
     best = angle[int(np.argmax(distance))]
     return picture(figure, f"Distance over the launch angle, greatest near {fixed(best, 0)}°; numbers in the table.")
 

@@ -9,11 +9,11 @@ import numpy as np
 
 from meshlure.report import figures as ink
 from meshlure.report.figures import Picture, blank, drawable, picture
+from meshlure.report.rulings import Ticks, margins, ruled
 from meshlure.report.wording import band, banded_grams, fixed, square_millimetres
 
 if TYPE_CHECKING:
     from matplotlib.axes import Axes
-    from matplotlib.figure import Figure
 
 WIDE = 86.0
 """mm: half an A4 page between its margins, and legible across a telephone."""
@@ -35,26 +35,20 @@ PARTS = {
 """Parts of the drag: name in the legend, ink, hatch."""
 
 
-def margins(figure: Figure, left: float, bottom: float, right: float, top: float) -> Axes:
-    """Return axes with margins in mm."""
-    width, height = figure.get_size_inches() * ink.MM_PER_INCH
-    return figure.add_axes((left / width, bottom / height, 1 - (left + right) / width, 1 - (bottom + top) / height))
-
-
 def reserve(buoyancy: Mapping[str, Any]) -> Picture:
     """Return the reserve with its band on a line from sinking to floating, g."""
     value, low, high = buoyancy["reserve_g"], buoyancy["reserve_low_g"], buoyancy["reserve_high_g"]
     reach = 1.25 * max(abs(low), abs(high), abs(value), 1e-3)
     figure = blank(WIDE, 20.5)
     axes = margins(figure, 4, 9.5, 4, 6)
-    axes.set(xlim=(-reach, reach), ylim=(-1, 1), yticks=[])
+    axes.set(xlim=(-reach, reach), ylim=(-1, 1))
     axes.spines["left"].set_visible(False)
-    axes.grid(visible=False)
     axes.axvspan(0, reach, color=ink.SHALLOW, linewidth=0)
     axes.axvline(0, color=ink.INK, linewidth=0.9)
     axes.barh(0, high - low, left=low, height=0.8, facecolor="white", edgecolor=ink.INK, hatch="/////", linewidth=0.9)
     axes.plot(value, 0, marker="D", color=ink.INK, markersize=5.5, markeredgecolor="white", markeredgewidth=0.9)
     axes.set_xlabel("reserve, g   (bar: how sure)", labelpad=1.5)
+    ruled(axes, Ticks(gridded=False), Ticks(at=()))
     axes.text(-reach, 1.15, "sinks", ha="left", va="bottom")
     axes.text(0, 1.15, "hangs", ha="center", va="bottom")
     axes.text(reach, 1.15, "floats", ha="right", va="bottom")
@@ -82,6 +76,7 @@ def waters(rows: Sequence[Mapping[str, Any]]) -> Picture | None:
     if low < 0 < high:
         axes.axhline(0, color=ink.PENCIL, linewidth=0.8)
     axes.set(xlabel="water temperature, °C", ylabel="reserve, g")
+    ruled(axes)
     _legend(axes, len(kinds))
     return picture(
         figure,
@@ -104,6 +99,7 @@ def righting(curves: Sequence[Mapping[str, Any]], plane: str, postures: Sequence
     axes.axhline(0, color=ink.PENCIL, linewidth=0.8)
     axes.set(xlabel="heel to its right, °" if plane == "sideways" else "turned nose up, °", ylabel="righting arm, mm")
     axes.xaxis.set_major_locator(_steps())
+    ruled(axes)
     _legend(axes, len(chosen))
     what = "heeled sideways" if plane == "sideways" else "turned nose up and down"
     return picture(
@@ -128,63 +124,15 @@ def stations(curves: Mapping[str, Any]) -> Picture:
         under.plot(x, width, label="width", **LINES[1])
         under.set(ylabel="mm", ylim=(0, None), xlabel="mm from the nose")
         _legend(under, 2)
-        top.tick_params(labelbottom=False)
         top.set_xlim(under.get_xlim())
+        ruled(under)
     else:
         top.set_xlabel("mm from the nose")
+    ruled(top, Ticks(written=not below))
     most = int(np.argmax(curves["area_mm2"]))
     greatest = f"{square_millimetres(curves['area_mm2'][most])} at {fixed(x[most], 0)} mm from the nose"
     words = f"Section area from nose to tail, greatest {greatest}, with width and depth; all in the table of stations."
     return picture(figure, words)
-
-
-def rose(table: Mapping[str, Any], frame: Mapping[str, Any], plane: str) -> Picture | None:
-    """Return the silhouette's area over the direction of view within one plane, mm2."""
-    names = (("nose", "tail"), ("back", "belly"), ("side", ""))
-    planes = table.get("plane") or [""] * len(table["axis"])
-    chosen = [index for index, name in enumerate(planes) if name == plane]
-    if len(chosen) < 3:
-        return None
-    views = (
-        np.array([table["axis"][index] for index in chosen])
-        @ np.array([frame[key] for key in ("nose", "back", "side")]).T
-    )
-    area = np.array([table["area_mm2"][index] for index in chosen])
-    across = int(np.argmin(np.abs(views).max(axis=0)))
-    first, second = [axis for axis in range(3) if axis != across]
-    angle = np.arctan2(views[:, second], views[:, first])
-    # Seen from behind a silhouette is its own mirror image: the half not measured is the half that was.
-    angle, area = np.concatenate([angle, angle + np.pi]), np.concatenate([area, area])
-    angle, kept = np.unique(np.round(np.mod(angle, 2 * np.pi), 6), return_index=True)
-    angle, area = np.append(angle, angle[0] + 2 * np.pi), np.append(area[kept], area[kept[0]])
-    figure = blank(62, 62)
-    axes: Any = figure.add_axes((0.17, 0.11, 0.66, 0.68), projection="polar")
-    axes.plot(angle, area, **LINES[0])
-    axes.fill(angle, area, color=ink.SHALLOW)
-    words = {0: names[first][0], 180: names[first][1] or "right", 90: names[second][0], 270: names[second][1]}
-    if second == 2:
-        words.update({90: "left", 270: "right"})
-    axes.set_thetagrids(list(range(0, 360, 45)), [words.get(turn, "") for turn in range(0, 360, 45)])
-    axes.set_theta_zero_location("W" if first == 0 else "N")
-    # As in the drawings: nose to the left and back up, seen from the front its left on the right.
-    axes.set_theta_direction(1 if across == 1 else -1)
-    axes.set_ylim(0, None)
-    axes.yaxis.set_major_locator(_few())
-    axes.set_yticklabels([])
-    axes.spines["polar"].set_linewidth(0.6)
-    for level in axes.get_yticks()[1:]:
-        if level <= axes.get_ylim()[1]:
-            axes.text(np.radians(67.5), level, fixed(level, 0), fontsize=6, ha="center", va="center", color=ink.PENCIL)
-    for height, line in ((0.972, "silhouette area, mm²"), (0.925, rose_words(across))):
-        figure.text(0.5, height, line, ha="center", va="center", fontsize=7)
-    most, least = int(np.argmax(area)), int(np.argmin(area))
-    ends = f"from {square_millimetres(area[least])} to {square_millimetres(area[most])}"
-    return picture(figure, f"Silhouette area by direction of view, {rose_words(across)}: {ends}; numbers in the table.")
-
-
-def rose_words(across: int) -> str:
-    """Return what a plane of directions of view means to someone who holds the bait, by the axis that stands on it."""
-    return ("turning it about its length", "walking around it", "over it from nose to tail")[across]
 
 
 def drag(rows: Sequence[Mapping[str, Any]], fluid: str) -> Picture | None:
@@ -196,7 +144,6 @@ def drag(rows: Sequence[Mapping[str, Any]], fluid: str) -> Picture | None:
     chosen = [row for row in of_fluid if row["speed_m_s"] == fastest][::-1]
     figure = blank(WIDE, 27.5 + 7.5 * len(chosen))
     axes = margins(figure, 25, 18, 4, 5)
-    axes.grid(visible=False, axis="y")
     start = np.zeros(len(chosen))
     for key in [*PARTS, *sorted({key for row in chosen for key in row["parts"]} - set(PARTS))]:
         name, colour, hatch = PARTS.get(key, (key, "#ffffff", "..."))
@@ -219,10 +166,10 @@ def drag(rows: Sequence[Mapping[str, Any]], fluid: str) -> Picture | None:
         ends = [row["drag_area_mm2"] + (row[end] - row["cd"]) * row["frontal_mm2"] for end in ("cd_low", "cd_high")]
         axes.plot(ends, [level, level], color=ink.INK, linewidth=1.0, marker="|", markersize=7, zorder=5)
     labels = [f"{leads_words(row['leads'])}\n{layer_words(row)}" for row in chosen]
-    axes.set_yticks(range(len(chosen)), [label if drawable(label.replace("\n", "")) else "?" for label in labels])
-    axes.tick_params(axis="y", length=0)
+    words = [label if drawable(label.replace("\n", "")) else "?" for label in labels]
     axes.set_title(f"in {fluid}, {fixed(fastest, 1)} m/s", fontsize=7.5, loc="left", pad=3)
     axes.set(xlabel="drag area, mm²   (line: how sure)", xlim=(0, None))
+    ruled(axes, y=Ticks(range(len(chosen)), words, marked=False, gridded=False))
     handles, names = axes.get_legend_handles_labels()
     figure.legend(
         handles,
@@ -234,8 +181,8 @@ def drag(rows: Sequence[Mapping[str, Any]], fluid: str) -> Picture | None:
         handlelength=2.2,
         borderaxespad=0.2,
     )
-    words = f"Bars of the drag area in {fluid} at {fixed(fastest, 1)} m/s by parts, nose first and tail first"
-    return picture(figure, f"{words}, with bands; numbers in the table of drag.")
+    told = f"Bars of the drag area in {fluid} at {fixed(fastest, 1)} m/s by parts, nose first and tail first"
+    return picture(figure, f"{told}, with bands; numbers in the table of drag.")
 
 
 def leads_words(leads: Any) -> str:
@@ -261,9 +208,3 @@ def _steps() -> Any:
     from matplotlib.ticker import MaxNLocator
 
     return MaxNLocator(nbins=7, steps=[1, 1.5, 3, 4.5, 6, 9, 10])
-
-
-def _few() -> Any:
-    from matplotlib.ticker import MaxNLocator
-
-    return MaxNLocator(nbins=3, prune=None)

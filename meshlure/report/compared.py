@@ -8,8 +8,9 @@ from importlib.resources import files
 from typing import Any
 
 from meshlure.report import figures as ink
-from meshlure.report.charts import WIDE, margins
+from meshlure.report.charts import WIDE
 from meshlure.report.figures import Picture, blank, picture
+from meshlure.report.rulings import Ticks, margins, ruled
 from meshlure.report.table import Table, table
 from meshlure.report.wording import significant
 
@@ -46,10 +47,9 @@ def chart() -> Picture:
         )
     axes.set(xscale="log", yscale="log", xlim=reach, ylim=reach)
     marks = (0.05, 0.1, 0.2, 0.5, 1.0)
-    axes.minorticks_off()
-    axes.set_xticks(marks, [f"{mark:g}" for mark in marks])
-    axes.set_yticks(marks, [f"{mark:g}" for mark in marks])
+    ticks = Ticks(marks, [f"{mark:g}" for mark in marks])
     axes.set(xlabel="published drag coefficient", ylabel="estimate")
+    ruled(axes, ticks, ticks)
     axes.legend(loc="upper left", frameon=False)
     near = sum(0.75 <= row["estimate"] / row["published"] <= 1.25 for row in rows())
     return picture(

@@ -11,12 +11,13 @@ from numpy.typing import NDArray
 
 from meshlure.report import figures as ink
 from meshlure.report import wording
-from meshlure.report.charts import WIDE, margins
+from meshlure.report.charts import WIDE
 from meshlure.report.drawings import TITLES, Drawing
 from meshlure.report.figures import Picture, blank, drawable, drawing_style, picture
 from meshlure.report.lines import WORDS, look
 from meshlure.report.overlay import common_scale, key, laid, overlay
 from meshlure.report.resting import resting
+from meshlure.report.rulings import Ticks, margins, ruled
 from meshlure.report.subject import readable, subject
 from meshlure.report.table import Table, table
 from meshlure.report.wording import clipped, fixed, significant
@@ -199,15 +200,14 @@ def _reserves(found: Tree, trees: Sequence[Tree]) -> Picture:
     axes.set(xlim=(min(*ends, 0) - reach, max(*ends, 0) + reach), ylim=(count - 0.5, -0.5))
     axes.axvspan(0, axes.get_xlim()[1], color=ink.SHALLOW, linewidth=0)
     axes.axvline(0, color=ink.INK, linewidth=0.9)
-    axes.grid(visible=False, axis="y")
     for number, row in enumerate(rows):
         axes.plot(
             [row["reserve_low_g"], row["reserve_high_g"]], [number, number], color=ink.INK, marker="|", markersize=7
         )
         axes.plot(row["reserve_g"], number, marker="D", color=ink.INK, markersize=4.5, markeredgecolor="white")
-    axes.set_yticks(range(count), [bait["letter"] for bait in found["baits"]])
-    axes.tick_params(axis="y", length=0)
     axes.set_xlabel("reserve, g   (line: how sure)", labelpad=1.5)
+    letters = [bait["letter"] for bait in found["baits"]]
+    ruled(axes, y=Ticks(range(count), letters, marked=False, gridded=False))
     each = "; ".join(
         f"{bait['letter']} {wording.banded_grams(row['reserve_g'], row['reserve_low_g'], row['reserve_high_g'])}"
         for bait, row in zip(found["baits"], rows, strict=True)
@@ -225,6 +225,7 @@ def _stations(found: Tree, trees: Sequence[Tree]) -> Picture:
         axes.plot(table_["from_nose_mm"], table_["area_mm2"], label=label, **look(number, 0.12))
     most = max(max(tree["stations"]["area_mm2"]) for tree in trees)
     axes.set(ylabel="section area, mm²", xlabel="mm from the nose", ylim=(0, 1.08 * most))
+    ruled(axes)
     axes.legend(loc="lower center", bbox_to_anchor=(0.5, 0.99), ncols=4, fontsize=7, borderaxespad=0.1)
     each = "; ".join(f"{bait['letter']} {WORDS[number]}" for number, bait in enumerate(found["baits"]))
     return picture(

@@ -11,6 +11,7 @@ from functools import lru_cache
 from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
+    from matplotlib.axes import Axes
     from matplotlib.figure import Figure
 
 MM_PER_INCH = 25.4
@@ -24,26 +25,26 @@ CLAY = "#9a4a16"
 MOSS = "#3d6b35"
 GRID_FINE, GRID_FIVE, GRID_TEN = "#eaf0f1", "#dbe5e7", "#c3d1d5"
 
+TYPE = 7.5
+"""Size of the type in pictures, points."""
+
 STYLE = {
     # Outlined glyphs look and measure the same on every machine; the same words are in the page's text and alt texts.
     "svg.fonttype": "path",
     "svg.hashsalt": "meshlure",
     "font.family": "DejaVu Sans",
-    "font.size": 7.5,
+    "font.size": TYPE,
     "axes.edgecolor": PENCIL,
     "axes.labelcolor": INK,
     "axes.linewidth": 0.6,
     "axes.spines.top": False,
     "axes.spines.right": False,
-    "axes.grid": True,
-    "axes.axisbelow": True,
+    # Numbers stand as they are: an offset or a power of ten in a corner is overlooked.
+    "axes.formatter.useoffset": False,
+    "axes.formatter.limits": (-9, 9),
+    # Where a title stands is said, not found: finding it lays out every tick.
+    "axes.titley": 1.0,
     "axes.unicode_minus": True,
-    "grid.color": GRID_FIVE,
-    "grid.linewidth": 0.5,
-    "xtick.color": INK,
-    "ytick.color": INK,
-    "xtick.major.width": 0.6,
-    "ytick.major.width": 0.6,
     "text.color": INK,
     "lines.linewidth": 1.3,
     "legend.frameon": False,
@@ -89,6 +90,13 @@ def blank(width_mm: float, height_mm: float) -> Figure:
     from matplotlib.figure import Figure
 
     return Figure(figsize=(width_mm / MM_PER_INCH, height_mm / MM_PER_INCH))
+
+
+def blank_axes(figure: Figure, box: tuple[float, float, float, float] = (0, 0, 1, 1)) -> Axes:
+    """Return room to draw in on a sheet, its ground left to the sheet; a box in shares of the sheet."""
+    axes = figure.add_axes(box)
+    axes.patch.set_visible(False)
+    return axes
 
 
 def picture(figure: Figure, alt: str) -> Picture:

@@ -29,6 +29,7 @@ from meshlure.report.figures import Picture, drawing_style
 from meshlure.report.layout import scale_for, scale_words
 from meshlure.report.pen import swatches
 from meshlure.report.resting import resting
+from meshlure.report.rose import rose
 from meshlure.report.subject import Subject, main_posture, readable, subject, touchy
 from meshlure.report.view import turning
 from meshlure.report.windward import windward
@@ -221,7 +222,7 @@ def _pictures(study: Study, results: Mapping[str, Any], shown: Subject) -> dict[
             charts.righting(results["righting"], plane, names) for plane in ("sideways", "fore_aft")
         ),
         "stations_chart": charts.stations(results["stations"]),
-        "rose_charts": _present(charts.rose(results["rose"], results["frame"], plane) for plane in planes),
+        "rose_charts": _present(rose(results["rose"], results["frame"], plane) for plane in planes),
         "drag_charts": _present(charts.drag(results["drag"], fluid) for fluid in fluids),
         "compared_chart": compared.chart(),
         "wind": windward(views, shown, results),
