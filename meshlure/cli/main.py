@@ -1,58 +1,13 @@
-"""The command line's entry: runs a command and turns what goes wrong into a message and an exit code."""
+"""The command line's entry: runs a command, and ends with its exit code whatever stops it."""
 
 from __future__ import annotations
 
+import contextlib
 import sys
-import traceback
-from typing import Any, Final, NoReturn
+from typing import NoReturn
 
-import typer
-
-from meshlure.cli.terminal import answer, complain, hush, tell
-from meshlure.cli.usage import Commands, UsageError, misread
-from meshlure.errors import InputError
-from meshlure.version import VERSION
-
-DONE: Final = 0
-ANSWER_IS_NO: Final = 1
-BAD_INPUT: Final = 2
-OUR_FAULT: Final = 3
-INTERRUPTED: Final = 130
-"""As shells count a program that Ctrl-C ended."""
-
-HELP: Final = """Weighs, floats, measures and cuts hard fishing baits from their meshes.
-
-A report on a sample, to see what it is about:
-
-\b
-  meshlure report samples/minnow/minnow.toml --out out
-"""
-
-app = typer.Typer(
-    name="meshlure",
-    cls=Commands,
-    help=HELP,
-    epilog="meshlure COMMAND --help has examples of each.",
-    subcommand_metavar="COMMAND ...",
-    no_args_is_help=True,
-    rich_markup_mode=None,
-    pretty_exceptions_enable=False,
-)
-
-
-def _version(asked: bool) -> None:
-    if asked:
-        answer(f"meshlure {VERSION}")
-        raise typer.Exit
-
-
-@app.callback()
-def _options(
-    version: bool = typer.Option(
-        False, "--version", callback=_version, is_eager=True, help="Print the version and end."
-    ),
-) -> None:
-    pass
+from meshlure.cli.codes import INTERRUPTED, SIGNALLED
+from meshlure.cli.stopping import Stopped, stoppable
 
 
 def main() -> NoReturn:
@@ -60,41 +15,22 @@ def main() -> NoReturn:
 
     Notes
     -----
-    Exit codes: 0 done, 1 done but the answer is no, 2 bad input or usage, 3 our own fault, 130 stopped by Ctrl-C.
+    Exit codes: 0 done, 1 done but the answer is no, 2 bad input or usage, 3 our own fault, 130 stopped by Ctrl-C, 143
+    and 129 by the signals that end a process and close a terminal.
     """
-    hush(False)
+    stopped = True
     try:
-        code = app(prog_name="meshlure", standalone_mode=False) or DONE
-    except InputError as error:
-        complain(error.faults)
-        code = BAD_INPUT
-    except UsageError as error:
-        code = _usage(error)
-    except (typer.Abort, KeyboardInterrupt):
+        with stoppable():
+            # Imported here so that Ctrl-C is answered while the libraries are loaded, too.
+            from meshlure.cli.app import run
+
+            code = run()
+            stopped = code == INTERRUPTED
+    except KeyboardInterrupt:
         code = INTERRUPTED
-    except MemoryError:
-        tell("meshlure cannot go on: this needs more memory than the computer gives. Export coarser meshes.")
-        code = BAD_INPUT
-    except Exception as error:
-        _apologize(error)
-        code = OUR_FAULT
-    if code == INTERRUPTED:
-        tell("stopped; nothing half-written was left behind")
+    except Stopped as error:
+        code = SIGNALLED + error.number
+    if stopped:
+        with contextlib.suppress(OSError, ValueError):  # the terminal may be what was closed
+            print("stopped; nothing half-written was left behind", file=sys.stderr)
     sys.exit(code)
-
-
-def _usage(error: Any) -> int:
-    if type(error).__name__ == "NoArgsIsHelpError":
-        typer.echo(error.format_message(), err=True)
-    else:
-        complain([misread(error, sys.argv[1:])])
-    return BAD_INPUT
-
-
-def _apologize(error: Exception) -> None:
-    if "--debug" in sys.argv:
-        traceback.print_exception(error)
-    said = f"{type(error).__name__}: {error}" if str(error) else type(error).__name__
-    tell(f"meshlure failed by a fault of its own ({said}). We are sorry. Nothing half-written was left behind.")
-    if "--debug" not in sys.argv:
-        tell("Run the same command with --debug added and send us what it prints, with the bait file.")

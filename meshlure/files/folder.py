@@ -69,15 +69,15 @@ def staged(out: Path) -> Iterator[Path]:
     Raises
     ------
     InputError
-        As `check_folder`; and where the disk is full or refuses in the block itself. The earlier result is then whole,
-        and nothing of the new one is left.
+        As `check_folder`; and where the disk is full or refuses in the block itself, or the folder is taken away. The
+        earlier result is then whole, and nothing of the new one is left.
     RuntimeError
         The block left a file that results.json does not list, so that no later run could know it for ours.
     """
     target = _resolved(out)
     made: list[Path] = []
     staging = new_name(target, secrets.token_hex(4))
-    in_block = False
+    begun = in_block = False
     try:
         _make_parents(target, out, made)
         with contextlib.ExitStack() as stack:
@@ -85,6 +85,7 @@ def staged(out: Path) -> Iterator[Path]:
                 settle(target, _is_ours)
                 _check_ours(target, out)
                 staging.mkdir()
+                begun = True
                 stack.enter_context(locked(staging, wait=False))
                 if target.exists():
                     shutil.copymode(target, staging)
@@ -96,10 +97,14 @@ def staged(out: Path) -> Iterator[Path]:
             with locked(target.parent, wait=True):
                 put(staging, target, lambda replaced: _check_ours(replaced, out))
     except BaseException as error:
+        gone = begun and not staging.exists()
         remove(staging)
         for folder in reversed(made):
             with contextlib.suppress(OSError):  # another run may have begun to use it
                 folder.rmdir()
+        if gone and isinstance(error, Exception):
+            # Whatever the error says of itself: what it missed was taken from under it.
+            raise InputError(_gone(out, target.parent)) from error
         if isinstance(error, OSError) and (not in_block or _is_about(error, staging)):
             raise InputError(_refused(out, error, target.parent)) from error
         raise
@@ -256,6 +261,12 @@ def _is_about(error: OSError, staging: Path) -> bool:
         return True
     names = [os.fsdecode(name) for name in (error.filename, error.filename2) if isinstance(name, str | bytes)]
     return any(Path(name).is_relative_to(staging) for name in names)
+
+
+def _gone(out: Path, parent: Path) -> Fault:
+    what = "the folder in which the result was being written was taken away meanwhile"
+    step = "let nothing clear up there while it runs, and run it again; what was there before was not touched"
+    return Fault(what, str(out), str(parent), "", step)
 
 
 def _refused(out: Path, error: OSError, parent: Path) -> Fault:

@@ -14,7 +14,7 @@ import typer
 from command_bench import Bench
 
 from meshlure.cli.commands import JOBS
-from meshlure.cli.main import app
+from meshlure.cli.app import app
 
 SAMPLES = Path(__file__).parents[2] / "samples"
 COMMAND: Any = typer.main.get_command(app)
