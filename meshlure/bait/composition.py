@@ -26,9 +26,6 @@ from meshlure.geometry.solids import Solid, SolidError, new_tag
 from meshlure.geometry.surface import Bools, Floats, Surface, together
 from meshlure.geometry.topology import EdgePairs, paired
 
-_BOOKS = 1e-9
-"""Share by which the volumes of a body's cut parts may miss the whole: beyond it a cut went wrong."""
-
 
 @dataclass(frozen=True, eq=False)
 class Part:
@@ -255,7 +252,8 @@ def _crossed(body: MeshPiece, pieces: tuple[MeshPiece, ...], filling: Filling) -
     material = whole.less(taken)
     common = whole.met(taken)
     lost = abs(material.volume + common.volume - whole.volume)
-    if lost > _BOOKS * whole.volume:
+    # A plug's end lies in the skin to the rounding of a file's numbers: slivers of that size may be lost.
+    if lost > tolerances.VOLUME_SHARE * whole.volume:
         raise SolidError(f"cutting '{body.name}' lost {lost * 1e9:.3g} mm3")
     # Hollows as drawn, and solids laid over them: no two skins then lie in each other that were not drawn so, which
     # the solid library would leave folded.

@@ -33,10 +33,11 @@ MOST_OFFERED: Final = 8
 _SHORTENED: Final = 2
 """Of the best ways, for how many a shorter bore is looked for that does better."""
 
-_KINDS: Final[Mapping[str, Callable[[Trial], bool]]] = MappingProxyType(
-    {"steady": lambda trial: trial.change <= STEADY, "returns": lambda trial: trial.returns}
+_KINDS: Final[Mapping[str, tuple[str, Callable[[Trial], bool]]]] = MappingProxyType(
+    {"steady": ("nose", lambda trial: trial.change <= STEADY), "returns": ("tail", lambda trial: trial.returns)}
 )
-"""What a shorter bore may be better in."""
+"""What a shorter bore may be better in, and the end that gives way for it: steady keeps the balls far aft in flight,
+returns keeps them from weighing the tail down so far that they stay there."""
 
 _AT_LIMIT: Final = 0.02e-3
 """m. A distance this near to the one asked for is what ends a bore."""
@@ -86,11 +87,11 @@ def chamber(bait: Bait, take: int = 1, tell: Tell = lambda _: None) -> Chambered
 def _shorter(site: Site, asked: Needs, trials: list[Trial]) -> list[tuple[Trial, str]]:
     """Shorter bores that differ in a useful way: the bait rests alike with both ends, or the balls come back."""
     found = []
-    for kind, holds in _KINDS.items():
+    for kind, (end, holds) in _KINDS.items():
         for row in ranked(trials, asked)[:_SHORTENED]:
             if holds(row.trial):
                 continue
-            less = shorter(site, asked, row.trial.option, _asked_of(site, row.trial, holds))
+            less = shorter(site, asked, row.trial.option, end, _asked_of(site, row.trial, holds))
             if less is not None:
                 found.append((rested(site, less), kind))
     return found

@@ -13,11 +13,12 @@ import numpy as np
 from meshlure.chambering.trial import Trial
 from meshlure.making.chamber.needs import Needs
 
-WEIGHTS: Final[Mapping[str, float]] = MappingProxyType({"shift": 0.6, "posture": 0.2, "wall": 0.1, "returns": 0.1})
+WEIGHTS: Final[Mapping[str, float]] = MappingProxyType({"shift": 0.4, "posture": 0.2, "wall": 0.1, "returns": 0.3})
 """What each thing counts for in the score, which runs from 0 to 1. Shift: by how far the balls move the bait's centre
 of gravity, over the most of all ways. Posture: 1 where the bait rests alike with the balls at either end, 0 from 10
 degrees of difference on. Wall: that at the side over the one asked for, 1 from one and a half times on. Returns:
-whether the balls come back to the nose by themselves. Our choice: a chamber is there to shift weight."""
+whether the balls come back to the nose by themselves. Our choice: a chamber is there to shift weight, and one that
+leaves it at the tail has changed how the bait rests."""
 
 _TURNS: Final = radians(10.0)
 _THICK: Final = 1.5

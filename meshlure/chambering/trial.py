@@ -4,6 +4,8 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass
+from math import radians
+from typing import Final
 
 import numpy as np
 
@@ -16,6 +18,10 @@ from meshlure.making.chamber.site import Site
 from meshlure.physics.buoyancy import Behaviour, behaviour, suspends_within
 from meshlure.physics.posture import Attitude, attitude
 from meshlure.physics.repose import Ends, Vessel
+
+ROLLS: Final = radians(1.0)
+"""rad. Least fall on which a ball is taken to roll: a coefficient of rolling resistance of 0.017 holds it on less. Hard
+balls on hard plastic have about 0.01, from memory; a rough print, paint or a drop of water holds them on more."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -38,7 +44,7 @@ class Rested:
     @property
     def returns(self) -> bool:
         """Whether balls roll to the nose end, or stay there, by themselves."""
-        return self.slope is not None and self.slope > 0
+        return self.slope is not None and self.slope >= ROLLS
 
 
 @dataclass(frozen=True, eq=False)

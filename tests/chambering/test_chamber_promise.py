@@ -151,3 +151,22 @@ def test_a_broken_promise_is_told_and_refused(tmp_path: Path, monkeypatch: pytes
         "posture with the balls at the tail",
     ]
     assert all(fault.found and fault.allowed for fault in told.value.faults)
+
+
+def test_a_bore_is_drawn_back_from_the_tail_until_the_balls_come_back() -> None:
+    # Afloat, the balls at the tail weigh it down by more than the bore falls; nearer the middle they do not.
+    body = shapes.box((60 * MM, 14 * MM, 16 * MM))
+    keel = insert("keel", shapes.box((30 * MM, 8 * MM, 2 * MM), (-6 * MM, 0, -6 * MM)), 11.3)
+    asked = {"balls": [{"diameter": "6 mm", "count": 2, "material": "bearing steel"}], "slope": "4 deg"}
+    found = finding.chamber(bait(body, keel, chamber=asked, density=1.1))
+    rows = found.account["options"]
+    longest = next(row for row in rows if row["kind"] == "longest")
+    returning = next(row for row in rows if row["kind"] == "returns")
+    tail = {row["kind"]: row["postures"]["tail"] for row in (longest, returning)}
+    assert not tail["longest"]["returns"]
+    assert tail["returns"]["returns"]
+    # As long as may be: the fall is just what a ball needs, and the nose's end stayed.
+    assert 1.0 <= tail["returns"]["bore_slope_deg"] < 1.5
+    assert returning["from_mm"] == pytest.approx(longest["from_mm"], abs=1e-6)
+    assert returning["length_mm"] < longest["length_mm"]
+    assert rows[0] is returning

@@ -76,7 +76,7 @@ def made(site: Site, asked: Needs, choice: Choice, bore: Bore) -> Option | None:
     return Option(choice, bore, asked.lining, opening)
 
 
-def shorter(site: Site, asked: Needs, option: Option, holds: Callable[[Option], bool]) -> Option | None:
+def shorter(site: Site, asked: Needs, option: Option, end: str, holds: Callable[[Option], bool]) -> Option | None:
     """Return the longest of an option's shorter bores for which something holds; None where it does for none.
 
     Parameters
@@ -85,30 +85,31 @@ def shorter(site: Site, asked: Needs, option: Option, holds: Callable[[Option], 
     asked : Needs
     option : Option
         For which it does not hold.
+    end : str
+        nose or tail: the end that gives way. One that is drilled open gets a longer plug.
     holds : callable
         Asked of an option; holds the more likely the shorter the bore.
 
     Notes
     -----
-    A bore in which the balls have less than a quarter of their way is of no use, and not looked at. The end that the
-    bore is drilled from stays where it is, else the tail's, so that the balls lie as far aft in flight. The length is
+    A bore in which the balls have less than a quarter of their way is of no use, and not looked at. The length is
     found to a quarter of a millimetre.
     """
     low, high = max(asked.shortest(option.choice), option.choice.row + _WORTH * option.travel), option.bore.length
-    if low >= high or not holds(_cut_back(asked, option, low)):
+    if low >= high or not holds(_cut_back(option, end, low)):
         return None
     while high - low > _CLOSE:
         middle = (low + high) / 2
-        if holds(_cut_back(asked, option, middle)):
+        if holds(_cut_back(option, end, middle)):
             low = middle
         else:
             high = middle
-    best = _cut_back(asked, option, low)
+    best = _cut_back(option, end, low)
     return made(site, asked, option.choice, measured(site, best.bore.cut))
 
 
-def _cut_back(asked: Needs, option: Option, length: float) -> Option:
-    """An option with its bore shortened to a length, its walls those of the longer one."""
+def _cut_back(option: Option, end: str, length: float) -> Option:
+    """An option with its bore shortened to a length from one end, its walls those of the longer one."""
     less = option.bore.length - length
-    nose, tail = (0.0, less) if asked.open_to == "nose" else (less, 0.0)
+    nose, tail = (less, 0.0) if end == "nose" else (0.0, less)
     return replace(option, bore=replace(option.bore, cut=shortened(option.bore.cut, nose, tail)))
