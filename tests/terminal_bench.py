@@ -39,6 +39,7 @@ def shown(
         if waiting and sent.endswith(b": ") and len(sent) > asked:
             os.write(terminal, waiting.pop(0).encode() + b"\n")
             asked = len(sent)
+    os.close(terminal)
     code = os.waitstatus_to_exitcode(os.waitpid(pid, 0)[1])
     return code, sent.decode().replace("\r\n", "\n").removeprefix("\n")
 
