@@ -10,9 +10,10 @@ from typing import Any, Final
 import numpy as np
 
 from meshlure import tolerances
+from meshlure.bait.extent import other_units
 from meshlure.bait.meshpiece import shape
 from meshlure.errors import Fault, InputError
-from meshlure.files.formats import FORMATS, METRES
+from meshlure.files.formats import FORMATS
 from meshlure.files.nearness import did_you_mean
 from meshlure.files.reading import MeshFile, read_mesh
 from meshlure.files.source import LARGEST
@@ -39,9 +40,6 @@ _MATTERS: Final = 2e-9
 
 _WHOLE: Final = 1.0
 """A lid of any size, to tell what the volume would be with it."""
-
-_NAMES: Final = {"inches": "in", "millimetres": "mm", "centimetres": "cm", "metres": "m"}
-"""Units that a mesh may be in after all, in words."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -180,14 +178,11 @@ def _joined(sound: Soundness, volume: Volume, piece: str) -> Iterator[Finding]:
 def _size(file: MeshFile) -> Iterator[Finding]:
     """Ask about an extent that no bait has."""
     length = float(np.ptp(file.surface.bounds, axis=0).max())
-    usual, possible = tolerances.LENGTH_USUAL, tolerances.LENGTH_POSSIBLE
-    if usual[0] <= length <= usual[1]:
+    if tolerances.keeps(length, tolerances.LENGTH_USUAL):
         return
-    level = Level.NOTE if possible[0] <= length <= possible[1] else Level.WARNING
-    units = length / METRES[file.unit]
-    others = {name: units * METRES[unit] for name, unit in _NAMES.items() if unit != file.unit}
-    near = [f"{name} ({m * 1e3:.4g} mm)" for name, m in others.items() if usual[0] <= m <= usual[1]]
-    asks = f"is the file in {' or '.join(near[:2])}?" if near else "is that meant?"
+    level = Level.NOTE if tolerances.keeps(length, tolerances.LENGTH_POSSIBLE) else Level.WARNING
+    others = other_units(length, file.unit)
+    asks = f"is the file in {others}?" if others else "is that meant?"
     message = f"the part is {length * 1e3:.4g} mm long, read in {file.unit}: {asks}"
     advice = "State the unit as the mesh was exported; a small insert may well be that small."
     yield Finding("unusual-size", level, message, file.path.stem, advice=advice)

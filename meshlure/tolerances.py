@@ -41,5 +41,13 @@ LENGTH_USUAL: Final = (15e-3, 400e-3)
 LENGTH_POSSIBLE: Final = (5e-3, 1.5)
 """m. A bait's length outside this range stops the run."""
 
+SAME_LENGTH: Final = 1e-6
+"""Share of a limit by which a length may miss it and still keep it: files hold seven digits of their coordinates."""
+
 GRAVITY: Final = 9.80665
 """m/s2. Standard gravity (3rd CGPM, 1901)."""
+
+
+def keeps(length: float, limits: tuple[float, float]) -> bool:
+    """Whether a length, m, lies within limits, m, as far as files hold it."""
+    return limits[0] * (1 - SAME_LENGTH) <= length <= limits[1] * (1 + SAME_LENGTH)

@@ -42,8 +42,8 @@ def size_findings(body: MeshPiece, frame: Frame, plan: BaitFile, file: MeshFile)
     length = float(np.ptp(body.surface.vertices @ frame.nose))
     unit = file.unit
     usual, possible = tolerances.LENGTH_USUAL, tolerances.LENGTH_POSSIBLE
-    others = " or ".join(f"{_WORDS[name]} ({metres * 1e3:.0f} mm)" for name, metres in _other_units(length, unit))
-    if not possible[0] <= length <= possible[1]:
+    others = other_units(length, unit)
+    if not tolerances.keeps(length, possible):
         raise InputError(
             Fault(
                 what="the body is of no bait's length",
@@ -55,7 +55,7 @@ def size_findings(body: MeshPiece, frame: Frame, plan: BaitFile, file: MeshFile)
                 else "state length_unit (or --unit) as the mesh was exported, and check nose",
             )
         )
-    if usual[0] <= length <= usual[1] or plan.bait.size_checked:
+    if tolerances.keeps(length, usual) or plan.bait.size_checked:
         return []
     asks = f"is the file in {others}?" if others else "is that meant?"
     return [
@@ -69,13 +69,22 @@ def size_findings(body: MeshPiece, frame: Frame, plan: BaitFile, file: MeshFile)
     ]
 
 
-def _other_units(length: float, unit: str) -> list[tuple[str, float]]:
-    """Return up to two units in which the length would be usual, each with that length in m, a hand's length first."""
+def other_units(length: float, unit: str) -> str:
+    """Return up to two units in which a length, m, would be a bait's, with that length, a hand's length first.
+
+    Parameters
+    ----------
+    length : float, m
+        As it was read.
+    unit : str
+        In which it was read.
+    """
     low, high = tolerances.LENGTH_USUAL
     hand = float(np.sqrt(low * high))
     lengths = [(name, length / METRES[unit] * metres) for name, metres in LENGTH_UNITS.items() if name != unit]
-    usual = [(name, metres) for name, metres in lengths if low <= metres <= high]
-    return sorted(usual, key=lambda row: abs(float(np.log(row[1] / hand))))[:2]
+    usual = [(name, metres) for name, metres in lengths if tolerances.keeps(metres, (low, high))]
+    nearest_first = sorted(usual, key=lambda row: abs(float(np.log(row[1] / hand))))
+    return " or ".join(f"{_WORDS[name]} ({metres * 1e3:.0f} mm)" for name, metres in nearest_first[:2])
 
 
 def check_reach(body: MeshPiece, items: Sequence[Hardware], plan: BaitFile) -> None:

@@ -165,9 +165,10 @@ def _meshes(files: list[Path]) -> Iterator[Path]:
                 Fault("this cannot be looked at", str(file), reason, next_step="check the path")
             ) from error
         if not inside:
-            raise InputError(
-                Fault("the folder holds no mesh", str(file), "", f"files that end in {', '.join(FORMATS)}", "name one")
-            )
+            deeper = sorted({m.parent.name for m in file.glob("*/*") if m.suffix.lower() in FORMATS and m.is_file()})
+            step = f"name one that does, such as {str(file / deeper[0])!r}" if deeper else "name one that does"
+            allowed = f"a folder with files that end in {', '.join(FORMATS)}"
+            raise InputError(Fault("the folder itself holds no mesh", str(file), "", allowed, step))
         yield from inside
 
 

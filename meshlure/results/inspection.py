@@ -174,6 +174,7 @@ def mending(made: Mended, volume: Volume | None, found: Sequence[Finding], offer
         "volume_mm3": None if volume is None else volume.volume * MM3,
         "findings": finding_rows(found),
         "file": None,
+        "merged_mm": None,
     }
 
 

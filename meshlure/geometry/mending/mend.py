@@ -97,16 +97,16 @@ def mend(surface: Surface, wishes: Wishes, piece: str, first: Sequence[Step] = (
         work.do(without_fins)
     work.ask(consistent)
     if wishes.mirror:
-        work.ask(mirrored)
+        work.ask(mirrored, lasting=True)
         work.do(undoubled)
     if not work.closed:
         work.close(lambda s: capped(s, wishes.cap))
         work.ask(consistent)
     if work.sound.volume is not None:
-        work.ask(lambda _: united(work.sound))
+        work.ask(lambda _: united(work.sound), lasting=True)
     if wishes.remake is not None and (work.sound.stops or _crosses(work.sound)):
         pitch = wishes.remake
-        work.ask(lambda s: remade(s, pitch))
+        work.ask(lambda s: remade(s, pitch), lasting=True)
     return work.mended()
 
 
@@ -114,8 +114,12 @@ _PUT_RIGHT = frozenset({"inside-out", "inside-out-shell", "flat-shells"})
 """Findings about what an examination puts right by itself."""
 
 
+_CROSSING = "self-crossing"
+_NEW_SKIN = 'As a last resort a new skin can be drawn round it: --remake "0.3 mm".'
+
+
 def _crosses(sound: Soundness) -> bool:
-    return any(finding.code == "self-crossing" for finding in sound.findings)
+    return any(finding.code == _CROSSING for finding in sound.findings)
 
 
 class _Work:
@@ -129,6 +133,7 @@ class _Work:
         self._surface = surface
         self._done: list[Done] = []
         self._left: list[Left] = []
+        self._lasting: list[Left] = []
         for step in first:
             self._take(step)
 
@@ -150,13 +155,13 @@ class _Work:
             self._take(step)
         return step is not None
 
-    def ask(self, act: Callable[[Surface], tuple[Step | None, Left | None]]) -> None:
-        """Do a step that may have to leave something."""
+    def ask(self, act: Callable[[Surface], tuple[Step | None, Left | None]], lasting: bool = False) -> None:
+        """Do a step that may have to leave something; lasting where no other step can make up for it."""
         step, left = act(self._surface)
         if step is not None:
             self._take(step)
         if left is not None:
-            self._left.append(left)
+            (self._lasting if lasting else self._left).append(left)
 
     def close(self, act: Callable[[Surface], tuple[Step | None, list[Left]]]) -> None:
         """Do a step that may have to leave several things."""
@@ -182,10 +187,14 @@ class _Work:
 
     def _remains(self) -> Iterator[Left]:
         """Yield what is still wrong: as the steps said it, else as the examination does."""
+        yield from dict.fromkeys(self._lasting)
         if not self.sound.stops:
+            for finding in self.sound.findings:
+                if finding.code == _CROSSING:
+                    yield Left(finding.message, finding.where, f"{finding.advice} {_NEW_SKIN}")
             return
         yield from dict.fromkeys(self._left)
-        said = bool(self._left)
+        said = bool(self._left or self._lasting)
         for finding in self.sound.findings:
             if finding.stops and not (said and finding.code in ("open-edges", "mixed-winding")):
                 yield Left(finding.message, finding.where, finding.advice)

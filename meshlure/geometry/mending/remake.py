@@ -14,6 +14,7 @@ from meshlure.geometry.phrasing import counted, millimetres
 from meshlure.geometry.samples import spread
 from meshlure.geometry.shells import measures
 from meshlure.geometry.surface import Bools, Floats, Surface
+from meshlure.geometry.topology import paired
 
 NODES: Final = 8_000_000
 """Places of the grid, at most: a quarter of them are asked, which takes about ten seconds a million."""
@@ -90,11 +91,13 @@ def remade(surface: Surface, step: float) -> tuple[Step | None, Left | None]:
     near = nearest(surface, np.concatenate([made.vertices, made.corners.mean(axis=1)])).distance
     spots = spread(surface, max(step, float(np.sqrt(2 * surface.area / _SPOTS))))
     back = nearest(made, spots).distance
+    farthest = millimetres(float(near.max()))
+    over = " (over what was open)" if not paired(surface).closed else ""
     did = (
         f"drew a new skin of {counted(len(made.faces), 'face')} in steps of {millimetres(step)}; half of it lies "
         f"within {millimetres(float(np.median(near)))} of the old one, 95% within "
-        f"{millimetres(float(np.quantile(near, 0.95)))}, its farthest place {millimetres(float(near.max()))} off (over "
-        f"what was open); no place of the old skin is farther than {millimetres(float(back.max()))} from the new one"
+        f"{millimetres(float(np.quantile(near, 0.95)))}, its farthest place {farthest} off{over}; "
+        f"no place of the old skin is farther than {millimetres(float(back.max()))} from the new one"
     )
     return Step("remake", did, made, len(made.faces), float(max(near.max(), back.max()))), None
 

@@ -11,6 +11,7 @@ from meshlure.geometry.shells import enclosed_volume
 from meshlure.geometry.solids import Solid, SolidError
 from meshlure.geometry.soundness import Soundness
 from meshlure.geometry.surface import Surface
+from meshlure.geometry.welding import weld
 
 _ROUNDING: Final = 1e-9
 """Share of the volume that a union moves by rounding."""
@@ -38,13 +39,20 @@ def united(sound: Soundness) -> tuple[Step | None, Left | None]:
         for shell in shells[1:]:
             other = Solid.of(shell.surface.turned() if shell.reversed else shell.surface)
             solid = solid.less(other) if shell.reversed else solid.joined(other)
-        made: Surface = solid.surface()
     except SolidError as error:
         return None, Left(
             f"{counted(len(named), 'shell')} that touch or overlap could not be joined: {error}",
             places(sound.shells[number].centre for number in named),
             "Join them in CAD.",
         )
+    if len(solid.parts()) == len(shells):
+        return None, Left(
+            f"{counted(len(named), 'shell')} that touch along an edge or at a corner only: nothing joins them there",
+            places(sound.shells[number].centre for number in named),
+            "Let them overlap by a tenth of a millimetre in CAD, or keep them as far apart.",
+        )
+    # The solid library keeps places apart that a file writes as one.
+    made: Surface = weld(solid.surface().corners).surface
     counted_twice = enclosed_volume(sound.surface) - enclosed_volume(made)
     listed = "; ".join(shell_text(sound.shells[number]) for number in named[:3])
     more = f"; and {len(named) - 3:,} more" if len(named) > 3 else ""
