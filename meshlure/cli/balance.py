@@ -3,12 +3,11 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from pathlib import Path
 from typing import TYPE_CHECKING, Annotated, Any, Final
 
 import typer
 
-from meshlure.cli.limits import Largest, most_bytes
+from meshlure.cli.options import AsJson, BaitPath, Debug, Largest, NoPage, Out, check_out, most_bytes
 from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer, hand_on
 from meshlure.errors import Fault, InputError
@@ -35,11 +34,8 @@ Exit code: 0 what is written meets the target, 1 it does not (the nearest is wri
 
 
 def balance(
-    bait: Annotated[Path, typer.Argument(metavar="BAIT.toml", help="Bait file.")],
-    out: Annotated[
-        Path | None,
-        typer.Option("--out", metavar="DIR", help="Folder to write; absent, empty, or from an earlier run."),
-    ] = None,
+    bait: BaitPath,
+    out: Out = None,
     take: Annotated[int, typer.Option("--take", metavar="N", help="Which of the ways to write; 1 is the best.")] = 1,
     ballast: Annotated[
         str | None,
@@ -48,29 +44,18 @@ def balance(
     halves: Annotated[
         bool, typer.Option("--halves", help="Also write the body's left and right halves, with holes for pins.")
     ] = False,
-    no_page: Annotated[bool, typer.Option("--no-page", help="Write results.json, but no report.html.")] = False,
-    json: Annotated[bool, typer.Option("--json", help="Print the results; --out may then be left out.")] = False,
+    no_page: NoPage = False,
+    json: AsJson = False,
     largest: Largest = None,
-    debug: Annotated[bool, typer.Option("--debug", help="On a fault of ours, print where it happened.")] = False,
+    debug: Debug = False,
 ) -> None:
     """Balance a bait."""
     del debug  # read by the entry, which every command shares
-    if out is None and not json:
-        raise InputError(
-            Fault("there is nowhere to write to", "--out", "nothing", "a folder", "add --out DIR, or --json")
-        )
-    if halves and out is None:
-        raise InputError(
-            Fault("--halves writes meshes and needs a folder", "--out", "nothing", "a folder", "add --out DIR")
-        )
+    check_out(out, needed=not json, needing="--halves writes meshes" if halves else "")
     if take != 1 and ballast is not None:
         raise InputError(
             Fault("--take chooses among ways found; --ballast states one", "--take", str(take), "", "leave one out")
         )
-    if out is not None:
-        from meshlure.files.folder import check_folder
-
-        check_folder(out)
     most = most_bytes(largest)
     from meshlure.bait.loading import read_bait
     from meshlure.balancing import finding

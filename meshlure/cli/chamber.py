@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING, Annotated, Any, Final, Protocol
 
 import typer
 
-from meshlure.cli.limits import Largest, most_bytes
+from meshlure.cli.options import AsJson, BaitPath, Debug, Largest, NoPage, Out, check_out, most_bytes
 from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer, hand_on, tell
 from meshlure.errors import Fault, InputError
@@ -46,35 +46,25 @@ class _Found(Protocol):
 
 
 def chamber(
-    bait: Annotated[Path, typer.Argument(metavar="BAIT.toml", help="Bait file.")],
-    out: Annotated[
-        Path | None,
-        typer.Option("--out", metavar="DIR", help="Folder to write; absent, empty, or from an earlier run."),
-    ] = None,
+    bait: BaitPath,
+    out: Out = None,
     take: Annotated[int, typer.Option("--take", metavar="N", help="Which of the ways to write; 1 is the best.")] = 1,
     hollow: Annotated[
         str | None,
         typer.Option("--hollow", metavar="WORDS", help='No chamber: the body as a shell, "wall 1.6 mm".'),
     ] = None,
-    no_page: Annotated[bool, typer.Option("--no-page", help="Write results.json, but no report.html.")] = False,
-    json: Annotated[bool, typer.Option("--json", help="Print the results; --out may then be left out.")] = False,
+    no_page: NoPage = False,
+    json: AsJson = False,
     largest: Largest = None,
-    debug: Annotated[bool, typer.Option("--debug", help="On a fault of ours, print where it happened.")] = False,
+    debug: Debug = False,
 ) -> None:
     """Chamber or hollow a bait."""
     del debug  # read by the entry, which every command shares
-    if out is None and not json:
-        raise InputError(
-            Fault("there is nowhere to write to", "--out", "nothing", "a folder", "add --out DIR, or --json")
-        )
+    check_out(out, needed=not json)
     if take != 1 and hollow is not None:
         raise InputError(
             Fault("--take chooses among bores; --hollow cuts none", "--take", str(take), "", "leave one out")
         )
-    if out is not None:
-        from meshlure.files.folder import check_folder
-
-        check_folder(out)
     most = most_bytes(largest)
     written: Study | None = None
     with phases() as said:

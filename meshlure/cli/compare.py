@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING, Annotated, Final
 
 import typer
 
-from meshlure.cli.limits import Largest, most_bytes
+from meshlure.cli.options import AsJson, Debug, Largest, Out, check_out, most_bytes
 from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer, hand_on
 from meshlure.errors import Fault, InputError
@@ -38,17 +38,14 @@ PAGE: Final = "compare.html"
 
 def compare(
     baits: Annotated[list[Path], typer.Argument(metavar="BAIT.toml ...", help="Bait files, two to eight.")],
-    out: Annotated[
-        Path | None,
-        typer.Option("--out", metavar="DIR", help="Folder to write; absent, empty, or from an earlier run."),
-    ] = None,
+    out: Out = None,
     as_stated: Annotated[
         bool, typer.Option("--as-stated", help="Leave each in the water, throw and retrieve of its own file.")
     ] = False,
     no_page: Annotated[bool, typer.Option("--no-page", help="Write results.json, but no compare.html.")] = False,
-    json: Annotated[bool, typer.Option("--json", help="Print results.json; --out may then be left out.")] = False,
+    json: AsJson = False,
     largest: Largest = None,
-    debug: Annotated[bool, typer.Option("--debug", help="On a fault of ours, print where it happened.")] = False,
+    debug: Debug = False,
 ) -> None:
     """Compare baits."""
     del debug  # read by the entry, which every command shares
@@ -62,10 +59,7 @@ def compare(
                 "name another",
             )
         )
-    if out is not None:
-        from meshlure.files.folder import check_folder
-
-        check_folder(out)
+    check_out(out, needed=False)
     most = most_bytes(largest)
     plans = _plans(baits)
     from meshlure.comparing import compare as compared

@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING, Annotated, Final
 
 import typer
 
-from meshlure.cli.limits import Largest, most_bytes
+from meshlure.cli.options import Debug, Largest, most_bytes
 from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer, hand_on
 from meshlure.errors import Fault, InputError
@@ -85,7 +85,7 @@ def inspect(
     ] = None,
     largest: Largest = None,
     json: Annotated[bool, typer.Option("--json", help="Print everything as JSON, and nothing else.")] = False,
-    debug: Annotated[bool, typer.Option("--debug", help="On a fault of ours, print where it happened.")] = False,
+    debug: Debug = False,
 ) -> None:
     """Inspect meshes."""
     del debug  # read by the entry, which every command shares

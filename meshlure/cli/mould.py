@@ -2,12 +2,11 @@
 
 from __future__ import annotations
 
-from pathlib import Path
 from typing import Annotated, Final
 
 import typer
 
-from meshlure.cli.limits import Largest, most_bytes
+from meshlure.cli.options import AsJson, BaitPath, Debug, Largest, NoPage, Out, check_out, most_bytes
 from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer, hand_on
 from meshlure.errors import Fault, InputError
@@ -32,37 +31,27 @@ Exit code: 0 done, 1 done but a fault was found, 2 the input cannot be used, 3 a
 
 
 def mould(
-    bait: Annotated[Path, typer.Argument(metavar="BAIT.toml", help="Bait file.")],
-    out: Annotated[
-        Path | None,
-        typer.Option("--out", metavar="DIR", help="Folder to write; absent, empty, or from an earlier run."),
-    ] = None,
+    bait: BaitPath,
+    out: Out = None,
     one_piece: Annotated[
         bool, typer.Option("--one-piece", help="A single open mould, for a part with a flat back.")
     ] = False,
     master: Annotated[bool, typer.Option("--master", help="Only the scaled master, no boards.")] = False,
     tab: Annotated[bool, typer.Option("--tab", help="With --master: add a tab with a hole to hang it by.")] = False,
-    no_page: Annotated[bool, typer.Option("--no-page", help="Write results.json, but no report.html.")] = False,
-    json: Annotated[bool, typer.Option("--json", help="Print results.json; --out may then be left out.")] = False,
+    no_page: NoPage = False,
+    json: AsJson = False,
     largest: Largest = None,
-    debug: Annotated[bool, typer.Option("--debug", help="On a fault of ours, print where it happened.")] = False,
+    debug: Debug = False,
 ) -> None:
     """Make a mould."""
     del debug  # read by the entry, which every command shares
-    if out is None and not json:
-        raise InputError(
-            Fault("there is nowhere to write to", "--out", "nothing", "a folder", "add --out DIR, or --json")
-        )
+    check_out(out, needed=not json)
     if one_piece and master:
         raise InputError(
             Fault("only one of these can be made", "mould", "--one-piece, --master", "one of them", "leave one out")
         )
     if tab and not master:
         raise InputError(Fault("a tab belongs to a master", "--tab", "no --master", "--master --tab", "add --master"))
-    if out is not None:
-        from meshlure.files.folder import check_folder
-
-        check_folder(out)
     most = most_bytes(largest)
     from meshlure.bait.loading import read_bait
     from meshlure.making.mould.design import Kind

@@ -11,7 +11,7 @@ from typing import TYPE_CHECKING, Annotated, Any, Final
 import typer
 
 from meshlure.cli.completion import inserts_begun, materials_begun
-from meshlure.cli.limits import Largest, most_bytes
+from meshlure.cli.options import Largest, most_bytes
 from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer, can_ask
 from meshlure.errors import Fault, InputError

@@ -3,13 +3,12 @@
 from __future__ import annotations
 
 from dataclasses import replace
-from pathlib import Path
 from typing import TYPE_CHECKING, Annotated, Final
 
 import typer
 
 from meshlure.cli.completion import materials_begun
-from meshlure.cli.limits import Largest, most_bytes
+from meshlure.cli.options import AsJson, BaitPath, Debug, Largest, Out, check_out, most_bytes
 from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer, hand_on
 from meshlure.errors import Fault, InputError
@@ -39,11 +38,8 @@ Exit code: 0 done, 1 the density or mass cannot be reached (the nearest is told)
 
 
 def pour(
-    bait: Annotated[Path, typer.Argument(metavar="BAIT.toml", help="Bait file.")],
-    out: Annotated[
-        Path | None,
-        typer.Option("--out", metavar="DIR", help="Folder to write; absent, empty, or from an earlier run."),
-    ] = None,
+    bait: BaitPath,
+    out: Out = None,
     baits: Annotated[int | None, typer.Option("--baits", metavar="N", help="How many are poured at once.")] = None,
     waste: Annotated[
         str | None, typer.Option("--waste", metavar="SHARE", help='Mixed beyond what the baits take, "10 %".')
@@ -69,9 +65,9 @@ def pour(
     mass: Annotated[
         str | None, typer.Option("--mass", metavar="MASS", help='Wanted of the whole bait, ready to fish, "14 g".')
     ] = None,
-    json: Annotated[bool, typer.Option("--json", help="Print results.json; --out may then be left out.")] = False,
+    json: AsJson = False,
     largest: Largest = None,
-    debug: Annotated[bool, typer.Option("--debug", help="On a fault of ours, print where it happened.")] = False,
+    debug: Debug = False,
 ) -> None:
     """Work out a pour."""
     del debug  # read by the entry, which every command shares
@@ -79,10 +75,7 @@ def pour(
 
     stated = {"baits": baits, "waste": waste, "resin": resin, "balloons": balloons, "mass": mass}
     plan = _with(read_baitfile(bait), {key: value for key, value in stated.items() if value is not None})
-    if out is not None:
-        from meshlure.files.folder import check_folder
-
-        check_folder(out)
+    check_out(out, needed=False)
     most = most_bytes(largest)
     from meshlure.bait.loading import load
     from meshlure.pouring.study import pour as worked_out

@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING, Annotated, Final
 import typer
 
 from meshlure.cli.completion import inserts_begun, materials_begun
-from meshlure.cli.limits import Largest, most_bytes
+from meshlure.cli.options import AsJson, Debug, Largest, NoPage, Out, check_out, most_bytes
 from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer, hand_on
 from meshlure.errors import Fault, InputError
@@ -41,12 +41,9 @@ Exit code: 0 done, 1 done but a fault was found, 2 the input cannot be used, 3 a
 
 def report(
     bait: Annotated[Path, typer.Argument(metavar="BAIT", help="Bait file, or the body's mesh.")],
-    out: Annotated[
-        Path | None,
-        typer.Option("--out", metavar="DIR", help="Folder to write; absent, empty, or from an earlier run."),
-    ] = None,
-    no_page: Annotated[bool, typer.Option("--no-page", help="Write results.json, but no report.html.")] = False,
-    json: Annotated[bool, typer.Option("--json", help="Print results.json; --out may then be left out.")] = False,
+    out: Out = None,
+    no_page: NoPage = False,
+    json: AsJson = False,
     cut: Annotated[
         bool,
         typer.Option("--cut", help="Also write the body with pockets cut for its inserts, and each insert, as STL."),
@@ -100,22 +97,11 @@ def report(
         bool, typer.Option("--mend", help="Mend the meshes before anything is told, each step as a finding.")
     ] = False,
     largest: Largest = None,
-    debug: Annotated[bool, typer.Option("--debug", help="On a fault of ours, print where it happened.")] = False,
+    debug: Debug = False,
 ) -> None:
     """Study a bait and write what was found."""
     del debug  # read by the entry, which every command shares
-    if out is None and not json:
-        raise InputError(
-            Fault("there is nowhere to write to", "--out", "nothing", "a folder", "add --out DIR, or --json")
-        )
-    if cut and out is None:
-        raise InputError(
-            Fault("--cut writes meshes and needs a folder", "--out", "nothing", "a folder", "add --out DIR")
-        )
-    if glb and out is None:
-        raise InputError(
-            Fault("--glb writes a scene and needs a folder", "--out", "nothing", "a folder", "add --out DIR")
-        )
+    check_out(out, needed=not json, needing="--cut writes meshes" if cut else "--glb writes a scene" if glb else "")
     options = {
         "--density": density,
         "--material": material,
@@ -127,10 +113,6 @@ def report(
         "--salinity": salinity,
     }
     plan = _plan(bait, options, insert or [])
-    if out is not None:
-        from meshlure.files.folder import check_folder
-
-        check_folder(out)
     from meshlure.bait.loading import load
     from meshlure.examine import study
     from meshlure.geometry.mending.steps import Wishes

@@ -4,11 +4,9 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from pathlib import Path
-from typing import TYPE_CHECKING, Annotated, Final
+from typing import TYPE_CHECKING, Final
 
-import typer
-
-from meshlure.cli.limits import Largest, most_bytes
+from meshlure.cli.options import BaitPath, Debug, Largest, Out, most_bytes
 from meshlure.cli.progress import phases
 from meshlure.cli.terminal import answer
 from meshlure.errors import Fault, InputError
@@ -36,13 +34,10 @@ PDF, SVG = "sheet.pdf", "sheet.svg"
 
 
 def sheet(
-    bait: Annotated[Path, typer.Argument(metavar="BAIT.toml", help="Bait file.")],
-    out: Annotated[
-        Path | None,
-        typer.Option("--out", metavar="DIR", help="Folder to write; absent, empty, or from an earlier run."),
-    ] = None,
+    bait: BaitPath,
+    out: Out = None,
     largest: Largest = None,
-    debug: Annotated[bool, typer.Option("--debug", help="On a fault of ours, print where it happened.")] = False,
+    debug: Debug = False,
 ) -> None:
     """Draw a bait to scale."""
     del debug  # read by the entry, which every command shares
