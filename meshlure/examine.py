@@ -33,6 +33,7 @@ from meshlure.results import budget as budget_tree
 from meshlure.results import passage as passage_tree
 from meshlure.results import sinking as sinking_tree
 from meshlure.results.changes import changes
+from meshlure.results.readiness import readiness
 from meshlure.results.scene import scene
 from meshlure.results.study import Study
 from meshlure.stock.waters import standard_air
@@ -193,6 +194,7 @@ def study(bait: Bait, against: Bait | None = None, tell: Callable[[str], None] =
         "cautions": account.cautions(bait),
         "timings_s": clock.spent,
     }
+    tree["readiness"] = readiness(tree, bait.plan.target)
     return Study(tree, views, scene=scene(bait, composition.rows, posed.ends, account.headline(posed.trees)))
 
 

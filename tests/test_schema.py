@@ -143,6 +143,7 @@ NULLS = {
     "$.flight.pressure_margin_mm", "$.flight.swing_hz", "$.flight.swings", "$.flight.ratios.against",
     "$.flight.against",
     "$.flight.balls", "$.flight.better", "$.flight.better.added_g",
+    "$.readiness.reasons[].quantity", "$.readiness.reasons[].wanted", "$.readiness.reasons[].found",
     "$.sinking.seconds_to_1m", "$.sinking.seconds_to_3m",
     "$.sinking.starts[].seconds_to_1m", "$.sinking.starts[].seconds_to_3m",
     "$.budget.rows[].nose_up_deg", "$.budget.rows[].lean_deg", "$.budget.monte_carlo.nose_up_deg",

@@ -6,7 +6,7 @@ from collections.abc import Mapping
 from typing import Any
 
 from meshlure.report.table import Table, table
-from meshlure.report.wording import DASH, MINUS, band, earned, fixed, percent
+from meshlure.report.wording import DASH, MINUS, THIN, band, earned, fixed, percent
 
 Tree = Mapping[str, Any]
 
@@ -96,12 +96,21 @@ def words(results: Tree) -> list[str]:
 
 
 def passing(results: Tree) -> str:
-    """Return what share of copies would pass the limits; empty where none are set or one has no value."""
+    """Return what share of copies would be within the limits; empty where none are set or one has no value."""
     found = results.get("budget")
     share = None if found is None else found["monte_carlo"]["pass_share"]
-    if share is None:
+    if found is None or share is None:
         return ""
-    return f"{'none' if share == 0 else _share(share)} of the copies would pass the limits.".capitalize()
+    draws = f"{found['monte_carlo']['draws']:,}".replace(",", THIN)
+    limits = [
+        f"{row['what'].partition(',')[0]} {band(row['low'], row['high'], '', 0, signed=True)}°"
+        if "degrees" in row["what"]
+        else f"{row['what'].partition(',')[0]} {band(row['low'], row['high'], 'g', 2, signed=True)}"
+        for row in results.get("limits") or []
+    ]
+    within = f"your limits ({', '.join(limits)})" if limits else "your limits"
+    which = "none is" if share == 0 else "all are" if share == 1 else f"{_share(share)} are"
+    return f"Of {draws} copies drawn by lot from these doubts, {which} within {within}."
 
 
 def posture_band(results: Tree) -> str:

@@ -24,6 +24,7 @@ from meshlure.report import (
     weighed,
     wording,
 )
+from meshlure.report.call import call
 from meshlure.report.drawings import TITLES, Drawing, drawing
 from meshlure.report.figures import Picture, drawing_style
 from meshlure.report.layout import scale_for, scale_words
@@ -50,13 +51,11 @@ class Verdict:
     reserve: str
     reserve_band: str
     posture: str
-    nose: str
     lean: str
     touchy: tuple[str, ...]
     counted: str
     faults: tuple[origin.Found, ...]
     warnings: tuple[origin.Found, ...]
-    missed: tuple[str, ...]
     posture_band: str
     passing: str
 
@@ -109,7 +108,7 @@ def page(study: Study) -> str:
         balanced=ballast.balanced(results),
         chambered=chambers.chambered(results),
         moulded=made,
-        changes=[str(row["words"]) for row in results.get("changes") or []],
+        call=call(results),
         tables=_tables(results),
         turning=turning(study.scene, results, shown),
         w=wording,
@@ -122,14 +121,13 @@ def _verdict(results: Mapping[str, Any]) -> Verdict:
     posture = main_posture(results)
     findings = origin.findings(results)
     low, high = found["reserve_low_g"], found["reserve_high_g"]
-    nose, lean, words = "", "", "no resting posture was found"
+    lean, words = "", "no resting posture was found"
     turns: list[str] = []
     if posture is not None:
         words = posture.get("words") or posture.get("name") or posture["kind"]
-        if posture["up"] is None:
-            nose, lean = "no attitude of its own", ""
-        else:
-            nose = wording.nose_words(posture["nose_up_deg"], rounded=touchy(posture, "nose_up_deg"))
+        # The state stands above it in large letters.
+        words = words.removeprefix(f"{found['state'].capitalize()}, ")
+        if posture["up"] is not None:
             lean = wording.lean_words(
                 posture["lean_deg"], rounded=touchy(posture, "lean_deg"), free=posture["free"] is not None
             )
@@ -140,7 +138,6 @@ def _verdict(results: Mapping[str, Any]) -> Verdict:
             value = (posture["sensitivity"] or {}).get(key)
             if value is not None:
                 turns.append(what.format(wording.significant(value, 2)))
-    missed = [substance.missed(row) for row in results.get("limits") or [] if row["met"] is False]
     return Verdict(
         state=found["state"],
         sentence=water.verdict_words(found),
@@ -148,14 +145,12 @@ def _verdict(results: Mapping[str, Any]) -> Verdict:
         ounces=wording.ounces(results["weight"]["mass_g"]),
         reserve=wording.banded_grams(found["reserve_g"], low, high),
         reserve_band=wording.band(low, high, "g", signed=True),
-        posture=words,
-        nose=nose,
+        posture=words[:1].upper() + words[1:],
         lean=lean,
         touchy=tuple(turns),
         counted=origin.counted(findings),
         faults=tuple(f for f in findings if f.level == "fault"),
         warnings=tuple(f for f in findings if f.level == "warning"),
-        missed=tuple(missed),
         posture_band=budget.posture_band(results),
         passing=budget.passing(results),
     )

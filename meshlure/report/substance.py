@@ -145,13 +145,6 @@ def limits(results: Results) -> Table | None:
     return table("Limits set in the bait file", ("limit", "wanted", "found", ""), rows, (0, 3))
 
 
-def missed(limit: Mapping[str, Any]) -> str:
-    """Return a limit that is not met, with what was wanted and what was found."""
-    places = 0 if "degrees" in limit["what"] else 2
-    wanted = band(limit["low"], limit["high"], "", places, signed=True)
-    return f"{limit['what']}: {fixed(limit['value'], places, signed=True, reason='free')}, wanted {wanted}"
-
-
 def measured(results: Results) -> Table | None:
     """Return weighings beside what was predicted."""
     found = results.get("measured") or {"rows": [], "water_c": None}

@@ -7,7 +7,8 @@ from typing import Any
 
 import pytest
 import shapes
-from invented_baits import minnow_results, minnow_views
+from invented_minnow import minnow_results
+from invented_outlines import minnow_views
 from workbench import bait, coat, hardware, insert, vector
 
 from meshlure.examine import study
@@ -92,16 +93,22 @@ def test_what_the_weighings_tell(weighed: Study) -> None:
 
 def test_shares_in_words() -> None:
     def with_share(share: float | None) -> dict[str, Any]:
-        return {"budget": {"monte_carlo": {"pass_share": share}}}
+        limits = [
+            {"what": "reserve, g", "low": 0.7, "high": 1.4},
+            {"what": "nose up, degrees", "low": -3.0, "high": 12.0},
+        ]
+        return {"budget": {"monte_carlo": {"pass_share": share, "draws": 10_000}}, "limits": limits}
 
     said = {share: passing(with_share(share)) for share in (None, 0.0, 0.004, 0.5, 0.996, 1.0)}
+    within = "within your limits (reserve +0.70 to +1.40\u00a0g, nose up −3 to +12°)."
+    before = "Of 10\u202f000 copies drawn by lot from these doubts, "
     assert said == {
         None: "",
-        0.0: "None of the copies would pass the limits.",
-        0.004: "Less than 1 % of the copies would pass the limits.",
-        0.5: "50 % of the copies would pass the limits.",
-        0.996: "More than 99 % of the copies would pass the limits.",
-        1.0: "All of the copies would pass the limits.",
+        0.0: f"{before}none is {within}",
+        0.004: f"{before}less than 1 % are {within}",
+        0.5: f"{before}50 % are {within}",
+        0.996: f"{before}more than 99 % are {within}",
+        1.0: f"{before}all are {within}",
     }
 
 

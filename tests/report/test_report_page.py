@@ -193,11 +193,11 @@ def test_the_verdict_stands_before_everything_else(minnow_html: str) -> None:
         "0.47\u00a0oz",
         "+1.2\u00a0g",
         "+0.9 to +1.5\u00a0g",
-        "Nose 4° down, no lean",
+        "Not yet",
         "rights itself from any lean below 118°",
         "no faults, 1 warning",
         "151 mm3 of lip is outside the body",
-        "nose up, degrees: −4, wanted −3 to 0",
+        "Nose up −4°, outside your limits of −3° to 0°.",
     ):
         assert words in top, words
 
