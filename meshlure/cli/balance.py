@@ -2,8 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
-from typing import TYPE_CHECKING, Annotated, Any, Final
+from typing import TYPE_CHECKING, Annotated, Final
 
 import typer
 
@@ -73,10 +72,9 @@ def balance(
                 folder, page=not no_page, make=lambda staging: found.make(staging, folder, halves, said)
             )
     if written is None:
-        import json as text
+        from meshlure.results.jsontext import json_text
 
-        account: Mapping[str, Any] = found.account
-        hand_on(text.dumps({"balance": account}, indent=1, allow_nan=False, ensure_ascii=False) + "\n")
+        hand_on(json_text({"balance": found.account}))
     elif json:
         hand_on(written.to_json())
     else:

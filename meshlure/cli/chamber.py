@@ -77,10 +77,9 @@ def chamber(
 
             written = write_made(out, page=not no_page, make=lambda folder: found.make(folder, out, said))
     if written is None:
-        from json import dumps
+        from meshlure.results.jsontext import json_text
 
-        account = {"chamber" if hollow is None else "hollow": found.account}
-        hand_on(dumps(account, indent=1, allow_nan=False, ensure_ascii=False) + "\n")
+        hand_on(json_text({"chamber" if hollow is None else "hollow": found.account}))
     elif json:
         hand_on(written.to_json())
     else:

@@ -117,10 +117,9 @@ def inspect(
             _write(found[0], out)
     tree = account(found)
     if json:
-        import json as text
+        from meshlure.results.jsontext import json_text
 
-        words = text.dumps(tree, indent=1, allow_nan=False, ensure_ascii=False) + "\n"
-        hand_on(words.encode("utf-8", "backslashreplace").decode("utf-8"))
+        hand_on(json_text(tree))
     else:
         from meshlure.cli.soundings import lines, table
 

@@ -168,6 +168,8 @@ class _Lines:
             case ["format", kind, "1.0"] if kind in _ORDERS:
                 self._order = _ORDERS[kind]
             case ["element", name, count] if count.isascii() and count.isdigit() and len(count) < 20:
+                if any(name == other for other, *_ in self._elements):
+                    return False  # which of the two is meant cannot be told
                 self._elements.append((name, int(count), []))
             case ["property", "list", length, kind, name] if self._known(length, kind) and TYPES[length][0] != "f":
                 self._elements[-1][2].append(Property(name, TYPES[kind], TYPES[length]))

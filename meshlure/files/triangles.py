@@ -75,7 +75,8 @@ def in_metres(corners: NDArray[np.floating], metres: float, where: str) -> Float
         A coordinate is not a number, infinite, or beyond what lengths are computed with; the first faces that have one
         are named, counted from 1.
     """
-    scaled: Floats = np.multiply(corners, metres, dtype=np.float64)
+    with np.errstate(invalid="ignore"):  # a signalling "not a number", which is refused below
+        scaled: Floats = np.multiply(corners, metres, dtype=np.float64)
     check_within(scaled.reshape(-1, 3), corners.reshape(-1, 3), len(corners), where)
     return scaled
 

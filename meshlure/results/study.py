@@ -2,13 +2,14 @@
 
 from __future__ import annotations
 
-import json
 from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
+
+from meshlure.results.jsontext import json_text
 
 Floats = NDArray[np.float64]
 
@@ -176,6 +177,4 @@ class Study:
 
     def to_json(self) -> str:
         """Return results.json as text; raises ValueError if a number in it is not finite."""
-        text = json.dumps(self.results, indent=1, allow_nan=False, ensure_ascii=False) + "\n"
-        # A file's name may hold bytes that are no UTF-8; Python's stand-ins for them cannot be written as such.
-        return text.encode("utf-8", "backslashreplace").decode("utf-8")
+        return json_text(self.results)
