@@ -11,6 +11,7 @@ from meshlure.report import figures as ink
 from meshlure.report.charts import WIDE
 from meshlure.report.figures import Picture, blank, picture
 from meshlure.report.rulings import Ticks, margins, ruled
+from meshlure.report.saved import flat, with_file
 from meshlure.report.table import Table, table
 from meshlure.report.wording import significant
 
@@ -72,4 +73,6 @@ def values() -> Table | None:
         for row in rows()
     ]
     title = "Estimate and published drag coefficient of plain bodies"
-    return table(title, ("body, what leads", "layer there", "published", "estimate", "ratio"), lines, (0, 1))
+    head = ("body, what leads", "layer there", "published", "estimate", "ratio")
+    shown = table(title, head, lines, (0, 1))
+    return None if shown is None else with_file(shown, flat(rows()), "published", "drag_coefficients")

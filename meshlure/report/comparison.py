@@ -18,8 +18,10 @@ from meshlure.report.lines import WORDS, look
 from meshlure.report.overlay import common_scale, key, laid, overlay
 from meshlure.report.resting import resting
 from meshlure.report.rulings import Ticks, margins, ruled
+from meshlure.report.saved import columns as columns_of
+from meshlure.report.saved import saved_file, with_file
 from meshlure.report.subject import readable, subject
-from meshlure.report.table import Table, table
+from meshlure.report.table import Saved, Table, table
 from meshlure.report.wording import clipped, fixed, significant
 from meshlure.results import Study
 
@@ -109,6 +111,8 @@ def page(study: Study, studies: Sequence[Study], tips: Sequence[Floats]) -> str:
         drawings=drawings,
         key=lines,
         charts=charts,
+        chart_tables=[_reserve_table(found, trees), _station_table(found, trees)],
+        differences=_difference_file(found),
         conditions=conditions(found["conditions"]),
         cautions=_cautions(trees),
         same=SAME,
@@ -228,9 +232,45 @@ def _stations(found: Tree, trees: Sequence[Tree]) -> Picture:
     ruled(axes)
     axes.legend(loc="lower center", bbox_to_anchor=(0.5, 0.99), ncols=4, fontsize=7, borderaxespad=0.1)
     each = "; ".join(f"{bait['letter']} {WORDS[number]}" for number, bait in enumerate(found["baits"]))
-    return picture(
-        figure, f"Section area from nose to tail, one line a bait: {each}. Numbers are in each bait's report."
-    )
+    return picture(figure, f"Section area from nose to tail, one line a bait: {each}. Numbers are in the table below.")
+
+
+def _reserve_table(found: Tree, trees: Sequence[Tree]) -> Table | None:
+    """The reserves with their bands."""
+    keys = ("reserve_g", "reserve_low_g", "reserve_high_g")
+    rows = [
+        {"bait": bait["letter"], "name": bait["name"], **{key: tree["buoyancy"][key] for key in keys}}
+        for bait, tree in zip(found["baits"], trees, strict=True)
+    ]
+    lines = [
+        (f"{row['bait']} {clipped(row['name'], SHOWN)}", *(fixed(row[key], 2, signed=True) for key in keys))
+        for row in rows
+    ]
+    shown = table("Reserves with their bands", ("bait", "reserve, g", "from, g", "to, g"), lines)
+    return None if shown is None else with_file(shown, rows, "comparison", "reserves")
+
+
+def _station_table(found: Tree, trees: Sequence[Tree]) -> Table | None:
+    """The section areas from nose to tail, bait by bait."""
+    rows = [
+        {"bait": bait["letter"], **row}
+        for bait, tree in zip(found["baits"], trees, strict=True)
+        for row in columns_of(tree["stations"], "from_nose_mm", "area_mm2")
+    ]
+    lines = [(row["bait"], fixed(row["from_nose_mm"], 1), fixed(row["area_mm2"], 1)) for row in rows]
+    shown = table("Section area from nose to tail", ("bait", "from nose, mm", "area, mm²"), lines)
+    return None if shown is None else with_file(shown, rows, "comparison", "stations")
+
+
+def _difference_file(found: Tree) -> Saved:
+    """All that differs, with every digit."""
+    letters = [bait["letter"] for bait in found["baits"]]
+    rows = [
+        {"group": row["group"], "what": row["what"], "unit": row["unit"]}
+        | dict(zip(letters, row["values"], strict=True))
+        for row in found["rows"]
+    ]
+    return saved_file(rows, "comparison", "differences")
 
 
 def _cautions(trees: Sequence[Tree]) -> list[Tree]:

@@ -31,6 +31,7 @@ from meshlure.report.layout import scale_for, scale_words
 from meshlure.report.pen import swatches
 from meshlure.report.resting import resting
 from meshlure.report.rose import rose
+from meshlure.report.saved import with_files
 from meshlure.report.subject import Subject, main_posture, readable, subject, touchy
 from meshlure.report.view import turning
 from meshlure.report.windward import windward
@@ -109,7 +110,7 @@ def page(study: Study) -> str:
         chambered=chambers.chambered(results),
         moulded=made,
         call=call(results),
-        tables=_tables(results),
+        tables=with_files(_tables(results), results),
         turning=turning(study.scene, results, shown),
         w=wording,
         **pictures,

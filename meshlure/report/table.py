@@ -7,6 +7,14 @@ from dataclasses import dataclass
 
 
 @dataclass(frozen=True)
+class Saved:
+    """A table's numbers as a file: its name, and itself as a data address."""
+
+    file: str
+    address: str
+
+
+@dataclass(frozen=True)
 class Table:
     """Rows under a head; the first column names the row.
 
@@ -21,6 +29,8 @@ class Table:
         Columns that hold words, which run from the left; numbers stand at the right.
     last_is_sum : bool
         Whether the last row sums those above it.
+    saved : Saved or None
+        The same numbers to be saved, with all their digits.
     """
 
     caption: str
@@ -28,6 +38,7 @@ class Table:
     rows: tuple[tuple[str, ...], ...]
     words: frozenset[int] = frozenset({0})
     last_is_sum: bool = False
+    saved: Saved | None = None
 
 
 def table(

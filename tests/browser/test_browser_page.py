@@ -6,6 +6,7 @@ print apart.
 
 from __future__ import annotations
 
+import csv
 import functools
 from collections.abc import Callable, Iterator
 from pathlib import Path
@@ -156,6 +157,32 @@ def test_keys_and_buttons_turn_it_too_and_pieces_can_be_hidden(chromium: Any, wr
         assert window.pixels(STAGE) != first
         body.check()
         assert window.pixels(STAGE) == first
+
+
+def test_every_chart_has_numbers_to_save_without_script(
+    chromium: Any, written: Callable[[str], Path], tmp_path: Path
+) -> None:
+    name = "minnow/minnow.toml"
+    tree = sample(name).results
+    with opened(chromium, written(name), java_script_enabled=False, accept_downloads=True) as found:
+        found.page.locator("details:has(.save) > summary").evaluate_all("each => each.forEach(one => one.click())")
+        links = found.page.locator(".save a")
+        kept: dict[str, list[dict[str, str]]] = {}
+        for number in range(links.count()):
+            with found.page.expect_download() as taken:
+                links.nth(number).click()
+            file = tmp_path / taken.value.suggested_filename
+            taken.value.save_as(file)
+            with file.open(encoding="utf-8-sig", newline="") as lines:
+                kept[file.name.removeprefix("quillmere-minnow-95-").removesuffix(".csv")] = list(csv.DictReader(lines))
+    charts = {"buoyancy", "waters", "righting-sideways", "righting-fore-aft", "stations", "rose", "parts", "moments",
+              "paths", "launch", "published-drag-coefficients"}  # fmt: skip
+    assert charts <= set(kept)
+    stations = tree["stations"]
+    assert [float(row["area_mm2"]) for row in kept["stations"]] == stations["area_mm2"]
+    assert [float(row["reserve_g"]) for row in kept["waters"]] == [row["reserve_g"] for row in tree["waters"]]
+    assert [float(row["y_m"]) for row in kept["paths"]] == [y for path in tree["flight"]["paths"] for y in path["y_m"]]
+    assert all(rows for rows in kept.values())
 
 
 def signs(window: Opened) -> str:
