@@ -11,6 +11,7 @@ import numpy as np
 
 from meshlure import tolerances
 from meshlure.bait.extent import other_units
+from meshlure.bait.loose import balls_of, balls_text, joined_findings
 from meshlure.bait.meshpiece import shape
 from meshlure.errors import Fault, InputError
 from meshlure.files.formats import FORMATS
@@ -24,7 +25,6 @@ from meshlure.geometry.mending.mend import Mended, mend
 from meshlure.geometry.mending.mirror import mirrored
 from meshlure.geometry.mending.steps import Step, Wishes
 from meshlure.geometry.phrasing import counted, places
-from meshlure.geometry.roundness import ball_diameter
 from meshlure.geometry.shells import enclosed_volume
 from meshlure.geometry.soundness import Soundness, examine
 from meshlure.geometry.surface import Surface
@@ -158,21 +158,7 @@ def _volume(sound: Soundness, piece: str) -> tuple[Volume | None, tuple[Finding,
         return None, (Finding("no-solid", Level.FAULT, message, piece, advice=fault.next_step, stops=True),)
     hollow = sum(enclosed_volume(cavity) for cavity in made.cavities)
     volume = Volume(enclosed_volume(made.outer) - hollow, sound.volume, made.deficit)
-    return volume, tuple(_joined(sound, volume, piece))
-
-
-def _joined(sound: Soundness, volume: Volume, piece: str) -> Iterator[Finding]:
-    """Say of shells that meet that they count as one."""
-    if not sound.joins:
-        return
-    numbers = sorted({number for pair in sound.joins for number in pair})
-    shared = volume.summed - volume.volume
-    shares = shared > tolerances.VOLUME_SHARE * volume.volume
-    how = f"share {shared * 1e9:.4g} mm3, which counts once" if shares else "touch"
-    message = f"{counted(len(numbers), 'shell')} {how}: they are taken for one solid"
-    advice = "Right for an eye in its socket; give what is of another material as a piece of its own."
-    where = places(sound.shells[number].centre for number in numbers)
-    yield Finding("shells-joined", Level.NOTE, message, piece, len(numbers), where, advice)
+    return volume, tuple(joined_findings(sound, volume.volume, piece))
 
 
 def _size(file: MeshFile) -> Iterator[Finding]:
@@ -202,13 +188,11 @@ def _facets(volume: Volume | None, file: MeshFile) -> Iterator[Finding]:
 
 def _balls(sound: Soundness, piece: str) -> Iterator[Finding]:
     """Recognize shells that are balls."""
-    balls = [(shell, size) for shell in sound.shells if (size := ball_diameter(shell)) is not None]
+    balls = balls_of(sound)
     if not balls:
         return
-    sizes = sorted({f"{size * 1e3:.3g} mm" for _, size in balls})
-    listed = ", ".join(sizes[:5]) + (f" and {len(sizes) - 5} more sizes" if len(sizes) > 5 else "")
     verb = "is a ball" if len(balls) == 1 else "are balls"
-    message = f"{counted(len(balls), 'shell')} {verb} of {listed}"
+    message = f"{counted(len(balls), 'shell')} {verb} of {balls_text(balls)}"
     advice = "Balls that run in a chamber are no insert: state them under [[balls]] with diameter and count."
     where = places(shell.centre for shell, _ in balls)
     yield Finding("balls", Level.NOTE, message, piece, len(balls), where, advice)

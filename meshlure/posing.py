@@ -8,6 +8,7 @@ from typing import Any
 
 from meshlure.bait.axes import rest_findings
 from meshlure.findings import Finding, Level
+from meshlure.geometry.surface import Floats
 from meshlure.physics.barrier import barriers
 from meshlure.physics.buoyancy import suspends_within
 from meshlure.physics.posture import attitude, coarse_potential
@@ -92,8 +93,15 @@ def pose(vessel: Vessel, stated: float | None = None) -> Posed:
         share = 1.0 / len(hanging)
         trees += [postures.dangling(d, vessel.frame, vessel.composition.mass(d.ends).amount, share) for d in hanging]
     findings += _dry(afloat, vessel)
-    findings += rest_findings(main.hang.up if isinstance(main, Dangle) else main.rest.state.up, vessel.frame)
+    findings += rest_findings(_settled(main), vessel.frame)
     return Posed(ends, main, trees, _righting(vessel, afloat), _balls(vessel, settings, ends), tuple(findings))
+
+
+def _settled(main: Repose | Dangle) -> Floats | None:
+    """Return the up of a posture that nothing but itself would do for."""
+    if isinstance(main, Dangle):
+        return main.hang.up
+    return main.rest.state.up if main.rest.neutral is None else None
 
 
 def _headline(afloat: Sequence[Repose], hanging: Sequence[Dangle]) -> Repose | Dangle:

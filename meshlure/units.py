@@ -225,7 +225,8 @@ def quantity(
         raise entry.refuse("the number is not finite", entry.example)
     if not spelling:
         first, second = _readings(float(number), kind)
-        raise entry.refuse("the number has no unit", f"write '{first}' or '{second}'")
+        grams = f" ({float(number) * OUNCE / GRAM:.4g} g)" if kind == "mass" else ""
+        raise entry.refuse("the number has no unit", f"write '{first}' or '{second}'{grams}")
     value = _convert(number, spelling, entry)
     if kind == "density":
         _check_density(value, number, entry)

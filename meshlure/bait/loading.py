@@ -13,12 +13,14 @@ import numpy as np
 
 from meshlure.bait.axes import axis_findings
 from meshlure.bait.extent import check_reach, size_findings
+from meshlure.bait.halves import half_findings
+from meshlure.bait.loose import drawn_balls, joined_findings
 from meshlure.bait.mended import mended
 from meshlure.bait.meshpiece import shape
 from meshlure.bait.pieces import Bait, Balls, Coat, Frame, MeshPiece, Role, Substance
 from meshlure.bait.printed import as_drawn, printed, solid_print
 from meshlure.bait.refusals import refuse
-from meshlure.bait.substances import hardware, substance
+from meshlure.bait.substances import hardware, name_findings, substance
 from meshlure.errors import Fault, InputError
 from meshlure.files.baitfile import BaitFile, read_baitfile
 from meshlure.files.meshes import read_meshes
@@ -30,6 +32,7 @@ from meshlure.files.source import LARGEST
 from meshlure.files.tables import entry_path
 from meshlure.findings import Finding
 from meshlure.geometry.mending.steps import Wishes
+from meshlure.geometry.shells import enclosed_volume
 from meshlure.geometry.soundness import examine
 from meshlure.stock.waters import Water, stated_density, water
 
@@ -102,6 +105,7 @@ def _assembled(plan: BaitFile, files: Mapping[str, MeshFile], made: _Lookup, rea
     frame = Frame.of(np.array(plan.bait.nose), np.array(plan.bait.back))
     findings += size_findings(pieces[0], frame, plan, files[pieces[0].name])
     findings += axis_findings(pieces[0].surface, frame, pieces[0].name)
+    findings += half_findings(pieces[0].surface, frame, pieces[0].name)
     check_reach(pieces[0], made.hardware, plan)
     return Bait(
         name=plan.bait.name,
@@ -199,6 +203,7 @@ def _pieces(plan: BaitFile, files: Mapping[str, MeshFile], made: _Lookup) -> tup
     refuse(findings, {name: str(file.path) for name, file in files.items()})
     body_name, *_ = files
     outer = shape(sounds[body_name], body_name)
+    outers = [outer]
     made_of, how = made.body, None
     if plan.body.printed is not None and made.solid is not None:
         how = printed(made.solid, plan.body.printed, outer.outer, outer.cavities)
@@ -220,6 +225,7 @@ def _pieces(plan: BaitFile, files: Mapping[str, MeshFile], made: _Lookup) -> tup
     ]
     for insert, of, glue in zip(plan.inserts, made.inserts, made.glues, strict=True):
         own = shape(sounds[insert.name], insert.name)
+        outers.append(own)
         pieces.append(
             MeshPiece(
                 name=insert.name,
@@ -240,4 +246,9 @@ def _pieces(plan: BaitFile, files: Mapping[str, MeshFile], made: _Lookup) -> tup
                 skin_deficit=own.skin_deficit,
             )
         )
+    for piece, own in zip(pieces, outers, strict=True):
+        whole = enclosed_volume(own.outer) - sum(map(enclosed_volume, own.cavities))
+        findings += joined_findings(sounds[piece.name], whole, piece.name)
+        findings += drawn_balls(sounds[piece.name], piece, pieces)
+        findings += name_findings(piece.name, piece.substance) if piece.role is Role.INSERT else ()
     return pieces, findings

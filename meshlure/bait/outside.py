@@ -14,6 +14,7 @@ from meshlure.bait.wording import middle, place_text, volume_text
 from meshlure.findings import Finding, Level
 from meshlure.geometry.clearance import nearest
 from meshlure.geometry.phrasing import MOST_PLACES, counted
+from meshlure.geometry.samples import scattered
 from meshlure.geometry.solids import Solid
 from meshlure.geometry.surface import Floats
 
@@ -22,6 +23,19 @@ _WAYS = np.array([way for way in product((-1.0, 0.0, 1.0), repeat=3) if any(way)
 
 _FITTED = 0.02
 """Share of an insert that may lie in the body's material though it sits in a pocket: the facets of the two differ."""
+
+_GAP = 1e-3
+"""m. A wall farther than this from an insert is no wall of its pocket; common practice, no source."""
+
+_NO_GAP = 5e-6
+"""m. A gap below this is the facets' difference."""
+
+_HELD = 0.3
+"""Share of an insert's skin that lies near a wall where it sits in a pocket, and not on a skin: a half of it or more,
+less where a pocket is shallow."""
+
+_SPOTS = 2000
+"""Places at which a gap is asked."""
 
 _NAMED = 4
 """Outside parts named one by one in a message."""
@@ -54,7 +68,7 @@ def outside_findings(
         if not np.isin(outer.sources(), drawn.sources()).any():
             continue  # in a pocket that other pieces close
         if drawn.volume - beyond.volume <= _FITTED * drawn.volume:
-            findings.append(_sits_outside(piece, drawn.volume, beyond))
+            findings.append(_sits_outside(piece, drawn, beyond, body))
         else:
             findings.append(_sticks_out(piece, beyond.volume, parts[piece.name], reach[piece.name]))
     for space in filling.spaces:
@@ -91,16 +105,33 @@ def _tips(part: Solid) -> Floats:
     return np.asarray(vertices[(vertices @ _WAYS.T).argmax(axis=0)])
 
 
-def _sits_outside(piece: MeshPiece, drawn: float, beyond: Solid) -> Finding:
+def _sits_outside(piece: MeshPiece, drawn: Solid, beyond: Solid, body: MeshPiece) -> Finding:
     where = middle(beyond)
     return Finding(
         code="sits-outside",
         level=Level.NOTE if piece.lip or piece.coated else Level.WARNING,
         piece=piece.name,
-        message=f"all {volume_text(drawn)} of '{piece.name}' lie outside the body's material, in an open "
-        f"pocket drawn into it or on its skin, about {place_text(where)}; what is not closed off displaces water",
+        message=f"all {volume_text(drawn.volume)} of '{piece.name}' lie outside the body's material, in an open "
+        f"pocket drawn into it or on its skin, about {place_text(where)}; what is not closed off displaces water"
+        + _gap_text(piece, body),
         where=(where,),
         advice="right for an insert in an open pocket or a glued-on part; else check its place",
+    )
+
+
+def _gap_text(piece: MeshPiece, body: MeshPiece) -> str:
+    """What is left between an insert and the walls of its open pocket, by spots of even area on the insert."""
+    surface = piece.surface
+    apart = nearest(body.surface, scattered(surface, _SPOTS)).distance
+    near = apart[apart <= _GAP]
+    share = len(near) / len(apart)
+    gap = float(np.median(near)) if len(near) else 0.0
+    if share < _HELD or gap < _NO_GAP:
+        return ""
+    left = float(near.mean()) * share * surface.area
+    return (
+        f"; {gap * 1e3:.2f} mm of gap stay between it and the walls round {share:.0%} of its skin, "
+        f"about {volume_text(left)} that count as water"
     )
 
 

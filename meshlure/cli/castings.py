@@ -46,7 +46,8 @@ def _scale(found: Mapping[str, Any]) -> str:
     axes = found["scale_axes"]
     each = f"{found['scale']:.4f}" if max(axes) == min(axes) else ", ".join(f"{k:.4f}" for k in axes) + " along x, y, z"
     drawn, moulded = found["volume_drawn_mm3"] / 1e3, found["volume_moulded_mm3"] / 1e3
-    return f"{each} times the drawing: {drawn:.2f} cm3 drawn, {moulded:.2f} cm3 moulded"
+    cast = found["volume_cast_mm3"] / 1e3
+    return f"{each} times the drawing: {drawn:.2f} cm3 drawn, {moulded:.2f} cm3 moulded, {cast:.2f} cm3 cast"
 
 
 def _parting(found: Mapping[str, Any]) -> str:

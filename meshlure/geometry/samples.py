@@ -37,3 +37,24 @@ def spread(surface: Surface, spacing: float) -> Floats:
         middle = (start + end) / 2
         found.append(middle)
         corners = np.concatenate([np.stack([start, middle, other], axis=1), np.stack([middle, end, other], axis=1)])
+
+
+def scattered(surface: Surface, count: int) -> Floats:
+    """Return points drawn by lot from a surface, each area of it as likely as any other, (count, 3) array, m.
+
+    Parameters
+    ----------
+    surface : Surface
+    count : int
+
+    Notes
+    -----
+    The same surface gives the same points.
+    """
+    draw = np.random.default_rng(count)
+    areas = np.linalg.norm(surface.double_areas, axis=1)
+    corners = surface.corners[draw.choice(len(areas), count, p=areas / areas.sum())]
+    u, v = draw.random((2, count, 1))
+    beyond = u + v > 1
+    u, v = np.where(beyond, 1 - u, u), np.where(beyond, 1 - v, v)
+    return np.asarray(corners[:, 0] + u * (corners[:, 1] - corners[:, 0]) + v * (corners[:, 2] - corners[:, 0]))

@@ -216,6 +216,14 @@ def _keys(made: Mould, checked: Checked | None) -> list[Tree]:
     ]
 
 
+_STAGE: Tree = {
+    "what": "stage of the mesh",
+    "value": "as drawn, not scaled for shrinkage yet",
+    "source": "no mesh says it: where it was scaled in CAD, state shrinkages of 0 %",
+    "assumed": True,
+}
+
+
 def assumptions(made: Mould, rubber: Material) -> list[Tree]:
     """Return what a mould's numbers rest on that nobody stated.
 
@@ -235,10 +243,11 @@ def assumptions(made: Mould, rubber: Material) -> list[Tree]:
         "vents": ("vents", "at every high point of the cavity", usual),
         "board": ("boards of the mould", f"{section.board * MM:g} mm", usual),
     }
+    rows = [] if (made.plug.bench.scale.part == 1.0).all() else [_STAGE]
     left_out = {"sprue", "vents", "keys"} if made.sprue is None else set()
     if made.halves is None:
         left_out |= {"wall", "board"}
-    rows = [
+    rows += [
         {"what": what, "value": value, "source": source, "assumed": True}
         for key, (what, value, source) in told.items()
         if key in section.assumed and key not in left_out

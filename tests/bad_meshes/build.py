@@ -362,13 +362,100 @@ def bent_over() -> list[Face]:
     return faces
 
 
+def bait(body: str, *sections: str, density: str = "1.2 g/cm3", nose: str = "-x", back: str = "+z") -> str:
+    """Bait file of a body of this folder."""
+    head = f'name = "Quarry pond trial"\nlength_unit = "mm"\nnose = "{nose}"\nback = "{back}"'
+    stated = f'"{density}"' if " " in density else density
+    return "\n".join(["format = 1", "[bait]", head, "[body]", f'mesh = "{body}"', f"density = {stated}", *sections, ""])
+
+
+def insert(name: str, mesh: str, *keys: str) -> str:
+    return "\n".join(["[[insert]]", f'name = "{name}"', f'mesh = "{mesh}"', *keys])
+
+
+BOX, LEAD = "solid_but_binary.stl", 'material = "lead"'
+
+BAITS: dict[str, Callable[[], str]] = {
+    "read_in_mm.toml": lambda: bait("in_inches.stl"),
+    "weight_pokes_out.toml": lambda: bait(BOX, insert("tail weight", "weight_at_end.stl", LEAD)),
+    "weights_overlap.toml": lambda: bait(
+        BOX, insert("front weight", "weight.stl", LEAD), insert("rear weight", "weight_beside.stl", LEAD)
+    ),
+    "shrunk_twice.toml": lambda: bait(
+        BOX, '[mould]\nshrink = { print = "0.2 %", silicone = "0.3 %", resin = "0.4 %" }', density="1.1 g/cm3"
+    ),
+    "bare_density.toml": lambda: bait(BOX, density="0.75"),
+    "density_in_the_wrong_unit.toml": lambda: bait(BOX, density="0.75 kg/m3"),
+    "density_below_zero.toml": lambda: bait(BOX, density="-0.75 g/cm3"),
+    "slipped_digit.toml": lambda: bait(BOX, insert("lead weight", "weight.stl", 'density = "1134 kg/m3"')),
+    "pounds_per_cubic_inch.toml": lambda: bait(BOX, insert("lead weight", "weight.stl", 'density = "0.41 lb/in3"')),
+    "half_closed.toml": lambda: bait("half_closed.stl", density="0.6 g/cm3"),
+    "nose_across.toml": lambda: bait(BOX, nose="+z", back="+x"),
+    "upside_down.toml": lambda: bait("long_ball.stl", insert("keel", "keel.stl", LEAD), density="0.6 g/cm3", back="-z"),
+    "pocket_closed.toml": lambda: bait("cavity.stl", insert("weight", "weight_in_cavity.stl", LEAD)),
+    "pocket_open.toml": lambda: bait("trough.obj", insert("keel", "keel_in_trough.stl", LEAD), nose="+z", back="+y"),
+    "coarse.toml": lambda: bait("coarse.stl"),
+    "balls_as_mesh.toml": lambda: bait(
+        "rattle_body.stl",
+        insert("rattle chamber", "bore.stl", 'void = "sealed"'),
+        insert("rattle", "balls.stl", 'material = "bearing steel"'),
+    ),
+    "balls_stated.toml": lambda: bait(
+        "rattle_body.stl",
+        insert("rattle chamber", "bore.stl", 'void = "sealed"'),
+        '[[balls]]\nchamber = "rattle chamber"\ndiameter = "6 mm"\ncount = 1\nmaterial = "bearing steel"',
+    ),
+    "bare_ounces.toml": lambda: bait(
+        BOX, '[[hardware]]\nname = "front hook"\nmass = 0.5\nat = [10.0, 5.0, 0.0]\nhangs = true'
+    ),
+}
+"""Bait files of this folder: of the mistakes that are made in what is stated of a mesh, not in the mesh."""
+
+
+def half_spindle() -> list[Face]:
+    """Left half of an ellipsoid of half axes 30, 8 and 10 mm, closed by its middle plane."""
+    stretch = (30.0, 8.0, 10.0)
+    skin = [face for face in ball((0.0, 0.0, 0.0), 1.0, 3) if min(corner[1] for corner in face) >= 0]
+    made: list[Face] = []
+    for a, b, c in skin:
+        made.append((a, b, c))
+        for p, q in ((a, b), (b, c), (c, a)):
+            if p[1] == 0 and q[1] == 0:
+                made.append(((0.0, 0.0, 0.0), q, p))
+    return [stretched_face(face, stretch) for face in made]
+
+
+def stretched_face(face: Face, stretch: Point) -> Face:
+    a, b, c = ((x * stretch[0], y * stretch[1], z * stretch[2]) for x, y, z in face)
+    return a, b, c
+
+
+TROUGH = [(0.0, 0.0), (3.0, 0.0), (3.0, 6.0), (7.0, 6.0), (7.0, 0.0), (10.0, 0.0), (10.0, 16.0), (0.0, 16.0)]
+"""mm. A body's section with an open slot of 4 x 6 mm from below."""
+
+PIECES: dict[str, Callable[[], bytes | str]] = {
+    "weight.stl": lambda: binary(box((10.0, 3.0, 3.0), (5.0, 4.0, 4.0))),
+    "weight_beside.stl": lambda: binary(box((13.0, 3.0, 3.0), (5.0, 4.0, 4.0))),
+    "weight_at_end.stl": lambda: binary(box((35.0, 3.0, 3.0), (9.0, 4.0, 4.0))),
+    "weight_in_cavity.stl": lambda: binary(box((11.0, 3.5, 4.5), (18.0, 3.0, 7.0))),
+    "half_closed.stl": lambda: binary(half_spindle()),
+    "long_ball.stl": lambda: binary([stretched_face(f, (30.0, 9.0, 9.0)) for f in ball((0.0, 0.0, 0.0), 1.0, 3)]),
+    "keel.stl": lambda: binary(box((-5.0, -2.0, -8.0), (10.0, 4.0, 2.0))),
+    "trough.obj": lambda: prism(TROUGH, 40.0),
+    "keel_in_trough.stl": lambda: binary(box((3.25, 0.5, 5.0), (3.5, 5.25, 30.0))),
+    "rattle_body.stl": lambda: binary(box((-8.0, -6.0, -6.0), (36.0, 12.0, 12.0))),
+    "bore.stl": lambda: binary(box((-3.5, -3.5, -3.5), (23.0, 7.0, 7.0))),
+}
+"""Meshes that are sound by themselves, for these bait files."""
+
+
 def content(name: str) -> bytes:
-    made = FILES[name]()
+    made = (FILES | BAITS | PIECES)[name]()
     return made if isinstance(made, bytes) else made.encode("ascii")
 
 
 def main() -> None:
-    for name in FILES:
+    for name in FILES | BAITS | PIECES:
         (HERE / name).write_bytes(content(name))
 
 

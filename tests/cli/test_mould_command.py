@@ -43,7 +43,8 @@ def test_two_halves(bench: Bench) -> None:
     drawn = float(shapes.as_trimesh(BODY).volume) * 1e6
     assert ran.out.splitlines()[:2] == [
         "Alder pool minnow",
-        f"  scale    1.0091 times the drawing: {drawn:.2f} cm3 drawn, {drawn * 1.027412:.2f} cm3 moulded",
+        f"  scale    1.0091 times the drawing: {drawn:.2f} cm3 drawn, {drawn * 1.027412:.2f} cm3 moulded, "
+        f"{drawn:.2f} cm3 cast",
     ]
     assert "  pour     sprue of 6 mm at the tail, 0 vents, 4 keys\n" in ran.out
     assert "  parting  along [0, -1, 0] at 0.00 mm: " in ran.out

@@ -35,8 +35,8 @@ def codes(tree: Tree) -> dict[str, str]:
         ("cavity.stl", BOX - 640.0, {"several-shells": "note"}),
         # A box of 20 x 6 x 6 mm that lies half in the first one adds its other half.
         ("shells_overlapping.stl", BOX + 360.0, None),
-        # 216 mm2 by the shoelace formula, 10 mm high.
-        ("concave.obj", 2160.0, {}),
+        # 216 mm2 by the shoelace formula, 10 mm high; flat on one side alone, an L may be half a T.
+        ("concave.obj", 2160.0, {"half-body": "warning"}),
     ],
 )
 def test_the_volume_that_counts(bench: Bench, name: str, volume: float, found: dict[str, str] | None) -> None:

@@ -145,6 +145,17 @@ READ = {
     "crossing_itself.stl": (484, 484, None, []),
     "coarse.stl": (32, 32, None, []),
     "denormal.obj": (12, 12, BOX, []),
+    "weight.stl": (12, 12, 80.0, []),
+    "weight_beside.stl": (12, 12, 80.0, []),
+    "weight_at_end.stl": (12, 12, 144.0, []),
+    "weight_in_cavity.stl": (12, 12, 378.0, []),
+    "half_closed.stl": (256 + 32, 256 + 32, None, []),
+    "long_ball.stl": (512, 512, None, []),
+    "keel.stl": (12, 12, 80.0, []),
+    "trough.obj": (28, 28, 40.0 * (160.0 - 24.0), []),
+    "keel_in_trough.stl": (12, 12, 3.5 * 5.25 * 30.0, []),
+    "rattle_body.stl": (12, 12, 36.0 * 144.0, []),
+    "bore.stl": (12, 12, 23.0 * 49.0, []),
 }
 
 
@@ -155,14 +166,14 @@ def volume(mesh: MeshFile) -> float:
 
 
 def test_the_folder_is_what_its_script_makes() -> None:
-    made = {name: BUILD["content"](name) for name in BUILD["FILES"]}
+    made = {name: BUILD["content"](name) for name in BUILD["FILES"] | BUILD["PIECES"] | BUILD["BAITS"]}
     assert {
         path.name: path.read_bytes() for path in FOLDER.iterdir() if path.is_file() and path.name != "build.py"
     } == made
 
 
 def test_every_file_has_its_expectation() -> None:
-    assert set(BUILD["FILES"]) == set(REFUSED) | set(READ)
+    assert set(BUILD["FILES"] | BUILD["PIECES"]) == set(REFUSED) | set(READ)
 
 
 @pytest.mark.parametrize("name", REFUSED)
