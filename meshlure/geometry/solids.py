@@ -4,10 +4,12 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from functools import cached_property
 
 import manifold3d
 import numpy as np
 
+from meshlure import tolerances
 from meshlure.geometry.fans import parted
 from meshlure.geometry.shells import enclosed_volume
 from meshlure.geometry.surface import Floats, Ints, Surface
@@ -37,7 +39,9 @@ class Solid:
     Notes
     -----
     An invalid mesh gives the library an empty solid of no volume, and a legal empty result looks
-    the same, so the status is read after every step.
+    the same, so the status is read after every step. The books of every operation are kept: what two solids share and
+    what either has alone must add up to both, to a millionth of their volume and what the library's own rounding moves
+    over their skins. Else the operation raises a `SolidError` instead of an answer.
     """
 
     kernel: manifold3d.Manifold
@@ -76,10 +80,15 @@ class Solid:
             raise SolidError("the solid library does not take the mesh, or gives it another volume than it encloses")
         return solid
 
-    @property
+    @cached_property
     def volume(self) -> float:
         """Volume, m3."""
         return float(self.kernel.volume())
+
+    @property
+    def rounding(self) -> float:
+        """Volume, m3, that the library's own rounding may move over the skin."""
+        return 0.0 if self.empty else float(self.kernel.get_tolerance() * self.kernel.surface_area())
 
     @property
     def empty(self) -> bool:
@@ -87,18 +96,59 @@ class Solid:
         return bool(self.kernel.is_empty())
 
     def joined(self, *others: Solid) -> Solid:
-        """Return what lies in any of the solids."""
-        kernels = [self.kernel, *(other.kernel for other in others)]
-        return Solid(manifold3d.Manifold.batch_boolean(kernels, manifold3d.OpType.Add))
+        """Return what lies in any of the solids.
+
+        Raises
+        ------
+        SolidError
+            Volume was lost or won.
+        """
+        if not others:
+            return self
+        rest = others[0].joined(*others[1:])
+        made = Solid(self.kernel + rest.kernel)
+        _balance("joining two solids", made.volume + self._shared(rest), self, rest)
+        return made
 
     def less(self, *others: Solid) -> Solid:
-        """Return what lies in this solid and in none of the others."""
-        kernels = [self.kernel, *(other.kernel for other in others)]
-        return Solid(manifold3d.Manifold.batch_boolean(kernels, manifold3d.OpType.Subtract))
+        """Return what lies in this solid and in none of the others.
+
+        Raises
+        ------
+        SolidError
+            Volume was lost or won.
+        """
+        if not others:
+            return self
+        rest = others[0].joined(*others[1:])
+        made = Solid(self.kernel - rest.kernel)
+        _balance("cutting a solid", made.volume + self._shared(rest), self, moved=rest)
+        return made
 
     def met(self, other: Solid) -> Solid:
-        """Return what lies in both solids."""
-        return Solid(self.kernel ^ other.kernel)
+        """Return what lies in both solids.
+
+        Raises
+        ------
+        SolidError
+            Volume was lost or won.
+        """
+        # The smaller one is held against what is left of it, which takes less time.
+        few, many = sorted((self, other), key=lambda solid: int(solid.kernel.num_tri()))
+        inside, outside = map(Solid, few.kernel.split(many.kernel))
+        _balance("cutting what two solids share", inside.volume + outside.volume, few, moved=many)
+        return inside
+
+    def _shared(self, other: Solid) -> float:
+        """Volume, m3, that both solids hold."""
+        return Solid(self.kernel ^ other.kernel).volume if self._meets(other) else 0.0
+
+    def _meets(self, other: Solid) -> bool:
+        """Whether the bounds share space, or touch."""
+        if self.empty or other.empty:
+            return False
+        one, two = self.bounds, other.bounds
+        return bool((np.maximum(one[0], two[0]) <= np.minimum(one[1], two[1])).all())
 
     def parts(self) -> tuple[Solid, ...]:
         """Return the surfaces that do not touch each other; a cavity's has a negative volume."""
@@ -115,8 +165,9 @@ class Solid:
 
     def split(self, normal: Floats, height: float) -> tuple[Solid, Solid]:
         """Return what lies above the plane ``normal . x = height`` (m, a unit normal) and what lies below it."""
-        above, below = self.kernel.split_by_plane(tuple(normal), height)
-        return Solid(above), Solid(below)
+        above, below = map(Solid, self.kernel.split_by_plane(tuple(normal), height))
+        _balance("cutting a solid in two", above.volume + below.volume, self)
+        return above, below
 
     def shifted(self, shift: Floats) -> Solid:
         """Return the solid moved by (3,) m."""
@@ -178,6 +229,25 @@ class Solid:
         mesh = self.kernel.to_mesh64()
         starts: Ints = np.asarray(mesh.run_index, dtype=np.intp)
         return np.repeat(np.asarray(mesh.run_original_id, dtype=np.intp), (starts[1:] - starts[:-1]) // 3)
+
+
+def _balance(what: str, found: float, *solids: Solid, moved: Solid | None = None) -> None:
+    """Hold the volume that came out of an operation, m3, against what went in.
+
+    Raises
+    ------
+    SolidError
+    """
+    expected = sum(solid.volume for solid in solids)
+    off = found - expected
+    if abs(off) <= tolerances.VOLUME_SHARE * expected:
+        return
+    rounded = (*solids, moved) if moved is not None else solids
+    if not abs(off) <= tolerances.VOLUME_SHARE * expected + sum(solid.rounding for solid in rounded):
+        raise SolidError(
+            f"{what} changed their volume by {off * 1e9:.3g} mm3 of {expected * 1e9:.6g} mm3; "
+            "up to a millionth of it is rounding"
+        )
 
 
 def _taken(surface: Surface, tag: int) -> Solid | None:

@@ -175,3 +175,25 @@ def test_filled_of_nothing() -> None:
     for nothing in (filled([]), filled([np.array([[0.0, 0], [1, 1]])]), Filled(())):
         assert nothing.area == nothing.perimeter == 0
         assert nothing.centre == pytest.approx([0, 0])
+
+
+@pytest.mark.parametrize("act", ["joined", "less", "met", "split"])
+def test_books_that_do_not_balance_stop(act: str) -> None:
+    """A solid that claims a hundredth of a permille more than its mesh holds: what is made of it falls short."""
+    one, other = solid((2, 2, 2)), solid((2, 2, 2), (1, 0, 0))
+    one.__dict__["volume"] = 8 * (1 + 1e-5)
+    with pytest.raises(SolidError, match=r"changed their volume by .* mm3 of .* mm3"):
+        one.split(np.array([1.0, 0.0, 0.0]), 0.0) if act == "split" else getattr(one, act)(other)
+    if act != "split":
+        with pytest.raises(SolidError):
+            getattr(one, act)(solid((1, 1, 1), (9, 0, 0)))
+
+
+@pytest.mark.parametrize("off", [0.0, 1e-9, 1e-4])
+def test_solids_that_share_a_plane_keep_their_books(off: float) -> None:
+    """A box set in another's corner with three faces in its planes, off by nothing, a nanometre, a tenth of a mm."""
+    whole, tool = solid((0.04, 0.01, 0.016)), solid((0.01, 0.004, 0.004), (0.015 + off, 0.003 + off, 0.006 + off))
+    shared = np.prod(np.array([0.01, 0.004, 0.004]) - off)
+    assert whole.met(tool).volume == pytest.approx(shared, rel=1e-9)
+    assert whole.less(tool).volume == pytest.approx(6.4e-6 - shared, rel=1e-9)
+    assert whole.joined(tool).volume == pytest.approx(6.4e-6 + 0.16e-6 - shared, rel=1e-9)
