@@ -150,13 +150,13 @@ def draw_leaders(axes: Axes, paper: Layout) -> None:
     from matplotlib.patches import Rectangle
 
     low, high = paper.strip()
-    for mark in paper.placed:
+    for number, mark in enumerate(paper.placed):
         rail = high if mark.above else low
         turn = rail + SLANT if mark.above else rail - SLANT
         end = (mark.drop_x, float(paper.origin[1] + mark.named.y))
         segments = list(pairwise([(mark.text_x, turn), (mark.drop_x, rail), end]))
         strokes(axes, segments, "white", 1.6, 5.0)
-        strokes(axes, segments, ink.INK, 0.5, 5.1)
+        strokes(axes, segments, ink.INK, 0.5, 5.1, name=f"leader-{number}")
         dot: dict[str, Any] = {"color": ink.INK, "markeredgecolor": "white", "markeredgewidth": 0.3}
         axes.plot(*end, marker="o", markersize=2.0, zorder=5.2, **dot)
         depth, wide = LINE * len(mark.named.lines), mark.named.width + 1
@@ -165,7 +165,8 @@ def draw_leaders(axes: Axes, paper: Layout) -> None:
         axes.add_artist(Rectangle(corner, wide, depth, facecolor="white", linewidth=0, zorder=6))
         for row, line in enumerate(mark.named.lines):
             y = top - LINE * (row + 0.5)
-            axes.text(mark.text_x, y, line, fontsize=POINTS, ha="center", va="center_baseline", zorder=7)
+            look: dict[str, Any] = {"fontsize": POINTS, "ha": "center", "va": "center_baseline"}
+            axes.text(mark.text_x, y, line, zorder=7, gid=f"name-{number}-{row}", **look)
 
 
 def draw_marks(axes: Axes, paper: Layout) -> None:

@@ -45,9 +45,15 @@ def fill(axes: Axes, shape: Any, zorder: float, **look: Any) -> None:
 
 
 def strokes(
-    axes: Axes, segments: Sequence[Any], colour: str, weight: float, zorder: float, dash: str = "solid"
+    axes: Axes,
+    segments: Sequence[Any],
+    colour: str,
+    weight: float,
+    zorder: float,
+    dash: str = "solid",
+    name: str | None = None,
 ) -> None:
-    """Draw many straight strokes as one path, which keeps the page small."""
+    """Draw many straight strokes as one path, which keeps the page small; it may have a name in the SVG."""
     from matplotlib.patches import PathPatch
     from matplotlib.path import Path
 
@@ -62,6 +68,7 @@ def strokes(
             linestyle=dash,
             capstyle="butt",
             zorder=zorder,
+            gid=name,
         )
     )
 

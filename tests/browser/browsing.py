@@ -53,6 +53,10 @@ class Opened:
         """Wait until what is to be drawn has been drawn."""
         self.page.evaluate("() => new Promise(done => requestAnimationFrame(() => requestAnimationFrame(done)))")
 
+    def open_all(self) -> None:
+        """Open everything that is folded."""
+        self.page.evaluate("() => document.querySelectorAll('details').forEach(each => { each.open = true; })")
+
     def pixels(self, selector: str) -> bytes:
         """Return a part of the page as a PNG."""
         shot: bytes = self.page.locator(selector).screenshot()
@@ -73,6 +77,17 @@ def opened(started: Any, path: Path, width: int = 1440, before: str = "", **opti
     page.goto(path.as_uri())
     yield found
     context.close()
+
+
+def amiss(window: Opened, axe: Any) -> list[Any]:
+    """What axe-core finds amiss in a page with all of it open; for the last test of a window, which loses rows."""
+    window.open_all()
+    # A table's rows are all of one make: two of each stand for the rest.
+    window.page.evaluate(
+        "() => document.querySelectorAll('tbody').forEach(body => [...body.rows].slice(2).forEach(row => row.remove()))"
+    )
+    found = axe.run(window.page, options={"resultTypes": ["violations"]}).response
+    return [(v["id"], v["help"], [n["html"][:200] for n in v["nodes"]]) for v in found["violations"]]
 
 
 OVERLAPS = """() => {
@@ -132,4 +147,77 @@ OVERFLOWS = """() => {
     }
   }
   return found;
+}"""
+
+DRAWINGS = """() => {
+  // Every drawing's SVG laid out by the browser: words over words, leaders over words, leaders across leaders.
+  const found = [];
+  let leaders = 0, named = 0;
+  const apart = 0.15;  // px that edges may share by rounding
+  for (const image of document.querySelectorAll('#drawings .view img')) {
+    const bytes = Uint8Array.from(atob(image.src.split(',')[1]), letter => letter.charCodeAt(0));
+    const held = document.createElement('div');
+    held.style.cssText = 'position:absolute;left:0;top:0;width:2000px';
+    const tree = new DOMParser().parseFromString(new TextDecoder().decode(bytes), 'image/svg+xml');
+    held.append(document.importNode(tree.documentElement, true));
+    document.body.append(held);
+    const svg = held.firstElementChild, size = svg.viewBox.baseVal;
+    svg.setAttribute('width', size.width); svg.setAttribute('height', size.height);
+    const zero = svg.getBoundingClientRect();
+    const words = [...svg.querySelectorAll('g[id^=text_], g[id^=name-]')].map(each => {
+      const box = each.getBoundingClientRect();
+      return {id: each.id, left: box.left - zero.left, right: box.right - zero.left,
+              top: box.top - zero.top, bottom: box.bottom - zero.top};
+    }).filter(box => box.right > box.left);
+    const over = (a, b) => Math.min(a.right, b.right) - Math.max(a.left, b.left) > apart
+      && Math.min(a.bottom, b.bottom) - Math.max(a.top, b.top) > apart;
+    for (let i = 0; i < words.length; i++) {
+      const box = words[i];
+      if (box.left < 0 || box.top < 0 || box.right > size.width || box.bottom > size.height) {
+        found.push(`${image.alt.slice(0, 30)}: ${box.id} is cut`);
+      }
+      for (let j = i + 1; j < words.length; j++) {
+        if (over(box, words[j])) found.push(`${image.alt.slice(0, 30)}: ${box.id} over ${words[j].id}`);
+      }
+    }
+    const lines = [...svg.querySelectorAll('g[id^=leader-]')].map(each => {
+      const numbers = each.querySelector('path').getAttribute('d').match(/-?[\\d.]+(e-?\\d+)?/g).map(Number);
+      const points = [];
+      for (let k = 0; k < numbers.length; k += 2) points.push([numbers[k], numbers[k + 1]]);
+      const segments = [];
+      for (let k = 0; k < points.length; k += 2) segments.push([points[k], points[k + 1]]);
+      return {id: each.id, segments};
+    });
+    leaders += lines.length;
+    named += words.length;
+    const side = (a, b, p) => (b[0] - a[0]) * (p[1] - a[1]) - (b[1] - a[1]) * (p[0] - a[0]);
+    const parts = (a, b) => side(...a, b[0]) * side(...a, b[1]) < -1e-6;
+    const crosses = (a, b) => parts(a, b) && parts(b, a);
+    function hits(segment, box) {
+      // By halving: what of the segment lies within the box (Liang & Barsky 1984).
+      const [[x0, y0], [x1, y1]] = segment;
+      let first = 0, last = 1;
+      for (const [p, q] of [[x0 - x1, x0 - box.left], [x1 - x0, box.right - x0],
+                            [y0 - y1, y0 - box.top], [y1 - y0, box.bottom - y0]]) {
+        if (p === 0) { if (q < 0) return false; continue; }
+        if (p < 0) first = Math.max(first, q / p); else last = Math.min(last, q / p);
+      }
+      return (last - first) * Math.hypot(x1 - x0, y1 - y0) > apart;
+    }
+    lines.forEach((line, i) => {
+      const own = line.id.replace('leader', 'name') + '-';
+      for (const box of words) {
+        if (!box.id.startsWith(own) && line.segments.some(each => hits(each, box))) {
+          found.push(`${image.alt.slice(0, 30)}: ${line.id} over ${box.id}`);
+        }
+      }
+      for (const other of lines.slice(i + 1)) {
+        if (line.segments.some(a => other.segments.some(b => crosses(a, b)))) {
+          found.push(`${image.alt.slice(0, 30)}: ${line.id} across ${other.id}`);
+        }
+      }
+    });
+    held.remove();
+  }
+  return {found, leaders, words: named};
 }"""

@@ -6,6 +6,7 @@ print apart.
 
 from __future__ import annotations
 
+import base64
 import csv
 import functools
 from collections.abc import Callable, Iterator
@@ -13,11 +14,13 @@ from pathlib import Path
 from typing import Any
 
 import pytest
-from browsing import OVERFLOWS, OVERLAPS, Opened, browser, opened
+from browsing import DRAWINGS, OVERFLOWS, OVERLAPS, Opened, amiss, opened
+from invented_odd import crowded, stretched
 from pdfpages import pages
 from studied import SAMPLES, sample
 
 from meshlure.report.page import page
+from meshlure.results import Study
 
 WIDTHS = (360, 768, 1440)
 """Pixels: a phone, a tablet, a desk."""
@@ -26,12 +29,6 @@ SMALL = 480
 STAGE = "#turn .glass"
 MARGIN = (15.0, 14.0)
 """mm that the page's style leaves white at the sides and at head and foot of an A4 sheet."""
-
-
-@pytest.fixture(scope="module")
-def chromium() -> Iterator[Any]:
-    with browser() as started:
-        yield started
 
 
 @pytest.fixture(scope="module")
@@ -84,9 +81,28 @@ def test_tables_open(window: Opened) -> None:
 @pytest.mark.parametrize("width", WIDTHS)
 def test_no_words_lie_over_others_and_nothing_is_wider_than_its_place(window: Opened, width: int) -> None:
     window.wide(width)
-    open_all(window)
+    window.open_all()
     assert window.page.evaluate(OVERLAPS) == []
     assert window.page.evaluate(OVERFLOWS) == []
+
+
+def test_no_leader_meets_another_nor_any_words(window: Opened) -> None:
+    assert measured_drawings(window) > 9
+
+
+@pytest.mark.parametrize(
+    ("bait", "least"),
+    [
+        pytest.param(lambda: stretched((3.0, 0.35, 0.3)), 20, id="long and thin"),
+        pytest.param(lambda: stretched((0.35, 1.2, 2.6)), 20, id="short and deep"),
+        pytest.param(crowded, 60, id="crowded"),
+    ],
+)
+def test_leaders_of_odd_baits_keep_apart(chromium: Any, tmp_path: Path, bait: Callable[[], Study], least: int) -> None:
+    path = tmp_path / "report.html"
+    path.write_text(page(bait()), encoding="utf-8")
+    with opened(chromium, path) as found:
+        assert measured_drawings(found) >= least
 
 
 def test_its_print_cuts_no_figure(window: Opened) -> None:
@@ -104,16 +120,9 @@ def test_its_print_cuts_no_figure(window: Opened) -> None:
     assert figures >= 10
 
 
-def test_axe_finds_nothing_amiss(window: Opened) -> None:
-    axe = pytest.importorskip("axe_playwright_python.sync_playwright", reason="axe-playwright-python is not installed")
+def test_axe_finds_nothing_amiss(window: Opened, axe: Callable[[], Any]) -> None:
     window.wide(360)
-    open_all(window)
-    # A table's rows are all of one make: two of each stand for the rest. No test after this one needs them.
-    window.page.evaluate(
-        "() => document.querySelectorAll('tbody').forEach(body => [...body.rows].slice(2).forEach(row => row.remove()))"
-    )
-    found = axe.Axe().run(window.page, options={"resultTypes": ["violations"]}).response
-    assert [(v["id"], v["help"], [n["html"][:200] for n in v["nodes"]]) for v in found["violations"]] == []
+    assert amiss(window, axe()) == []
 
 
 @pytest.mark.parametrize(
@@ -165,24 +174,35 @@ def test_every_chart_has_numbers_to_save_without_script(
     name = "minnow/minnow.toml"
     tree = sample(name).results
     with opened(chromium, written(name), java_script_enabled=False, accept_downloads=True) as found:
-        found.page.locator("details:has(.save) > summary").evaluate_all("each => each.forEach(one => one.click())")
         links = found.page.locator(".save a")
-        kept: dict[str, list[dict[str, str]]] = {}
-        for number in range(links.count()):
-            with found.page.expect_download() as taken:
-                links.nth(number).click()
-            file = tmp_path / taken.value.suggested_filename
-            taken.value.save_as(file)
-            with file.open(encoding="utf-8-sig", newline="") as lines:
-                kept[file.name.removeprefix("quillmere-minnow-95-").removesuffix(".csv")] = list(csv.DictReader(lines))
+        kept = {
+            links.nth(number).get_attribute("download"): links.nth(number).get_attribute("href")
+            for number in range(links.count())
+        }
+        found.page.locator("details:has([download$='-stations.csv']) > summary").click()
+        with found.page.expect_download() as taken:
+            found.page.locator("[download$='-stations.csv']").click()
+        file = tmp_path / taken.value.suggested_filename
+        taken.value.save_as(file)
+    assert file.name == "quillmere-minnow-95-stations.csv"
+    assert base64.b64decode(kept[file.name].partition(",")[2]) == file.read_bytes()
+    with file.open(encoding="utf-8-sig", newline="") as lines:
+        rows = list(csv.DictReader(lines))
+    for key, values in tree["stations"].items():
+        assert [float(row[key]) for row in rows] == values
     charts = {"buoyancy", "waters", "righting-sideways", "righting-fore-aft", "stations", "rose", "parts", "moments",
-              "paths", "launch", "published-drag-coefficients"}  # fmt: skip
-    assert charts <= set(kept)
-    stations = tree["stations"]
-    assert [float(row["area_mm2"]) for row in kept["stations"]] == stations["area_mm2"]
-    assert [float(row["reserve_g"]) for row in kept["waters"]] == [row["reserve_g"] for row in tree["waters"]]
-    assert [float(row["y_m"]) for row in kept["paths"]] == [y for path in tree["flight"]["paths"] for y in path["y_m"]]
-    assert all(rows for rows in kept.values())
+              "paths", "launch"}  # fmt: skip
+    assert {f"quillmere-minnow-95-{chart}.csv" for chart in charts} <= set(kept)
+    assert "published-drag-coefficients.csv" in kept
+
+
+def measured_drawings(window: Opened) -> int:
+    """How many leaders the drawings have, none of which meets another nor any words but its own."""
+    measured = window.page.evaluate(DRAWINGS)
+    assert measured["found"] == []
+    assert measured["words"] > measured["leaders"]
+    count: int = measured["leaders"]
+    return count
 
 
 def signs(window: Opened) -> str:
@@ -190,7 +210,3 @@ def signs(window: Opened) -> str:
     window.rest()
     shown: str = window.page.evaluate(f"() => document.querySelector('{STAGE} canvas.marks').toDataURL()")
     return shown
-
-
-def open_all(window: Opened) -> None:
-    window.page.evaluate("() => document.querySelectorAll('details').forEach(each => { each.open = true; })")
