@@ -177,8 +177,9 @@ class _Walk:
         attributes = said.get("attributes")
         if not isinstance(attributes, dict) or "POSITION" not in attributes:
             return none
-        points = np.asarray(glb.accessor(attributes["POSITION"], 3), dtype=np.float64)
-        order = glb.accessor(said["indices"], 1)[:, 0].astype(np.intp) if "indices" in said else np.arange(len(points))
+        with np.errstate(invalid="ignore"):  # a signalling "not a number", which is refused later
+            points = np.asarray(glb.accessor(attributes["POSITION"], 3), dtype=np.float64)
+        order = np.arange(len(points)) if "indices" not in said else glb.whole_numbers(said["indices"])
         if len(order) and (order.min() < 0 or order.max() >= len(points)):
             raise glb.fault("a face names a vertex that is not there", f"{order.max()}", f"0 to {len(points) - 1}")
         faces = _faces(order, mode)

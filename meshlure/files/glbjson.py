@@ -120,12 +120,28 @@ class Glb:
             return np.asarray(np.maximum(values / np.iinfo(kind).max, -1.0))
         return values
 
+    def whole_numbers(self, number: object) -> NDArray[np.intp]:
+        """(n,) array of an accessor that numbers something.
+
+        Raises
+        ------
+        InputError
+            As `accessor`, or its numbers are no whole ones.
+        """
+        values = self.accessor(number, 1)[:, 0]
+        if values.dtype.kind not in "iu":
+            raise self.fault("a table of the GLB is of another kind than its use", "fractions", "whole numbers")
+        return values.astype(np.intp)
+
     def _sparse(self, values: NDArray[Any], said: Tree, kind: np.dtype[Any], width: int) -> NDArray[Any]:
         count = self._whole(said, "count")
         where, what = said.get("indices"), said.get("values")
         if not isinstance(where, dict) or not isinstance(what, dict):
             raise self.fault("a sparse table of the GLB cannot be read", "no indices or no values")
-        places = self._table(where, np.dtype(self._known(where, "componentType")), count, 1)[:, 0].astype(np.intp)
+        stored = np.dtype(self._known(where, "componentType"))
+        if stored.kind not in "iu":
+            raise self.fault("a table of the GLB is of another kind than its use", "fractions", "whole numbers")
+        places = self._table(where, stored, count, 1)[:, 0].astype(np.intp)
         if len(places) and not 0 <= int(places.min()) <= int(places.max()) < len(values):
             raise self.fault("a sparse table of the GLB names a row that is not there", str(places.max()))
         values = values.copy()

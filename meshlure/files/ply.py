@@ -120,7 +120,8 @@ class _Bytes:
         self._needs(element, element.count * kind.itemsize)
         rows = np.frombuffer(self._data, dtype=kind, count=element.count, offset=self._at)
         self._at += element.count * kind.itemsize
-        return np.stack([rows[f"p{names.index(axis)}"].astype(np.float64) for axis in "xyz"], axis=1)
+        with np.errstate(invalid="ignore"):  # a signalling "not a number", which is refused later
+            return np.stack([rows[f"p{names.index(axis)}"].astype(np.float64) for axis in "xyz"], axis=1)
 
     def _polygons(self, element: Element) -> Polygons:
         """Corners of the faces; where all have as many, they are rows of one size."""

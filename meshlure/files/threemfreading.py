@@ -14,7 +14,7 @@ from meshlure.errors import Fault, InputError
 from meshlure.files.package import Package, resolved
 from meshlure.files.several import several, too_many
 from meshlure.files.threemf import MODEL
-from meshlure.files.threemfxml import Model, Placed, Stored, read_model
+from meshlure.files.threemfxml import Model, Placed, Stored, parse, read_model
 from meshlure.files.triangles import Part, Triangles, in_metres
 from meshlure.findings import Finding, Level
 from meshlure.geometry.surface import Floats
@@ -120,13 +120,7 @@ def _root(package: Package, where: str) -> str:
     parser = expat.ParserCreate(namespace_separator=" ")
     parser.StartElementHandler = started
     parser.StartDoctypeDeclHandler = refuse
-    try:
-        parser.Parse(package.read(_RELATIONS), True)
-    except expat.ExpatError as error:
-        found = expat.ErrorString(error.code)
-        raise InputError(
-            Fault("the package's relations are no sound XML", where, found, next_step="export the part again")
-        ) from None
+    parse(parser, package.read(_RELATIONS), where, "the package's relations are")
     if not targets:
         raise InputError(
             Fault(

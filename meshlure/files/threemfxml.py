@@ -116,30 +116,50 @@ def read_model(data: bytes, where: str) -> Model:
         line = data.count(b"\n", 0, grouped.start()) + 1
         found = grouped[0].strip().decode("ascii", "replace")
         raise InputError(Fault("a number cannot be read", f"{where}, line {line}", found, "digits", "export it again"))
-    ends = np.flatnonzero(np.frombuffer(data, dtype=np.uint8) == ord(">"))
-    longest = int(np.diff(ends, prepend=0, append=len(data)).max(initial=0))
-    if longest > _LONGEST:
-        raise InputError(
-            Fault(
-                "a piece of the model's XML has no end", where, f"{longest:,} bytes", f"{_LONGEST:,}", "export it again"
-            )
-        )
     reader = _Reader(where)
     parser = expat.ParserCreate(namespace_separator=" ")
     parser.buffer_text = True
     reader.follow(parser)
+    parse(parser, data, where, "the model is")
+    return reader.model
+
+
+def parse(parser: expat.XMLParserType, data: bytes, where: str, what: str) -> None:
+    """Have a parser take all of a part's XML.
+
+    Parameters
+    ----------
+    parser : expat parser
+        With its handlers.
+    data : bytes
+    where : str
+        For messages, which begin with ``what``.
+    what : str
+        "the model is".
+
+    Raises
+    ------
+    InputError
+        It is no sound XML, in an encoding that is not read, or has a tag that is too long.
+    """
+    ends = np.flatnonzero(np.frombuffer(data, dtype=np.uint8) == ord(">"))
+    longest = int(np.diff(ends, prepend=0, append=len(data)).max(initial=0))
+    if longest > _LONGEST:
+        raise InputError(
+            Fault(f"{what} no sound XML", where, f"a tag of {longest:,} bytes", f"{_LONGEST:,}", "export it again")
+        )
     try:
         parser.Parse(data, True)
     except expat.ExpatError as error:
+        found, line = expat.ErrorString(error.code), f"{where}, line {error.lineno}"
+        raise InputError(Fault(f"{what} no sound XML", line, found, next_step="export the part again")) from None
+    except (LookupError, ValueError) as error:
+        # Of an encoding that Python does not know, or that the parser cannot take letter by letter.
+        shown = "".join(c if c.isprintable() else " " for c in str(error))[:80]
+        step = "export the part again"
         raise InputError(
-            Fault(
-                "the model is no sound XML",
-                f"{where}, line {error.lineno}",
-                expat.ErrorString(error.code),
-                next_step="export the part again",
-            )
+            Fault(f"{what} in an encoding that is not read", where, shown, "UTF-8 or UTF-16", step)
         ) from None
-    return reader.model
 
 
 class _Reader:

@@ -220,13 +220,21 @@ def _angles_round_edges(surface: Surface, number: Ints32, is_back: NDArray[np.bo
     source, target, apex = (surface.vertices[surface.faces[face, (slot + i) % 3]] for i in range(3))
     origin = np.where(is_back[:, None], target, source)
     along = np.where(is_back[:, None], source - target, target - source)
-    along /= np.linalg.norm(along, axis=1)[:, None]
+    along = _unit(along)
     # Any direction square to the edge will do, as long as all faces of one edge count from the same.
     zero = np.cross(along, np.eye(3)[np.abs(along).argmin(axis=1)])
     quarter = np.cross(along, zero)
-    arm = apex - origin
+    arm = _unit(apex - origin)
     angles: Floats = np.arctan2((arm * quarter).sum(axis=1), (arm * zero).sum(axis=1))
     return angles
+
+
+def _unit(ways: Floats) -> Floats:
+    """(k, 3) array, each row of length 1; one without any length stays so, and whatever angle it has will do."""
+    # Scaled before it is squared: the square of a length such as 1e-200 is nothing.
+    reach = np.abs(ways).max(axis=1, keepdims=True)
+    scaled = ways / np.where(reach > 0, reach, 1.0)
+    return np.asarray(scaled / np.maximum(np.linalg.norm(scaled, axis=1, keepdims=True), 1.0))
 
 
 def _next_in_group(size: NDArray[np.intp]) -> NDArray[np.intp]:

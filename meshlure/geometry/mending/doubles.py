@@ -79,6 +79,8 @@ def without_needles(surface: Surface) -> Step | None:
     touched: set[int] = set()
     turned, dropped = [], []
     for face in thin.tolist():
+        if face in touched:
+            continue  # it is another face by now
         corners = surface.corners[face]
         side = int(np.linalg.norm(np.roll(corners, -1, axis=0) - corners, axis=1).argmax())
         a, b, c = (int(v) for v in np.roll(faces[face], -side))
@@ -89,20 +91,23 @@ def without_needles(surface: Surface) -> Step | None:
                 gone[face] = True
                 dropped.append(face)
             continue
+        if other in touched:
+            continue
         (d,) = set(faces[other].tolist()) - {a, b} or {c}
         new = (min(c, d), max(c, d))
-        if c == d or new in ends or {face, other} & touched:
+        if c == d or new in ends:
             continue
         faces[face], faces[other] = (b, c, d), (c, a, d)
         ends.add(new)
         touched |= {face, other}
         turned.append(face)
     done = [*turned, *dropped]
-    if not done:
+    made = Surface(surface.vertices, faces[~gone])
+    # Where nothing but needles lie about an edge, turning it only makes others of them, and then these again.
+    if not done or len(without_area(made, measures(made)[1])) >= len(thin):
         return None
     middles = surface.corners[done].mean(axis=1)
     did = f"took away {counted(len(done), 'face')} without area, at {places_text(middles)}"
-    made = Surface(surface.vertices, faces[~gone])
     return Step("zero-area", did, made, len(done), 0.0, places(middles))
 
 
