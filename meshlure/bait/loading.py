@@ -206,7 +206,7 @@ def _pieces(plan: BaitFile, files: Mapping[str, MeshFile], made: _Lookup) -> tup
     outers = [outer]
     made_of, how = made.body, None
     if plan.body.printed is not None and made.solid is not None:
-        how = printed(made.solid, plan.body.printed, outer.outer, outer.cavities)
+        how = printed(made.solid, plan.body.printed, outer.outer)
         made_of = as_drawn(how, outer.outer, outer.cavities)
     pieces = [
         MeshPiece(

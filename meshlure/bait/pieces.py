@@ -91,7 +91,7 @@ class Print:
     infill : float
         Share of what lies deeper that is solid.
     core : tuple of Surface
-        What lies deeper, as drawn: without regard to inserts; empty where the walls meet.
+        What lies deeper under the skin, without regard to inserts and hollows; empty where the walls meet.
     """
 
     solid: Substance

@@ -15,22 +15,32 @@ from meshlure.findings import Finding, Level
 from meshlure.geometry.inset import inset
 from meshlure.geometry.moments import NOTHING, Moments, solid_moments
 from meshlure.geometry.solids import Solid
-from meshlure.geometry.surface import Surface, together
+from meshlure.geometry.surface import Surface
+from meshlure.geometry.vicinity import vicinity
 
 
 @dataclass(frozen=True, eq=False)
 class Core:
-    """What lies deeper than the wall of a printed body, inserts and hollows left out.
+    """What lies deeper than the walls of a printed body: those of its skin and those round its pockets.
 
     Attributes
     ----------
     volume : Moments, m3
+    area : float, m2
+        Of its skin.
     infill : float
         Share of it that is solid.
     """
 
     volume: Moments
+    area: float
     infill: float
+
+    @classmethod
+    def of(cls, parts: Sequence[Surface], infill: float) -> Core:
+        """Return the core that consists of some closed parts."""
+        volume = sum((solid_moments(part) for part in parts), NOTHING)
+        return cls(volume, sum(part.area for part in parts), infill)
 
     @property
     def air(self) -> Moments:
@@ -71,20 +81,17 @@ def solid_print(material: Substance, stated: Printed) -> Substance:
     )
 
 
-def printed(solid: Substance, stated: Printed, skin: Surface, cavities: Sequence[Surface]) -> Print:
-    """Return how a body is printed: its wall set off inwards from its skin and from its own cavities.
+def printed(solid: Substance, stated: Printed, skin: Surface) -> Print:
+    """Return how a body is printed: its wall set off inwards from its skin.
 
     Parameters
     ----------
     solid : Substance
     stated : Printed
     skin : Surface
-        Outward, without cavities.
-    cavities : sequence of Surface
-        Each outward.
+        Outward, without cavities: these count with the hollows, see `core_left`.
     """
-    walls = together(skin, *(cavity.turned() for cavity in cavities)) if cavities else skin
-    return Print(solid, stated.wall, stated.infill, inset(walls, stated.wall))
+    return Print(solid, stated.wall, stated.infill, inset(skin, stated.wall))
 
 
 def as_printed(whole: Moments, core: Moments, made: Print) -> Moments:
@@ -113,25 +120,29 @@ def substance_of(made: Print, mass: float, volume: float) -> Substance:
 def as_drawn(made: Print, skin: Surface, cavities: Sequence[Surface]) -> Substance:
     """Return the substance of a printed body as drawn, before inserts take their room."""
     whole = sum((solid_moments(cavity) * -1.0 for cavity in cavities), solid_moments(skin))
-    core = sum((solid_moments(part) for part in made.core), NOTHING)
-    return substance_of(made, as_printed(whole, core, made).amount, whole.amount)
+    hollow = Solid.of(cavities[0]).joined(*map(Solid.of, cavities[1:])) if cavities else None
+    return substance_of(made, as_printed(whole, core_left(made, hollow).volume, made).amount, whole.amount)
 
 
 def core_left(made: Print, taken: Solid | None) -> Core:
-    """Return what of the core is left once inserts and hollows have taken their room.
+    """Return the core of a printed body with the pockets of its inserts and hollows in it.
+
+    Parameters
+    ----------
+    made : Print
+    taken : Solid or None
+        All that takes room in the body; None where nothing does.
 
     Notes
     -----
-    An insert takes from the wall where it lies in the wall and from the core where it lies in the core; no wall is
-    counted round its pocket.
+    A slicer puts the same wall round a pocket as on the skin, so the core lies farther than the wall from both. What
+    the pockets and their walls take from it is summed on a grid, see `geometry.vicinity.vicinity`.
     """
-    if taken is None or not made.core:
-        return Core(sum((solid_moments(part) for part in made.core), NOTHING), made.infill)
-    left = NOTHING
-    for part in made.core:
-        solid = Solid.of(part).less(taken)
-        left = left if solid.empty else left + solid_moments(solid.surface())
-    return Core(left, made.infill)
+    whole = Core.of(made.core, made.infill)
+    if taken is None or taken.empty or not made.core:
+        return whole
+    lost = vicinity(made.core, taken.surface(), made.wall)
+    return Core(whole.volume - lost.volume, whole.area - lost.covered + lost.face, made.infill)
 
 
 def print_findings(body: MeshPiece, core: Core, water: float) -> list[Finding]:

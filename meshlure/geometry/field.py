@@ -131,11 +131,22 @@ def filled(surfaces: Surface | Sequence[Surface], pitch: float) -> tuple[Floats,
         raise ValueError(f"a pitch of {pitch} m suits no body that reaches from {low} to {high} m")
     shape = np.ceil((high - low) / pitch).astype(np.intp) + _BORDER
     origin = (low + high) / 2 - (shape - 1) * (pitch / 2)
-    return origin, _inside(some, origin, pitch, shape)
+    return origin, occupied(some, origin, pitch, shape)
 
 
-def _inside(surfaces: Sequence[Surface], origin: Floats, pitch: float, shape: Ints) -> Bools:
-    """Voxels whose middles are wound round more than zero times, (i, j, k) array."""
+def occupied(surfaces: Sequence[Surface], origin: Floats, pitch: float, shape: Ints) -> Bools:
+    """Return which voxels of a grid have their middle inside closed surfaces, (i, j, k) array.
+
+    Parameters
+    ----------
+    surfaces : sequence of Surface
+        As in `Field.of`; the grid holds them all.
+    origin : (3,) array, m
+        Middle of the first voxel.
+    pitch : float, m
+    shape : (3,) array of int
+        Voxels along x, y, z.
+    """
     # Columns along the longest side are the fewest.
     along = int(np.argmax(shape))
     order = ((along + 2) % 3, (along + 1) % 3, along)

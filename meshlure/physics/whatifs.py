@@ -90,7 +90,7 @@ def whatifs(
     body = next(part for part in parts if part.role is Role.BODY)
     at = bait.water.density
     return (
-        *_grown(bait, parts, body, skin, at),
+        *_grown(bait, parts, body, skin, core, at),
         *_hooks(bait, dry, at),
         *_waters(bait),
         *_coat(bait, skin, at),
@@ -102,7 +102,9 @@ def whatifs(
     )
 
 
-def _grown(bait: Bait, parts: Sequence[Part], body: Part, skin: Layers, at: float) -> Iterator[Whatif]:
+def _grown(
+    bait: Bait, parts: Sequence[Part], body: Part, skin: Layers, core: Core | None, at: float
+) -> Iterator[Whatif]:
     """The bait a percent larger and a layer thicker: of its material, and at the mass that was weighed.
 
     Solid inserts stay as large as they are, so the body's material grows by a share of all that its skin holds; what
@@ -118,8 +120,8 @@ def _grown(bait: Bait, parts: Sequence[Part], body: Part, skin: Layers, at: floa
         # The skin that the coat lies on grows by the square of the scale.
         mass = mass + four(coat.mass) * (k**2 - 1)
         volume, wet = (layer * bait.coat.thickness * (k**2 - k**3) for layer in (skin.whole, skin.wet))
-    if bait.body.printed is not None:
-        mass = mass - _thinner(bait.body.printed, k)
+    if bait.body.printed is not None and core is not None:
+        mass = mass - _thinner(bait.body.printed, core, k)
     grown = "size of body and seats, inserts and hooks as they are"
     yield Whatif(grown, "+1 %", still, Changes.one(at, mass, volume, wet, k))
     yield Whatif("the same, at the mass as it is", "+1 %", still, Changes.one(at, np.zeros(4), volume, wet, k))
@@ -130,13 +132,10 @@ def _grown(bait: Bait, parts: Sequence[Part], body: Part, skin: Layers, at: floa
     yield Whatif("the same, at the mass as it is", "+0.1 mm", still, Changes.one(at, np.zeros(4), layer, under))
 
 
-def _thinner(made: Print, scale: float) -> Floats:
-    """What a printed body's wall, which stays as thick, weighs less than a wall that grows with the body."""
-    lost = np.zeros(4)
-    for part in made.core:
-        strip = part.area * made.wall * (scale - 1) * made.solid.density * (1 - made.infill)
-        lost = lost + load(strip, solid_moments(part).centre)
-    return lost
+def _thinner(made: Print, core: Core, scale: float) -> Floats:
+    """What a printed body's walls, which stay as thick, weigh less than walls that grow with the body."""
+    strip = core.area * made.wall * (scale - 1) * made.solid.density * (1 - made.infill)
+    return load(strip, core.volume.centre)
 
 
 def _hooks(bait: Bait, dry: Sequence[str], at: float) -> Iterator[Whatif]:

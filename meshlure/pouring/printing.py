@@ -15,6 +15,7 @@ from meshlure.bait.printed import Core, core_left, printed
 from meshlure.findings import Finding, Level
 from meshlure.geometry.clusters import coarse, matched
 from meshlure.geometry.moments import solid_moments
+from meshlure.geometry.solids import Solid
 from meshlure.pouring.bench import Bench, Outcome
 from meshlure.results import pour as tree
 from meshlure.results import prints
@@ -113,47 +114,40 @@ def _cores(bench: Bench, walls: Sequence[float]) -> list[float]:
     -----
     What lies deeper than a wall is set off truly for the wall stated, and on a coarse copy for the thickest one; at no
     wall it is the whole. Between them it is the cubic that has there these values and, for slopes, minus the areas of
-    what is left: exact where the skin is convex and the wall thinner than it curves (Steiner's formula), or flat.
+    what is left: exact where the skin is convex and the wall thinner than it curves (Steiner's formula), or flat, and
+    the walls round pockets meet no others.
     """
-    body, composition = bench.bait.body, bench.vessel.composition
-    made, core = body.printed, composition.core
-    assert made is not None
+    core = bench.vessel.composition.core
+    made = bench.bait.body.printed
     assert core is not None
-    taken = room_taken(bench.bait)
-    thick = _thickest(bench, max(walls))
-    if not thick.core:
+    assert made is not None
+    room = room_taken(bench.bait)
+
+    def within(wall: float) -> Core:
+        return core if wall == made.wall else core_left(_walled(bench, wall), room)
+
+    thick = within(max(walls))
+    if not thick.volume.amount:
         # A bait that the thickest wall fills is small: every wall is set off on its own.
-        return [
-            core.volume.amount if wall == made.wall else core_left(_thickest(bench, wall), taken).volume.amount
-            for wall in walls
-        ]
-    whole = solid_moments(body.surface).amount - sum(solid_moments(cavity).amount for cavity in body.cavities)
-    area = body.surface.area + sum(cavity.area for cavity in body.cavities)
-    known = {0.0: (whole, area, bench.body.volume), made.wall: (*_drawn(made), core.volume.amount)}
-    known[thick.wall] = (*_drawn(thick), core_left(thick, taken).volume.amount)
+        return [within(wall).volume.amount for wall in walls]
+    whole = Solid.of(bench.bait.body.surface)
+    area = (whole if room is None else whole.less(room)).surface().area
+    known = {0.0: (bench.body.volume, area)}
+    known |= {wall: (of.volume.amount, of.area) for wall, of in ((made.wall, core), (max(walls), thick))}
     ends = sorted(known)
     drawn = CubicHermiteSpline(ends, [known[t][0] for t in ends], [-known[t][1] for t in ends])
-    # What inserts take from it changes little, and is drawn as a line between.
-    lost = np.interp(walls, ends, [known[t][0] - known[t][2] for t in ends])
-    return [float(max(volume, 0.0)) for volume in drawn(np.array(walls)) - lost]
+    return [float(max(volume, 0.0)) for volume in drawn(np.array(walls))]
 
 
-def _drawn(made: Print) -> tuple[float, float]:
-    """Volume and area of a core as drawn, m3 and m2."""
-    return sum(solid_moments(part).amount for part in made.core), sum(part.area for part in made.core)
-
-
-def _thickest(bench: Bench, wall: float) -> Print:
+def _walled(bench: Bench, wall: float) -> Print:
     """The body with another wall, set off on a coarse copy of it."""
     body, stated = bench.bait.body, bench.bait.plan.body.printed
     made = body.printed
     assert made is not None
     assert stated is not None
-    if wall == made.wall:
-        return made
     whole = solid_moments(body.surface)
     copy = matched(coarse(body.surface, COPY), whole.amount, whole.centre)
-    return printed(made.solid, replace(stated, wall=wall), copy, body.cavities)
+    return printed(made.solid, replace(stated, wall=wall), copy)
 
 
 def _flooded(bench: Bench, core: Core) -> Outcome:
