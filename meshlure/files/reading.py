@@ -13,12 +13,13 @@ from typing import Final
 import numpy as np
 
 from meshlure.errors import Fault, InputError
-from meshlure.files.formats import ELSEWHERE, FORMATS, Format
+from meshlure.files.formats import ELSEWHERE, FORMATS, METRES, Format
 from meshlure.files.glb import read_glb
 from meshlure.files.nearness import did_you_mean
 from meshlure.files.obj import read_obj
 from meshlure.files.off import read_off
 from meshlure.files.ply import read_ply
+from meshlure.files.resolution import resolution_findings
 from meshlure.files.source import ALL, LARGEST, read_source
 from meshlure.files.step import read_step
 from meshlure.files.stl import read_stl
@@ -193,6 +194,7 @@ def _mesh(
     if welded.collapsed:
         message = f"Left out: {welded.collapsed} of {len(loose.corners)} triangles, with corners at one point."
         findings.append(Finding("collapsed-triangles", Level.NOTE, message, count=welded.collapsed))
+    findings += resolution_findings(welded.surface, METRES[loose.unit or unit or "m"])
     named = tuple(dataclasses.replace(finding, piece=piece) for finding in findings)
     return MeshFile(
         path=path,

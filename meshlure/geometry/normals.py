@@ -82,7 +82,9 @@ def facets(surface: Surface) -> Facets:
     normals, weights, areas = np.empty((3, count)), np.empty((3, count)), np.empty(count)
     thin = np.empty(count, dtype=np.bool_)
     vertices = np.ascontiguousarray(surface.vertices.T)
-    step = RESOLVED * float(np.abs(vertices).max(initial=0.0))
+    # A body that stands far off its origin is not thin for it: other formats than STL keep its digits.
+    reach = float(np.ptp(vertices, axis=1).max()) if vertices.size else 0.0
+    step = RESOLVED * min(float(np.abs(vertices).max(initial=0.0)), 10 * reach)
     for at in range(0, count, _CHUNK):
         piece = slice(at, at + _CHUNK)
         a, b, c = (vertices[:, corner] for corner in surface.faces[piece].T)

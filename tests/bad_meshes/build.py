@@ -260,6 +260,8 @@ FILES: dict[str, Callable[[], bytes | str]] = {
     "crossing_itself.stl": lambda: binary(bent_over()),
     "coarse.stl": lambda: binary(ball((0.0, 0.0, 0.0), 20.0, 1)),
     "denormal.obj": lambda: edited(box_obj(), 1, "v 0 0 5e-324"),
+    "far_off.stl": lambda: binary(ball((1e6, 0.0, 0.0), 10.0)),
+    "far_off_rounded.obj": lambda: box_obj().replace("v 40 ", "v 1000040 ").replace("v 0 ", "v 1000000 "),
     # Numbers beyond what a bait can be
     "far_out.stl": lambda: binary(with_corner(box(), 4, (1e30, 0.0, 0.0))),
     "far_out.obj": lambda: edited(box_obj(), 3, "v 0 1e300 0"),

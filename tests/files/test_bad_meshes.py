@@ -145,6 +145,9 @@ READ = {
     "crossing_itself.stl": (484, 484, None, []),
     "coarse.stl": (32, 32, None, []),
     "denormal.obj": (12, 12, BOX, []),
+    "far_off.stl": (128, 128, None, ["far-from-origin"]),
+    # A power of ten may well be what was drawn; it is asked all the same.
+    "far_off_rounded.obj": (12, 12, BOX, ["far-from-origin"]),
     "weight.stl": (12, 12, 80.0, []),
     "weight_beside.stl": (12, 12, 80.0, []),
     "weight_at_end.stl": (12, 12, 144.0, []),
