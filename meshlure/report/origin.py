@@ -11,6 +11,9 @@ from meshlure.report.wording import MINUS, fixed, point
 
 Results = Mapping[str, Any]
 LEVELS = ("fault", "warning", "note")
+USUAL = ("sticks-out",)
+MANY = 2
+"""Warnings of a usual kind from which on the first screen tells them as one."""
 PLACES = 3
 """Places of one finding that are written out."""
 
@@ -47,6 +50,18 @@ def findings(results: Results) -> list[Found]:
             )
         )
     return sorted(rows, key=lambda found: LEVELS.index(found.level) if found.level in LEVELS else len(LEVELS))
+
+
+def gathered(found: list[Found]) -> list[Found]:
+    """Return findings for the first screen: those of one usual kind as one, which have their places further down."""
+    usual = [f for f in found if f.code in USUAL and f.level == "warning"]
+    if len(usual) < MANY:
+        return found
+    words = (
+        "stick out of the body and displace water there, as eyes and hangers should; each with its place under Findings"
+    )
+    one = Found("warning", usual[0].code, ", ".join(f.piece for f in usual), words, "", "")
+    return [f for f in found if f not in usual] + [one]
 
 
 def unsigned(text: str) -> str:

@@ -151,7 +151,7 @@ def _verdict(results: Mapping[str, Any]) -> Verdict:
         touchy=tuple(turns),
         counted=origin.counted(findings),
         faults=tuple(f for f in findings if f.level == "fault"),
-        warnings=tuple(f for f in findings if f.level == "warning"),
+        warnings=tuple(f for f in origin.gathered(findings) if f.level == "warning"),
         posture_band=budget.posture_band(results),
         passing=budget.passing(results),
     )
