@@ -71,7 +71,8 @@ def test_stdout_on_a_full_disk(bench: Bench) -> None:
 
 
 @pytest.mark.skipif(sys.platform == "win32", reason="sends a POSIX signal")
-def test_ctrl_c_leaves_nothing(bench: Bench) -> None:
+@pytest.mark.parametrize("number", [signal.SIGINT, signal.SIGTERM], ids=["Ctrl-C", "asked to end"])
+def test_stopped_it_leaves_nothing(bench: Bench, number: signal.Signals) -> None:
     before = bench.contents()
     staging = bench.folder / "new"
     words = ["report", "body.stl", *QUICK, "--out", "new/out"]
@@ -84,12 +85,12 @@ def test_ctrl_c_leaves_nothing(bench: Bench) -> None:
     ) as run:
         try:
             begun = _waited(run, lambda: staging.is_dir() and any(staging.iterdir()))
-            run.send_signal(signal.SIGINT)
+            run.send_signal(number)
             out, err = run.communicate(timeout=60)
         finally:
             run.kill()
     assert begun, err
-    assert (run.returncode, out) == (130, "")
+    assert (run.returncode, out) == (128 + number, "")
     assert err == "stopped; nothing half-written was left behind\n"
     assert bench.contents() == before
     assert not staging.exists()

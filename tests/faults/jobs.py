@@ -54,6 +54,8 @@ class Job:
         Whether that file takes an older one's place.
     codes : sequence of int
         Exit codes of a run that comes to its end.
+    program : sequence of str
+        What is run.
     """
 
     name: str
@@ -62,6 +64,7 @@ class Job:
     file: str = ""
     over: bool = False
     codes: Sequence[int] = (0,)
+    program: Sequence[str] = (str(SCRIPT),)
 
     @property
     def written(self) -> str:
@@ -70,7 +73,7 @@ class Job:
 
     def command(self, age: str) -> list[str]:
         """Words of the command line for the older or the newer bait."""
-        return [str(SCRIPT), *(word.replace("AGE", age) for word in self.words)]
+        return [*self.program, *(word.replace("AGE", age) for word in self.words)]
 
 
 def _folder(command: str, *words: str, sections: str = "", name: str = "") -> Job:
