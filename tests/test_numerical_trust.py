@@ -87,9 +87,11 @@ def assert_same(found: Tree, expected: Tree, tolerances: tuple[float, float]) ->
     share, degrees = tolerances
     for key in ("mass", "displaced", "skin"):
         assert found[key] == pytest.approx(expected[key], rel=share), key
-    # A reserve is the difference of masses some times its size; so is that of the smooth part.
-    for key in ("reserve", "smooth"):
-        assert found[key] == pytest.approx(expected[key], abs=2 * share * expected["mass"]), key
+    # A reserve is the difference of masses some times its size.
+    assert found["reserve"] == pytest.approx(expected["reserve"], abs=2 * share * expected["mass"])
+    # What the facets leave out is an estimate, over whichever triangles the cut of the plug leaves.
+    left_out = expected["smooth"] - expected["reserve"]
+    assert found["smooth"] - found["reserve"] == pytest.approx(left_out, rel=1e-3)
     assert found["areas"] == pytest.approx(expected["areas"], rel=share)
     assert found["angles"] == pytest.approx(expected["angles"], abs=degrees)
     assert found["postures"] == expected["postures"]
