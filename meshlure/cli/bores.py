@@ -87,6 +87,7 @@ def _bore_cells(row: Tree) -> tuple[str, ...]:
         " to ".join(f"{value:.1f}" for value in row["from_nose_mm"]),
         f"{row['wall_mm']:.2f}",
         f"{row['end_wall_mm']:.2f}",
+        "" if row["opening"] is None else f"{row['opening']['plug_mm']:.1f}",
         row["kind"],
     )
 
@@ -107,6 +108,7 @@ _BORES: Final = (
     Column("from nose mm"),
     Column("wall mm", number=True),
     Column("ends mm", number=True),
+    Column("plug mm", number=True),
     Column("kind"),
 )
 
