@@ -9,6 +9,7 @@ from __future__ import annotations
 import base64
 import csv
 import functools
+import io
 from collections.abc import Callable, Iterator
 from pathlib import Path
 from typing import Any
@@ -17,6 +18,7 @@ import pytest
 from browsing import DRAWINGS, OVERFLOWS, OVERLAPS, Opened, amiss, opened
 from invented_odd import crowded, stretched
 from pdfpages import pages
+from pypdf import PdfReader
 from studied import SAMPLES, sample
 
 from meshlure.report.page import page
@@ -120,6 +122,19 @@ def test_its_print_cuts_no_figure(window: Opened) -> None:
     assert figures >= 10
 
 
+def test_the_view_is_printed_as_it_was_turned(window: Opened) -> None:
+    # Chromium prints a canvas as an image; the page has no other images of pixels.
+    window.wide(1440)
+    window.page.locator("#turn [data-do=above]").click()
+    printed = window.page.pdf(prefer_css_page_size=True, print_background=True)
+    images = [image for sheet in PdfReader(io.BytesIO(printed)).pages for image in sheet.images]
+    # The greatest of them shows more than paper and one ink.
+    shown = max((image.image for image in images if image.image is not None), key=lambda image: image.size)
+    assert shown.width > 400
+    assert len(shown.convert("RGB").resize((60, 30)).getcolors(1800) or ()) > 50
+    assert window.page.locator("#turned").is_hidden()
+
+
 def test_axe_finds_nothing_amiss(window: Opened, axe: Callable[[], Any]) -> None:
     window.wide(360)
     assert amiss(window, axe()) == []
@@ -141,6 +156,29 @@ def test_the_pictures_are_left_where_nothing_can_be_turned(
         assert found.page.locator("nav [href='#turn']").is_hidden()
         assert found.page.locator("#drawings img").first.is_visible()
         assert found.said == []
+
+
+def test_fingers_turn_and_zoom_it(chromium: Any, written: Callable[[str], Path]) -> None:
+    with opened(chromium, written("stick/stick.toml"), SMALL, has_touch=True) as window:
+        window.page.locator(STAGE).scroll_into_view_if_needed()
+        box = window.page.locator(f"{STAGE} canvas.marks").bounding_box()
+        x, y = box["x"] + box["width"] / 2, box["y"] + box["height"] / 2
+        hand = window.page.context.new_cdp_session(window.page)
+
+        def touch(kind: str, *places: tuple[float, float]) -> None:
+            points = [{"x": x + across, "y": y + down, "id": number} for number, (across, down) in enumerate(places)]
+            hand.send("Input.dispatchTouchEvent", {"type": kind, "touchPoints": points})
+
+        seen = [signs(window)]
+        for before, after in (
+            (((0.0, 0.0),), ((60.0, 10.0),)),  # one finger turns
+            (((-20.0, 0.0), (20.0, 0.0)), ((-70.0, 0.0), (70.0, 0.0))),  # two fingers zoom
+        ):
+            touch("touchStart", *before)
+            touch("touchMove", *after)
+            touch("touchEnd")
+            seen.append(signs(window))
+        assert len(set(seen)) == 3
 
 
 def test_keys_and_buttons_turn_it_too_and_pieces_can_be_hidden(chromium: Any, written: Callable[[str], Path]) -> None:

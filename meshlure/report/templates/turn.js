@@ -390,6 +390,18 @@ function fitted() {
   else zoomed(Math.min(wide, tall * 2) / before);
   paint();
 }
+// On paper nothing turns: what was last looked at stands there as a picture.
+var turned = document.getElementById("turned");
+window.addEventListener("beforeprint", function () {
+  if (figure.hidden || !wide) return;
+  paint();
+  var kept = turned.querySelector("canvas"), ink = kept.getContext("2d");
+  kept.width = canvas.width; kept.height = canvas.height;
+  ink.drawImage(canvas, 0, 0);
+  ink.drawImage(sheet, 0, 0);
+  turned.hidden = false;
+});
+window.addEventListener("afterprint", function () { turned.hidden = true; });
 figure.hidden = false;
 document.querySelectorAll("[data-with=turn]").forEach(function (each) { each.hidden = false; });
 fitted();
