@@ -70,7 +70,7 @@ def _page(text: str, tree: Any) -> None:
     assert f"A, Alder pool minnow, solid; B, {STRANGE}, dashed" in side
     cells = {
         "".join(row.xpath("th//text()")): ["|".join(cell.xpath(".//text()")) for cell in row.xpath("td")]
-        for row in page.xpath("//table[caption[contains(., 'Values')]]//tr[td]")
+        for row in page.xpath("//table[caption[contains(., 'Values')]]/tbody/tr[td]")
     }
     assert cells["mass, g"] == ["7.68", "9.60|+1.92"]
     assert cells["silhouette from the front, mm²"] == ["160", "160|≈ 0"]
