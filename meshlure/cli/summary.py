@@ -11,7 +11,7 @@ OUNCE: Final = 28.349523125
 
 
 def summary(results: Mapping[str, Any], out: Path | None) -> tuple[str, ...]:
-    """Return mass, verdict, postures, findings and files, a line a thing.
+    """Return whether to make it, mass, verdict, postures, findings and files, a line a thing.
 
     Parameters
     ----------
@@ -23,8 +23,11 @@ def summary(results: Mapping[str, Any], out: Path | None) -> tuple[str, ...]:
     weight = results["weight"]
     mass = weight["mass_g"]
     place = f"centre of gravity {weight['from_nose_mm']:.1f} mm from the nose"
+    ready = results["readiness"]
     lines = [
         str(results["name"]),
+        f"  make it  {ready['words']}",
+        *(f"  {'first' if number == 0 else '':7}  {step}" for number, step in enumerate(ready["first"])),
         f"  mass     {mass:.2f} g ({mass / OUNCE:.3f} oz), {place}",
         f"  verdict  {results['buoyancy']['verdict']}",
     ]

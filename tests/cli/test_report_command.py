@@ -63,8 +63,9 @@ def test_stdout_says_what_a_maker_asks_first(bench: Bench) -> None:
     assert (ran.code, ran.err) == (0, "")
     # 6400 mm3 of 1.2 g/cm3 are 7.68 g, and 0.2709 oz of 28.349523 g.
     assert ran.out.startswith(
-        "Alder pool minnow\n  mass     7.68 g (0.271 oz), centre of gravity 20.0 mm from the nose\n"
+        "Alder pool minnow\n  make it  Make one and weigh it before the rest: its centres meet, so it has no preferred attitude.\n"
     )
+    assert "\n  mass     7.68 g (0.271 oz), centre of gravity 20.0 mm from the nose\n" in ran.out
     assert re.search(r"^  verdict  Sinks: reserve \u22121\.\d\d g, between", ran.out, re.MULTILINE)
     assert re.search(r"^  posture  Hangs ", ran.out, re.MULTILINE)
     assert "  found    0 faults, 0 warnings, 0 notes\n" in ran.out

@@ -177,3 +177,11 @@ def test_changes_that_do_the_same_are_joined_and_others_stand_apart() -> None:
         {"towards": "left", "words": "Move it left."},
     ]
     assert readiness(tree, None)["first"][:2] == ["Move it. Or: Add lead.", "Move it left."]
+
+
+def test_a_bait_without_an_attitude_is_said_to_have_none_and_not_to_tip() -> None:
+    tree = sound()
+    tree["postures"][0].update(up=None, nose_up_deg=None, lean_deg=None)
+    tree["budget"]["monte_carlo"].update(left_share=1.0, nose_up_deg=None)
+    (reason,) = readiness(tree, None)["reasons"]
+    assert reason["words"] == "its centres meet, so it has no preferred attitude"
