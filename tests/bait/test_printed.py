@@ -1,4 +1,4 @@
-"""Printed bodies: wall and infill against boxes and spheres by hand, Steiner's formula inward, and walls round pockets."""
+"""Printed bodies: walls and infill against boxes and spheres by hand, Steiner's formula, and walls round pockets."""
 
 from __future__ import annotations
 

@@ -13,8 +13,8 @@ import pytest
 import typer
 from command_bench import Bench
 
-from meshlure.cli.commands import JOBS
 from meshlure.cli.app import app
+from meshlure.cli.commands import JOBS
 
 SAMPLES = Path(__file__).parents[2] / "samples"
 COMMAND: Any = typer.main.get_command(app)

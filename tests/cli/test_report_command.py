@@ -63,7 +63,8 @@ def test_stdout_says_what_a_maker_asks_first(bench: Bench) -> None:
     assert (ran.code, ran.err) == (0, "")
     # 6400 mm3 of 1.2 g/cm3 are 7.68 g, and 0.2709 oz of 28.349523 g.
     assert ran.out.startswith(
-        "Alder pool minnow\n  make it  Make one and weigh it before the rest: its centres meet, so it has no preferred attitude.\n"
+        "Alder pool minnow\n  make it  Make one and weigh it before the rest: its centres meet, so it has no preferred"
+        " attitude.\n"
     )
     assert "\n  mass     7.68 g (0.271 oz), centre of gravity 20.0 mm from the nose\n" in ran.out
     assert re.search(r"^  verdict  Sinks: reserve \u22121\.\d\d g, between", ran.out, re.MULTILINE)
