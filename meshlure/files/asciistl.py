@@ -20,6 +20,8 @@ _FACET: Final = re.compile(
 )
 _END: Final = re.compile(rb"\s*end[ \t]*solid\b[^\n]*(?:\n|\Z)", re.IGNORECASE)
 _BEGIN: Final = re.compile(rb"\s*solid\b([^\n]*)(?:\n|\Z)", re.IGNORECASE)
+_LONGEST: Final = 4000
+"""Bytes of a line that are looked at: what follows is no part of three numbers."""
 _LINES = ("outer loop", "vertex", "vertex", "vertex", "endloop", "endfacet")
 
 
@@ -100,7 +102,7 @@ def _fault(data: bytes, where: str) -> Fault | None:
     lines = data.splitlines()
     last = max((number for number, raw in enumerate(lines, 1) if raw.strip()), default=0)
     for number, raw in enumerate(lines, 1):
-        line = raw.decode("utf-8", "replace").strip()
+        line = raw[:_LONGEST].decode("utf-8", "replace").strip()
         words = line.lower().split()
         if not words:
             continue

@@ -9,7 +9,7 @@ from typing import Final
 import numpy as np
 
 from meshlure.errors import Fault, InputError
-from meshlure.files.polygons import Polygons
+from meshlure.files.polygons import MOST_CORNERS, Polygons, batches
 from meshlure.files.rows import number_of
 from meshlure.findings import Finding, Level
 from meshlure.geometry.surface import Floats, Ints
@@ -48,8 +48,9 @@ class _Statements:
         self.rows: list[bytes] = pattern.findall(text)
 
     def counts(self) -> Ints:
-        """(k,) array: how many words each has."""
-        return np.fromiter((len(row.split()) for row in self.rows), dtype=np.intp, count=len(self.rows))
+        """(k,) array: how many words each has; of very many, only that they are more than a polygon may have."""
+        words = (len(row.split(None, MOST_CORNERS + 1)) for row in self.rows)
+        return np.fromiter(words, dtype=np.intp, count=len(self.rows))
 
     def starts(self) -> Ints:
         """(k,) array: where each begins in the text."""
@@ -125,14 +126,17 @@ class ObjLines:
             raise InputError(self._unreadable("a vertex", self._vertices.match(number), "three numbers"))
         if (counts > 3).any():
             # Colours and weights after the three numbers have no part in the shape.
-            rows = [b" ".join(row.split()[:3]) for row in rows]
+            rows = [b" ".join(row.split(None, 3)[:3]) for row in rows]
         try:
-            numbers = list(map(number_of, b" ".join(rows).split()))
+            numbers = [
+                np.array(list(map(number_of, b" ".join(rows[batch]).split())), dtype=np.float64)
+                for batch in batches(np.full(len(rows), 3))
+            ]
         except ValueError:
             wrong = next(number for number, row in enumerate(rows) if not all(map(_number, row.split())))
             allowed = "three numbers with a decimal point"
             raise InputError(self._unreadable("a vertex", self._vertices.match(wrong), allowed)) from None
-        return np.array(numbers, dtype=np.float64).reshape(-1, 3)
+        return np.concatenate([*numbers, np.empty(0)]).reshape(-1, 3)
 
     def polygons(self, vertices: Floats) -> Polygons:
         """All polygons, whatever group, object or material they belong to.
@@ -156,9 +160,11 @@ class ObjLines:
         rows, counts = self._faces.rows, self._faces.counts()
         for number in np.flatnonzero(counts < 3)[:1].tolist():
             raise InputError(self._unreadable("a face", self._faces.match(number), "three corners or more"))
-        words = b" ".join(rows).split()
+        for number in np.flatnonzero(counts > MOST_CORNERS)[:1].tolist():
+            allowed = f"up to {MOST_CORNERS:,} corners"
+            raise InputError(self._unreadable("a face", self._faces.match(number), allowed))
         try:
-            indices = np.array([_whole(word.partition(b"/")[0]) for word in words], dtype=np.intp)
+            indices = np.concatenate([_indices(rows[batch]) for batch in batches(counts)])
         except (ValueError, OverflowError):
             wrong = next(number for number, row in enumerate(rows) if not all(map(_index, row.split())))
             allowed = "vertex numbers such as 3, 3/1, 3//2 or -1"
@@ -245,7 +251,7 @@ class ObjLines:
 
 def _shown(text: bytes) -> str:
     """Return a few characters of the file, as they may stand in a message."""
-    words = "".join(c if c.isprintable() else " " for c in text.decode("utf-8", "replace"))
+    words = "".join(c if c.isprintable() else " " for c in text[: 4 * _SHOWN + 4].decode("utf-8", "replace"))
     return words if len(words) <= _SHOWN else words[:_SHOWN] + "..."
 
 
@@ -261,6 +267,12 @@ def _whole(word: bytes) -> int:
     if b"_" in word:  # which Python would pass over
         raise ValueError(word)
     return int(word)
+
+
+def _indices(rows: list[bytes]) -> Ints:
+    """Vertex numbers of faces, one face after another."""
+    words = b" ".join(rows).split()
+    return np.array([_whole(word.partition(b"/")[0]) for word in words], dtype=np.intp)
 
 
 def _index(word: bytes) -> bool:

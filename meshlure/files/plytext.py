@@ -3,13 +3,17 @@
 from __future__ import annotations
 
 from collections.abc import Callable
+from typing import Final
 
 import numpy as np
 
 from meshlure.files.plyheader import Element, Header, corner_list
-from meshlure.files.polygons import Polygons
+from meshlure.files.polygons import MOST_CORNERS, Polygons
 from meshlure.files.rows import Rows, whole
 from meshlure.geometry.surface import Floats
+
+_MOST_WORDS: Final = 2 * MOST_CORNERS
+"""Of one row."""
 
 
 def read_text(data: bytes, header: Header, where: str) -> tuple[Floats, Polygons, Callable[[int], str]]:
@@ -45,10 +49,12 @@ def _polygons(rows: Rows, start: int, element: Element) -> Polygons:
     counts: list[int] = []
     wanted = corner_list(element)
     for number, row in enumerate(rows.some(start, element.count, "a face")):
-        words, at, named = row.split(), 0, 0
+        words, at, named = row.split(None, _MOST_WORDS), 0, 0
         try:
             for each in element.properties:
                 held = whole(words[at]) if each.length else 1
+                if held > MOST_CORNERS:
+                    raise rows.unread(start + number, f"a list has more than {MOST_CORNERS:,} entries")
                 at += bool(each.length)
                 if each is wanted:
                     named = held

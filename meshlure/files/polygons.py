@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import itertools
 from dataclasses import dataclass
 from typing import Final
 
@@ -20,6 +21,12 @@ _STRAIGHT: Final = 1e-6
 _POINTLESS: Final = 1e-12
 """Share of its squared size below which a polygon has no area: its corners lie on a line."""
 
+
+MOST_CORNERS: Final = 100_000
+"""Of one polygon: the lid of a fine turned part has some thousands."""
+
+AT_ONCE: Final = 500_000
+"""Words of a text taken apart at a time: each costs twenty times its length in memory until it is a number."""
 
 LONGEST: Final = 120.0
 """s. About how long polygons that are neither convex nor quadrangles may take to cut, all in all."""
@@ -47,6 +54,19 @@ class TooLongError(Exception):
         self.polygons = polygons
         self.corners = corners
         super().__init__(f"{polygons} polygons of {corners} corners")
+
+
+def batches(counts: Ints) -> list[slice]:
+    """Return runs of rows that hold about `AT_ONCE` words each, or one row that holds more.
+
+    Parameters
+    ----------
+    counts : (k,) array
+        Words of each row.
+    """
+    batch = np.cumsum(counts) // AT_ONCE
+    starts = [0, *(np.flatnonzero(np.diff(batch)) + 1).tolist(), len(counts)]
+    return [slice(start, stop) for start, stop in itertools.pairwise(starts) if stop > start]
 
 
 @dataclass(frozen=True, eq=False)

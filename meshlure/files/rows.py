@@ -9,10 +9,12 @@ from typing import Final
 import numpy as np
 
 from meshlure.errors import Fault, InputError
-from meshlure.files.polygons import Polygons
+from meshlure.files.polygons import MOST_CORNERS, Polygons, batches
 from meshlure.geometry.surface import Floats
 
 _SHOWN: Final = 60
+_LONG: Final = 10_000
+"""Bytes. Rows of a longer one among them are cut off behind the numbers that are wanted."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -76,9 +78,17 @@ class Rows:
             There are fewer rows, or one holds fewer numbers or something else (with the line).
         """
         rows = self.some(start, count, noun)
-        words = b" ".join(rows).split()
+        found = [
+            self._numbers(rows[batch], start + batch.start, columns, noun)
+            for batch in batches(np.full(len(rows), columns))
+        ]
+        return np.concatenate([*found, np.empty((0, columns))])
+
+    def _numbers(self, rows: list[bytes], start: int, columns: int, noun: str) -> Floats:
+        longest = max(map(len, rows))
+        words = b" ".join(rows).split() if longest < _LONG else []
         if len(words) != columns * len(rows):
-            cut = [row.split()[:columns] for row in rows]
+            cut = [row.split(None, columns)[:columns] for row in rows]
             short = next((number for number, row in enumerate(cut) if len(row) < columns), None)
             if short is not None:
                 raise self.unread(start + short, f"{noun} holds fewer than {columns} numbers")
@@ -107,9 +117,11 @@ class Rows:
         corners: list[int] = []
         counts: list[int] = []
         for number, row in enumerate(self.some(start, count, "a face")):
-            words = row.split()
+            words = row.split(None, MOST_CORNERS + 1)
             try:
                 held = whole(words[0])
+                if held > MOST_CORNERS:
+                    raise self.unread(start + number, f"a face has more than {MOST_CORNERS:,} corners")
                 named = [whole(word) for word in words[1 : 1 + held]]
             except (ValueError, IndexError):
                 raise self.unread(start + number, "a face cannot be read") from None

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import io
 import os
+import re
 import resource
 import runpy
 import struct
@@ -157,6 +158,29 @@ def test_a_line_of_megabytes(tmp_path: Path, name: str) -> None:
     assert time.perf_counter() - start < 15.0
     # Nothing of the line stands in the message beyond a few words.
     assert len(str(caught.value)) < 1000 + len(str(tmp_path)) * 2
+
+
+@pytest.mark.parametrize(
+    ("name", "begins", "repeated", "said"),
+    [
+        ("corners.obj", b"v 0 0 0\nv 1 0 0\nv 0 1 0\nf", b" 1 2 3", "up to 100,000 corners"),
+        ("corners.off", b"OFF\n3 1 0\n0 0 0\n1 0 0\n0 1 0\n33333333", b" 0", "more than 100,000 corners"),
+        ("facets.stl", b"solid x\n", b"facet ", "'facet normal"),
+        (
+            "numbers.ply",
+            BUILD["ply"]("ascii").partition(b"end_header\n")[0] + b"end_header\n",
+            b"0 ",
+            "fewer|ends before",
+        ),
+    ],
+)
+def test_a_line_of_a_hundred_megabytes(tmp_path: Path, name: str, begins: bytes, repeated: bytes, said: str) -> None:
+    """Taken apart into words it would be twenty times that in memory; here it may take seven times, and 20 s."""
+    with (tmp_path / name).open("wb") as file:
+        file.write(begins)
+        for _ in range(100):
+            file.write(repeated * (MB // len(repeated)))
+    assert re.search(said, refused_within(tmp_path / name, 700))
 
 
 def test_deeply_nested_json(tmp_path: Path) -> None:
