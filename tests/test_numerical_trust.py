@@ -247,7 +247,7 @@ def test_walls_as_thin_as_a_coat_of_paint(lies: str, wall: float) -> None:
     """A bar that is all hollow but for its walls: sealed, it displaces all of itself and weighs its walls."""
     turn, shift = LIES[lies]
     size = np.array([0.04, 0.01, 0.016])
-    body, room = shapes.box(size, level=1), shapes.box(size - 2 * wall, level=1)
+    body, room = shapes.box(size.tolist(), level=1), shapes.box((size - 2 * wall).tolist(), level=1)
     bait = workbench.bait(
         body.moved(rotation=turn, shift=shift),
         workbench.void("room", room.moved(rotation=turn, shift=shift)),

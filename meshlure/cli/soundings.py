@@ -89,7 +89,9 @@ def _mending(made: Tree) -> Iterator[str]:
     if not made["steps"]:
         yield f"  {word} do nothing: there is nothing to mend, or nothing that these steps can"
     for step in made["steps"]:
-        moved = f"; nothing moved more than {step['moved_mm']:.2g} mm" if step["moved_mm"] else ""
+        # Of a new skin its own words say how far it lies, and where that was measured.
+        told = step["moved_mm"] and step["code"] != "remake"
+        moved = f"; nothing moved more than {step['moved_mm']:.2g} mm" if told else ""
         yield f"  {word} {step['did']}{moved}"
         yield f"           volume {_change(step['before_mm3'], step['after_mm3'])}"
     for left in made["left"]:

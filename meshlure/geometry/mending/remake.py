@@ -11,7 +11,7 @@ from meshlure.geometry.clearance import nearest
 from meshlure.geometry.lattice import MARGIN, Skin, skin
 from meshlure.geometry.mending.steps import Left, Step
 from meshlure.geometry.phrasing import counted, millimetres
-from meshlure.geometry.samples import spread
+from meshlure.geometry.samples import scattered, spread
 from meshlure.geometry.shells import measures
 from meshlure.geometry.surface import Bools, Floats, Surface
 from meshlure.geometry.topology import paired
@@ -30,6 +30,9 @@ _HALVINGS: Final = 10
 _AT_ONCE: Final = 500_000
 _BORDER: Final = 3
 """Half steps of the lattice round the surface's bounds; the outermost two lie outside."""
+
+_DRAWN: Final = 20_000
+"""Places of the new skin, drawn by lot from its area, that tell how much of it lies how far off."""
 
 _SPOTS: Final = 200_000
 """Places of the old skin, about, whose distance to the new one is measured."""
@@ -50,8 +53,9 @@ def remade(surface: Surface, step: float) -> tuple[Step | None, Left | None]:
     The generalized winding number is the sum of the solid angles of all faces over 4 pi: near a closed skin a whole
     number, over a hole it passes evenly from one to nought. It is asked at the nodes of a body-centred cubic lattice,
     cut between nodes above a half and others (`lattice.skin`), and each corner is brought to the half by halving its
-    lattice edge. Whatever comes out is closed. How far it lies from the old skin is measured and told: everywhere from
-    the new one's corners and middles, and back from spots on the old one. Edges are cut across by the lattice.
+    lattice edge. Whatever comes out is closed. How far it lies from the old skin is measured and told: from
+    the new one's corners and middles, and back from spots on the old one; between them it may lie farther by as much as
+    they are apart. Edges are cut across by the lattice.
 
     References
     ----------
@@ -88,16 +92,19 @@ def remade(surface: Surface, step: float) -> tuple[Step | None, Left | None]:
     if not len(cut.faces):
         return None, Left("the surface winds round nothing: there is no inside to draw a skin round", (), "Redraw it.")
     made = Surface(_settled(cut, origin, half, ask), cut.faces)
-    near = nearest(surface, np.concatenate([made.vertices, made.corners.mean(axis=1)])).distance
-    spots = spread(surface, max(step, float(np.sqrt(2 * surface.area / _SPOTS))))
-    back = nearest(made, spots).distance
+    drawn = scattered(made, _DRAWN)
+    near = nearest(surface, np.concatenate([drawn, made.vertices, made.corners.mean(axis=1)])).distance
+    by_area = near[:_DRAWN]
+    apart = max(step, float(np.sqrt(2 * surface.area / _SPOTS)))
+    back = nearest(made, spread(surface, apart)).distance
     farthest = millimetres(float(near.max()))
     over = " (over what was open)" if not paired(surface).closed else ""
     did = (
         f"drew a new skin of {counted(len(made.faces), 'face')} in steps of {millimetres(step)}; half of it lies "
-        f"within {millimetres(float(np.median(near)))} of the old one, 95% within "
-        f"{millimetres(float(np.quantile(near, 0.95)))}, its farthest place {farthest} off{over}; "
-        f"no place of the old skin is farther than {millimetres(float(back.max()))} from the new one"
+        f"within {millimetres(float(np.median(by_area)))} of the old one, 95% within "
+        f"{millimetres(float(np.quantile(by_area, 0.95)))}, the farthest corner or middle of a face {farthest} off"
+        f"{over}; of places on the old skin, one every {millimetres(apart)}, none is farther than "
+        f"{millimetres(float(back.max()))} from the new one"
     )
     return Step("remake", did, made, len(made.faces), float(max(near.max(), back.max()))), None
 
