@@ -309,7 +309,10 @@ def write(start: Start, nose: Guess, back: Guess, out: Path) -> BaitFile:
         hardware=start.hardware,
     )
     text = new_text(new, out.parent)
-    made = bait_of(tomllib.loads(text), out.parent, out.stem, out)
+    try:
+        made = bait_of(tomllib.loads(text), out.parent, out.stem, out)
+    except InputError as error:
+        raise InputError([_renamed(fault, stated) for fault in error.faults]) from None
     check_reach(start.bait.body, tuple(hardware(row, row.name) for row in made.hardware), made)
     try:
         put_file(out, text.encode("utf-8"))
@@ -321,6 +324,16 @@ def write(start: Start, nose: Guess, back: Guess, out: Path) -> BaitFile:
             Fault("the bait file cannot be written", str(out), reason, "", "name another file with --out")
         ) from error
     return replace(made, text=text)
+
+
+def _renamed(fault: Fault, stated: Stated) -> Fault:
+    """Return a fault of the file that would have been written as one of what was stated for it."""
+    if fault.where == "bait.name":
+        step = "state another with --name" if stated.name is not None else "state one with --name"
+        return replace(fault, where="--name" if stated.name is not None else str(stated.mesh), next_step=step)
+    if fault.where.endswith("mesh"):
+        return replace(fault, next_step="rename the file, so that a bait file can name it")
+    return fault
 
 
 def _piece(section: InsertSection, text: str) -> NewPiece:

@@ -157,7 +157,9 @@ class _Lines:
                 )
         if self._order is None:
             found, allowed = "no 'format' line", ", ".join(_ORDERS)
-            raise InputError(Fault("the PLY does not say its format", self._where, found, allowed))
+            raise InputError(
+                Fault("the PLY does not say its format", self._where, found, allowed, "export the part again")
+            )
         elements = tuple(Element(name, count, tuple(held)) for name, count, held in self._elements)
         return Header(self._order, elements, start, len(lines))
 

@@ -13,6 +13,8 @@ from meshlure.files.polygons import MOST_CORNERS, Polygons, batches
 from meshlure.geometry.surface import Floats
 
 _SHOWN: Final = 60
+_DIGITS: Final = 18
+"""Of a whole number: what fits in eight bytes."""
 _LONG: Final = 10_000
 """Bytes. Rows of a longer one among them are cut off behind the numbers that are wanted."""
 
@@ -188,8 +190,8 @@ def whole(word: bytes) -> int:
     Raises
     ------
     ValueError
-        It is none.
+        It is none, or beyond what anything can be counted with.
     """
-    if not word.isdigit():
+    if not word.isdigit() or len(word) > _DIGITS:
         raise ValueError(word)
     return int(word)

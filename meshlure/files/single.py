@@ -44,7 +44,9 @@ def check_absent(path: Path, option: str, mark: bytes = b"") -> None:
     except (OSError, ValueError) as error:
         # ValueError: a NUL character in the name.
         reason = error.strerror if isinstance(error, OSError) and error.strerror else str(error)
-        raise InputError(Fault("this file cannot be looked at", f"{option} {path}", reason)) from error
+        raise InputError(
+            Fault("this file cannot be looked at", f"{option} {path}", reason, next_step="check the path")
+        ) from error
     if there and not ours:
         raise InputError(
             Fault(

@@ -75,7 +75,8 @@ def read_source(path: Path, kind: str, where: str = "", largest: int = LARGEST) 
                 Fault(f"the {kind} is a folder", place, allowed="a file", next_step="name the file in the folder")
             )
         if path.exists() and not path.is_file():
-            raise InputError(Fault(f"the {kind} is a device or a pipe", place, allowed="a file on disk"))
+            step = "write what comes out of it into a file, and name that"
+            raise InputError(Fault(f"the {kind} is a device or a pipe", place, "", "a file on disk", step))
         size = path.stat().st_size
         # A file may grow, and some report no size: so it is read to its end, but no further than is allowed.
         data = None if size > largest else _up_to(path, largest)

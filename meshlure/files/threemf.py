@@ -32,6 +32,8 @@ _AT_ONCE: Final = 16384
 _LONGEST_ROW: Final = 100
 """Bytes of a vertex or a triangle, at most."""
 _WITHOUT_ZIP64: Final = 2_000_000_000
+_JOINERS: Final = "\u200c\u200d\u00ad"
+"""Format characters inside the words of some scripts, which are harmless."""
 _LEVEL: Final = 1
 """Of compression: the highest takes six times as long for a sixth off the file."""
 
@@ -59,8 +61,8 @@ def write_3mf(path: Path | IO[bytes], pieces: Sequence[tuple[str, Surface]]) -> 
     -----
     After the 3MF Core Specification 1.2 and its schema: one object and one build item a piece, without transforms.
     Coordinates are written in as many digits as read back to the same 64-bit number of mm. Characters that XML 1.0 has
-    no place for, and line ends, are left out of the names; a name of which nothing is left becomes "piece 2". The same
-    pieces make the same bytes.
+    no place for, line ends, and those that turn the direction of writing are left out of the names; a name of which
+    nothing is left becomes "piece 2". The same pieces make the same bytes.
     """
     if not pieces:
         raise ValueError("a 3MF holds at least one piece")
@@ -108,7 +110,10 @@ def _model(pieces: Sequence[tuple[str, Surface]]) -> Iterator[str]:
 
 
 def _plain(name: str) -> str:
-    """Return a name without control characters, surrogates, line separators and what is no character at all."""
+    """Return a name without control characters, turns of direction, surrogates, line separators and no characters."""
     return "".join(
-        c for c in name if unicodedata.category(c) not in {"Cc", "Cs", "Zl", "Zp"} and ord(c) & 0xFFFE != 0xFFFE
+        c
+        for c in name
+        if (unicodedata.category(c) not in {"Cc", "Cf", "Cs", "Zl", "Zp"} or c in _JOINERS)
+        and ord(c) & 0xFFFE != 0xFFFE
     ).strip()

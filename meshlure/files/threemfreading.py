@@ -115,7 +115,8 @@ def _root(package: Package, where: str) -> str:
             targets.append(said.get("Target", ""))
 
     def refuse(*_: object) -> None:
-        raise InputError(Fault("the package's relations have a document type", where, "<!DOCTYPE", "XML without"))
+        what = "the package's relations have a document type"
+        raise InputError(Fault(what, where, "<!DOCTYPE", "XML without entities", "export the part again"))
 
     parser = expat.ParserCreate(namespace_separator=" ")
     parser.StartElementHandler = started

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import os
 import re
 from pathlib import Path
 
@@ -260,3 +261,40 @@ def test_a_name_cannot_steer_the_terminal(bench: Bench) -> None:
     told = fault(bench.report(Path("\x1b[31mred\n- body.stl: fine.stl")))
     assert "\x1b" not in told
     assert "\\x1b[31mred" in told
+
+
+def test_meshes_that_lie_elsewhere_are_read_and_nothing_is_written_there(bench: Bench) -> None:
+    """A maker's hooks and weights are drawn once, for all baits; links and ways out of the folder are only followed."""
+    bench.put("parts/weight.stl", (bench.folder / "weight.stl").read_bytes())
+    (bench.folder / "linked.stl").symlink_to(bench.folder / "parts" / "weight.stl")
+    text = BAIT.replace("body.stl", str(bench.folder / "body.stl"))
+    pieces = (("../parts/weight.stl", "../../weight"), ("../linked.stl", "/linked"))
+    for mesh, name in pieces:
+        bench.put("baits/bait.toml", text + INSERT.replace("weight.stl", mesh).replace("belly weight", name))
+        before = bench.contents()
+        ran = bench.run("report", "baits/bait.toml", "--no-page", "--cut", "--out", bench.out)
+        assert (ran.code, ran.err) == (0, "")
+        after = bench.contents()
+        # Whatever a piece is called, its file lies in the folder that was named.
+        stem = name.strip("./")
+        assert {path for path in after if path.startswith("out/")} == {
+            "out/results.json", "out/body.stl", f"out/{stem}.stl",
+        }  # fmt: skip
+        outside = {path: content for path, content in after.items() if not path.startswith("out/")}
+        assert outside == {path: content for path, content in before.items() if not path.startswith("out/")}
+
+
+def test_ways_to_what_is_no_mesh(bench: Bench) -> None:
+    (bench.folder / "endless.stl").symlink_to("/dev/zero")
+    (bench.folder / "round.stl").symlink_to("round.stl")
+    os.mkfifo(bench.folder / "pipe.stl")
+    for mesh, told in {
+        "endless.stl": "a device or a pipe",
+        "round.stl": "cannot be read|is not there",
+        "pipe.stl": "a device or a pipe",
+        "/etc/passwd": "a mesh in this format is not read",
+        "/proc/self/environ": "a mesh in this format is not read",
+        "../..": "the mesh is a folder",
+    }.items():
+        assert re.search(told, fault(bench.report(BAIT.replace("body.stl", mesh)))), mesh
+        assert not bench.out.exists()

@@ -71,6 +71,8 @@ def held(fault: Fault) -> None:
     text = str(fault)
     if not fault.what or not (fault.where or fault.found):
         raise AssertionError(f"a fault without a place: {text!r}")
+    if not fault.next_step:
+        raise AssertionError(f"a fault without a next step: {text!r}")
     if len(text) > _LONGEST:
         raise AssertionError(f"a fault of {len(text)} characters: {text[:200]!r}")
 
