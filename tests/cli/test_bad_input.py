@@ -298,3 +298,31 @@ def test_ways_to_what_is_no_mesh(bench: Bench) -> None:
     }.items():
         assert re.search(told, fault(bench.report(BAIT.replace("body.stl", mesh)))), mesh
         assert not bench.out.exists()
+
+
+READERS = {
+    "report": ("minnow.toml", "--json"),
+    "report quick": ("body.stl", *QUICK, "--json"),
+    "balance": ("minnow.toml", "--json"),
+    "chamber": ("minnow.toml", "--json"),
+    "mould": ("minnow.toml", "--json"),
+    "pour": ("minnow.toml", "--json"),
+    "sheet": ("minnow.toml", "--out", "out"),
+    "compare": ("minnow.toml", "minnow.toml", "--json"),
+    "inspect": ("body.stl", "--unit", "mm", "--mend", "--out", "mended.stl"),
+    "new": ("body.stl", "--unit", "mm", "--density", "1.2 g/cm3", "--yes", "--out", "new.toml"),
+}
+
+
+@pytest.mark.parametrize("command", READERS)
+def test_the_limit_on_meshes_in_every_command_that_reads_one(bench: Bench, command: str) -> None:
+    """A binary STL of 12 faces is 84 + 12 x 50 = 684 bytes long."""
+    bench.put("minnow.toml", BAIT)
+    words = (command.split()[0], *READERS[command])
+    ran = bench.run(*words, "--largest", "683 B")
+    said = ran.out if command == "inspect" and ran.out else ran.err
+    assert ran.code == 2
+    assert re.search("larger than is read.*684 bytes.*up to 683 bytes.*raise the limit: --largest", said, re.DOTALL)
+    assert not bench.out.exists()
+    told = fault(bench.run(*words, "--largest", "much"))
+    assert re.search("--largest: this is no size of a file.*found: much.*2 GB", told, re.DOTALL)

@@ -98,6 +98,32 @@ def test_other_ways_of_packing_are_refused_before_they_unpack(tmp_path: Path) ->
             read_mesh(tmp_path / f"{number}.3mf", None)
 
 
+TYPES = {
+    "outside": '<!DOCTYPE model [<!ENTITY a SYSTEM "file:///etc/passwd">]>',
+    "parameters": '<!DOCTYPE model [<!ENTITY % a SYSTEM "http://localhost/x.dtd"> %a;]>',
+    "laughs": '<!DOCTYPE model [<!ENTITY a "ha"><!ENTITY b "&a;&a;&a;"><!ENTITY c "&b;&b;&b;">]>',
+    "bare": "<!DOCTYPE model>",
+}
+"""Ways in which XML names other files, or grows (XML 1.0, 4.2.2 and 4.4)."""
+
+
+@pytest.mark.parametrize("part", ["3D/3dmodel.model", "_rels/.rels"])
+@pytest.mark.parametrize("name", TYPES)
+@pytest.mark.parametrize("encoding", ["utf-8", "utf-16"])
+def test_document_types(tmp_path: Path, name: str, part: str, encoding: str) -> None:
+    sound = {
+        "_rels/.rels": BUILD["RELATIONS"],
+        "3D/3dmodel.model": BUILD["model"](BUILD["object_"](1, BUILD["BOX"], "&c;"), BUILD["item"](1)),
+    }
+    texts = {key: text if isinstance(text, str) else text.decode() for key, text in sound.items()}
+    texts[part] = f'<?xml version="1.0" encoding="{encoding}"?>{TYPES[name]}' + re.sub(r"<\?xml.*?\?>", "", texts[part])
+    with zipfile.ZipFile(tmp_path / "x.3mf", "w") as package:
+        for key, text in texts.items():
+            package.writestr(key, text.encode(encoding if key == part else "utf-8"))
+    with pytest.raises(InputError, match="document type"):
+        read_mesh(tmp_path / "x.3mf", None)
+
+
 def test_very_many_entries(tmp_path: Path) -> None:
     entry = b"PK\x01\x02" + b"\0" * 42
     (tmp_path / "many.3mf").write_bytes(entry * 30_000 + b"PK\x05\x06" + b"\0" * 18)
