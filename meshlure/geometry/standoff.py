@@ -14,6 +14,9 @@ from meshlure.geometry.surface import Floats
 TOLERANCE: Final = 2e-6
 """m. A standoff is found to this: a tenth of what a good printer resolves."""
 
+_AT_ONCE: Final = 20_000
+"""Triangles looked at together: more would only take more memory."""
+
 _POLISHES = 4
 """Times in every round that the best place is carried to and fro between its triangle and the round skin."""
 
@@ -103,23 +106,34 @@ def clears(boxes: Boxes, cylinder: Cylinder, distance: float, tolerance: float =
 
     Notes
     -----
-    As `solid_standoff`, but quicker: it ends with the first place that is too near.
+    As `solid_standoff`, but quicker: it ends with the first place that is too near. What clears is proved to be no
+    nearer than the distance less the tolerance, and what does not to be nearer than the distance less half of it; in
+    between either answer may come, so that a skin which runs along the threshold is not halved without end. A tangent
+    misses the distance by less than R^2/2 over the distance itself: of triangles of a radius R below the root of
+    distance times tolerance none is halved but those on whose corner it depends.
     """
     skin, bar = _Within(cylinder), max(distance - tolerance, tolerance)
+    near = bar + tolerance / 2
     middle, reach = (boxes.low + boxes.high) / 2, _length(boxes.high - boxes.low) / 2
     kept = _length(middle - skin.nearest(middle)) - reach < bar
     middle, reach = boxes.middle[kept].reshape(-1, 3), boxes.radius[kept].reshape(-1)
     triangles = boxes.corners[kept].reshape(-1, 3, 3)[_length(middle - skin.nearest(middle)) - reach < bar]
-    while len(triangles):
+    waiting = [triangles]
+    while waiting:
+        triangles = waiting.pop()
+        waiting += [triangles[at : at + _AT_ONCE] for at in range(_AT_ONCE, len(triangles), _AT_ONCE)]
+        triangles = triangles[:_AT_ONCE]
         middle = triangles.mean(axis=1)
         away = middle - skin.nearest(middle)
         apart = _length(away)
-        if (apart < bar).any():
+        if (apart < near).any():
             return False
         toward = triangles - middle[:, None]
         gradient = away / apart[:, None]
         low = apart + np.einsum("nki,ni->nk", toward, gradient).min(axis=1)
-        triangles = _halved(_halved(triangles[low < bar]))
+        open_still = low < bar
+        if open_still.any():
+            waiting.append(_halved(_halved(triangles[open_still])))
     return True
 
 

@@ -10,12 +10,14 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from scipy.optimize import minimize_scalar
 
+from meshlure.geometry import standoff
 from meshlure.geometry.clearance import Boxes
 from meshlure.geometry.cylinder import Cylinder
 from meshlure.geometry.standoff import (
     TOLERANCE,
     Standoff,
     ball_standoff,
+    clears,
     cylinder_standoff,
     end_standoff,
     side_standoff,
@@ -178,3 +180,73 @@ def test_the_tolerance_is_kept() -> None:
 def test_a_tolerance_that_is_none_is_refused(tolerance: float) -> None:
     with pytest.raises(ValueError, match="positive tolerance"):
         ball_standoff(Boxes.of(shapes.sphere(1.0, 1)), np.zeros(3), 0.5, tolerance)
+
+
+def told(boxes: Boxes, cylinder: Cylinder, distance: float, monkeypatch: pytest.MonkeyPatch) -> bool:
+    """Whether a mesh clears, with no more than so many triangles halved for it."""
+    halved = []
+
+    def counted(triangles: Floats) -> Floats:
+        halved.append(len(triangles))
+        assert sum(halved) < 100_000, "halved without end"
+        return halve(triangles)
+
+    halve = standoff._halved
+    with monkeypatch.context() as patch:
+        patch.setattr(standoff, "_halved", counted)
+        return clears(boxes, cylinder, distance)
+
+
+NEAR = (
+    -1e-5,
+    -3e-6,
+    -1e-15,
+    0.0,
+    1e-15,
+    1e-9,
+    0.5e-6,
+    1e-6 - 1e-14,
+    1e-6,
+    1.5e-6,
+    2e-6 - 1e-15,
+    2e-6,
+    2e-6 + 1e-15,
+    1e-5,
+)
+"""m. Distances asked for less the true one: about it, about half the tolerance beyond, and about the tolerance."""
+
+
+@pytest.mark.parametrize("off", NEAR)
+@pytest.mark.parametrize("kind", ["wall", "tube", "ball"])
+def test_what_clears_is_told_whatever_the_threshold(kind: str, off: float, monkeypatch: pytest.MonkeyPatch) -> None:
+    """A wall 5 mm from the axis of a cylinder of 3 mm; a tube of 24 sides round it, the middle of a side as far as 5 mm
+    times cos(pi/24); a ball whose lowest corner lies on the axis, 2 mm from an end."""
+    along = Cylinder(np.zeros(3), np.array([0.0, 0.0, 1.0]), 0.02, 0.003)
+    ball = shapes.sphere(0.004, 2)
+    lowest = ball.vertices[:, 2].argmin()
+    surface, true = {
+        "wall": (shapes.box((0.001, 0.02, 0.04), (0.0055, 0.0, 0.0), level=1), 0.002),
+        "tube": (shapes.cylinder(0.005, 0.03, 24, along=8), 0.005 * np.cos(np.pi / 24) - 0.003),
+        "ball": (ball.moved(shift=np.array([0.0, 0.0, 0.012]) - ball.vertices[lowest]), 0.002),
+    }[kind]
+    answer = told(Boxes.of(surface), along, true + off, monkeypatch)
+    if off <= TOLERANCE / 2 - 1e-12:
+        assert answer
+    if off >= TOLERANCE:
+        assert answer is False or off == pytest.approx(TOLERANCE, rel=1e-6)
+
+
+@given(st.integers(0, 1000))
+@settings(max_examples=8)
+def test_what_clears_against_points_spread_over_the_cylinder(seed: int) -> None:
+    """Sizes are of the order of 1, as the general mesh library's tolerances are lengths without a unit."""
+    random = np.random.default_rng(seed)
+    body = shapes.lumpy(seed, level=2, size=1.0)
+    slug = Cylinder(body.vertices.mean(axis=0) + 1.5 * shapes.direction(seed + 1), shapes.direction(seed), 0.4, 0.1)
+    step = 0.04
+    near = trimesh.proximity.closest_point(shapes.as_trimesh(body), spread(slug, step))[1].min()  # type: ignore[no-untyped-call]
+    boxes = Boxes.of(body)
+    wanted = near + float(random.uniform(0.001, 0.1))
+    assert not clears(boxes, slug, wanted)
+    if near > 2 * step:
+        assert clears(boxes, slug, near - step)
