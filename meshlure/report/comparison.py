@@ -60,12 +60,13 @@ class Group:
 
 @dataclass(frozen=True)
 class Column:
-    """One bait: its letter, its name, and how it rests."""
+    """One bait: its letter, its name, whether to make it, and how it rests."""
 
     letter: str
     name: str
     file: str
     found: str
+    answer: str
     rest: Picture | None
 
 
@@ -173,7 +174,7 @@ def _columns(found: Tree, studies: Sequence[Study], trees: Sequence[Tree]) -> li
         ]
         rest = resting([readable(view) for view in study.views], subject(tree))
         name = clipped(bait["name"], SHOWN)
-        made.append(Column(bait["letter"], name, bait["file"], ", ".join(counts), rest))
+        made.append(Column(bait["letter"], name, bait["file"], ", ".join(counts), tree["readiness"]["words"], rest))
     return made
 
 

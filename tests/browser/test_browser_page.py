@@ -46,7 +46,7 @@ def written(tmp_path_factory: pytest.TempPathFactory) -> Callable[[str], Path]:
     return path
 
 
-@pytest.fixture(scope="module", params=SAMPLES)
+@pytest.fixture(scope="module", params=[name for name in SAMPLES if "coarse" not in name])
 def window(request: pytest.FixtureRequest, chromium: Any, written: Callable[[str], Path]) -> Iterator[Opened]:
     """One sample's page in a window that all its tests share."""
     with opened(chromium, written(request.param)) as found:
