@@ -8,9 +8,11 @@ from __future__ import annotations
 import csv
 import json
 import re
+import shlex
 from pathlib import Path
 
 import pytest
+from command_bench import Bench
 
 from meshlure.cli.commands import NAMES
 
@@ -45,3 +47,15 @@ def test_every_picture_is_there() -> None:
     pictures = re.findall(r"!\[[^\]]+\]\(([^)]+)\)", README)
     assert len(pictures) >= 5
     assert [name for name in pictures if not (ROOT / name).is_file()] == []
+
+
+def test_an_inspection_prints_what_is_shown(bench: Bench) -> None:
+    (shown,) = re.findall(r"<!-- inspect -->\n```text\n\$ meshlure (.*?)\n(.*?)^```$", README, re.DOTALL | re.MULTILINE)
+    words, text = shown
+    (bench.folder / "tests").symlink_to(ROOT / "tests")
+    bench.out.mkdir()
+    ran = bench.run(*shlex.split(words))
+    said = ran.out.splitlines()
+    assert ran.code == 0
+    for line, full in zip(text.splitlines(), said, strict=True):
+        assert full == line or (line.endswith(" ...") and full.startswith(line.removesuffix("...")))

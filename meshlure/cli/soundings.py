@@ -31,7 +31,9 @@ def lines(row: Tree) -> Iterator[str]:
     yield from _findings(row["findings"], "  ")
     if row["mending"] is not None:
         yield from _mending(row["mending"])
-    yield f"  verdict  {_verdict(row['findings'])}"
+    made = row["mending"]
+    mended = "" if made is None or not made["file"] else f" as it was; {_verdict(made['findings'])} as mended"
+    yield f"  verdict  {_verdict(row['findings'])}{mended}"
 
 
 def _size(size: Sequence[float]) -> str:
@@ -87,7 +89,8 @@ def _mending(made: Tree) -> Iterator[str]:
     written = made["file"]
     word = "mended  " if written else "would   "
     if not made["steps"]:
-        yield f"  {word} do nothing: there is nothing to mend, or nothing that these steps can"
+        nothing = "nothing" if written else "do nothing"
+        yield f"  {word} {nothing}: there is nothing to mend, or nothing that these steps can"
     for step in made["steps"]:
         # Of a new skin its own words say how far it lies, and where that was measured.
         told = step["moved_mm"] and step["code"] != "remake"

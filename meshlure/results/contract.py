@@ -1,4 +1,4 @@
-"""The contract of results.json: which keys it has, their units and meaning, as a JSON Schema."""
+"""The contracts of results.json and of inspections: which keys they have, their units and meaning, as JSON Schemas."""
 
 from __future__ import annotations
 
@@ -22,6 +22,26 @@ def schema() -> dict[str, Any]:
     >>> schema()["properties"]["skin_mm2"]["description"]
     "mm2. The body's own skin, which takes the coat."
     """
-    text = files("meshlure.results").joinpath("schema.json").read_text(encoding="utf-8")
-    loaded: dict[str, Any] = json.loads(text)
+    return _read("schema.json")
+
+
+def inspection_schema() -> dict[str, Any]:
+    """Return the JSON Schema (draft 2020-12) of what `meshlure inspect --json` prints.
+
+    Returns
+    -------
+    dict
+        A fresh copy; as `schema`.
+
+    Examples
+    --------
+    >>> from meshlure.results import inspection_schema
+    >>> inspection_schema()["properties"]["meshes"]["items"]["properties"]["area_mm2"]["description"]
+    "mm2. Sum of the faces; null where the file could not be read."
+    """
+    return _read("inspection.json")
+
+
+def _read(name: str) -> dict[str, Any]:
+    loaded: dict[str, Any] = json.loads(files("meshlure.results").joinpath(name).read_text(encoding="utf-8"))
     return loaded
