@@ -15,6 +15,8 @@ from meshlure.geometry.surface import Floats, Ints, Surface
 from meshlure.geometry.topology import paired
 
 _SAME_AREA = 1e-6
+_MOST = 20_000
+"""Holes. Which of them lie within others takes their square: some seconds."""
 
 _ADVICE = "Close it in CAD. A flat opening can be closed by a lid (--cap), half a body be mirrored (--mirror)."
 
@@ -51,6 +53,9 @@ def capped(surface: Surface, share: float) -> tuple[Step | None, list[Left]]:
     if not len(open_edges):
         return None, []
     found, loose = rims(surface, open_edges)
+    if len(found) > _MOST:
+        what = f"{counted(len(found), 'hole')}: more than {_MOST:,}, up to which holes are closed"
+        return None, [Left(what, places(rim.centre for rim in found[:10]), "Export the part again, as a closed solid.")]
     lids, single = _lids(found)
     most = share * surface.area
     new: list[Ints] = []
@@ -100,8 +105,16 @@ def _lids(found: list[Rim]) -> tuple[list[_Lid], list[Rim]]:
     flat = [rim for rim in found if rim.flat]
     inner: dict[int, list[Rim]] = {}
     islands: set[int] = set()
+    ways = np.array([rim.vector_area for rim in flat]).reshape(-1, 3)
+    areas = np.array([rim.area for rim in flat])
+    slack = np.array([FLAT_SHARE * rim.length for rim in flat]).reshape(-1, 1)
+    low = np.array([rim.points.min(axis=0) for rim in flat]).reshape(-1, 3) - slack
+    high = np.array([rim.points.max(axis=0) for rim in flat]).reshape(-1, 3) + slack
     for number, rim in enumerate(flat):
-        holders = [n for n, other in enumerate(flat) if n != number and _within(rim, other)]
+        # Larger ones that run round the other way and reach here: few enough to be looked at one by one.
+        others = np.flatnonzero((areas > rim.area) & (ways @ rim.vector_area < 0))
+        others = others[((low[others] <= rim.points[0]) & (rim.points[0] <= high[others])).all(axis=1)]
+        holders = [n for n in others.tolist() if _within(rim, flat[n])]
         if holders:
             islands.add(number)
             inner.setdefault(min(holders, key=lambda n: flat[n].area), []).append(rim)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import cached_property
 
 import numpy as np
 
@@ -25,28 +26,28 @@ class Rim:
     vertices: Ints
     points: Floats
 
-    @property
+    @cached_property
     def length(self) -> float:
         """Length round, m."""
         return float(np.linalg.norm(np.roll(self.points, -1, axis=0) - self.points, axis=1).sum())
 
-    @property
+    @cached_property
     def centre(self) -> Floats:
         """Mean of the corners, (3,) array, m."""
         return np.asarray(self.points.mean(axis=0))
 
-    @property
+    @cached_property
     def vector_area(self) -> Floats:
         """Half the sum of p x q over the edges, (3,) array, m2: out of a lid, as long as its area where it is flat."""
         local = self.points - self.centre
         return np.asarray(np.cross(local, np.roll(local, -1, axis=0)).sum(axis=0) / 2)
 
-    @property
+    @cached_property
     def area(self) -> float:
         """Area, m2, of its shadow along its own axis."""
         return float(np.linalg.norm(self.vector_area))
 
-    @property
+    @cached_property
     def bend(self) -> float:
         """How far a corner lies off the loop's plane, m."""
         area = self.area
@@ -54,7 +55,7 @@ class Rim:
             return 0.0
         return float(np.abs((self.points - self.centre) @ (self.vector_area / area)).max())
 
-    @property
+    @cached_property
     def flat(self) -> bool:
         """Whether it lies in a plane, as far as exports round."""
         return self.area > 0 and self.bend <= FLAT_SHARE * self.length
