@@ -100,7 +100,8 @@ def _missed(tree: Tree, target: TargetSection | None) -> Iterator[Objection]:
     if target.reserve is not None:
         wanted, found = target.reserve * GRAM, tree["buoyancy"]["reserve_g"]
         if abs(found - wanted) > max(NEAR_G, NEAR_SHARE * abs(wanted)):
-            words = f"reserve {grams(found)}, {grams(wanted)} wanted"
+            places = _places(tree)
+            words = f"reserve {grams(found, places)}, {grams(wanted, places)} wanted"
             yield Objection("target", True, words, "reserve_g", wanted, found)
     posture = headline(tree["postures"]) if tree["postures"] else None
     share = None if posture is None else posture["submerged_share"]
@@ -173,16 +174,23 @@ def _doubts(tree: Tree) -> Iterator[Objection]:
     rows = [row for row in held["doubts"] if row["what"] in stock]
     widest = max(rows, key=lambda row: max(row["low_g"], row["high_g"]), default=None)
     most = 0.0 if widest is None else max(widest["low_g"], widest["high_g"])
-    band = f"reserve anywhere from {grams(held['reserve_low_g'])} to {grams(held['reserve_high_g'])}"
+    low, high = (grams(held[f"reserve_{end}_g"], _places(tree)) for end in ("low", "high"))
+    band = f"reserve anywhere from {low} to {high}"
     if widest is not None and most > WIDE_G / 2:
         yield Objection("density", False, f"the {widest['what']} is from stock, not weighed: {band}")
     else:
         yield Objection("density", False, f"masses and densities are too unsure: {band}")
 
 
-def grams(value: float) -> str:
-    """Return a reserve in g, signed, to the 0.01 g of a pocket scale."""
-    return f"{value:+.2f} g".replace("-", "\N{MINUS SIGN}")
+def _places(tree: Tree) -> int:
+    """Decimals that the reserve's band earns: the 0.01 g of a pocket scale, or 0.1 g where the band is wide."""
+    held = tree["buoyancy"]
+    return 1 if (held["reserve_high_g"] - held["reserve_low_g"]) / 2 > WIDE_G else 2
+
+
+def grams(value: float, places: int = 2) -> str:
+    """Return a reserve in g, signed."""
+    return f"{value:+.{places}f} g".replace("-", "\N{MINUS SIGN}")
 
 
 def plain_degrees(value: float) -> str:

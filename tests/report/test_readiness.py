@@ -121,7 +121,7 @@ def fewer(tree: Tree) -> None:
 @pytest.mark.parametrize(
     ("spoil", "words"),
     [
-        (widened, "the density of lead is from stock, not weighed: reserve anywhere from +0.90 g to +1.50 g"),
+        (widened, "the density of lead is from stock, not weighed: reserve anywhere from +0.9 g to +1.5 g"),
         (strayed, "10% of copies would sink"),
         (loosened, "its posture is touchy: copies would rest from nose 12° down to nose 3° up"),
         (warned, "1 warning to look at"),
