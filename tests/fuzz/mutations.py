@@ -35,6 +35,10 @@ VALUES: Final[tuple[Any, ...]] = (
     [0], [1, 2, 3], ["x"], {"a": 1}, [0.0, 0.0, 0.0], [math.nan, 0.0, 0.0], [1e300, 1e300, 1e300], *TEXTS,
 )  # fmt: skip
 
+FACTORS: Final = (0.0, 1e-9, 1e-3, 0.1, 0.5, 0.9, 1.1, 2.0, 5.0, 10.0, 1e3, 1e9, -1.0)
+"""By which a value that is meant is mistaken."""
+_QUANTITY: Final = re.compile(r"([+-]?\d+(?:\.\d+)?)( .+)")
+
 Others = Sequence[bytes]
 _LOST: Final = (
     ValueError, LookupError, TypeError, AttributeError, OverflowError, RecursionError, NotImplementedError,
@@ -47,12 +51,13 @@ _TOKEN: Final = re.compile(rb"[^\s<>=\"]+")
 
 def changed(kind: str, data: bytes, others: Others, lot: random.Random) -> bytes:
     """A file of a format, changed a few times; now and then a part of another one is put into it."""
-    for _ in range(lot.choice((1, 1, 1, 2, 3, 6))):
+    for _ in range(lot.choice((1, 1, 1, 1, 2, 2) if kind == "bait" else (1, 1, 1, 2, 3, 6))):
         way: Callable[[bytes, Others, random.Random], bytes] = lot.choice(_WAYS[kind])
         try:
             data = way(data, others, lot)
         except _LOST:
-            data = raw(data, others, lot)  # so broken by now that its structure is gone
+            # So broken by now that its structure is gone, or not to be written in it.
+            data = worded(data, others, lot) if kind == "bait" else raw(data, others, lot)
     return data
 
 
@@ -235,10 +240,12 @@ def grown(tree: Any, lot: random.Random) -> Any:
         else:
             copy[key] = grown(copy[key], lot)
         return copy
+    if isinstance(tree, str) and (number := _QUANTITY.match(tree)) and lot.random() < 0.7:
+        return f"{float(number[1]) * lot.choice(FACTORS):.6g}{number[2]}"
     if isinstance(tree, str) and lot.random() < 0.4:
         return worded(tree.encode("utf-8", "surrogatepass"), [b"lead", b"5 mm"], lot).decode("utf-8", "replace")
     if isinstance(tree, (int, float)) and not isinstance(tree, bool) and lot.random() < 0.6:
-        return lot.choice((0, -tree, tree * 1e3, tree / 1e3, tree + 1, tree - 1, 1e30, -1e30, 5e-324, 2**31, 2**32))
+        return tree + 1 if isinstance(tree, int) else tree * lot.choice(FACTORS)
     return lot.choice(VALUES)
 
 
@@ -249,5 +256,5 @@ _WAYS: Final[dict[str, Sequence[Callable[[bytes, Others, random.Random], bytes]]
     "ply": (worded, worded, raw, raw),
     "3mf": (packed, packed, packed, packed, raw),
     "glb": (chunked, chunked, chunked, raw),
-    "bait": (stated, stated, stated, worded, raw),
+    "bait": (*(stated,) * 12, worded, raw),
 }

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import re
 from collections.abc import Mapping, Sequence
 from pathlib import Path
 from typing import Final
@@ -12,7 +11,6 @@ import shapes
 from meshlure.files.stl import stl_bytes
 
 TESTS: Final = Path(__file__).parents[1]
-SAMPLES: Final = TESTS.parent / "samples"
 KINDS: Final = ("stl", "obj", "3mf", "ply", "off", "glb")
 _LARGEST: Final = 60_000
 """Bytes. A larger seed costs turns and adds nothing."""
@@ -152,9 +150,15 @@ def meshes() -> dict[str, list[bytes]]:
 
 
 def baits() -> Sequence[bytes]:
-    """Bait files, their meshes those of `MESHES`."""
-    texts = [EVERYTHING]
-    for file in sorted(SAMPLES.glob("*/*.toml")):
-        text = file.read_text(encoding="utf-8")
-        texts.append(re.sub(r'mesh = "[^"]*"', 'mesh = "weight.stl"', re.sub(r"#.*", "", text)))
+    """Bait files, their meshes those of `MESHES`: with every section, with few, printed, sinking."""
+    head, _, rest = EVERYTHING.partition("[[insert]]")
+    printed = 'printed = { material = "PLA solid", wall = "1.2 mm", infill = 0.15 }'
+    sinking = EVERYTHING.replace("0.62 g/cm3", "1.3 g/cm3").replace('"floats"', '"sinks"').replace('"1.0 g"', '"-2 g"')
+    texts = (
+        EVERYTHING,
+        head,
+        head + "[[insert]]" + rest.partition("[coat]")[0],
+        EVERYTHING.replace('density = "0.62 g/cm3"', printed),
+        sinking,
+    )
     return [text.encode() for text in texts]

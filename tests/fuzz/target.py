@@ -36,7 +36,7 @@ LARGEST: Final = 2_000_000
 """Bytes that may be read or unpacked here, so that a bomb costs little."""
 _LONGEST: Final = 4000
 """Characters of a fault. It names what it found, and does not repeat the file."""
-_STUDIED: Final = 0.1
+_STUDIED: Final = 0.15
 """Share of the baits that a command works on to the end: that takes a hundred times as long as the reading."""
 
 
