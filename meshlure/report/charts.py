@@ -14,6 +14,7 @@ from meshlure.report.wording import band, banded_grams, fixed, square_millimetre
 
 if TYPE_CHECKING:
     from matplotlib.axes import Axes
+    from matplotlib.figure import Figure
 
 WIDE = 86.0
 """mm: half an A4 page between its margins, and legible across a telephone."""
@@ -23,6 +24,9 @@ LINES: tuple[dict[str, Any], ...] = (
     {"linestyle": (0, (1, 1.4)), "color": ink.WATER},
     {"linestyle": (0, (6, 1.5, 1, 1.5)), "color": ink.MOSS},
 )
+MARKS = ("o", "s", "^", "D")
+COLUMNS = 3
+"""Of a legend."""
 PARTS = {
     "friction": ("skin friction", "#ffffff", ""),
     "forebody": ("forebody", "#dfe7ea", "/////"),
@@ -62,8 +66,7 @@ def waters(rows: Sequence[Mapping[str, Any]]) -> Picture | None:
     kinds = sorted({row["salinity_g_kg"] for row in rows if row["temperature_c"] is not None})
     if not kinds:
         return None
-    figure = blank(WIDE, 52)
-    axes = margins(figure, 14, 10, 3, 6)
+    figure, axes = _under_legend(len(kinds))
     for kind, look in zip(kinds, _cycle(len(kinds)), strict=True):
         of_kind = sorted(
             (row["temperature_c"], row["reserve_g"])
@@ -71,7 +74,8 @@ def waters(rows: Sequence[Mapping[str, Any]]) -> Picture | None:
             if row["salinity_g_kg"] == kind and row["temperature_c"] is not None
         )
         label = "fresh" if kind < 0.5 else f"{kind:g} g/kg of salt"
-        axes.plot(*zip(*of_kind, strict=True), label=label, marker="o", markersize=2.6, **look)
+        dotted: dict[str, Any] = {"marker": "o", "markersize": 2.6} | look
+        axes.plot(*zip(*of_kind, strict=True), label=label, **dotted)
     low, high = axes.get_ylim()
     if low < 0 < high:
         axes.axhline(0, color=ink.PENCIL, linewidth=0.8)
@@ -89,11 +93,10 @@ def righting(curves: Sequence[Mapping[str, Any]], plane: str, postures: Sequence
     chosen = [curve for curve in curves if curve["plane"] == plane and curve["heel_deg"]]
     if not chosen:
         return None
-    figure = blank(WIDE, 52)
-    axes = margins(figure, 14, 10, 3, 6)
+    figure, axes = _under_legend(len(chosen))
     for curve, look in zip(chosen, _cycle(len(chosen)), strict=True):
         index = curve.get("posture")
-        name = f"from posture {index + 1}" if index is not None and len(postures) > index else "righting arm"
+        name = f"posture {index + 1}" if index is not None and len(postures) > index else "righting arm"
         arms = [np.nan if arm is None else arm for arm in curve["arm_mm"]]
         axes.plot(curve["heel_deg"], arms, label=name, **look)
     axes.axhline(0, color=ink.PENCIL, linewidth=0.8)
@@ -196,12 +199,31 @@ def layer_words(row: Mapping[str, Any]) -> str:
 
 
 def _cycle(count: int) -> list[dict[str, Any]]:
-    return [dict(LINES[index % len(LINES)]) for index in range(count)]
+    """Looks of so many lines, no two alike without colour: from the fifth on they carry marks."""
+    plain = [dict(LINES[index % len(LINES)]) for index in range(count)]
+    for index in range(len(LINES), count):
+        mark = MARKS[(index // len(LINES) - 1) % len(MARKS)]
+        plain[index] |= {"marker": mark, "markersize": 3.2, "markevery": 4, "markerfacecolor": "white"}
+    return plain
+
+
+def _under_legend(count: int) -> tuple[Figure, Axes]:
+    """Return a sheet for one chart with room above it for a legend of so many lines, and the room for its curves."""
+    more = 3.6 * ((count - 1) // COLUMNS)
+    figure = blank(WIDE, 52 + more)
+    return figure, margins(figure, 14, 10, 3, 6 + more)
 
 
 def _legend(axes: Axes, count: int) -> None:
     if count > 1:
-        axes.legend(loc="lower center", bbox_to_anchor=(0.5, 0.99), ncols=min(count, 3), fontsize=7, borderaxespad=0.1)
+        axes.legend(
+            loc="lower center",
+            bbox_to_anchor=(0.5, 0.99),
+            ncols=min(count, COLUMNS),
+            fontsize=7,
+            columnspacing=1.2,
+            borderaxespad=0.1,
+        )
 
 
 def _steps() -> Any:

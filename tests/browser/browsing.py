@@ -149,12 +149,12 @@ OVERFLOWS = """() => {
   return found;
 }"""
 
-DRAWINGS = """() => {
-  // Every drawing's SVG laid out by the browser: words over words, leaders over words, leaders across leaders.
+PICTURES = """selector => {
+  // Pictures' SVG laid out by the browser: words cut or over words, leaders over words, leaders across leaders.
   const found = [];
   let leaders = 0, named = 0;
   const apart = 0.15;  // px that edges may share by rounding
-  for (const image of document.querySelectorAll('#drawings .view img')) {
+  for (const image of document.querySelectorAll(selector)) {
     const bytes = Uint8Array.from(atob(image.src.split(',')[1]), letter => letter.charCodeAt(0));
     const held = document.createElement('div');
     held.style.cssText = 'position:absolute;left:0;top:0;width:2000px';

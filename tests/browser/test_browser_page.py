@@ -15,8 +15,8 @@ from pathlib import Path
 from typing import Any
 
 import pytest
-from browsing import DRAWINGS, OVERFLOWS, OVERLAPS, Opened, amiss, opened
-from invented_odd import crowded, stretched
+from browsing import OVERFLOWS, OVERLAPS, PICTURES, Opened, amiss, opened
+from invented_odd import crowded, restless, stretched
 from pdfpages import pages
 from pypdf import PdfReader
 from studied import SAMPLES, sample
@@ -88,8 +88,8 @@ def test_no_words_lie_over_others_and_nothing_is_wider_than_its_place(window: Op
     assert window.page.evaluate(OVERFLOWS) == []
 
 
-def test_no_leader_meets_another_nor_any_words(window: Opened) -> None:
-    assert measured_drawings(window) > 9
+def test_no_words_of_a_picture_are_cut_or_met_by_others_or_a_leader(window: Opened) -> None:
+    assert measured_pictures(window) > 9
 
 
 @pytest.mark.parametrize(
@@ -98,13 +98,16 @@ def test_no_leader_meets_another_nor_any_words(window: Opened) -> None:
         pytest.param(lambda: stretched((3.0, 0.35, 0.3)), 20, id="long and thin"),
         pytest.param(lambda: stretched((0.35, 1.2, 2.6)), 20, id="short and deep"),
         pytest.param(crowded, 60, id="crowded"),
+        pytest.param(restless, 20, id="of many postures"),
     ],
 )
-def test_leaders_of_odd_baits_keep_apart(chromium: Any, tmp_path: Path, bait: Callable[[], Study], least: int) -> None:
+def test_pictures_of_odd_baits_keep_their_words_apart(
+    chromium: Any, tmp_path: Path, bait: Callable[[], Study], least: int
+) -> None:
     path = tmp_path / "report.html"
     path.write_text(page(bait()), encoding="utf-8")
     with opened(chromium, path) as found:
-        assert measured_drawings(found) >= least
+        assert measured_pictures(found) >= least
 
 
 def test_its_print_cuts_no_figure(window: Opened) -> None:
@@ -234,9 +237,9 @@ def test_every_chart_has_numbers_to_save_without_script(
     assert "published-drag-coefficients.csv" in kept
 
 
-def measured_drawings(window: Opened) -> int:
-    """How many leaders the drawings have, none of which meets another nor any words but its own."""
-    measured = window.page.evaluate(DRAWINGS)
+def measured_pictures(window: Opened) -> int:
+    """How many leaders a page's pictures have, none of which meets another nor any words but its own."""
+    measured = window.page.evaluate(PICTURES, "img")
     assert measured["found"] == []
     assert measured["words"] > measured["leaders"]
     count: int = measured["leaders"]

@@ -1,4 +1,4 @@
-"""Odd baits, invented: the minnow drawn out or squeezed, and one with more in it than there is room to name."""
+"""Odd baits, invented: the minnow drawn out or squeezed, with more in it than there is room to name, or restless."""
 
 from __future__ import annotations
 
@@ -62,3 +62,17 @@ def crowded(inserts: int = 14, hooks: int = 16) -> Study:
         )
         views.append(replace(view, pieces=(*view.pieces, *shots)))
     return replace(study, results=results, views=tuple(views))
+
+
+def restless(postures: int = 7) -> Study:
+    """The minnow with so many postures, each with its righting curves."""
+    study = minnow()
+    results = dict(study.results)
+    curves = {curve["plane"]: curve for curve in results["righting"]}
+    results["postures"] = (results["postures"] * postures)[:postures]
+    results["righting"] = [
+        {**curve, "posture": number, "arm_mm": [None if arm is None else arm + number for arm in curve["arm_mm"]]}
+        for number in range(postures)
+        for curve in curves.values()
+    ]
+    return replace(study, results=results)
