@@ -169,7 +169,12 @@ MISTAKES = {
     ),
     # 12: skins of scale texture and lofts
     "a skin through itself": Mistake(
-        12, "crossing_itself.stl", INSPECT, 1, ("self-crossing",), (r"about [\d.e+]+ mm3 too much \(\d+\.\d+%\)",)
+        12,
+        "crossing_itself.stl",
+        INSPECT,
+        1,
+        ("self-crossing",),
+        (r"about [\d.e+]+ mm3 too much \(\d+\.\d+%\), deepest",),
     ),
     "a face twice": Mistake(12, "duplicate_face.stl", MEND, 1, ("crowded-edges", "duplicate-faces"), ("took away 1",)),
     "a face without area": Mistake(

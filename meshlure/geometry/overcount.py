@@ -7,6 +7,7 @@ from typing import Final
 
 import numpy as np
 
+from meshlure.findings import Point
 from meshlure.geometry.columns import crossings
 from meshlure.geometry.surface import Surface
 
@@ -24,10 +25,13 @@ class Overcount:
         Integral of the winding number: what sums over the faces give.
     enclosed : float, m3
         Space that the surface winds round more than zero times, each part once.
+    where : Point or None
+        The middle of the longest stretch of a line that is wound round more than once, or the wrong way, m.
     """
 
     summed: float
     enclosed: float
+    where: Point | None = None
 
     @property
     def twice(self) -> float:
@@ -65,4 +69,12 @@ def overcount(surface: Surface) -> Overcount:
     same = (row[1:] == row[:-1]) & (column[1:] == column[:-1])
     length = np.where(same, np.diff(height), 0.0)
     cell = pitch**3
-    return Overcount(float((wound * length).sum()) * cell, float(length[wound > 0].sum()) * cell)
+    wrong = np.where((wound > 1) | (wound < 0), length, 0.0)
+    where: Point | None = None
+    if len(wrong) and wrong.max() > 0:
+        longest = int(wrong.argmax())
+        place = np.empty(3)
+        place[list(order)] = row[longest], column[longest], height[longest] + length[longest] / 2
+        x, y, z = (float(value) for value in origin + pitch * place)
+        where = (x, y, z)
+    return Overcount(float((wound * length).sum()) * cell, float(length[wound > 0].sum()) * cell, where)

@@ -13,7 +13,7 @@ from meshlure.geometry.crossing import self_crossings
 from meshlure.geometry.flaws import edge_flaws, face_flaws
 from meshlure.geometry.nesting import nest
 from meshlure.geometry.overcount import overcount
-from meshlure.geometry.phrasing import counted, places, places_text
+from meshlure.geometry.phrasing import counted, place_text, places, places_text
 from meshlure.geometry.shellflaws import shell_flaws
 from meshlure.geometry.shells import Shell, extent, measures, split
 from meshlure.geometry.surface import Bools, Floats, Surface
@@ -164,11 +164,14 @@ def _self_crossing(
             _MEND_CROSSING,
         )
     elif shared and not joined:
+        deepest = (lines.where,) if lines is not None and lines.where is not None else ()
         yield Finding(
             "self-crossing",
             Level.WARNING,
-            f"the skin runs through itself or lies on itself: space that it encloses twice counts twice{much}",
+            f"the skin runs through itself or lies on itself: space that it encloses twice counts twice{much}"
+            + "".join(f", deepest about {place_text(place)}" for place in deepest),
             piece,
+            where=deepest,
             advice=_MEND_CROSSING,
         )
     elif pairs is None:
