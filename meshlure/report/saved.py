@@ -50,14 +50,19 @@ def saved_file(rows: Rows, bait: str | None, name: str) -> Saved:
 def csv_rows(results: Tree) -> dict[str, Rows]:
     """Return the rows of every CSV, by the table that it stands under; columns are named as in results.json."""
     flight = results["flight"]
+    budget = results.get("budget") or {"rows": [], "doubts": []}
     return {
         "pieces": flat(results["pieces"]),
+        "hardware": flat(results.get("hardware") or []),
+        "facets": flat(results["facets"]),
         "waters": flat(results["waters"]),
         "buoyancy": flat([{key: value for key, value in results["buoyancy"].items() if key != "doubts"}]),
         "doubts": flat(results["buoyancy"]["doubts"]),
-        "budget": flat((results.get("budget") or {"rows": []})["rows"]),
+        "budget": flat(budget["rows"]),
+        "budget_doubts": flat(budget["doubts"]),
         "righting_sideways": _curves(results["righting"], "sideways"),
         "righting_fore_aft": _curves(results["righting"], "fore_aft"),
+        "areas": flat(results["areas"]),
         "stations": columns(results["stations"]),
         "rose": columns(results["rose"]),
         "drag": flat([{**row, "parts": {}} for row in results["drag"]]),
@@ -66,6 +71,7 @@ def csv_rows(results: Tree) -> dict[str, Rows]:
         "moments": list(_moments(flight)),
         "paths": [{"name": path["name"], **row} for path in flight["paths"] for row in columns(path, "x_m", "y_m")],
         "launch": columns(flight["launch"], "angle_deg", "distance_m"),
+        "tow": flat(results["sinking"]["tow"]),
     }
 
 

@@ -61,7 +61,7 @@ def test_pieces_without_a_value_leave_their_cell_empty(saved: dict[str, list[dic
 
 def test_columns_carry_their_units(saved: dict[str, list[dict[str, str]]]) -> None:
     units = ("_g", "_mm", "_mm2", "_mm3", "_deg", "_m", "_m_s", "_n", "_c", "_kg_m3", "_g_cm3", "_n_mm", "_g_kg",
-             "_m2_s", "_x", "_y", "_z")  # fmt: skip
+             "_m2_s", "_gf", "_x", "_y", "_z")  # fmt: skip
     bare = {"cd", "cd_low", "cd_high", "reynolds_length", "reynolds_diameter", "posture"}
     for name, rows in saved.items():
         for key, value in rows[0].items():
