@@ -10,7 +10,7 @@ from typing import TYPE_CHECKING, Final, TypeVar
 
 import typer
 
-from meshlure.cli.terminal import tell
+from meshlure.cli.terminal import harmless, tell
 from meshlure.errors import Fault, InputError
 
 if TYPE_CHECKING:
@@ -37,9 +37,9 @@ def ask(question: str, proposed: str | None, take: Callable[[str], T]) -> T:
         Reads the answer; where it raises an InputError, that is told and the question asked again.
     """
     while True:
-        text = typer.prompt(
-            question, default="" if proposed is None else proposed, show_default=bool(proposed), err=True
-        )
+        # Shown here, for the parser would send it to the terminal as it is, and a file may have any name.
+        shown = f"{question} [{harmless(proposed)}]" if proposed else question
+        text = typer.prompt(shown, default="" if proposed is None else proposed, show_default=False, err=True)
         try:
             return take(str(text).strip())
         except InputError as error:

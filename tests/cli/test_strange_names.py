@@ -15,6 +15,8 @@ import shapes
 from command_bench import BAIT, QUICK, Bench, Ran, box
 from lxml import html  # type: ignore[import-untyped]
 
+from meshlure.cli.asking import ask
+from meshlure.cli.terminal import harmless as as_shown
 from meshlure.files.reading import read_mesh
 from meshlure.files.stl import stl_bytes
 
@@ -124,6 +126,21 @@ def test_of_a_new_bait(bench: Bench) -> None:
     assert "rename the file" in ran.err
     assert not (bench.folder / "a.toml").exists()
     said(bench.run("new", "body.stl", "--unit", "mm", "--density", "1.2 g/cm3", "--yes", "--out", f"{STEERS}.toml"))
+
+
+def test_of_a_mesh_that_is_asked_about(bench: Bench, monkeypatch: pytest.MonkeyPatch) -> None:
+    """A name that is proposed stands in the question, and the terminal is sent the question as it is."""
+    asked: list[str] = []
+
+    def answered(text: str, default: str, **_: object) -> str:
+        asked.append(text)
+        return default
+
+    monkeypatch.setattr("typer.prompt", answered)
+    assert ask("Name of the bait", STEERS, str) == STEERS.strip()
+    assert ask("One of them", None, str) == ""
+    harmless("".join(asked))
+    assert asked == [f"Name of the bait [{as_shown(STEERS)}]", "One of them"]
 
 
 def test_of_parts_in_a_file(bench: Bench) -> None:
