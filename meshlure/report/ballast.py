@@ -58,7 +58,7 @@ def balanced(results: Results) -> Balanced | None:
 
 def way_words(row: Mapping[str, Any]) -> str:
     """Return one way in words: lead rod, 5 × 18.20 mm."""
-    size = f"{significant(row['size_mm'], 4)}"
+    size = f"{row['size_mm']:.4g}"
     if row["shape"] == "rod":
         return f"{row['material']} rod, {size} × {fixed(row['length_mm'], 2)}{SPACE}mm"
     balls = "ball" if row["count"] == 1 else f"balls, {row['count']} of"
@@ -84,8 +84,7 @@ def _ways(found: Mapping[str, Any]) -> Table | None:
         flight = row["flight"]
         rows.append(
             (
-                f"{number}{' (written)' if taken else ''}",
-                way_words(row),
+                f"{number}{' (written)' if taken else ''}: {way_words(row)}",
                 fixed(row["mass_g"], 2),
                 fixed(row["from_nose_mm"], 1),
                 point(row["at_mm"], 2),
@@ -101,7 +100,6 @@ def _ways(found: Mapping[str, Any]) -> Table | None:
             )
         )
     head = (
-        "way",
         "ballast",
         "g",
         "mm from nose",
@@ -117,7 +115,7 @@ def _ways(found: Mapping[str, Any]) -> Table | None:
         "points",
     )
     caption = "Ways to bring the ballast in, the best first; reach is the distance over that of the bait as it was"
-    return table(caption, head, rows, (0, 1, 11))
+    return table(caption, head, rows, (0, 10))
 
 
 def _angle(value: float | None) -> str:

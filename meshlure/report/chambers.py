@@ -7,7 +7,7 @@ from dataclasses import dataclass
 from typing import Any
 
 from meshlure.report.table import Table, table
-from meshlure.report.wording import SPACE, degrees, fixed, point, significant
+from meshlure.report.wording import SPACE, degrees, fixed, point
 
 Results = Mapping[str, Any]
 
@@ -50,14 +50,13 @@ def chambered(results: Results) -> Chambered | None:
 
 
 def _balls(row: Mapping[str, Any]) -> str:
-    return f"{row['count']} × {significant(row['ball_mm'], 4)}{SPACE}mm {row['material']}"
+    return f"{row['count']} × {row['ball_mm']:.4g}{SPACE}mm {row['material']}"
 
 
 def _ways(found: Mapping[str, Any]) -> Table | None:
     rows = [
         (
-            f"{number}{' (written)' if number == found['taken'] else ''}",
-            _balls(row),
+            f"{number}{' (written)' if number == found['taken'] else ''}: {_balls(row)}",
             fixed(row["bore_mm"], 2),
             fixed(row["length_mm"], 1),
             fixed(row["travel_mm"], 1),
@@ -73,7 +72,6 @@ def _ways(found: Mapping[str, Any]) -> Table | None:
         for number, row in enumerate(found["options"], 1)
     ]
     head = (
-        "way",
         "balls",
         "bore, mm",
         "length, mm",
@@ -87,7 +85,7 @@ def _ways(found: Mapping[str, Any]) -> Table | None:
         "end wall, mm",
         "points",
     )
-    return table("Bores that the body can carry, the best first", head, rows, (0, 1))
+    return table("Bores that the body can carry, the best first", head, rows, (0,))
 
 
 def _ends(found: Mapping[str, Any]) -> Table | None:
