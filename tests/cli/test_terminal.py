@@ -18,6 +18,8 @@ from command_bench import QUICK, SCRIPT, Bench, box
 FULL = Path("/dev/full")
 
 SLOW_PAGE = """
+import signal
+signal.signal(signal.SIGINT, signal.default_int_handler)  # what a shell starts in the background ignores it
 import time
 import meshlure.report.page as page
 page.page = lambda found: time.sleep(60)
