@@ -55,3 +55,11 @@ def test_thin_walls_are_found_as_well_as_thick_ones() -> None:
     for reach in (0.4, 0.8, 1.6):
         found = vicinity([body], other, reach * MM).volume.amount
         assert found == pytest.approx(4 / 3 * np.pi * (3 + reach) ** 3 * MM**3, rel=0.006)
+
+
+def test_what_is_thinner_than_the_grid_is_found_along_all_its_length() -> None:
+    # Within a distance of a needle, which is all but a line: a round bar with half a ball at either end.
+    body, reach = shapes.box((60 * MM, 10 * MM, 10 * MM)), 1.2 * MM
+    needle = shapes.box((40 * MM, 0.02 * MM, 0.02 * MM), (0, 0.13 * MM, 0.07 * MM))
+    expected = np.pi * reach**2 * 40 * MM + 4 / 3 * np.pi * reach**3 + 0.08 * MM * 40 * MM * reach
+    assert vicinity([body], needle, reach).volume.amount == pytest.approx(expected, rel=0.01)
