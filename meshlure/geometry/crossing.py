@@ -4,6 +4,8 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 from dataclasses import dataclass
+from functools import lru_cache
+from typing import Final
 
 import numpy as np
 
@@ -15,6 +17,10 @@ _CHUNK = 16384
 _ROUNDING = 32 * float(np.finfo(np.float64).eps)
 _SELF_TESTS = 300
 """Box tests per triangle beyond which a search of a surface against itself is given up; smooth skins take about 100."""
+
+_KEPT: Final = 16
+"""Surfaces whose crossings with themselves are kept: a mesh is asked when it is read, when it was written and when what
+was written is studied."""
 
 
 def crossings(a: Surface, b: Surface, margin: float = 0.0) -> Ints:
@@ -82,6 +88,28 @@ def self_crossings(surface: Surface, depth: float, most: int = 100_000) -> Ints 
         return None
     if count < 2:
         return np.empty((0, 2), dtype=np.intp)
+    return _self_crossings(_Mesh(surface), depth)
+
+
+@dataclass(frozen=True, eq=False)
+class _Mesh:
+    """A surface that equals another of the same numbers."""
+
+    surface: Surface
+
+    def __hash__(self) -> int:
+        return hash((self.surface.vertices.tobytes(), self.surface.faces.tobytes()))
+
+    def __eq__(self, other: object) -> bool:
+        if not isinstance(other, _Mesh):
+            return NotImplemented
+        one, two = self.surface, other.surface
+        return np.array_equal(one.vertices, two.vertices) and np.array_equal(one.faces, two.faces)
+
+
+@lru_cache(maxsize=_KEPT)
+def _self_crossings(mesh: _Mesh, depth: float) -> Ints | None:
+    surface, count = mesh.surface, len(mesh.surface.faces)
     corners = _corners(surface, np.arange(count))
     blocks = _Blocks.of(corners, -depth)
     found = [np.empty((2, 0), dtype=np.intp)]
@@ -98,7 +126,9 @@ def self_crossings(surface: Surface, depth: float, most: int = 100_000) -> Ints 
         rows = pairs[:, apart]
         found.append(rows[:, _meet(corners[..., rows[0]], corners[..., rows[1]], -depth)])
     rows = np.concatenate(found, axis=1)
-    return _ordered(rows[0], rows[1])
+    ordered = _ordered(rows[0], rows[1])
+    ordered.flags.writeable = False
+    return ordered
 
 
 def _ordered(first: Ints, second: Ints) -> Ints:

@@ -5,6 +5,7 @@ from __future__ import annotations
 import numpy as np
 import pytest
 import shapely
+import shapes
 import trimesh
 from scipy.optimize import linprog
 
@@ -128,3 +129,11 @@ def test_boxes_that_all_meet_end_the_search() -> None:
     # Faces thrown across the whole of a cube: nearly every box holds part of every other.
     corners = np.random.default_rng(2).random((2000, 3, 3))
     assert self_crossings(weld(corners).surface, depth=1e-9) is None
+
+
+def test_a_surface_that_was_asked_before_is_told_from_one_that_differs_by_a_hair() -> None:
+    apart = shapes.together(shapes.box((2.0, 2.0, 2.0)), shapes.box((2.0, 2.0, 2.0), (2.0 + 1e-9, 0.3, 0.2)))
+    meeting = shapes.together(shapes.box((2.0, 2.0, 2.0)), shapes.box((2.0, 2.0, 2.0), (2.0 - 1e-9, 0.3, 0.2)))
+    for _ in range(2):
+        found = [self_crossings(mesh, 0.0) for mesh in (apart, meeting)]
+        assert [pairs is not None and len(pairs) > 0 for pairs in found] == [False, True]
