@@ -155,7 +155,7 @@ def _copies(tree: Tree) -> Iterator[Objection]:
     if share is not None and share < 1 - STRAY:
         words = f"only {share:.0%} of copies would pass your limits" if share else "no copy would pass your limits"
         yield Objection("copies", share < MOST_FAIL, words)
-    if tree["postures"] and tree["postures"][0]["up"] is None:
+    if tree["postures"] and headline(tree["postures"])["up"] is None:
         yield Objection("posture", False, "its centres meet, so it has no preferred attitude")
     elif drawn["left_share"] > STRAY:
         yield Objection("posture", False, f"{drawn['left_share']:.0%} of copies would tip into another posture")
