@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping, Sequence
+from collections.abc import Mapping
 from pathlib import Path
 from typing import Any, Final
 
@@ -16,7 +16,10 @@ def chamber_lines(results: Tree, out: Path | None) -> tuple[str | Table, ...]:
     account = results["chamber"]
     lines: list[str | Table] = [str(results["name"])]
     if account["options"]:
-        lines += [_table(columns, cells, account["options"], account["taken"]) for columns, cells in _TABLES]
+        lines += [
+            Table.numbered(columns, [cells(row) for row in account["options"]], account["taken"])
+            for columns, cells in _TABLES
+        ]
         lines += [f"  {line}" for line in _taken(account["options"][account["taken"] - 1])]
     if account["replaced"]:
         lines.append(f"  replaced {', '.join(account['replaced'])}")
@@ -59,14 +62,6 @@ def _taken(row: Tree) -> list[str]:
     flooded = row["flooded"]
     lines.append(f"flooded  {flooded['state']}, reserve {flooded['reserve_g']:+.2f} g")
     return lines
-
-
-def _table(
-    columns: Sequence[Column], cells: Callable[[Tree], tuple[str, ...]], rows: Sequence[Tree], taken: int
-) -> Table:
-    """One row a way; the one that is written carries an arrow."""
-    made = [(f"{number}{'>' if number == taken else ''}", *cells(row)) for number, row in enumerate(rows, 1)]
-    return Table(columns, made, frozenset({taken - 1}))
 
 
 def _deed_cells(row: Tree) -> tuple[str, ...]:

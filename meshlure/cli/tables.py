@@ -50,6 +50,12 @@ class Table:
     rows: Sequence[Sequence[str]]
     strong: frozenset[int] = field(default_factory=frozenset)
 
+    @classmethod
+    def numbered(cls, columns: Sequence[Column], rows: Sequence[Sequence[str]], taken: int | None) -> Table:
+        """Return rows with their numbers in a first column; the one that was taken, from 1, carries an arrow."""
+        made = [(f"{number}{'>' if number == taken else ''}", *row) for number, row in enumerate(rows, 1)]
+        return cls(columns, made, frozenset() if taken is None else frozenset({taken - 1}))
+
     def lines(self, wide: int | None, encoding: str, colour: bool) -> list[str]:
         """Return the table's lines, without the blanks at their ends.
 

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping, Sequence
+from collections.abc import Mapping
 from pathlib import Path
 from typing import Any, Final
 
@@ -22,7 +22,7 @@ def balance_lines(results: Tree, out: Path) -> tuple[str | Table, ...]:
     if wanted is not None:
         lines.append(f"  target   {wanted['behaviour']}, {_wanted(wanted)}")
     if rows:
-        lines += [_table(columns, cells, rows, account["taken"]) for columns, cells in _TABLES]
+        lines += [Table.numbered(columns, [cells(row) for row in rows], account["taken"]) for columns, cells in _TABLES]
     if len(rows) > 1:
         lines.append(f"  order    {_order(account['weights'])}")
     dense = account["body_density"]
@@ -60,20 +60,10 @@ def _order(weights: Tree) -> str:
     )
 
 
-def _table(
-    columns: Sequence[Column], cells: Callable[[str, Tree], tuple[str, ...]], rows: Sequence[Tree], taken: int | None
-) -> Table:
-    """One row a way; the one that is written carries an arrow."""
-    marks = [f"{number}{'>' if number == taken else ''}" for number in range(1, len(rows) + 1)]
-    made = [cells(mark, row) for mark, row in zip(marks, rows, strict=True)]
-    return Table(columns, made, frozenset() if taken is None else frozenset({taken - 1}))
-
-
-def _deed_cells(mark: str, row: Tree) -> tuple[str, ...]:
+def _deed_cells(row: Tree) -> tuple[str, ...]:
     rod = row["shape"] == "rod"
     size = f"{row['size_mm']:.4g} x {row['length_mm']:.2f}" if rod else f"{row['count']} x {row['size_mm']:.4g}"
     return (
-        mark,
         f"{row['material']} {row['shape']} {size} mm",
         f"{row['mass_g']:.2f}",
         f"{row['from_nose_mm']:z.1f}",
@@ -85,11 +75,10 @@ def _deed_cells(mark: str, row: Tree) -> tuple[str, ...]:
     )
 
 
-def _place_cells(mark: str, row: Tree) -> tuple[str, ...]:
+def _place_cells(row: Tree) -> tuple[str, ...]:
     flight = row["flight"]
     trim = "" if flight["trim_deg"] is None else f", trim {flight['trim_deg']:.0f} deg"
     return (
-        mark,
         ", ".join(f"{value:z.2f}" for value in row["at_mm"]),
         f"{row['cover_mm']:.2f}",
         ", ".join(f"{value:z.1f}" for value in row["cover_at_mm"]),
